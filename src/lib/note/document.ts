@@ -1,0 +1,123 @@
+import { generateKeyBetween } from 'fractional-indexing';
+import * as Y from 'yjs';
+
+export const cellKinds = ['text', 'calculation', 'requirement'] as const;
+export type CellKind = (typeof cellKinds)[number];
+
+/** A cell as everybody but the editor sees it: plain data, in sheet order. */
+export interface NoteCell {
+	id: string;
+	kind: CellKind;
+	source: string;
+}
+
+/** What a note's document holds, as plain data. */
+export interface NoteContent {
+	title: string;
+	cells: NoteCell[];
+}
+
+/** Most characters one cell may hold. */
+export const maxSourceLength = 100_000;
+
+/**
+ * Shared types of a note's document:
+ * `title`: Y.Text; `cells`: Y.Map of cell id → Y.Map { kind: string, order: string, source: Y.Text }.
+ * The sheet's order is that of `order` (fractional keys, so that a move changes one value), ties by id.
+ */
+export function titleOf(doc: Y.Doc): Y.Text {
+	return doc.getText('title');
+}
+
+export function cellsOf(doc: Y.Doc): Y.Map<Y.Map<unknown>> {
+	return doc.getMap<Y.Map<unknown>>('cells');
+}
+
+interface PlacedCell extends NoteCell {
+	order: string;
+	text: Y.Text;
+}
+
+/** Cells in sheet order with their Y.Text. Entries that are no cell of a known kind are left out. */
+export function placedCells(doc: Y.Doc): PlacedCell[] {
+	const placed: PlacedCell[] = [];
+	for (const [id, entry] of cellsOf(doc)) {
+		if (!(entry instanceof Y.Map)) continue;
+		const kind = entry.get('kind') as CellKind;
+		const order = entry.get('order');
+		const text = entry.get('source');
+		if (!cellKinds.includes(kind) || typeof order !== 'string' || !(text instanceof Y.Text))
+			continue;
+		placed.push({ id, kind, order, text, source: text.toString() });
+	}
+	return placed.sort((a, b) => compare(a.order, b.order) || compare(a.id, b.id));
+}
+
+function compare(a: string, b: string): number {
+	return a < b ? -1 : a > b ? 1 : 0;
+}
+
+/** The document as plain data, in sheet order. */
+export function toContent(doc: Y.Doc): NoteContent {
+	return {
+		title: titleOf(doc).toString(),
+		cells: placedCells(doc).map(({ id, kind, source }) => ({ id, kind, source })),
+	};
+}
+
+/** Adds a cell after the cell `after`, or first where it is null, and returns its id. */
+export function addCell(doc: Y.Doc, kind: CellKind, after: string | null, source = ''): string {
+	const id = newId();
+	const entry = new Y.Map<unknown>();
+	entry.set('kind', kind);
+	entry.set('order', orderAfter(doc, after, id));
+	entry.set('source', new Y.Text(source));
+	cellsOf(doc).set(id, entry);
+	return id;
+}
+
+/** Moves a cell behind `after` (null: to the top). One key changes, so two movers never make two copies. */
+export function moveCell(doc: Y.Doc, id: string, after: string | null): void {
+	if (id === after) return;
+	cellsOf(doc)
+		.get(id)
+		?.set('order', orderAfter(doc, after, id));
+}
+
+/** Puts a copy of a cell behind it and returns the copy's id; undefined where the cell is gone. */
+export function duplicateCell(doc: Y.Doc, id: string): string | undefined {
+	const cell = placedCells(doc).find((c) => c.id === id);
+	return cell && addCell(doc, cell.kind, id, cell.source);
+}
+
+export function removeCell(doc: Y.Doc, id: string): void {
+	cellsOf(doc).delete(id);
+}
+
+function orderAfter(doc: Y.Doc, after: string | null, moving: string): string {
+	const others = placedCells(doc).filter((cell) => cell.id !== moving);
+	const index = after === null ? -1 : others.findIndex((cell) => cell.id === after);
+	const before = others[index]?.order ?? null;
+	// Two people may have made equal keys at once; the next larger one keeps the order strict.
+	const next = others.slice(index + 1).find((cell) => before === null || cell.order > before);
+	return generateKeyBetween(before, next?.order ?? null);
+}
+
+/** Short random identifier, 60 bits, of letters and digits. */
+function newId(): string {
+	const alphabet = 'abcdefghijkmnpqrstuvwxyz23456789';
+	const bytes = crypto.getRandomValues(new Uint8Array(12));
+	return Array.from(bytes, (byte) => alphabet[byte % 32]).join('');
+}
+
+/** Seeds an empty document. Only the server does so, once, in the transaction that creates the note. */
+export function seedContent(
+	doc: Y.Doc,
+	content: { title: string; cells: Omit<NoteCell, 'id'>[] },
+): void {
+	doc.transact(() => {
+		titleOf(doc).insert(0, content.title);
+		let last: string | null = null;
+		for (const cell of content.cells) last = addCell(doc, cell.kind, last, cell.source);
+	});
+}

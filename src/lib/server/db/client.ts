@@ -1,0 +1,35 @@
+import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
+import pg from 'pg';
+import { env } from '../env';
+import { log } from '../log';
+import * as notes from './schema/notes';
+import * as people from './schema/people';
+import * as review from './schema/review';
+
+export const schema = { ...people, ...notes, ...review };
+
+export type Database = NodePgDatabase<typeof schema>;
+/** What a function needs that may run inside a caller's transaction. */
+export type Connection = Pick<Database, 'select' | 'insert' | 'update' | 'delete' | 'execute'>;
+
+let pool: pg.Pool | undefined;
+let database: Database | undefined;
+
+/** The process's database, connected at the first query. */
+export function db(): Database {
+	if (database) return database;
+	pool = new pg.Pool({
+		connectionString: env().DATABASE_URL,
+		max: 10,
+		connectionTimeoutMillis: 5000,
+	});
+	pool.on('error', (error) => log().warn({ err: error }, 'idle database connection lost'));
+	return (database = drizzle(pool, { schema }));
+}
+
+/** Ends the pool; the next `db()` opens a new one. */
+export async function closeDb(): Promise<void> {
+	const ending = pool;
+	pool = database = undefined;
+	await ending?.end();
+}

@@ -1,0 +1,121 @@
+import type { Evaluation } from '$lib/calc/results';
+import type { NoteContent } from '$lib/note/document';
+import {
+	bigint,
+	boolean,
+	customType,
+	index,
+	integer,
+	jsonb,
+	pgTable,
+	primaryKey,
+	text,
+	timestamp,
+	unique,
+	uuid,
+} from 'drizzle-orm/pg-core';
+import { person, team } from './people';
+
+const bytea = customType<{ data: Uint8Array; driverData: Buffer }>({
+	dataType: () => 'bytea',
+	toDriver: (value) => Buffer.from(value),
+});
+
+export const note = pgTable(
+	'note',
+	{
+		id: uuid('id').primaryKey().defaultRandom(),
+		teamId: uuid('team_id')
+			.notNull()
+			.references(() => team.id),
+		/** Number within the team; shown as MN-014. */
+		number: integer('number').notNull(),
+		/** The document's title as of the last stored evaluation, for lists. */
+		title: text('title').notNull(),
+		/** Last sequence number given to an update. Taken under this row's lock. */
+		seq: bigint('seq', { mode: 'number' }).notNull().default(0),
+		/** Life of the document; changes when it is restored from a backup. */
+		epoch: uuid('epoch').notNull().defaultRandom(),
+		createdBy: text('created_by')
+			.notNull()
+			.references(() => person.id),
+		createdAt: timestamp('created_at', { withTimezone: true }).notNull().defaultNow(),
+		changedAt: timestamp('changed_at', { withTimezone: true }).notNull().defaultNow(),
+		changedBy: text('changed_by')
+			.notNull()
+			.references(() => person.id),
+	},
+	(t) => [unique('note_number').on(t.teamId, t.number)],
+);
+
+/** The working copy: raw update bytes as received, append-only. */
+export const noteUpdate = pgTable(
+	'note_update',
+	{
+		noteId: uuid('note_id')
+			.notNull()
+			.references(() => note.id),
+		seq: bigint('seq', { mode: 'number' }).notNull(),
+		/** Chosen by the client; a retry under the same id is stored once. */
+		clientEditId: text('client_edit_id').notNull(),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
+		bytes: bytea('bytes').notNull(),
+	},
+	(t) => [
+		primaryKey({ columns: [t.noteId, t.seq] }),
+		unique('note_update_once').on(t.noteId, t.clientEditId),
+	],
+);
+
+/** Last stored results of a note's working copy. */
+export const evaluation = pgTable('evaluation', {
+	noteId: uuid('note_id')
+		.primaryKey()
+		.references(() => note.id),
+	/** Sequence number of the content below. */
+	seq: bigint('seq', { mode: 'number' }).notNull(),
+	engine: text('engine').notNull(),
+	content: jsonb('content').$type<NoteContent>().notNull(),
+	results: jsonb('results').$type<Evaluation>().notNull(),
+	met: integer('met').notNull(),
+	notMet: integer('not_met').notNull(),
+	undecided: integer('undecided').notNull(),
+	faults: integer('faults').notNull(),
+	at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
+});
+
+export const thread = pgTable(
+	'thread',
+	{
+		id: uuid('id').primaryKey().defaultRandom(),
+		noteId: uuid('note_id')
+			.notNull()
+			.references(() => note.id),
+		cellId: text('cell_id').notNull(),
+		kind: text('kind', { enum: ['question', 'correction', 'remark'] }).notNull(),
+		blocking: boolean('blocking').notNull(),
+		closedAt: timestamp('closed_at', { withTimezone: true }),
+		closedBy: text('closed_by').references(() => person.id),
+	},
+	(t) => [index('thread_note').on(t.noteId)],
+);
+
+/** What was said in a thread, oldest first; the first one opens it. */
+export const comment = pgTable(
+	'comment',
+	{
+		id: uuid('id').primaryKey().defaultRandom(),
+		threadId: uuid('thread_id')
+			.notNull()
+			.references(() => thread.id),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+		body: text('body').notNull(),
+		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
+	},
+	(t) => [index('comment_thread').on(t.threadId, t.at)],
+);

@@ -1,0 +1,30 @@
+import adapter from '@sveltejs/adapter-node';
+import { vitePreprocess } from '@sveltejs/vite-plugin-svelte';
+
+/** @type {import('@sveltejs/kit').Config} */
+export default {
+	preprocess: vitePreprocess(),
+	kit: {
+		adapter: adapter({ out: 'build/web', precompress: true }),
+		// Svelte writes measured positions (gauges, cursors) as style attributes, so only scripts are strict.
+		csp: {
+			mode: 'nonce',
+			directives: {
+				'default-src': ['self'],
+				'script-src': ['self'],
+				'style-src': ['self', 'unsafe-inline'],
+				'img-src': ['self', 'data:'],
+				'connect-src': ['self'],
+				'object-src': ['none'],
+				'base-uri': ['none'],
+				'frame-ancestors': ['none'],
+				'form-action': ['self'],
+			},
+		},
+		typescript: {
+			config: (config) => {
+				config.include.push('../server/**/*.ts', '../tests/**/*.ts', '../*.config.ts');
+			},
+		},
+	},
+};
