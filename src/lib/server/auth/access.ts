@@ -12,7 +12,7 @@ export interface Actor {
 }
 
 /** Throws AppError `forbidden` where the actor's role does not allow the deed. */
-export function require(actor: Actor, deed: Deed): void {
+export function demand(actor: Actor, deed: Deed): void {
 	if (!may(actor.role, deed)) {
 		throw new AppError('forbidden', `Your role (${actor.role}) does not allow this.`);
 	}
