@@ -1,10 +1,42 @@
 import { sveltekit } from '@sveltejs/kit/vite';
 import tailwindcss from '@tailwindcss/vite';
-import { defineConfig } from 'vite';
+import { defineConfig } from 'vitest/config';
 
 export default defineConfig({
 	plugins: [tailwindcss(), sveltekit()],
 	server: {
 		proxy: { '/sync': { target: `http://127.0.0.1:${process.env.SYNC_PORT ?? '4174'}`, ws: true } },
+	},
+	test: {
+		projects: [
+			{
+				extends: true,
+				test: {
+					name: 'unit',
+					include: [
+						'src/**/*.test.ts',
+						'server/**/*.test.ts',
+						'tests/architecture/**/*.test.ts',
+						'tests/references/**/*.test.ts',
+					],
+				},
+			},
+			{
+				extends: true,
+				test: {
+					name: 'db',
+					include: ['tests/db/**/*.test.ts'],
+					globalSetup: 'tests/support/postgres.ts',
+				},
+			},
+			{
+				extends: true,
+				test: {
+					name: 'sync',
+					include: ['tests/sync/**/*.test.ts'],
+					globalSetup: 'tests/support/postgres.ts',
+				},
+			},
+		],
 	},
 });

@@ -1,0 +1,126 @@
+import { createHash, randomBytes } from 'node:crypto';
+import { spawnSync } from 'node:child_process';
+import {
+	appendFileSync,
+	chmodSync,
+	chownSync,
+	existsSync,
+	mkdirSync,
+	readFileSync,
+	renameSync,
+	rmSync,
+	writeFileSync,
+} from 'node:fs';
+import { join } from 'node:path';
+import { dataFolder, inData, root } from './place.mjs';
+import { databaseUser, findPrograms, runProgram } from './postgres-programs.mjs';
+import { Problem } from './problem.mjs';
+
+/**
+ * What `.data/postgres.json` remembers. The application's role owns its databases and is no superuser.
+ * @typedef {{ folder: string, port: number, password: string, superuserPassword: string }} Cluster
+ */
+
+const memory = join(dataFolder, 'postgres.json');
+
+/**
+ * The clone's own cluster, if it was made.
+ * @returns {Cluster | undefined}
+ */
+export function findCluster() {
+	if (!existsSync(memory)) return undefined;
+	const cluster = /** @type {Cluster} */ (JSON.parse(readFileSync(memory, 'utf8')));
+	return existsSync(join(cluster.folder, 'PG_VERSION')) ? cluster : undefined;
+}
+
+/** @param {Cluster} cluster */
+export function remember(cluster) {
+	const draft = inData('postgres.json.new');
+	writeFileSync(draft, JSON.stringify(cluster, null, '\t'), { mode: 0o600 });
+	renameSync(draft, memory);
+}
+
+/**
+ * Makes the cluster beside its place and moves it there when it is whole, so that a start that was killed
+ * half-way leaves only a folder that the next one throws away.
+ * @param {number} port
+ * @returns {Cluster}
+ */
+export function makeCluster(port) {
+	const programs = findPrograms();
+	if (!programs) throw new Problem('PostgreSQL is missing.\nMend: apt-get install postgresql');
+	const folder = chooseFolder();
+	const making = `${folder}.making`;
+	rmSync(making, { recursive: true, force: true });
+	rmSync(folder, { recursive: true, force: true });
+	mkdirSync(making, { mode: 0o700 });
+	own(making);
+
+	const cluster = { folder, port, password: secret(), superuserPassword: secret() };
+	const passwordFile = join(making, 'superuser');
+	writeFileSync(passwordFile, cluster.superuserPassword, { mode: 0o600 });
+	own(passwordFile);
+	const files = join(making, 'cluster');
+	runProgram(join(programs, 'initdb'), [
+		...['--pgdata', files, '--username', 'postgres', '--pwfile', passwordFile],
+		...['--auth', 'scram-sha-256', '--encoding', 'UTF8', '--locale', 'C.UTF-8'],
+	]);
+	appendFileSync(join(files, 'postgresql.conf'), settings);
+	runProgram(join(programs, 'postgres'), ['--single', '-D', files, 'postgres'], {
+		input: `CREATE ROLE halfdigit LOGIN CREATEDB PASSWORD '${cluster.password}'\n`,
+	});
+	remember(cluster);
+	renameSync(files, folder);
+	rmSync(making, { recursive: true, force: true });
+	return cluster;
+}
+
+/** Removes the cluster and what is remembered of it. It must be stopped. */
+export function removeCluster() {
+	if (existsSync(memory)) {
+		const { folder } = /** @type {Cluster} */ (JSON.parse(readFileSync(memory, 'utf8')));
+		rmSync(folder, { recursive: true, force: true });
+		rmSync(memory);
+	}
+	rmSync(join(dataFolder, 'postgres'), { recursive: true, force: true });
+}
+
+const settings = `
+listen_addresses = '127.0.0.1'
+unix_socket_directories = ''
+max_connections = 200
+password_encryption = 'scram-sha-256'
+timezone = 'UTC'
+log_timezone = 'UTC'
+# Durability is PostgreSQL's default and stays on here: a saved edit must survive a crash.
+fsync = on
+full_page_writes = on
+synchronous_commit = on
+`;
+
+/** `.data/postgres`, or a folder of the database user where it may not walk down to the clone. */
+function chooseFolder() {
+	const usual = inData('postgres');
+	const user = databaseUser();
+	if (!user) return usual;
+	chmodSync(dataFolder, 0o755);
+	const walk = spawnSync('test', ['-x', dataFolder], { ...user, cwd: '/' });
+	if (walk.status === 0) return usual;
+	const home = '/var/lib/postgresql';
+	if (!existsSync(home)) {
+		throw new Problem(
+			`The system user "postgres" may not enter ${root}.\nMend: clone into a folder that others may enter, for example under /srv.`,
+		);
+	}
+	return join(home, `halfdigit-${createHash('sha256').update(root).digest('hex').slice(0, 12)}`);
+}
+
+/** @param {string} path */
+function own(path) {
+	const user = databaseUser();
+	if (user) chownSync(path, user.uid, user.gid);
+}
+
+function secret() {
+	return randomBytes(24).toString('hex');
+}
