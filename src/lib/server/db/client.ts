@@ -2,11 +2,12 @@ import { drizzle, type NodePgDatabase } from 'drizzle-orm/node-postgres';
 import pg from 'pg';
 import { env } from '../env';
 import { log } from '../log';
+import * as listing from './schema/listing';
 import * as notes from './schema/notes';
 import * as people from './schema/people';
 import * as review from './schema/review';
 
-export const schema = { ...people, ...notes, ...review };
+export const schema = { ...people, ...notes, ...review, ...listing };
 
 export type Database = NodePgDatabase<typeof schema>;
 /** What a function needs that may run inside a caller's transaction. */
