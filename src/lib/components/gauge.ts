@@ -15,7 +15,11 @@ const leastShare = 0.16;
 const rest = 0.24;
 
 /** A linear scale on which limits and value can be told apart: it starts from zero where that shows enough. */
-export function gaugeScale({ value, lower, upper }: Pick<Requirement, 'value' | 'lower' | 'upper'>): GaugeScale {
+export function gaugeScale({
+	value,
+	lower,
+	upper,
+}: Pick<Requirement, 'value' | 'lower' | 'upper'>): GaugeScale {
 	const [left, right] = drawnRange(value, lower, upper);
 	const share = (x: number) => (x - left) / (right - left);
 	const at = share(value);

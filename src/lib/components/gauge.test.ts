@@ -1,0 +1,51 @@
+import fc from 'fast-check';
+import { describe, expect, test } from 'vitest';
+import { gaugeScale } from './gauge';
+
+const figure = fc.double({ min: -1e12, max: 1e12, noNaN: true });
+
+describe('the scale of a limit gauge', () => {
+	test('a value close below its limit stands visibly left of it', () => {
+		const { value, upper } = gaugeScale({ value: 2.4112, lower: null, upper: 2.45 });
+		expect((upper ?? 0) - value).toBeGreaterThan(0.15);
+	});
+
+	test('a value far below its limit is drawn from zero', () => {
+		const { value, upper } = gaugeScale({ value: 1, lower: null, upper: 4 });
+		expect(value / (upper ?? 1)).toBeCloseTo(0.25, 10);
+	});
+
+	test('a value far beyond two limits stands at the edge and says so', () => {
+		expect(gaugeScale({ value: 99, lower: 1, upper: 2 })).toMatchObject({
+			value: 0.97,
+			beyond: 'right',
+		});
+	});
+
+	test('all marks stay in the picture and on their side of each other', () => {
+		fc.assert(
+			fc.property(figure, figure, fc.boolean(), (value, limit, above) => {
+				const scale = gaugeScale({
+					value,
+					lower: above ? null : limit,
+					upper: above ? limit : null,
+				});
+				const at = (above ? scale.upper : scale.lower) ?? NaN;
+				expect(at).toBeGreaterThan(0);
+				expect(at).toBeLessThan(1);
+				expect(scale.value).toBeGreaterThanOrEqual(0);
+				expect(scale.value).toBeLessThanOrEqual(1);
+				if (Math.abs(value - limit) > 1e-6 * Math.abs(limit)) {
+					expect(Math.sign(scale.value - at)).toBe(Math.sign(value - limit));
+				}
+			}),
+		);
+	});
+
+	test('no limit, no span and no value break the scale', () => {
+		for (const at of Object.values(gaugeScale({ value: 0, lower: 0, upper: 0 }))) {
+			expect(at === null || Number.isFinite(at)).toBe(true);
+		}
+		expect(gaugeScale({ value: 0, lower: null, upper: 0 }).value).toBeGreaterThan(0);
+	});
+});
