@@ -23,7 +23,13 @@ export default {
 		},
 		typescript: {
 			config: (config) => {
-				config.include.push('../server/**/*.ts', '../tests/**/*.ts', '../*.config.ts');
+				config.include.push(
+					'../server/**/*.ts',
+					'../server/**/*.mjs',
+					'../tests/**/*.ts',
+					'../*.config.ts',
+					'../*.config.js',
+				);
 			},
 		},
 	},

@@ -18,7 +18,8 @@ import { Problem } from './problem.mjs';
 
 /**
  * What `.data/postgres.json` remembers. The application's role owns its databases and is no superuser.
- * @typedef {{ folder: string, port: number, password: string, superuserPassword: string }} Cluster
+ * `owner` is the process that started the server and stops it when it ends itself.
+ * @typedef {{ folder: string, port: number, password: string, superuserPassword: string, owner?: number }} Cluster
  */
 
 const memory = join(dataFolder, 'postgres.json');
@@ -73,16 +74,6 @@ export function makeCluster(port) {
 	renameSync(files, folder);
 	rmSync(making, { recursive: true, force: true });
 	return cluster;
-}
-
-/** Removes the cluster and what is remembered of it. It must be stopped. */
-export function removeCluster() {
-	if (existsSync(memory)) {
-		const { folder } = /** @type {Cluster} */ (JSON.parse(readFileSync(memory, 'utf8')));
-		rmSync(folder, { recursive: true, force: true });
-		rmSync(memory);
-	}
-	rmSync(join(dataFolder, 'postgres'), { recursive: true, force: true });
 }
 
 const settings = `

@@ -16,17 +16,27 @@ const usualPort = 54329;
 /**
  * Starts the clone's own PostgreSQL on the loopback address, making its cluster first where there is none.
  * Does nothing when it runs already. Several processes may call it at once.
+ * @param {{ owned?: boolean }} [options] `owned`: this process stops it at its end, see `release`
  * @returns {Promise<{ started: boolean, port: number }>} `started` is false when it ran before
  */
-export function start() {
+export function start({ owned = false } = {}) {
 	return alone('postgres', async () => {
 		const cluster = findCluster() ?? makeCluster(await firstFree(usualPort));
-		if (serverOf(cluster)) return { started: false, port: cluster.port };
-		const port = (await isFree(cluster.port)) ? cluster.port : await firstFree(usualPort);
-		if (port !== cluster.port) remember({ ...cluster, port });
-		await launch({ ...cluster, port });
-		return { started: true, port };
+		const runs = serverOf(cluster) !== undefined;
+		// A server whose owner was killed gets the next owner, so that it does not run for ever.
+		const orphan = cluster.owner !== undefined && !isAlive(cluster.owner);
+		const takes = owned && (!runs || orphan);
+		const port = runs || (await isFree(cluster.port)) ? cluster.port : await firstFree(usualPort);
+		const owner = takes ? process.pid : runs ? cluster.owner : undefined;
+		remember({ ...cluster, port, owner });
+		if (!runs) await launch({ ...cluster, port });
+		return { started: !runs, port };
 	});
+}
+
+/** Stops PostgreSQL if this process owns it. */
+export async function release() {
+	if (findCluster()?.owner === process.pid) await stop();
 }
 
 /** Stops the clone's own PostgreSQL, if it runs; open connections are cut. */
@@ -36,6 +46,7 @@ export function stop() {
 		const pid = cluster && serverOf(cluster);
 		// SIGINT is PostgreSQL's fast shutdown, SIGQUIT its immediate one; both leave a cluster that recovers.
 		if (pid) await end(pid, 'SIGINT', 'SIGQUIT', 20_000);
+		if (cluster) remember({ ...cluster, owner: undefined });
 	});
 }
 

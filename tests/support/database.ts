@@ -1,9 +1,9 @@
 import { createHash, randomBytes } from 'node:crypto';
 import { readdirSync, readFileSync } from 'node:fs';
-import * as databases from '../../server/local/databases';
+import * as databases from '../../server/local/databases.mjs';
 import { alone } from '../../server/local/lock.mjs';
 import { applyMigrations } from '../../server/local/migrations';
-import { start } from '../../server/local/postgres.mjs';
+import { databaseUrl, start } from '../../server/local/postgres.mjs';
 import { isAlive } from '../../server/local/processes.mjs';
 
 export interface TestDatabase {
@@ -21,7 +21,8 @@ export async function createDatabase(): Promise<TestDatabase> {
 	await start();
 	const template = await ensureTemplate();
 	const name = `test_${process.pid}_${randomBytes(6).toString('hex')}`;
-	const url = await databases.copyDatabase(name, template);
+	await databases.createDatabase(name, template);
+	const url = databaseUrl(name);
 	Object.assign(process.env, testSettings(url));
 	return {
 		name,
@@ -59,7 +60,8 @@ async function ensureTemplate(): Promise<string> {
 		if ((await databases.listDatabases(name)).includes(name)) return;
 		const making = `${name}_making`;
 		await databases.dropDatabase(making);
-		await applyMigrations(await databases.ensureDatabase(making));
+		await databases.createDatabase(making);
+		await applyMigrations(databaseUrl(making));
 		await databases.renameDatabase(making, name);
 	});
 	return name;

@@ -1,0 +1,75 @@
+import { existsSync, readFileSync, writeFileSync } from 'node:fs';
+import { collect, must } from './commands.mjs';
+import { findPrograms } from './postgres-programs.mjs';
+import { Problem } from './problem.mjs';
+
+/** Where Debian's package puts the browser of the tests. */
+export const chromium = '/usr/bin/chromium';
+
+/** @type {Record<string, () => boolean>} */
+const present = {
+	postgresql: () => findPrograms() !== undefined,
+	chromium: () => existsSync(chromium),
+};
+
+/**
+ * Installs Debian packages that are missing where root may, otherwise says which command does it.
+ * @param {('postgresql' | 'chromium')[]} wanted
+ * @returns {Promise<string>} a remark
+ */
+export async function ensurePackages(wanted) {
+	const missing = wanted.filter((name) => !present[name]?.());
+	if (missing.length === 0) return 'present';
+	const command = `apt-get update && apt-get install -y ${missing.join(' ')}`;
+	if (!existsSync('/usr/bin/apt-get')) {
+		throw new Problem(
+			`${missing.join(' and ')} missing, and this is no Debian system.\nInstall PostgreSQL under /usr/lib/postgresql and Chromium as ${chromium}; on Debian 12 the command is:\n  ${command}`,
+		);
+	}
+	if (process.getuid?.() !== 0) {
+		throw new Problem(
+			`Missing: ${missing.join(', ')}. Run this command, then start again:\n  sudo sh -c '${command}'`,
+		);
+	}
+	await apt('update');
+	if (missing.includes('postgresql')) await withoutMainCluster(() => install(['postgresql']));
+	if (missing.includes('chromium')) await install(['chromium']);
+	return `installed ${missing.join(', ')}`;
+}
+
+const clusterSettings = '/etc/postgresql-common/createcluster.conf';
+
+/**
+ * Debian's package makes and starts a cluster of its own, which nobody here would use. Its setting is put back
+ * afterwards: the machine is not ours.
+ * @param {() => Promise<void>} work
+ */
+async function withoutMainCluster(work) {
+	await install(['postgresql-common']);
+	const before = readFileSync(clusterSettings, 'utf8');
+	writeFileSync(clusterSettings, `${before}\ncreate_main_cluster = false\n`);
+	try {
+		await work();
+	} finally {
+		writeFileSync(clusterSettings, before);
+	}
+}
+
+/** @param {string[]} names */
+async function install(names) {
+	const words = ['install', '-y', '--no-install-recommends', ...names];
+	try {
+		await apt(...words);
+	} catch {
+		// An installation that was cut off earlier is finished first.
+		await collect('dpkg', ['--configure', '-a'], { env: quiet });
+		await apt(...words);
+	}
+}
+
+const quiet = { DEBIAN_FRONTEND: 'noninteractive', LC_ALL: 'C.UTF-8' };
+
+/** @param {string[]} words */
+async function apt(...words) {
+	await must('apt-get', ['-q', '-o', 'DPkg::Lock::Timeout=300', ...words], { env: quiet });
+}

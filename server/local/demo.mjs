@@ -1,0 +1,106 @@
+import { rmSync, writeFileSync } from 'node:fs';
+import { build } from './build.mjs';
+import { endCommands } from './commands.mjs';
+import { ensurePackages } from './debian.mjs';
+import { ensure } from './demonstration-database.mjs';
+import { alone } from './lock.mjs';
+import { ensureNodePackages } from './node-packages.mjs';
+import { inData } from './place.mjs';
+import { isFree } from './ports.mjs';
+import { release, start } from './postgres.mjs';
+import { Problem, report } from './problem.mjs';
+import { seconds, step } from './progress.mjs';
+import { endEarlier, serve } from './serving.mjs';
+
+/** @typedef {import('./serving.mjs').Serving} Serving */
+/** @typedef {import('./demonstration-database.mjs').Account} Account */
+
+const database = 'halfdigit';
+const addressFile = inData('demo.json');
+const fresh = process.argv.includes('--fresh');
+
+/** @type {Serving | undefined} */
+let serving;
+let ending = false;
+
+async function finish() {
+	if (ending) return;
+	ending = true;
+	endCommands();
+	rmSync(addressFile, { force: true });
+	await serving?.stop();
+	await release();
+	process.exit();
+}
+
+for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
+	process.on(signal, () => {
+		process.stdout.write('\nStopping.\n');
+		void finish();
+	});
+}
+
+try {
+	await alone('demo', prepare);
+	await serving?.ended;
+	if (!ending) process.stdout.write('The server ended.\n');
+} catch (error) {
+	if (!ending) {
+		report(error);
+		process.exitCode = 1;
+	}
+}
+await finish();
+
+async function prepare() {
+	const from = performance.now();
+	const port = chosenPort();
+	const earlier = await endEarlier('demo');
+	if (earlier > 0)
+		process.stdout.write('An earlier start of this clone still ran and was ended.\n');
+	if (!(await isFree(port))) {
+		throw new Problem(
+			`Port ${port} is taken by another program.\nChoose another one: PORT=${port + 1} npm run demo`,
+		);
+	}
+	await step('Debian packages', () => ensurePackages(['postgresql']));
+	await step('Node.js packages', ensureNodePackages);
+	await build();
+	await step('PostgreSQL', async () => {
+		const { started, port: own } = await start({ owned: true });
+		return `${started ? 'started' : 'runs already'}, 127.0.0.1:${own}`;
+	});
+	/** @type {Account[]} */
+	let accounts = [];
+	await step('Database and demonstration', async () => {
+		accounts = await ensure(database, { fresh });
+	});
+	await step('Server', async () => {
+		serving = await serve({ database, port, kind: 'demo', log: inData('server.log') });
+	});
+	announce(`http://localhost:${port}`, accounts, performance.now() - from);
+}
+
+/**
+ * @param {string} url
+ * @param {Account[]} accounts
+ * @param {number} tookMs
+ */
+function announce(url, accounts, tookMs) {
+	writeFileSync(addressFile, `${JSON.stringify({ url, accounts }, null, '\t')}\n`);
+	const rows = accounts.map(({ role, email, password }) =>
+		['', role.padEnd(14), email.padEnd(34), password].join('  '),
+	);
+	process.stdout.write(
+		`\nHalfdigit runs on ${url} (ready after ${seconds(tookMs)}). Sign in as:\n${rows.join('\n')}\nCtrl-C stops it.\n`,
+	);
+}
+
+function chosenPort() {
+	const text = process.env.PORT || '4173';
+	const port = Number(text);
+	if (!Number.isInteger(port) || port < 1 || port > 65535) {
+		throw new Problem(`PORT must be a number from 1 to 65535, not "${text}".`);
+	}
+	return port;
+}
