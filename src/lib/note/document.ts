@@ -17,6 +17,9 @@ export interface NoteContent {
 	cells: NoteCell[];
 }
 
+/** Longest order key; moving cells to and fro at one place makes keys longer. */
+const maxOrderLength = 10_000;
+
 /** Most characters one cell may hold. */
 export const maxSourceLength = 100_000;
 
@@ -38,19 +41,31 @@ interface PlacedCell extends NoteCell {
 	text: Y.Text;
 }
 
-/** Cells in sheet order with their Y.Text. Entries that are no cell of a known kind are left out. */
+/** Cells in sheet order with their Y.Text. What is not of the shape above, with a known kind, is left out. */
 export function placedCells(doc: Y.Doc): PlacedCell[] {
 	const placed: PlacedCell[] = [];
 	for (const [id, entry] of cellsOf(doc)) {
-		if (!(entry instanceof Y.Map)) continue;
+		if (!cellId.test(id) || !(entry instanceof Y.Map)) continue;
 		const kind = entry.get('kind') as CellKind;
 		const order = entry.get('order');
 		const text = entry.get('source');
-		if (!cellKinds.includes(kind) || typeof order !== 'string' || !(text instanceof Y.Text))
-			continue;
+		if (!cellKinds.includes(kind) || !isOrderKey(order) || !(text instanceof Y.Text)) continue;
 		placed.push({ id, kind, order, text, source: text.toString() });
 	}
 	return placed.sort((a, b) => compare(a.order, b.order) || compare(a.id, b.id));
+}
+
+const cellId = /^[a-z0-9]{1,40}$/;
+
+function isOrderKey(order: unknown): order is string {
+	if (typeof order !== 'string' || order.length === 0 || order.length > maxOrderLength)
+		return false;
+	try {
+		generateKeyBetween(order, null);
+		return true;
+	} catch {
+		return false;
+	}
 }
 
 function compare(a: string, b: string): number {
@@ -100,7 +115,22 @@ function orderAfter(doc: Y.Doc, after: string | null, moving: string): string {
 	const before = others[index]?.order ?? null;
 	// Two people may have made equal keys at once; the next larger one keeps the order strict.
 	const next = others.slice(index + 1).find((cell) => before === null || cell.order > before);
-	return generateKeyBetween(before, next?.order ?? null);
+	return keyBetween(before, next?.order ?? null);
+}
+
+/**
+ * A key between two others, at a place drawn at random: keys that two people make at once for the same gap
+ * are then hardly ever equal, so that a third cell can always be put between theirs.
+ */
+function keyBetween(before: string | null, after: string | null): string {
+	let low = generateKeyBetween(before, after);
+	let high = generateKeyBetween(low, after);
+	for (const byte of crypto.getRandomValues(new Uint8Array(12))) {
+		const middle = generateKeyBetween(low, high);
+		if (byte % 2 === 0) low = middle;
+		else high = middle;
+	}
+	return low;
 }
 
 /** Short random identifier, 60 bits, of letters and digits. */

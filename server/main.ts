@@ -1,0 +1,78 @@
+import { AppError } from '$lib/errors';
+import { closeDb } from '$lib/server/db/client';
+import { env } from '$lib/server/env';
+import { closePool } from '$lib/server/evaluation/pool';
+import { log } from '$lib/server/log';
+import { closeCode } from '$lib/protocol/closing';
+import { createServer, type RequestListener, type Server } from 'node:http';
+import { checkNodeOptions, readRoles } from './roles';
+import { onSignal, within } from './shutdown';
+import { Rooms } from './sync/rooms';
+import { Gate } from './sync/upgrade';
+
+const flushMs = 2500;
+const closeMs = 2000;
+
+async function start(): Promise<void> {
+	checkNodeOptions(process.env.NODE_OPTIONS);
+	const { HOST, PORT, ROLES } = env();
+	const roles = readRoles(ROLES);
+	const server = createServer(roles.has('web') ? await webHandler() : noPages);
+	const sync = roles.has('sync') ? openSync(server) : undefined;
+	await listening(server, PORT, HOST);
+	log().info({ host: HOST, port: PORT, roles: [...roles] }, 'listening');
+
+	onSignal(async () => {
+		sync?.gate.shut();
+		if (sync) await within(flushMs, sync.rooms.flush());
+		sync?.rooms.close(closeCode.restarting);
+		await within(closeMs, closed(server));
+		// The pages' part is a bundle of its own, with its own pools; it hears of the end by this event.
+		process.emit('sveltekit:shutdown' as 'exit', 0);
+		await sync?.rooms.stop();
+		await closePool();
+		await closeDb();
+	});
+}
+
+function openSync(server: Server): { rooms: Rooms; gate: Gate } {
+	const rooms = new Rooms();
+	const gate = new Gate(rooms);
+	server.on('upgrade', gate.onUpgrade);
+	return { rooms, gate };
+}
+
+/** The pages, built beside this file. They read ORIGIN, ADDRESS_HEADER and the like when they are imported. */
+async function webHandler(): Promise<RequestListener> {
+	const address = new URL('./web/handler.js', import.meta.url).href;
+	const { handler } = (await import(address)) as { handler: RequestListener };
+	return handler;
+}
+
+const noPages: RequestListener = (_, response) => {
+	response.writeHead(404, { 'content-type': 'text/plain' }).end('This process serves no pages.\n');
+};
+
+function listening(server: Server, port: number, host: string): Promise<void> {
+	return new Promise((resolve, reject) => {
+		server.once('error', reject);
+		server.listen(port, host, () => {
+			server.off('error', reject);
+			resolve();
+		});
+	});
+}
+
+function closed(server: Server): Promise<void> {
+	return new Promise((resolve) => {
+		server.close(() => resolve());
+		server.closeIdleConnections();
+		setTimeout(() => server.closeAllConnections(), closeMs / 2).unref();
+	});
+}
+
+start().catch((error: unknown) => {
+	if (error instanceof AppError) console.error(error.message);
+	else console.error(error);
+	process.exit(1);
+});

@@ -1,0 +1,113 @@
+import { closeCode, closeSentence } from '$lib/protocol/closing';
+import type { Actor } from '$lib/server/auth/access';
+import { log } from '$lib/server/log';
+import type { RawData, WebSocket } from 'ws';
+import { decode, type Incoming } from './incoming';
+import { Allowance, maxUnread } from './limits';
+import type { Room } from './room';
+
+/** One page's socket in a room. Reads and judges what comes in, and sends what the room says. */
+export class Connection {
+	readonly actor: Actor;
+	/** Hash of the session that opened it. */
+	readonly session: string;
+	/** What the room last asked this page for; it is not asked for the same twice. */
+	askedFor: string | undefined;
+
+	#mayWrite: boolean;
+	readonly #socket: WebSocket;
+	readonly #room: Room;
+	readonly #allowance = new Allowance();
+	#heldResults: Uint8Array | undefined;
+	#heard = true;
+
+	constructor(
+		socket: WebSocket,
+		room: Room,
+		who: { actor: Actor; session: string; mayWrite: boolean },
+	) {
+		this.#socket = socket;
+		this.#room = room;
+		this.actor = who.actor;
+		this.session = who.session;
+		this.#mayWrite = who.mayWrite;
+		socket.on('message', (data, isBinary) => this.#onMessage(data, isBinary));
+		socket.on('pong', () => (this.#heard = true));
+		// A message over the limit or a broken frame: ws closes the socket with the right code by itself.
+		socket.on('error', (error) => log().info({ err: error }, 'a socket failed'));
+		socket.on('close', () => room.leave(this));
+		room.join(this);
+	}
+
+	get mayWrite(): boolean {
+		return this.#mayWrite;
+	}
+
+	/** Says whether the page may write from now on, and tells it where that is new. */
+	permit(mayWrite: boolean): void {
+		if (mayWrite === this.#mayWrite) return;
+		this.#mayWrite = mayWrite;
+		this.#room.greet(this);
+	}
+
+	send(message: Uint8Array): void {
+		if (this.#socket.readyState !== this.#socket.OPEN) return;
+		if (this.#socket.bufferedAmount > maxUnread.all) {
+			this.#socket.terminate();
+			return;
+		}
+		this.#socket.send(message, () => this.#sendHeldResults());
+	}
+
+	/** Sends results, or keeps the newest until a slow page has read what it was sent. */
+	sendResults(message: Uint8Array): void {
+		if (this.#socket.bufferedAmount > maxUnread.results) this.#heldResults = message;
+		else this.send(message);
+	}
+
+	close(code: number): void {
+		this.#socket.close(code, closeSentence(code));
+	}
+
+	/** Ends a socket whose other side is gone; otherwise sends something, so that the page knows we are not. */
+	keepAlive(message: Uint8Array): void {
+		if (!this.#heard) {
+			this.#socket.terminate();
+			return;
+		}
+		this.#heard = false;
+		this.#socket.ping();
+		this.send(message);
+	}
+
+	#sendHeldResults(): void {
+		const held = this.#heldResults;
+		if (!held || this.#socket.bufferedAmount > maxUnread.results) return;
+		this.#heldResults = undefined;
+		this.send(held);
+	}
+
+	#onMessage(data: RawData, isBinary: boolean): void {
+		if (this.#socket.readyState !== this.#socket.OPEN) return;
+		// ws gives one Buffer per message, as its binaryType is left at its default.
+		const message = data as Buffer;
+		this.#heard = true;
+		if (!this.#allowance.take(message.length)) {
+			this.close(closeCode.tooMany);
+			return;
+		}
+		const incoming = isBinary ? this.#decode(message) : undefined;
+		if (!incoming || !this.#room.receive(this, incoming)) {
+			this.close(closeCode.malformed);
+		}
+	}
+
+	#decode(message: Uint8Array): Incoming | undefined {
+		try {
+			return decode(message);
+		} catch (error) {
+			log().info({ err: error, personId: this.actor.personId }, 'a message could not be read');
+			return undefined;
+		}
+	}
+}

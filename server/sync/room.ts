@@ -1,0 +1,284 @@
+import { toContent } from '$lib/note/document';
+import { closeCode } from '$lib/protocol/closing';
+import {
+	encodeJson,
+	type Hello,
+	type News,
+	type Refused,
+	type Saved,
+} from '$lib/protocol/messages';
+import { announce } from '$lib/server/db/notify';
+import { Scheduler } from '$lib/server/evaluation/scheduler';
+import { log } from '$lib/server/log';
+import * as updates from '$lib/server/notes/updates';
+import * as Y from 'yjs';
+import type { Connection } from './connection';
+import type { Incoming } from './incoming';
+import { Journal, type Entry } from './journal';
+import * as outgoing from './outgoing';
+import { People } from './people';
+import { Proof } from './proof';
+import { ResultStore } from './result-store';
+
+/**
+ * A note's document in this process and the pages that have it open. Where a change comes from is its
+ * origin: a Connection (a page sent it; it goes to the others), 'pending' (a page sent it, and it may complete
+ * what others sent) or 'database' (another process stored it); the last two go to every page.
+ */
+export class Room {
+	readonly noteId: string;
+	readonly connections = new Set<Connection>();
+	readonly #epoch: string;
+	readonly #doc: Y.Doc;
+	readonly #proof: Proof;
+	readonly #people = new People();
+	readonly #journal: Journal<Connection>;
+	readonly #scheduler: Scheduler;
+	readonly #store: ResultStore;
+	readonly #onEmpty: (room: Room) => void;
+	readonly #onBroken: (room: Room) => void;
+	/** Everything in the log up to here is in the document. */
+	#seq: number;
+	/** Counts the document's states, whoever made them. */
+	#version = 0;
+	#catchingUp: Promise<void> | undefined;
+	#heardOf = 0;
+
+	/** Loads a note. Throws where that fails: there is no room then, and no document. */
+	static async load(
+		noteId: string,
+		events: { onEmpty(room: Room): void; onBroken(room: Room): void },
+	): Promise<Room> {
+		const [loaded, stored] = await Promise.all([
+			updates.loadDocument(noteId),
+			ResultStore.read(noteId),
+		]);
+		const room = new Room(noteId, loaded, events);
+		if (stored && stored.seq === loaded.seq && !loaded.pending) {
+			room.#scheduler.adopt({ version: 0, content: stored.content, results: stored.results });
+		} else {
+			room.#scheduler.request();
+		}
+		return room;
+	}
+
+	private constructor(
+		noteId: string,
+		loaded: { doc: Y.Doc; seq: number; epoch: string },
+		events: { onEmpty(room: Room): void; onBroken(room: Room): void },
+	) {
+		this.noteId = noteId;
+		this.#doc = loaded.doc;
+		this.#seq = loaded.seq;
+		this.#epoch = loaded.epoch;
+		this.#onEmpty = events.onEmpty;
+		this.#onBroken = events.onBroken;
+		this.#proof = new Proof(this.#doc);
+		this.#store = new ResultStore(noteId);
+		this.#journal = new Journal(noteId, {
+			onSaved: (entries, appended) => this.#onSaved(entries, appended),
+			onFailed: (error) => {
+				log().error({ err: error, noteId }, 'a room was given up');
+				this.#onBroken(this);
+			},
+		});
+		this.#scheduler = new Scheduler(
+			() => ({ version: this.#version, content: toContent(this.#doc) }),
+			({ results }) => {
+				const message = encodeJson('results', results);
+				for (const connection of this.connections) connection.sendResults(message);
+				this.#storeResults();
+			},
+		);
+		this.#doc.on('update', (bytes: Uint8Array, origin: unknown) => {
+			this.#version += 1;
+			this.#broadcast(outgoing.update(bytes), origin);
+			this.#scheduler.request();
+		});
+	}
+
+	get isEmpty(): boolean {
+		return this.connections.size === 0;
+	}
+
+	join(connection: Connection): void {
+		this.connections.add(connection);
+		this.greet(connection);
+		connection.send(this.#people.all());
+		const results = this.#scheduler.last?.results;
+		if (results) connection.sendResults(encodeJson('results', results));
+	}
+
+	/** Tells a page what document this is and what it may do with it; again when that changes. */
+	greet(connection: Connection): void {
+		const hello: Hello = {
+			epoch: this.#epoch,
+			mayWrite: connection.mayWrite,
+			personId: connection.actor.personId,
+		};
+		connection.send(encodeJson('hello', hello));
+	}
+
+	leave(connection: Connection): void {
+		if (!this.connections.delete(connection)) return;
+		const message = this.#people.leave(connection);
+		if (message) this.#broadcast(message, connection);
+		if (this.isEmpty) this.#onEmpty(this);
+	}
+
+	/** Acts on a message; false where its bytes are no update. */
+	receive(connection: Connection, incoming: Incoming): boolean {
+		switch (incoming.kind) {
+			case 'question':
+				connection.send(outgoing.answer(this.#doc, incoming.stateVector));
+				this.#askForMissing(connection);
+				return true;
+			case 'presence': {
+				const message = this.#people.take(connection, incoming.said);
+				if (message) this.#broadcast(message, connection);
+				return true;
+			}
+			case 'update':
+				// Pages send what they have as edits. An empty answer to a question is nothing.
+				if (isNothing(incoming.update)) return true;
+				return refuse(connection, '', 'An edit without an id cannot be stored.');
+			case 'edit':
+				if (connection.mayWrite) return this.#edit(connection, incoming.id, incoming.update);
+				return refuse(connection, incoming.id, 'Your role does not allow you to change this note.');
+		}
+	}
+
+	/** Hears that the log has grown to `seq`, and reads what is missing. */
+	hear(seq: number): void {
+		this.#heardOf = Math.max(this.#heardOf, seq);
+		if (this.#heardOf > this.#seq) this.#catchingUp ??= this.#catchUp();
+	}
+
+	/** Whether this room's document is the one with that epoch. */
+	hasEpoch(epoch: string): boolean {
+		return epoch === this.#epoch;
+	}
+
+	tell(about: News['about']): void {
+		const news: News = { about };
+		this.#broadcast(encodeJson('news', news), undefined);
+	}
+
+	keepAlive(): void {
+		const message = outgoing.presence([]);
+		for (const connection of this.connections) connection.keepAlive(message);
+	}
+
+	close(code: number): void {
+		for (const connection of this.connections) connection.close(code);
+	}
+
+	/** Settles when all edits are acknowledged and the results stored. */
+	async flush(): Promise<void> {
+		await this.#journal.idle();
+		await this.#catchingUp;
+		await this.#scheduler.idle();
+		await this.#store.idle();
+	}
+
+	/** Gives the document up. */
+	destroy(): void {
+		this.#journal.stop();
+		this.#scheduler.stop();
+		this.#store.stop();
+		this.#doc.destroy();
+	}
+
+	#edit(connection: Connection, id: string, update: Uint8Array): boolean {
+		if (!this.#journal.hasRoom) {
+			connection.close(closeCode.unavailable);
+			return true;
+		}
+		if (!this.#proof.passes(update)) return false;
+		// What it completes may be another page's: then the sender lacks that, and gets everything too.
+		Y.applyUpdate(this.#doc, update, updates.isPending(this.#doc) ? 'pending' : connection);
+		// The very bytes that came: an update that waits for another makes no Yjs event and is stored all the same.
+		this.#journal.add({
+			id,
+			personId: connection.actor.personId,
+			bytes: update,
+			sender: connection,
+		});
+		this.#askForMissing(connection);
+		return true;
+	}
+
+	/** Asks a page for what pending updates wait for; once only for the same, as it may not have it either. */
+	#askForMissing(connection: Connection): void {
+		if (!updates.isPending(this.#doc)) return;
+		const { pendingStructs, pendingDs } = this.#doc.store;
+		const missing = JSON.stringify([[...(pendingStructs?.missing ?? [])], pendingDs?.length]);
+		if (connection.askedFor === missing) return;
+		connection.askedFor = missing;
+		connection.send(outgoing.question(this.#doc));
+	}
+
+	#onSaved(entries: readonly Entry<Connection>[], { seq, first, at }: updates.Appended): void {
+		// Rows of another process may lie before ours; then those are read, and ours with them.
+		if (first !== undefined && first <= this.#seq + 1) this.#seq = Math.max(this.#seq, seq);
+		const idsOf = new Map<Connection, string[]>();
+		for (const { id, sender } of entries) {
+			idsOf.set(sender, [...(idsOf.get(sender) ?? []), id]);
+		}
+		for (const [connection, ids] of idsOf) {
+			const saved: Saved = { ids, seq, at: at.toISOString() };
+			connection.send(encodeJson('saved', saved));
+		}
+		this.hear(seq);
+		this.#storeResults();
+		if (first !== undefined) void announce(this.noteId, seq);
+	}
+
+	async #catchUp(): Promise<void> {
+		try {
+			while (this.#heardOf > this.#seq) {
+				const rows = await updates.rowsSince(this.noteId, this.#seq);
+				const last = rows.at(-1);
+				if (!last) {
+					this.#heardOf = this.#seq;
+					break;
+				}
+				for (const row of rows) {
+					if (!this.#proof.passes(row.bytes)) throw new Error(`row ${row.seq} cannot be read`);
+				}
+				updates.applyRows(this.#doc, rows, 'database');
+				this.#seq = Math.max(this.#seq, last.seq);
+			}
+			this.#storeResults();
+		} catch (error) {
+			// The next poll hears of the same rows and tries again.
+			log().warn({ err: error, noteId: this.noteId }, 'a room could not catch up');
+		}
+		this.#catchingUp = undefined;
+	}
+
+	/** Stores the newest results if the document they belong to is exactly what is stored at a sequence number. */
+	#storeResults(): void {
+		const last = this.#scheduler.last;
+		const settled = this.#journal.isEmpty && this.#heardOf <= this.#seq;
+		if (!last || last.version !== this.#version || !settled || updates.isPending(this.#doc)) return;
+		this.#store.keep({ seq: this.#seq, content: last.content, results: last.results });
+	}
+
+	#broadcast(message: Uint8Array, but: unknown): void {
+		for (const connection of this.connections) {
+			if (connection !== but) connection.send(message);
+		}
+	}
+}
+
+function refuse(connection: Connection, id: string, reason: string): true {
+	const refused: Refused = { id, reason };
+	connection.send(encodeJson('refused', refused));
+	return true;
+}
+
+/** Whether an update holds neither content nor deletions. */
+function isNothing(update: Uint8Array): boolean {
+	return update.length === 2 && update[0] === 0 && update[1] === 0;
+}

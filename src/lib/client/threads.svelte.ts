@@ -1,0 +1,97 @@
+import type { Thread, threadKinds } from '$lib/schemas/comments';
+
+interface NewThread {
+	kind: (typeof threadKinds)[number];
+	blocking: boolean;
+	body: string;
+}
+
+/** Threads of a note in the page. What fails throws an Error with a sentence to show; what was typed stays with the caller. */
+export class Threads {
+	readonly #address: string;
+	#list = $state.raw<readonly Thread[]>([]);
+	#refreshing: Promise<void> | undefined;
+	#stale = false;
+
+	/** `number` as in addresses, MN-014; `threads` as the page was loaded with. */
+	constructor(number: string, threads: readonly Thread[]) {
+		this.#address = `/api/notes/${number}/threads`;
+		this.#list = threads;
+	}
+
+	/** All threads, open and closed. */
+	get list(): readonly Thread[] {
+		return this.#list;
+	}
+
+	/** Threads of a cell. */
+	of(cellId: string): readonly Thread[] {
+		return this.#list.filter((thread) => thread.cellId === cellId);
+	}
+
+	/** Opens a thread on a cell and returns it. */
+	async open(cellId: string, thread: NewThread): Promise<Thread> {
+		return this.#take(await call<Thread>('POST', this.#address, { cellId, ...thread }));
+	}
+
+	async reply(threadId: string, body: string): Promise<Thread> {
+		const address = `${this.#address}/${threadId}/comments`;
+		return this.#take(await call<Thread>('POST', address, { body }));
+	}
+
+	/** Closes a thread or opens it again. */
+	async setClosed(threadId: string, closed: boolean): Promise<Thread> {
+		return this.#take(await call<Thread>('PATCH', `${this.#address}/${threadId}`, { closed }));
+	}
+
+	/** Reads all threads anew. Asked for while one reading runs, another follows it. */
+	async refresh(): Promise<void> {
+		this.#stale = true;
+		this.#refreshing ??= this.#refresh();
+		await this.#refreshing;
+	}
+
+	async #refresh(): Promise<void> {
+		try {
+			while (this.#stale) {
+				this.#stale = false;
+				this.#list = await call<Thread[]>('GET', this.#address);
+			}
+		} finally {
+			this.#refreshing = undefined;
+		}
+	}
+
+	#take(thread: Thread): Thread {
+		const isKnown = this.#list.some(({ id }) => id === thread.id);
+		this.#list = isKnown
+			? this.#list.map((known) => (known.id === thread.id ? thread : known))
+			: [...this.#list, thread];
+		return thread;
+	}
+}
+
+async function call<T>(method: string, address: string, body?: unknown): Promise<T> {
+	let response: Response;
+	try {
+		response = await fetch(address, {
+			method,
+			...(body !== undefined && {
+				headers: { 'content-type': 'application/json' },
+				body: JSON.stringify(body),
+			}),
+		});
+	} catch (error) {
+		throw new Error('The server cannot be reached. Try again when the connection is back.', {
+			cause: error,
+		});
+	}
+	const answer = (await response.json().catch(() => undefined)) as unknown;
+	if (response.ok) return answer as T;
+	throw new Error(messageOf(answer) ?? `The server refused this (${response.status}).`);
+}
+
+function messageOf(answer: unknown): string | undefined {
+	if (typeof answer !== 'object' || answer === null || !('message' in answer)) return undefined;
+	return typeof answer.message === 'string' ? answer.message : undefined;
+}

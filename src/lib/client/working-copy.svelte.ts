@@ -1,0 +1,289 @@
+import type { Evaluation } from '$lib/calc/results';
+import * as document from '$lib/note/document';
+import type { News } from '$lib/protocol/messages';
+import type { Presence } from '$lib/protocol/presence';
+import { Awareness } from 'y-protocols/awareness';
+import * as Y from 'yjs';
+import { CellList, type LiveCell } from './cell-list.svelte';
+import { NoteSocket, type ConnectionState } from './note-socket';
+
+/** Whether what was typed here is stored. `count`: edits that are not, as far as this page knows. */
+export interface Saving {
+	state: 'saved' | 'saving' | 'offline' | 'refused';
+	count: number;
+	/** When the server last stored an edit of this page, ISO 8601. */
+	at?: string;
+	/** Why an edit will not be stored. */
+	reason?: string;
+}
+
+/** Somebody else who has the note open. */
+export interface Other {
+	id: string;
+	name: string;
+	colour: string;
+	cellId: string | null;
+}
+
+interface Options {
+	noteId: string;
+	epoch: string;
+	person: { id: string; name: string };
+	content: document.NoteContent;
+	evaluation: Evaluation;
+	/** Where to connect; the page's own host unless given. Without a page (on the server) nothing connects. */
+	server?: { url: string; WebSocket?: typeof WebSocket };
+}
+
+/** Origin of changes made by this class; what carries it can be undone. */
+const local = Symbol('local');
+
+/** A note's working copy in the page: the document, its results, who else is there, and what is saved. */
+export class WorkingCopy {
+	readonly doc = new Y.Doc();
+	readonly undoManager: Y.UndoManager;
+	readonly #person: Options['person'];
+	readonly #cells: CellList;
+	readonly #socket: NoteSocket | undefined;
+	readonly #newsHandlers = new Set<(about: News['about']) => void>();
+	#awareness: Awareness | undefined;
+	#title = $state('');
+	#evaluation = $state.raw<Evaluation>() as Evaluation;
+	#connection = $state<ConnectionState>('connecting');
+	#notice = $state<string>();
+	#ready = $state(false);
+	#mayWrite = $state(false);
+	#saving = $state.raw<Saving>({ state: 'saved', count: 0 });
+	#people = $state.raw<readonly Other[]>([]);
+	#canUndo = $state(false);
+	#canRedo = $state(false);
+	#savedAt: string | undefined;
+	#refusedFor: string | undefined;
+
+	constructor(options: Options) {
+		const { content, evaluation, person } = options;
+		this.#person = person;
+		this.#title = content.title;
+		this.#evaluation = evaluation;
+		this.#cells = new CellList(this.doc, content.cells);
+		this.undoManager = new Y.UndoManager(
+			[document.titleOf(this.doc), document.cellsOf(this.doc)] as Y.AbstractType<unknown>[],
+			{ trackedOrigins: new Set([local]), captureTimeout: 500 },
+		);
+		for (const event of ['stack-item-added', 'stack-item-popped', 'stack-cleared'] as const) {
+			this.undoManager.on(event, () => this.#onStack());
+		}
+		const server = options.server ?? serverOfPage();
+		if (server) this.#socket = this.#connect(options, server);
+	}
+
+	get awareness(): Awareness {
+		return (this.#awareness ??= new Awareness(this.doc));
+	}
+	/** Cells in sheet order. Entries stay the same objects while only their sources change. */
+	get cells(): readonly LiveCell[] {
+		return this.#cells.list;
+	}
+	get title(): string {
+		return this.#title;
+	}
+	/** The newest results. They may be one change behind the cells. */
+	get evaluation(): Evaluation {
+		return this.#evaluation;
+	}
+	get connection(): ConnectionState {
+		return this.#connection;
+	}
+	/** What to tell about a connection that is lost or closed, a sentence. */
+	get notice(): string | undefined {
+		return this.#notice;
+	}
+	get saving(): Saving {
+		return this.#saving;
+	}
+	/** Whether the document has been complete once; before that nothing can be edited. */
+	get ready(): boolean {
+		return this.#ready;
+	}
+	get mayWrite(): boolean {
+		return this.#mayWrite;
+	}
+	/** Whether edits make sense now. Without a connection they do: they are sent when it returns. */
+	get editable(): boolean {
+		return this.#ready && this.#mayWrite && this.#connection !== 'closed';
+	}
+	/** Others who have the note open, by name. */
+	get people(): readonly Other[] {
+		return this.#people;
+	}
+	get canUndo(): boolean {
+		return this.#canUndo;
+	}
+	get canRedo(): boolean {
+		return this.#canRedo;
+	}
+
+	/** The shared text of a cell; undefined before `ready` and where the cell is gone. */
+	textOf(cellId: string): Y.Text | undefined {
+		return this.#cells.textOf(cellId);
+	}
+
+	undo(): void {
+		if (this.editable) this.undoManager.undo();
+	}
+
+	redo(): void {
+		if (this.editable) this.undoManager.redo();
+	}
+
+	/** Writes a new title over the old one, changing only what differs. */
+	setTitle(title: string): void {
+		this.#act(() => replaceText(document.titleOf(this.doc), title));
+	}
+
+	/** Adds a cell behind `after` (null: at the top) and returns its id. */
+	addCell(kind: document.CellKind, after: string | null, source = ''): string | undefined {
+		return this.#act(() => document.addCell(this.doc, kind, after, source));
+	}
+
+	/** Moves a cell behind `after` (null: to the top). */
+	moveCell(id: string, after: string | null): void {
+		this.#act(() => document.moveCell(this.doc, id, after));
+	}
+
+	/** Puts a copy behind a cell and returns the copy's id. */
+	duplicateCell(id: string): string | undefined {
+		return this.#act(() => document.duplicateCell(this.doc, id));
+	}
+
+	removeCell(id: string): void {
+		this.#act(() => document.removeCell(this.doc, id));
+	}
+
+	/** Tells the others which cell this person is at. */
+	setPlace(cellId: string | null): void {
+		if (this.#socket) this.awareness.setLocalStateField('cellId', cellId);
+	}
+
+	/** Calls `handle` when comments or the review changed; returns what ends that. */
+	onNews(handle: (about: News['about']) => void): () => void {
+		this.#newsHandlers.add(handle);
+		return () => this.#newsHandlers.delete(handle);
+	}
+
+	destroy(): void {
+		if (this.#socket && typeof window !== 'undefined') {
+			window.removeEventListener('beforeunload', this.#onLeaving);
+			window.removeEventListener('offline', this.#onNetwork);
+			window.removeEventListener('online', this.#onNetwork);
+		}
+		this.#socket?.destroy();
+		this.undoManager.destroy();
+		this.#awareness?.destroy();
+		this.doc.destroy();
+	}
+
+	/** Makes one undo step of a change. */
+	#act<T>(change: () => T): T | undefined {
+		if (!this.editable) return undefined;
+		this.undoManager.stopCapturing();
+		const result = this.doc.transact(change, local);
+		this.undoManager.stopCapturing();
+		return result;
+	}
+
+	#connect(
+		{ noteId, epoch }: Options,
+		server: { url: string; WebSocket?: typeof WebSocket },
+	): NoteSocket {
+		this.awareness.on('change', () => this.#onPeople());
+		if (typeof window !== 'undefined') {
+			window.addEventListener('beforeunload', this.#onLeaving);
+			window.addEventListener('offline', this.#onNetwork);
+			window.addEventListener('online', this.#onNetwork);
+		}
+		const socket: NoteSocket = new NoteSocket({
+			...server,
+			noteId,
+			epoch,
+			doc: this.doc,
+			awareness: this.awareness,
+			events: {
+				onChange: () => this.#onSocket(socket),
+				onSaved: ({ at }) => (this.#savedAt = at),
+				onRefused: (reason) => (this.#refusedFor = reason),
+				onResults: (results) => (this.#evaluation = results),
+				onNews: ({ about }) => this.#newsHandlers.forEach((handle) => handle(about)),
+			},
+		});
+		return socket;
+	}
+
+	#onSocket({ connection, notice, synced, mayWrite, count }: NoteSocket): void {
+		this.#connection = connection;
+		this.#notice = notice;
+		this.#mayWrite = mayWrite;
+		this.#saving = {
+			state: this.#savingState(connection, count),
+			count,
+			...(this.#savedAt && { at: this.#savedAt }),
+			...(this.#refusedFor && { reason: this.#refusedFor }),
+		};
+		if (!synced || this.#ready) return;
+		this.#ready = true;
+		const title = document.titleOf(this.doc);
+		title.observe(() => (this.#title = title.toString()));
+		this.#title = title.toString();
+		this.#cells.follow();
+	}
+
+	#savingState(connection: ConnectionState, count: number): Saving['state'] {
+		if (this.#refusedFor) return 'refused';
+		if (connection === 'offline' || connection === 'closed') return 'offline';
+		return count > 0 ? 'saving' : 'saved';
+	}
+
+	#onStack(): void {
+		this.#canUndo = this.undoManager.canUndo();
+		this.#canRedo = this.undoManager.canRedo();
+	}
+
+	#onPeople(): void {
+		const others = new Map<string, Other>();
+		for (const state of this.awareness.getStates().values() as Iterable<Partial<Presence>>) {
+			const { user, cellId } = state;
+			if (!user || user.id === this.#person.id) continue;
+			const known = others.get(user.id);
+			others.set(user.id, {
+				id: user.id,
+				name: user.name,
+				colour: user.color,
+				cellId: cellId ?? known?.cellId ?? null,
+			});
+		}
+		this.#people = [...others.values()].sort((a, b) => a.name.localeCompare(b.name));
+	}
+
+	readonly #onLeaving = (event: BeforeUnloadEvent) => {
+		if ((this.#socket?.count ?? 0) > 0) event.preventDefault();
+	};
+
+	/** The browser's network came or went: what is connected may be dead. */
+	readonly #onNetwork = () => this.#socket?.reconnect();
+}
+
+function serverOfPage(): { url: string } | undefined {
+	if (typeof location === 'undefined') return undefined;
+	return { url: `${location.protocol === 'https:' ? 'wss' : 'ws'}://${location.host}/sync` };
+}
+
+function replaceText(text: Y.Text, next: string): void {
+	const before = text.toString();
+	let start = 0;
+	while (start < before.length && before[start] === next[start]) start += 1;
+	let end = 0;
+	const most = Math.min(before.length, next.length) - start;
+	while (end < most && before[before.length - 1 - end] === next[next.length - 1 - end]) end += 1;
+	text.delete(start, before.length - start - end);
+	text.insert(start, next.slice(start, next.length - end));
+}

@@ -1,0 +1,32 @@
+import { z } from 'zod';
+
+/** Colours of people's cursors and marks: none means a verdict or an action, each at least 3 : 1 on every ground. */
+export const presenceColours = [
+	'#7b61d1',
+	'#c2479b',
+	'#4a6fd8',
+	'#8a6d52',
+	'#a04fc0',
+	'#6b7790',
+] as const;
+
+const id = z.object({ client: z.int().min(0), clock: z.int().min(0) });
+
+/** Yjs's relative position as JSON. */
+const position = z.object({
+	type: id.nullish(),
+	tname: z.string().max(100).nullish(),
+	item: id.nullish(),
+	assoc: z.int().optional(),
+});
+
+/** What a page may say about its person; who that is, and their colour, the server knows. */
+export const ownPresence = z.object({
+	cursor: z.object({ anchor: position, head: position }).nullish().catch(null),
+	cellId: z.string().max(40).nullish().catch(null),
+});
+
+/** A person in a note as the others see them. `user` has the names that the editor's cursors read. */
+export interface Presence extends z.infer<typeof ownPresence> {
+	user: { id: string; name: string; color: string; colorLight: string };
+}

@@ -1,0 +1,82 @@
+import { defaultOptions } from '$lib/calc/evaluate';
+import type { Evaluation } from '$lib/calc/results';
+import type { NoteContent } from '$lib/note/document';
+import { log } from '../log';
+import { evaluateInChild } from './pool';
+
+/** What a document held at a version of it, with the results of that. */
+export interface Evaluated {
+	version: number;
+	content: NoteContent;
+	results: Evaluation;
+}
+
+/** Keeps a document's results up to date: one evaluation in flight, the newest state next, none in between. */
+export class Scheduler {
+	readonly #read: () => { version: number; content: NoteContent };
+	readonly #onResults: (evaluated: Evaluated) => void;
+	#running: Promise<void> | undefined;
+	#wanted = false;
+	#stopped = false;
+	#last: Evaluated | undefined;
+
+	constructor(
+		read: () => { version: number; content: NoteContent },
+		onResults: (evaluated: Evaluated) => void,
+	) {
+		this.#read = read;
+		this.#onResults = onResults;
+	}
+
+	/** The newest results. */
+	get last(): Evaluated | undefined {
+		return this.#last;
+	}
+
+	/** Takes results that are known already. */
+	adopt(evaluated: Evaluated): void {
+		this.#last = evaluated;
+	}
+
+	/** Asks for results of the document as it is now, or will be when the evaluation in flight has ended. */
+	request(): void {
+		this.#wanted = true;
+		this.#running ??= this.#run();
+	}
+
+	/** Settles when no evaluation is in flight or wanted. */
+	async idle(): Promise<void> {
+		await this.#running;
+	}
+
+	stop(): void {
+		this.#stopped = true;
+	}
+
+	async #run(): Promise<void> {
+		// One turn later, so that the changes of one message make one evaluation.
+		await Promise.resolve();
+		while (this.#wanted && !this.#stopped) {
+			this.#wanted = false;
+			const { version, content } = this.#read();
+			try {
+				const results = await this.#evaluate(content);
+				if (this.#stopped) break;
+				this.#last = { version, content, results };
+				this.#onResults(this.#last);
+			} catch (error) {
+				log().error({ err: error }, 'an evaluation failed');
+			}
+		}
+		this.#running = undefined;
+	}
+
+	async #evaluate(content: NoteContent): Promise<Evaluation> {
+		const last = this.#last;
+		// A change of the title, or one that was taken back, changes no result.
+		if (last && JSON.stringify(last.content.cells) === JSON.stringify(content.cells)) {
+			return last.results;
+		}
+		return evaluateInChild(content.cells, defaultOptions);
+	}
+}
