@@ -3,9 +3,15 @@ import type { NoteState } from './notes';
 
 const password = z.string().min(1, 'Give your password.').max(200, 'At most 200 characters.');
 
-export const signing = z.object({ password });
-export const returning = z.object({
+/** Asks for the password only: what is signed is made at that moment. */
+export const proposing = z.object({ password });
+
+/** `digest` says which candidate the person looked at. */
+export const signing = z.object({
 	password,
+	digest: z.string().regex(/^[0-9a-f]{64}$/, 'Reload the page and look at the candidate again.'),
+});
+export const returning = signing.extend({
 	reason: z.string().trim().min(1, 'Say why it goes back.').max(2000, 'At most 2 000 characters.'),
 });
 

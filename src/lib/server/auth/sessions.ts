@@ -86,8 +86,15 @@ export async function end(actor: Actor, token: string): Promise<void> {
 	});
 }
 
-/** Ends every session of the actor, this one too. */
-export async function endAll(connection: Connection, actor: Actor): Promise<void> {
+/** Signs out everywhere, here too. */
+export async function endAll(actor: Actor): Promise<void> {
+	await db().transaction(async (tx) => {
+		await removeAll(tx, actor);
+		await audit.record(tx, actor, 'signed out everywhere', `person:${actor.personId}`);
+	});
+}
+
+/** Ends every session of the actor within a deed that is written down by itself. */
+export async function removeAll(connection: Connection, actor: Actor): Promise<void> {
 	await connection.delete(session).where(eq(session.userId, actor.personId));
-	await audit.record(connection, actor, 'signed out everywhere', `person:${actor.personId}`);
 }

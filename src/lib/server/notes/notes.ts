@@ -11,8 +11,6 @@ import { team } from '../db/schema/people';
 import { formatNumber, parseNumber } from './number';
 import * as updates from './updates';
 
-export { list } from './listing';
-
 /** A note's identity and the state of its working copy. */
 export interface NoteHead {
 	id: string;

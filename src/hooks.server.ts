@@ -1,0 +1,14 @@
+import { sequence } from '@sveltejs/kit/hooks';
+import * as auth from '$lib/server/web/auth';
+import * as errors from '$lib/server/web/errors';
+import * as guard from '$lib/server/web/guard';
+
+export const handle = sequence(
+	guard.headers,
+	guard.sameOrigin,
+	auth.handle,
+	auth.identify,
+	guard.signedIn,
+);
+
+export const handleError = errors.handleError;

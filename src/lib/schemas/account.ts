@@ -1,0 +1,34 @@
+import { z } from 'zod';
+import { role } from './role';
+
+/** Longer ones are refused before they are hashed. */
+const maxPasswordLength = 200;
+export const minPasswordLength = 8;
+
+export const signIn = z.object({
+	email: z
+		.string()
+		.trim()
+		.toLowerCase()
+		.max(254, 'This address is too long.')
+		.pipe(z.email('Give your e-mail address, as in name@firm.example.')),
+	password: z
+		.string()
+		.min(1, 'Give your password.')
+		.max(maxPasswordLength, `At most ${maxPasswordLength} characters.`),
+	/** Where to go afterwards. */
+	to: z.string().catch('/notes'),
+});
+
+export const passwordChange = z.object({
+	present: z
+		.string()
+		.min(1, 'Give your present password.')
+		.max(maxPasswordLength, `At most ${maxPasswordLength} characters.`),
+	next: z
+		.string()
+		.min(minPasswordLength, `A password has ${minPasswordLength} characters or more.`)
+		.max(maxPasswordLength, `At most ${maxPasswordLength} characters.`),
+});
+
+export const roleChange = z.object({ personId: z.string().min(1).max(64), role });

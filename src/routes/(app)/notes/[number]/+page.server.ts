@@ -1,0 +1,34 @@
+import { redirect } from '@sveltejs/kit';
+import { proposing } from '$lib/schemas/review';
+import { may } from '$lib/schemas/role';
+import * as threads from '$lib/server/comments/threads';
+import { current } from '$lib/server/evaluation/store';
+import * as notes from '$lib/server/notes/notes';
+import * as candidates from '$lib/server/revisions/candidates';
+import * as review from '$lib/server/revisions/review';
+import * as revisions from '$lib/server/revisions/revisions';
+import { action } from '$lib/server/web/form';
+import { forMember } from '$lib/server/web/guard';
+import type { PageServerLoadEvent, RequestEvent } from './$types';
+
+export const load = forMember(async (actor, { params: { number } }: PageServerLoadEvent) => {
+	if (!may(actor.role, 'readWorkingCopy')) {
+		redirect(303, `/notes/${number}/revisions/${await revisions.newest(actor, number)}`);
+	}
+	const { id, title, epoch, changedAt } = await notes.get(actor, number);
+	const { content, results } = await current(id);
+	return {
+		note: { id, number, title, epoch, changedAt },
+		content,
+		evaluation: results,
+		threads: await threads.list(actor, number),
+		review: await review.status(actor, number),
+	};
+});
+
+export const actions = {
+	propose: action('propose', proposing, async (actor, { password }, { params }: RequestEvent) => {
+		await candidates.propose(actor, params.number, password);
+		redirect(303, `/notes/${params.number}/candidate`);
+	}),
+};

@@ -1,0 +1,15 @@
+import { redirect } from '@sveltejs/kit';
+import * as sessions from '$lib/server/auth/sessions';
+import * as auth from '$lib/server/web/auth';
+import { forMember } from '$lib/server/web/guard';
+import type { PageServerLoad, RequestEvent } from './$types';
+
+export const load: PageServerLoad = () => redirect(303, '/notes');
+
+export const actions = {
+	default: forMember(async (actor, { cookies }: RequestEvent) => {
+		await sessions.end(actor, auth.tokenOf(cookies));
+		auth.forget(cookies);
+		redirect(303, '/sign-in');
+	}),
+};
