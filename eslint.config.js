@@ -49,7 +49,7 @@ export default ts.config(
 	{
 		// Scripts that run before anything is installed; their JSDoc casts are checked by the compiler, which the rules
 		// about `any` do not see.
-		files: ['**/*.mjs'],
+		files: ['**/*.mjs', '*.config.js'],
 		rules: {
 			'@typescript-eslint/no-unsafe-argument': 'off',
 			'@typescript-eslint/no-unsafe-assignment': 'off',
