@@ -1,0 +1,68 @@
+import { spawn, type ChildProcess } from 'node:child_process';
+import { once } from 'node:events';
+import { createServer, type AddressInfo } from 'node:net';
+
+/** The production entry, serving sockets only. */
+export interface SyncServer {
+	/** ws://host:port/sync */
+	url: string;
+	pid: number;
+	/** Ends it with a signal and waits until it is gone. Returns its exit code, null where the signal ended it. */
+	stop(signal?: NodeJS.Signals): Promise<number | null>;
+}
+
+/** Starts the built entry on a free port, with the settings of this process, and waits until it listens. */
+export async function startSyncServer(settings: Record<string, string> = {}): Promise<SyncServer> {
+	const port = await freePort();
+	const child = spawn(process.execPath, ['build/main.js'], {
+		env: { ...process.env, ROLES: 'sync', LOG_LEVEL: 'info', PORT: String(port), ...settings },
+		stdio: ['ignore', 'pipe', 'pipe'],
+	});
+	const gone = once(child, 'exit');
+	await listening(child);
+	return {
+		url: `ws://127.0.0.1:${port}/sync`,
+		pid: child.pid ?? 0,
+		stop: async (signal = 'SIGTERM') => {
+			child.kill(signal);
+			await gone;
+			return child.exitCode;
+		},
+	};
+}
+
+/** Runs the built entry until it ends by itself; gives its exit code and what it wrote to standard error. */
+export async function runEntry(
+	settings: Record<string, string>,
+): Promise<{ code: number | null; errors: string }> {
+	const child = spawn(process.execPath, ['build/main.js'], {
+		env: { ...process.env, ...settings },
+		stdio: ['ignore', 'ignore', 'pipe'],
+	});
+	let errors = '';
+	child.stderr.on('data', (chunk: Buffer) => (errors += chunk.toString()));
+	await once(child, 'close');
+	return { code: child.exitCode, errors };
+}
+
+function listening(child: ChildProcess): Promise<void> {
+	let output = '';
+	return new Promise((resolve, reject) => {
+		const read = (chunk: Buffer) => {
+			output += chunk.toString();
+			if (output.includes('"msg":"listening"')) resolve();
+		};
+		child.stdout?.on('data', read);
+		child.stderr?.on('data', read);
+		child.once('exit', (code) => reject(new Error(`the server ended with ${code}:\n${output}`)));
+	});
+}
+
+async function freePort(): Promise<number> {
+	const probe = createServer().listen(0, '127.0.0.1');
+	await once(probe, 'listening');
+	const { port } = probe.address() as AddressInfo;
+	probe.close();
+	await once(probe, 'close');
+	return port;
+}
