@@ -1,0 +1,21 @@
+/** What a note may hold and do. Counted, never timed, so that the same note meets the same bound everywhere. */
+export const bounds = {
+	/** Characters of one line. */
+	lineLength: 2_000,
+	/** Characters of all cells together. */
+	noteLength: 1_000_000,
+	/** Calculation and requirement lines of a note. */
+	lines: 5_000,
+	/** Brackets, powers, signs and choices inside one another. */
+	nesting: 64,
+	/** Members of a range or matrix. */
+	members: 100_000,
+	/** Function calls inside one another. */
+	calls: 128,
+	/** Operations of one line, a member of a matrix counting as one. */
+	lineSteps: 500_000,
+	/** Operations of a note. */
+	noteSteps: 3_000_000,
+	/** Members of a matrix that are handed out with the results. */
+	listedMembers: 10_000,
+} as const;

@@ -1,0 +1,67 @@
+import { refuse, type Refusal } from '../tables/refusal';
+import { column, dot, fromNumbers, put, type Column } from './columns';
+import { minus, narrow, over, plus, squareRoot, wide, zero, type Wide } from './double-double';
+import { refuseMember } from './readings';
+import { powerOfTwo } from './scaling';
+
+// Everything here adds in 32 digits and rounds once, at the end.
+
+/** Sum of a column; 0 for an empty one. */
+export function sum(values: readonly number[]): number | Refusal {
+	return refuseMember('values', values) ?? narrow(total(values));
+}
+
+export function mean(values: readonly number[]): number | Refusal {
+	return refuseColumn(values, 1) ?? narrow(wideMean(values));
+}
+
+/** Standard deviation of the readings, with n − 1. */
+export function standardDeviation(values: readonly number[]): number | Refusal {
+	const fault = refuseColumn(values, 2);
+	if (fault) return fault;
+	const { deviations, unit } = deviationsOf(values);
+	const square = over(dot(deviations, deviations), wide(values.length - 1));
+	return narrow(squareRoot(square)) * unit;
+}
+
+/**
+ * Correlation of each reading with the next, which is about zero for independent ones: Σ dᵢ dᵢ₊₁ ÷ Σ dᵢ², d being
+ * deviations from the mean.
+ */
+export function lagOneCorrelation(values: readonly number[]): number | Refusal {
+	const fault = refuseColumn(values, 2);
+	if (fault) return fault;
+	const { deviations } = deviationsOf(values);
+	const squares = dot(deviations, deviations);
+	if (!(squares.hi > 0)) return refuse('nothingFound', 'All readings are equal');
+	const next: Column = { hi: deviations.hi.slice(1), lo: deviations.lo.slice(1) };
+	return narrow(over(dot(next, deviations), squares));
+}
+
+function refuseColumn(values: readonly number[], needed: number): Refusal | undefined {
+	if (values.length >= needed) return refuseMember('values', values);
+	const count = needed === 1 ? 'a reading' : `${needed} readings`;
+	return refuse('tooFew', `This needs at least ${count}; there are ${values.length}`, {
+		argument: 'values',
+	});
+}
+
+function total(values: readonly number[]): Wide {
+	let sum = zero;
+	for (const value of values) sum = plus(sum, wide(value));
+	return sum;
+}
+
+function wideMean(values: readonly number[]): Wide {
+	return over(total(values), wide(values.length));
+}
+
+/** Deviations from the mean, divided by a power of two so that their squares stay in range. */
+function deviationsOf(values: readonly number[]): { deviations: Column; unit: number } {
+	const unit = powerOfTwo(values);
+	const inUnit = fromNumbers(values.map((value) => value / unit));
+	const middle = wideMean(Array.from(inUnit.hi));
+	const deviations = column(values.length);
+	for (const [i, value] of inUnit.hi.entries()) put(deviations, i, minus(wide(value), middle));
+	return { deviations, unit };
+}

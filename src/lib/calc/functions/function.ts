@@ -1,0 +1,128 @@
+import type { Place } from '../language/nodes';
+import { Trouble } from '../trouble';
+import { differ, isPure, pure, spoken, type Type } from '../types';
+import type { Unit } from '../units/unit';
+import { isGrid, map, type Value } from '../values';
+
+/** A value of a call, as far as it is known before computing. */
+export interface Argument extends Place {
+	type: Type;
+	/** Set where a unit itself is given: `number(x, mV)`. */
+	unit?: Unit;
+}
+
+/** A function of the language with its place in the handbook. */
+export interface CalcFunction {
+	readonly name: string;
+	readonly signature: string;
+	readonly help: string;
+	/** Each is a formula and the text of its readout, with ordinary spaces. */
+	readonly examples: readonly { source: string; result: string }[];
+	/** Where the method is published. */
+	readonly source?: string;
+	/** Number of values, at least and at most. */
+	readonly count: readonly [number, number];
+	/** Position of a value that is a unit. */
+	readonly unitAt?: number;
+	/** Type of the result. Throws Trouble on wrong units. */
+	readonly type: (args: Argument[]) => Type;
+	/** Computes in SI units. Throws Refusal. A unit is passed as its size. */
+	readonly compute: (args: Value[]) => Value;
+}
+
+/** A value that a function cannot take, found while computing. */
+export class Refusal extends Error {
+	constructor(
+		message: string,
+		readonly mend?: string,
+	) {
+		super(message);
+		this.name = 'Refusal';
+	}
+}
+
+/** Throws unless the value is a number of no unit. */
+export function expectPure(argument: Argument, what: string): void {
+	if (argument.type.kind !== 'unknown' && argument.type.kind !== 'number')
+		throw new Trouble(
+			'dimension',
+			argument,
+			`${what} is a pure number, not ${spoken(argument.type)}.`,
+		);
+	if (argument.type.dimension === undefined || isPure(argument.type)) return;
+	const name = spoken(argument.type);
+	throw new Trouble('dimension', argument, `${what} is a pure number, not ${name}.`, {
+		mend: argument.type.point
+			? 'Subtract the zero of the scale and divide by a unit.'
+			: `Divide by a unit, \`(1 ${argument.type.unit?.text ?? name})\` say.`,
+	});
+}
+
+/** Throws unless all are numbers of one unit; returns the type they share. */
+export function expectSame(args: Argument[], doing: string): Type {
+	const first = args.find((argument) => argument.type.dimension !== undefined) ?? args[0];
+	if (!first) return pure;
+	for (const argument of args) {
+		expectNumber(argument, doing);
+		if (differ(first.type, argument.type))
+			throw new Trouble(
+				'dimension',
+				argument,
+				`${doing} ${spoken(first.type)} and ${spoken(argument.type)} together.`,
+			);
+	}
+	const alike = args.every((argument) => argument.type.unit?.text === first.type.unit?.text);
+	if (alike) return first.type;
+	const { dimension, point } = first.type;
+	return {
+		kind: 'number',
+		...(dimension && { dimension }),
+		...(point && { point, unit: first.type.unit }),
+	} as Type;
+}
+
+/** Throws where a condition or a series is given for a number, or a temperature on a scale where `point` forbids it. */
+export function expectNumber(argument: Argument, doing: string): void {
+	if (argument.type.kind === 'boolean' || argument.type.kind === 'series')
+		throw new Trouble('dimension', argument, `${doing} numbers, not ${spoken(argument.type)}.`);
+}
+
+/** Throws where a temperature on a scale is given for something that is multiplied. */
+export function refusePoint(argument: Argument, doing: string): void {
+	if (!argument.type.point) return;
+	throw new Trouble(
+		'dimension',
+		argument,
+		`${doing} ${spoken(argument.type)}, which has a zero of its own.`,
+		{
+			mend: 'Take a difference, `(T - 0 degC)` say, or the absolute temperature, `(T to K)`.',
+		},
+	);
+}
+
+/** A function of one pure number, applied to each member of a list. */
+export function ofNumber(
+	about: Pick<CalcFunction, 'name' | 'signature' | 'help' | 'examples'>,
+	fn: (x: number) => number,
+	domain?: { holds: (x: number) => boolean; message: string },
+): CalcFunction {
+	return {
+		...about,
+		count: [1, 1],
+		type: ([x]) => {
+			if (x) expectPure(x, `The value of \`${about.name}\``);
+			return pure;
+		},
+		compute: ([x = 0]) =>
+			map(x, (number) => {
+				if (domain && !domain.holds(number)) throw new Refusal(domain.message);
+				return fn(number);
+			}),
+	};
+}
+
+/** The one number of a value. Throws Refusal for a list. */
+export function scalar(value: Value | undefined, what: string): number {
+	if (value === undefined || isGrid(value)) throw new Refusal(`${what} is one number, not a list.`);
+	return Number(value);
+}

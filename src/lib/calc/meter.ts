@@ -1,0 +1,41 @@
+import { bounds } from './bounds';
+import type { Place } from './language/nodes';
+import { Trouble } from './trouble';
+
+/** Counts operations, so that no line and no note runs for ever. The count alone decides, not the time. */
+export class Meter {
+	#line = 0;
+	#note = 0;
+
+	startLine(): void {
+		this.#line = 0;
+	}
+
+	/** Throws Trouble `tooLong` once the line or the note has used up its operations. */
+	spend(steps: number, at: Place): void {
+		this.#line += steps;
+		this.#note += steps;
+		if (this.#line > bounds.lineSteps)
+			throw new Trouble(
+				'tooLong',
+				at,
+				`The line needs more than ${grouped(bounds.lineSteps)} operations.`,
+				{
+					mend: 'Look for a function that calls itself without end, or work on fewer values.',
+				},
+			);
+		if (this.#note > bounds.noteSteps)
+			throw new Trouble(
+				'tooLong',
+				at,
+				`The note needs more than ${grouped(bounds.noteSteps)} operations.`,
+				{
+					mend: 'Split it into several notes, or work on fewer values.',
+				},
+			);
+	}
+}
+
+function grouped(count: number): string {
+	return String(count).replace(/\B(?=(\d{3})+$)/g, '\u202f');
+}

@@ -1,0 +1,58 @@
+import { bounds } from './bounds';
+import { parseLine, type ParsedLine } from './language/parse-line';
+import type { Cell, Fault } from './results';
+
+/** A line at its place in the note. */
+export interface NoteLine extends ParsedLine {
+	cell: string;
+	/** 1-based number of the cell in the sheet, as its terminal shows it. */
+	terminal: number;
+	/** 1-based line of the cell. */
+	line: number;
+	text: string;
+	requirement: boolean;
+}
+
+/** Reads calculation and requirement cells into lines. Faults say what was left out because it is too much. */
+export function readLines(cells: readonly Cell[]): {
+	lines: NoteLine[];
+	readable: Set<string>;
+	faults: Fault[];
+} {
+	const lines: NoteLine[] = [];
+	const faults: Fault[] = [];
+	const readable = new Set<string>();
+	let length = 0;
+	cells.forEach((cell, i) => {
+		length += cell.source.length;
+		const rows = cell.kind === 'text' ? [] : cell.source.split('\n');
+		if (length > bounds.noteLength || lines.length + rows.length > bounds.lines) {
+			const message =
+				length > bounds.noteLength
+					? `The note is longer than ${bounds.noteLength} characters; this cell is not computed.`
+					: `The note has more than ${bounds.lines} lines; this cell is not computed.`;
+			const mend = 'Split the note in two.';
+			faults.push({
+				cell: cell.id,
+				line: 1,
+				from: 0,
+				to: rows[0]?.length ?? 0,
+				code: 'tooLarge',
+				message,
+				mend,
+			});
+			return;
+		}
+		readable.add(cell.id);
+		rows.forEach((text, row) => {
+			const place = { cell: cell.id, terminal: i + 1, line: row + 1, text };
+			lines.push({ ...parseLine(text), ...place, requirement: cell.kind === 'requirement' });
+		});
+	});
+	return { lines, readable, faults };
+}
+
+/** How a sentence points at a line: "cell 2, line 3". */
+export function whereabouts(line: NoteLine): string {
+	return `cell ${line.terminal}, line ${line.line}`;
+}

@@ -1,0 +1,274 @@
+import { bounds } from './bounds';
+import { Refusal } from './functions/function';
+import { functions } from './functions/registry';
+import { pick, product, productSteps, range, steps, TooLarge, zip } from './grids';
+import type { ParsedLine } from './language/parse-line';
+import type { Comparison, Node, NodeOf, Place } from './language/nodes';
+import type { Meter } from './meter';
+import { Trouble } from './trouble';
+import { toSI } from './units/unit';
+import { isGrid, map, type Grid, type Value } from './values';
+
+/** What an expression is computed from. */
+export interface Scope {
+	of(name: string): Value | undefined;
+	function(name: string): ParsedLine | undefined;
+	readonly meter: Meter;
+	/** Function calls around this one. */
+	readonly depth: number;
+}
+
+/** Computes a checked expression in SI units. Throws Trouble. */
+export function run(node: Node, scope: Scope): Value {
+	scope.meter.spend(1, node);
+	switch (node.kind) {
+		case 'number':
+			return node.value;
+		case 'unit':
+			return toSI(1, node.unit);
+		case 'name': {
+			const value = scope.of(node.name);
+			if (value === undefined) throw new Trouble('waits', node, `Waits for \`${node.typed}\`.`);
+			return value;
+		}
+		case 'series':
+			return node.name;
+		case 'boolean':
+			return node.value;
+		case 'unary':
+			return runUnary(node, scope);
+		case 'binary':
+			return runBinary(node, scope);
+		case 'compare':
+			return runComparison(node, scope);
+		case 'choice': {
+			const condition = run(node.condition, scope);
+			return run(condition === true ? node.yes : node.no, scope);
+		}
+		case 'call':
+			return runCall(node, scope);
+		case 'array':
+			return runArray(node, scope);
+		case 'range': {
+			const [start, step, end] = [node.start, node.step, node.end].map((part) =>
+				part ? one(run(part, scope), part) : 1,
+			);
+			return guarded(node, () => range(start ?? 0, step ?? 1, end ?? 0), scope);
+		}
+		case 'index': {
+			const object = run(node.object, scope);
+			if (!isGrid(object)) throw new Trouble('value', node, 'Only a list has places.');
+			const places = node.indexes.map((index) => run(index, scope));
+			return guarded(node, () => pick(object, places), scope);
+		}
+		case 'convert': {
+			const value = run(node.value, scope);
+			return node.scaled ? map(value, (x) => toSI(x, node.unit)) : value;
+		}
+	}
+}
+
+function runUnary(node: NodeOf<'unary'>, scope: Scope): Value {
+	const value = run(node.value, scope);
+	switch (node.op) {
+		case 'not':
+			return value !== true;
+		case '+':
+			return value;
+		case '-':
+			return map(value, (x) => -x);
+		case '!':
+			return finite(map(value, factorial), node, 'The factorial');
+	}
+}
+
+function factorial(x: number): number {
+	if (!Number.isInteger(x) || x < 0) return NaN;
+	let result = 1;
+	for (let i = 2; i <= x && Number.isFinite(result); i++) result *= i;
+	return result;
+}
+
+function runBinary(node: NodeOf<'binary'>, scope: Scope): Value {
+	const left = run(node.left, scope);
+	if (node.op === 'and' && left === false) return false;
+	if (node.op === 'or' && left === true) return true;
+	const right = run(node.right, scope);
+	if (typeof left === 'number' && typeof right === 'number')
+		return finite(operate(node.op, left, right), node, undefined, node.op, right);
+	if (node.op === 'and' || node.op === 'or') return right;
+	if (node.op === 'xor') return left !== right;
+	const cost = node.op === '*' ? productSteps(left, right) : Math.max(steps(left), steps(right));
+	scope.meter.spend(cost, node);
+	const value = guarded(
+		node,
+		() =>
+			node.op === '*' ? product(left, right) : zip(left, right, (x, y) => operate(node.op, x, y)),
+		scope,
+	);
+	return finite(value, node, undefined, node.op, right);
+}
+
+function operate(op: NodeOf<'binary'>['op'], x: number, y: number): number {
+	switch (op) {
+		case '+':
+			return x + y;
+		case '-':
+			return x - y;
+		case '*':
+		case '.*':
+			return x * y;
+		case '/':
+		case './':
+			return x / y;
+		case '^':
+		case '.^':
+			return x ** y;
+		case 'mod':
+			return y === 0 ? x : x - y * Math.floor(x / y);
+		default:
+			return NaN;
+	}
+}
+
+/** Passes finite values on. Throws Trouble that says what went out of range. */
+function finite(value: Value, at: Place, what?: string, op?: string, right?: Value): Value {
+	const wrong = isGrid(value) ? value.data.find((x) => !Number.isFinite(x)) : value;
+	if (typeof wrong !== 'number' || Number.isFinite(wrong)) return value;
+	const zero = right !== undefined && (isGrid(right) ? right.data.includes(0) : right === 0);
+	if ((op === '/' || op === './') && zero) throw new Trouble('overflow', at, 'Divides by zero.');
+	if (Number.isNaN(wrong) && (op === '^' || op === '.^'))
+		throw new Trouble('value', at, 'A root of a negative value is not a real number.');
+	if (Number.isNaN(wrong))
+		throw new Trouble('value', at, `${what ?? 'This'} has no real value here.`);
+	if (op === '^' && right !== undefined && Number(right) < 0)
+		throw new Trouble('overflow', at, 'Divides by zero, or by a value too small to compute with.');
+	throw new Trouble(
+		'overflow',
+		at,
+		`${what ?? 'The result'} is larger than any number that can be computed with.`,
+		{
+			mend: 'Numbers reach up to about 1.8e308.',
+		},
+	);
+}
+
+/** How far apart two values may be and still count as equal: what the last digits of computing leave. */
+const tolerance = 1e-12;
+
+/** Whether a comparison holds. Values that differ by rounding only are equal. */
+export function holds(op: Comparison, x: number, y: number): boolean {
+	const equal = x === y || Math.abs(x - y) <= tolerance * Math.max(Math.abs(x), Math.abs(y));
+	switch (op) {
+		case '<':
+			return x < y && !equal;
+		case '<=':
+			return x < y || equal;
+		case '>':
+			return x > y && !equal;
+		case '>=':
+			return x > y || equal;
+		case '==':
+			return equal;
+		case '!=':
+			return !equal;
+	}
+}
+
+function runComparison(node: NodeOf<'compare'>, scope: Scope): Value {
+	const values = node.operands.map((operand) => {
+		const value = run(operand, scope);
+		return typeof value === 'boolean' ? Number(value) : one(value, operand);
+	});
+	return node.ops.every((op, i) => holds(op, values[i] ?? NaN, values[i + 1] ?? NaN));
+}
+
+function runArray(node: NodeOf<'array'>, scope: Scope): Grid {
+	const rows = node.rows.map((row) => row.map((item) => one(run(item, scope), item)));
+	const columns = rows[0]?.length ?? 0;
+	if (rows.some((row) => row.length !== columns))
+		throw new Trouble('value', node, 'The rows of this matrix differ in length.');
+	const data = Float64Array.from(rows.flat());
+	return { shape: node.flat ? [columns] : [rows.length, columns], data };
+}
+
+function runCall(node: NodeOf<'call'>, scope: Scope): Value {
+	const args = node.args.map((argument) => run(argument, scope));
+	const known = functions.get(node.name);
+	if (known) {
+		scope.meter.spend(
+			args.reduce<number>((sum, value) => sum + steps(value), 0),
+			node,
+		);
+		return finite(
+			guarded(node, () => known.compute(args), scope),
+			node,
+			`\`${node.typed}\``,
+		);
+	}
+	const own = scope.function(node.name);
+	if (!own?.body) throw new Trouble('waits', node, `Waits for \`${node.typed}\`.`);
+	if (scope.depth >= bounds.calls)
+		throw new Trouble(
+			'tooDeep',
+			node,
+			`\`${node.typed}\` calls itself more than ${bounds.calls} times inside itself.`,
+			{
+				mend: 'Give it a case that ends: `f(n) = n <= 1 ? 1 : n * f(n - 1)`.',
+			},
+		);
+	const bound = new Map(own.parameters.map((parameter, i) => [parameter.name, args[i] ?? NaN]));
+	const inner: Scope = {
+		of: (name) =>
+			bound.get(name) ??
+			(own.parameters.some((p) => p.name === name) ? undefined : outermost(scope).of(name)),
+		function: (name) => scope.function(name),
+		meter: scope.meter,
+		depth: scope.depth + 1,
+	};
+	outer.set(inner, outermost(scope));
+	try {
+		return run(own.body, inner);
+	} catch (error) {
+		if (error instanceof Trouble) throw new Trouble(error.code, node, error.message, error.how);
+		throw error;
+	}
+}
+
+const outer = new WeakMap<Scope, Scope>();
+
+/** The note's own scope: a function sees its parameters and the note, not what its caller bound. */
+function outermost(scope: Scope): Scope {
+	return outer.get(scope) ?? scope;
+}
+
+function one(value: Value, at: Place): number {
+	if (isGrid(value)) throw new Trouble('value', at, 'One number is expected here, not a list.');
+	return Number(value);
+}
+
+function guarded<T>(at: Place, compute: () => T, scope: Scope): T {
+	try {
+		return compute();
+	} catch (error) {
+		if (error instanceof Refusal)
+			throw new Trouble(
+				'value',
+				at,
+				error.message,
+				error.mend === undefined ? {} : { mend: error.mend },
+			);
+		if (error instanceof TooLarge) {
+			scope.meter.spend(0, at);
+			throw new Trouble(
+				'tooLarge',
+				at,
+				`This makes ${error.count.toExponential(1)} values; ${bounds.members} are possible.`,
+				{
+					mend: 'Work on fewer values.',
+				},
+			);
+		}
+		throw error;
+	}
+}

@@ -1,0 +1,24 @@
+import { refuseNotFinite, type Refusal } from './refusal';
+import type { Slope } from './root';
+
+/** Value and slope of c0 + c1 x + c2 x² + …, by Horner's scheme. */
+export function polynomial(x: number, coefficients: readonly number[]): Slope {
+	let value = 0;
+	let derivative = 0;
+	for (let k = coefficients.length - 1; k >= 0; k--) {
+		derivative = derivative * x + value;
+		value = value * x + coefficients[k]!;
+	}
+	return { value, derivative };
+}
+
+/** Coefficients of the derivative. */
+export function derivativeOf(coefficients: readonly number[]): number[] {
+	return coefficients.slice(1).map((value, k) => value * (k + 1));
+}
+
+/** Refuses a polynomial with a member that is not finite. */
+export function refusePolynomial(x: number, coefficients: readonly number[]): Refusal | undefined {
+	const named = Object.fromEntries(coefficients.map((value, k) => [`c${k}`, value]));
+	return refuseNotFinite({ x, ...named });
+}

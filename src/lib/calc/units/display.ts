@@ -1,0 +1,126 @@
+import type { Readout } from '../results';
+import type { Unit } from './unit';
+import { fromSI } from './unit';
+import { findSymbol } from './table';
+
+const noBreak = '\u00a0';
+/** Narrow no-break space: groups of three digits, as SP 811 asks for where more than four stand on a side. */
+const thin = '\u202f';
+const minus = '\u2212';
+
+/** Prefixes that a readout may choose, by unit; others are shown without a prefix. */
+const shown: Readonly<Record<string, readonly string[]>> = {
+	V: ['n', 'u', 'm', '', 'k', 'M'],
+	A: ['f', 'p', 'n', 'u', 'm', '', 'k'],
+	ohm: ['u', 'm', '', 'k', 'M', 'G', 'T'],
+	W: ['p', 'n', 'u', 'm', '', 'k', 'M', 'G'],
+	F: ['f', 'p', 'n', 'u', 'm', ''],
+	H: ['p', 'n', 'u', 'm', ''],
+	S: ['p', 'n', 'u', 'm', '', 'k'],
+	C: ['f', 'p', 'n', 'u', 'm', ''],
+	J: ['n', 'u', 'm', '', 'k', 'M'],
+	N: ['u', 'm', '', 'k', 'M'],
+	Pa: ['u', 'm', '', 'k', 'M', 'G'],
+	Hz: ['u', 'm', '', 'k', 'M', 'G', 'T'],
+	T: ['n', 'u', 'm', ''],
+	Wb: ['n', 'u', 'm', ''],
+	VA: ['m', '', 'k', 'M'],
+	K: ['u', 'm', ''],
+	s: ['p', 'n', 'u', 'm', ''],
+	m: ['p', 'n', 'u', 'm', '', 'k'],
+	g: ['n', 'u', 'm', '', 'k'],
+	mol: ['u', 'm', '', 'k'],
+};
+
+/** A unit with another prefix on its first symbol, where that is a plain one (`V/K`, not `V²`). */
+function reprefixed(unit: Unit, prefix: string): { label: string; shift: number } | undefined {
+	const first = unit.parts[0];
+	if (!first || first.power !== 1) return undefined;
+	const other = findSymbol(prefix + first.symbol.base);
+	if (!other) return undefined;
+	return {
+		label: other.label + unit.label.slice(first.symbol.label.length),
+		shift: first.symbol.decade - other.decade,
+	};
+}
+
+/** Whether readouts of this unit may take an engineering prefix. */
+export function takesPrefix(unit: Unit): boolean {
+	const first = unit.parts[0];
+	return first !== undefined && first.power === 1 && shown[first.symbol.base] !== undefined;
+}
+
+/** A value of SI units in `unit`; with `engineering` the prefix is chosen so that 1 to 999 stands before the mark. */
+export function readout(si: number, unit: Unit, engineering: boolean, digits = 6): Readout {
+	const value = fromSI(si, unit);
+	const chosen = engineering ? choose(value, unit, digits) : undefined;
+	const number = formatNumber(chosen ? shifted(value, chosen.shift) : value, digits);
+	return compose(number, chosen?.label ?? unit.label);
+}
+
+/** Joins figure and unit. */
+export function compose(number: string, unit: string): Readout {
+	return { text: unit === '' ? number : number + noBreak + unit, number, unit };
+}
+
+function choose(value: number, unit: Unit, digits: number) {
+	const prefixes = shown[unit.parts[0]?.symbol.base ?? ''];
+	if (!prefixes || value === 0) return undefined;
+	let best: { label: string; shift: number } | undefined;
+	for (const prefix of prefixes) {
+		const option = reprefixed(unit, prefix);
+		if (!option) continue;
+		const size = Math.abs(Number(shifted(value, option.shift).toPrecision(digits)));
+		if (size >= 1 || best === undefined) best = option;
+	}
+	return best;
+}
+
+function shifted(value: number, decade: number): number {
+	return decade < 0 ? value / 10 ** -decade : value * 10 ** decade;
+}
+
+/**
+ * A number to `digits` significant digits, trailing zeros dropped, whole numbers below 10⁹ in full, powers of ten
+ * outside 10⁻⁴ to 10⁷.
+ */
+export function formatNumber(value: number, digits = 6): string {
+	if (Object.is(value, -0)) return '0';
+	if (Number.isInteger(value) && Math.abs(value) < 1e9)
+		return signed(value, group(String(Math.abs(value))));
+	const rounded = Number(value.toPrecision(digits));
+	const size = Math.abs(rounded);
+	if (size < 1e-4 || size >= 1e7) {
+		const [mantissa = '', exponent = ''] = size.toExponential(digits - 1).split('e');
+		const short = group(trim(mantissa));
+		return signed(value, `${short}${noBreak}×${noBreak}10${superscript(Number(exponent))}`);
+	}
+	return signed(value, group(plain(size, digits)));
+}
+
+/** Decimal digits without an exponent. */
+function plain(size: number, digits: number): string {
+	const places = Math.max(0, digits - 1 - Math.floor(Math.log10(size)));
+	return trim(size.toFixed(Math.min(places, 20)));
+}
+
+function trim(text: string): string {
+	return text.includes('.') ? text.replace(/\.?0+$/, '') : text;
+}
+
+function signed(value: number, text: string): string {
+	return value < 0 ? minus + text : text;
+}
+
+function group(text: string): string {
+	const [whole = '', fraction] = text.split('.');
+	const left = whole.length > 4 ? whole.replace(/\B(?=(\d{3})+$)/g, thin) : whole;
+	if (fraction === undefined) return left;
+	const right = fraction.length > 4 ? fraction.replace(/(\d{3})(?=\d)/g, `$1${thin}`) : fraction;
+	return `${left}.${right}`;
+}
+
+function superscript(exponent: number): string {
+	const digits = [...String(Math.abs(exponent))].map((digit) => '⁰¹²³⁴⁵⁶⁷⁸⁹'[Number(digit)]);
+	return (exponent < 0 ? '⁻' : '') + digits.join('');
+}
