@@ -7,11 +7,12 @@ import {
 	existsSync,
 	mkdirSync,
 	readFileSync,
+	readdirSync,
 	renameSync,
 	rmSync,
 	writeFileSync,
 } from 'node:fs';
-import { join } from 'node:path';
+import { basename, dirname, join } from 'node:path';
 import { dataFolder, inData, root } from './place.mjs';
 import { databaseUser, findPrograms, runProgram } from './postgres-programs.mjs';
 import { Problem } from './problem.mjs';
@@ -51,9 +52,8 @@ export function makeCluster(port) {
 	const programs = findPrograms();
 	if (!programs) throw new Problem('PostgreSQL is missing.\nMend: apt-get install postgresql');
 	const folder = chooseFolder();
-	const making = `${folder}.making`;
-	rmSync(making, { recursive: true, force: true });
-	rmSync(folder, { recursive: true, force: true });
+	sweep(folder);
+	const making = `${folder}.making.${process.pid}`;
 	mkdirSync(making, { mode: 0o700 });
 	own(making);
 
@@ -74,6 +74,19 @@ export function makeCluster(port) {
 	renameSync(files, folder);
 	rmSync(making, { recursive: true, force: true });
 	return cluster;
+}
+
+/**
+ * Throws away what starts that were killed left half-made. Their initdb may still run and write for a moment,
+ * which is why each start works in a folder of its own name.
+ * @param {string} folder
+ */
+function sweep(folder) {
+	const beginning = `${basename(folder)}.making.`;
+	const left = readdirSync(dirname(folder)).filter((name) => name.startsWith(beginning));
+	for (const path of [folder, ...left.map((name) => join(dirname(folder), name))]) {
+		rmSync(path, { recursive: true, force: true, maxRetries: 20, retryDelay: 100 });
+	}
 }
 
 const settings = `

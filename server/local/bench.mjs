@@ -1,0 +1,33 @@
+import { spawn } from 'node:child_process';
+import { once } from 'node:events';
+import { build } from './build.mjs';
+import { ensurePackages } from './debian.mjs';
+import { alone } from './lock.mjs';
+import { ensureNodePackages } from './node-packages.mjs';
+import { root } from './place.mjs';
+import { release, start } from './postgres.mjs';
+import { report } from './problem.mjs';
+import { step } from './progress.mjs';
+
+/** `npm run bench [-- engine page sync setup]`: sets up as the tests do, then measures. */
+try {
+	await alone('demo', async () => {
+		await step('Debian packages', () => ensurePackages(['postgresql', 'chromium']));
+		await step('Node.js packages', ensureNodePackages);
+		await build();
+	});
+	await start({ owned: true });
+	const child = spawn('node_modules/.bin/tsx', ['tests/bench/run.ts', ...process.argv.slice(2)], {
+		cwd: root,
+		stdio: 'inherit',
+	});
+	for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM'])) {
+		process.on(signal, () => child.kill(signal));
+	}
+	const [code] = await once(child, 'exit');
+	process.exitCode = /** @type {number | null} */ (code) ?? 1;
+} catch (error) {
+	report(error);
+	process.exitCode = 1;
+}
+await release();

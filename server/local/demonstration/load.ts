@@ -1,0 +1,120 @@
+import type { Actor } from '$lib/server/auth/access';
+import * as sessions from '$lib/server/auth/sessions';
+import * as threads from '$lib/server/comments/threads';
+import { db } from '$lib/server/db/client';
+import { team } from '$lib/server/db/schema/people';
+import { current } from '$lib/server/evaluation/store';
+import * as notes from '$lib/server/notes/notes';
+import * as candidates from '$lib/server/revisions/candidates';
+import * as teams from '$lib/server/teams/teams';
+import { eq } from 'drizzle-orm';
+import { batteryVoltage, widened } from './battery-voltage';
+import { chargeCurrent } from './charge-current';
+import { rewrite } from './edit';
+import { levelTransmitter } from './level-transmitter';
+import { accounts, firm } from './people';
+import type { Sheet } from './sheet';
+import { supplySupervisor } from './supply-supervisor';
+import { waterTemperature } from './water-temperature';
+
+type Cast = Record<keyof typeof accounts, Actor>;
+
+/** Loads the demonstration into the database through the product's own deeds, unless its team is there. */
+export async function load(): Promise<void> {
+	const [there] = await db().select({ id: team.id }).from(team).where(eq(team.name, firm));
+	if (there) return;
+	const cast = await hire();
+	await battery(cast);
+	await level(cast);
+	await supervisor(cast);
+	await charge(cast);
+	await temperature(cast);
+}
+
+async function hire(): Promise<Cast> {
+	const { personIds } = await teams.found(firm, Object.values(accounts));
+	const entries = Object.keys(accounts).map(async (key, index) => {
+		const member = await sessions.findMember(personIds[index] ?? '');
+		if (!member) throw new Error(`${key} did not join the team`);
+		return [key, member] as const;
+	});
+	return Object.fromEntries(await Promise.all(entries)) as Cast;
+}
+
+async function battery({ engineer, peer, approver }: Cast): Promise<void> {
+	const { id, number } = await write(engineer, batteryVoltage);
+	await freeze(number, engineer, peer, approver);
+	await rewrite(id, engineer, widened);
+	await freeze(number, engineer, peer, approver);
+}
+
+async function level({ engineer, approver }: Cast): Promise<void> {
+	const { number } = await write(engineer, levelTransmitter);
+	await propose(engineer, number);
+	const { password } = accounts.approver;
+	await candidates.sendBack(approver, number, {
+		password,
+		digest: await digestOf(approver, number),
+		reason:
+			'The transmitter reports a fault with 21.5 mA. The converter would be at its end by then and could not tell it from a flood. Take a smaller loop resistor and add that requirement.',
+	});
+}
+
+async function supervisor({ peer }: Cast): Promise<void> {
+	await write(peer, supplySupervisor);
+}
+
+async function charge({ engineer, peer }: Cast): Promise<void> {
+	const { id, number } = await write(engineer, chargeCurrent);
+	const { cells } = (await current(id)).content;
+	await propose(engineer, number);
+	const question = await threads.open(peer, number, {
+		cellId: cells[4]?.id ?? '',
+		kind: 'question',
+		blocking: true,
+		body: 'Is 15 µV the offset at 25 °C or over the whole range of temperature? The box reaches 60 °C beside the panel.',
+	});
+	await threads.reply(engineer, number, question.id, {
+		body: 'At 25 °C. Its drift is 0.1 µV/K, so 35 K add 3.5 µV. I will put it in if you send the note back.',
+	});
+	const remark = await threads.open(peer, number, {
+		cellId: cells[2]?.id ?? '',
+		kind: 'remark',
+		blocking: false,
+		body: 'The 3 W of the shunt hold up to 70 °C only. Enough here.',
+	});
+	await threads.setClosed(engineer, number, remark.id, true);
+}
+
+async function temperature({ peer, engineer }: Cast): Promise<void> {
+	const { id, number } = await write(peer, waterTemperature);
+	const { cells } = (await current(id)).content;
+	await threads.open(engineer, number, {
+		cellId: cells[6]?.id ?? '',
+		kind: 'remark',
+		blocking: false,
+		body: 'In running water the dissipation is several times larger, so the self-heating given here is the worst of it.',
+	});
+}
+
+async function write(author: Actor, sheet: Sheet): Promise<{ id: string; number: string }> {
+	const made = await notes.create(author, sheet);
+	await current(made.id);
+	return made;
+}
+
+async function freeze(number: string, author: Actor, checker: Actor, approver: Actor) {
+	await propose(author, number);
+	const { password } = accounts.peer;
+	const digest = await digestOf(checker, number);
+	await candidates.check(checker, number, { password, digest });
+	await candidates.approve(approver, number, { password, digest });
+}
+
+async function propose(author: Actor, number: string): Promise<void> {
+	await candidates.propose(author, number, accounts.engineer.password);
+}
+
+async function digestOf(actor: Actor, number: string): Promise<string> {
+	return (await candidates.get(actor, number)).candidate.digest;
+}

@@ -1,0 +1,94 @@
+import { mkdirSync, writeFileSync } from 'node:fs';
+import { eq } from 'drizzle-orm';
+import { listQuery } from '$lib/schemas/notes';
+import type { Actor } from '$lib/server/auth/access';
+import { closeDb, db } from '$lib/server/db/client';
+import { membership, person, team } from '$lib/server/db/schema/people';
+import * as listing from '$lib/server/notes/listing';
+import * as notes from '$lib/server/notes/notes';
+import { createDatabase, dropDatabase } from '../../server/local/databases.mjs';
+import { fill } from '../../server/local/demonstration-database.mjs';
+import { inData } from '../../server/local/place.mjs';
+import { firstFree } from '../../server/local/ports.mjs';
+import { endEarlier, serve, settings } from '../../server/local/serving.mjs';
+import { openBrowser, signIn, type Account } from './browser';
+import { engineRows } from './engine';
+import { pageRows } from './pages';
+import { table, type Row } from './row';
+import { setupRows } from './setup';
+import { sixtyLines } from './sixty-lines';
+import { syncRows } from './sync';
+
+/** Areas named on the command line; all of them when none is named. */
+const wanted = process.argv.slice(2);
+const rows: Row[] = [];
+
+if (wants('engine')) rows.push(...engineRows());
+if (wants('page') || wants('sync')) rows.push(...(await servedRows()));
+if (wants('setup')) rows.push(...(await setupRows()));
+
+mkdirSync('test-results', { recursive: true });
+writeFileSync('test-results/bench.json', `${JSON.stringify(rows, null, '\t')}\n`);
+process.stdout.write(`\n${table(rows)}\n`);
+if (!rows.every((row) => row.ok)) process.exitCode = 1;
+
+function wants(area: string): boolean {
+	return wanted.length === 0 || wanted.includes(area);
+}
+
+async function servedRows(): Promise<Row[]> {
+	await endEarlier('bench', { onlyOrphans: true });
+	const database = `test_${process.pid}_bench`;
+	const port = await firstFree(4273);
+	await createDatabase(database);
+	const accounts = (await fill(database)) as (Account & { role: string })[];
+	const serving = await serve({ database, port, kind: 'bench', log: inData('bench.log') });
+	const browser = await openBrowser();
+	try {
+		Object.assign(process.env, settings(database, port));
+		const [writer, watcher] = accounts.filter((account) => account.role === 'engineer');
+		if (!writer || !watcher) throw new Error('the demonstration has no two engineers');
+		const { number } = await notes.create(await actorOf(writer.email), {
+			title: 'Sixty worked lines',
+			cells: sixtyLines,
+		});
+		const writing = await signIn(browser, serving.url, writer);
+		const watching = await signIn(browser, serving.url, watcher);
+		const path = `/notes/${number}`;
+		return [
+			...(wants('page') ? await pageRows(watching, path, await frozenPath(writer.email)) : []),
+			...(wants('sync') ? await syncRows(writing, watching, path) : []),
+		];
+	} finally {
+		await browser.close();
+		await serving.stop();
+		await closeDb();
+		await dropDatabase(database);
+	}
+}
+
+async function actorOf(email: string): Promise<Actor> {
+	const [found] = await db()
+		.select({
+			personId: person.id,
+			name: person.name,
+			email: person.email,
+			teamId: team.id,
+			teamName: team.name,
+			role: membership.role,
+		})
+		.from(person)
+		.innerJoin(membership, eq(membership.personId, person.id))
+		.innerJoin(team, eq(team.id, membership.teamId))
+		.where(eq(person.email, email));
+	if (!found) throw new Error(`${email} is not in a team`);
+	return found;
+}
+
+/** The page of some frozen revision of the demonstration. */
+async function frozenPath(email: string): Promise<string> {
+	const rows = await listing.list(await actorOf(email), listQuery.parse({}));
+	const frozen = rows.find((one) => one.revision);
+	if (!frozen?.revision) throw new Error('the demonstration has no frozen revision');
+	return `/notes/${frozen.number}/revisions/${frozen.revision}`;
+}
