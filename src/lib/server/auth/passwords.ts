@@ -21,7 +21,7 @@ export async function verify(
 ): Promise<boolean> {
 	const nobody = await (standIn ??= hash(crypto.randomUUID()));
 	const right = await argon2Verify(stored ?? nobody, password.normalize('NFKC'));
-	return right && stored != null;
+	return right && typeof stored === 'string';
 }
 
 /** Throws AppError `invalid` where a new password is too short or among those that are tried first. */

@@ -8,7 +8,7 @@ import { demand, type Actor } from '../auth/access';
 import * as signIn from '../auth/sign-in';
 import { db, type Connection } from '../db/client';
 import { notify } from '../db/notify';
-import { candidate, revision } from '../db/schema/review';
+import { candidate } from '../db/schema/review';
 import { current } from '../evaluation/store';
 import { lock } from '../notes/lock';
 import * as notes from '../notes/notes';
