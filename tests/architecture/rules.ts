@@ -21,7 +21,7 @@ export const rules: readonly Rule[] = [
 	{
 		who: /^src\/lib\/calc\//,
 		files: /^src\/lib\/(errors\.ts|calc\/)/,
-		packages: /^mathjs$/,
+		packages: /^(mathjs$|@stdlib\/)/,
 	},
 	{
 		who: /^src\/lib\/(note|protocol|schemas)\//,
