@@ -45,8 +45,14 @@ md.renderer.rules.figure = (tokens, index, _options, env) => {
 	return `<span class="readout" data-quantity="${name}">${escapeHtml(readout.number)}${unit}${doubt}</span>`;
 };
 
+/** A longer text is shown as it was typed: parsing a hostile one would hold up everybody who opens the note. */
+export const longestProse = 30_000;
+
 /** HTML of a text cell, safe to put into a page: no HTML of the writer's, no pictures, links to the web and mail only. */
 export function toHtml(source: string, find: FindReadout): string {
+	if (source.length > longestProse) {
+		return `<p><em>Too long to be set as text (more than 30 000 characters):</em></p>\n<pre>${escapeHtml(source)}</pre>\n`;
+	}
 	return md.render(source, { find });
 }
 
@@ -58,6 +64,7 @@ export interface Heading {
 
 /** Headings of a text cell as plain text, quoted figures in their place. */
 export function headingsOf(source: string, find: FindReadout): Heading[] {
+	if (source.length > longestProse) return [];
 	const tokens = md.parse(source, { find });
 	return tokens.flatMap((token, index) => {
 		if (token.type !== 'heading_open') return [];

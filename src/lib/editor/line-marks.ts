@@ -1,0 +1,91 @@
+import type { EditorState, Extension, Range } from '@codemirror/state';
+import {
+	Decoration,
+	EditorView,
+	ViewPlugin,
+	type DecorationSet,
+	type ViewUpdate,
+} from '@codemirror/view';
+import { splitLine, type LineParts } from '$lib/components/lines';
+import { typeset } from '$lib/components/symbol';
+
+/** Marks that set the name of a line apart, and the others that stand within it. */
+interface Marks {
+	names: DecorationSet;
+	parts: DecorationSet;
+}
+
+/**
+ * Sets each line as the sheet does: the defined name typeset in the symbol column, the formula beside it. The text
+ * itself stays whole; a line with the cursor shows underscore, equals sign and Greek names as they are typed.
+ */
+export function lineMarks(kind: 'calculation' | 'requirement'): Extension {
+	class LineMarks {
+		marks: Marks;
+
+		constructor(view: EditorView) {
+			this.marks = marksOf(view.state, view.hasFocus, kind);
+		}
+
+		update(update: ViewUpdate): void {
+			if (update.docChanged || update.selectionSet || update.focusChanged) {
+				this.marks = marksOf(update.state, update.view.hasFocus, kind);
+			}
+		}
+	}
+	return ViewPlugin.fromClass(LineMarks, {
+		decorations: (plugin) => plugin.marks.parts,
+		provide: (plugin) =>
+			EditorView.outerDecorations.of((view) => view.plugin(plugin)?.marks.names ?? Decoration.none),
+	});
+}
+
+function marksOf(state: EditorState, focused: boolean, kind: string): Marks {
+	const names: Range<Decoration>[] = [];
+	const parts: Range<Decoration>[] = [];
+	const { doc, selection } = state;
+	for (let number = 1; number <= doc.lines; number++) {
+		const line = doc.line(number);
+		const pieces = splitLine(line.text);
+		parts.push(lineClass(pieces, kind, number === doc.lines).range(line.from));
+		if (kind !== 'calculation' || pieces.name === undefined) continue;
+		const active =
+			focused && selection.ranges.some((range) => range.to >= line.from && range.from <= line.to);
+		names.push(nameMark.range(line.from, line.from + pieces.formulaFrom));
+		parts.push(...nameParts(line.from, line.text, pieces, active));
+	}
+	return { names: Decoration.set(names), parts: Decoration.set(parts, true) };
+}
+
+function lineClass({ kind: set }: LineParts, kind: string, last: boolean): Decoration {
+	const name = kind === 'requirement' && set !== 'comment' && set !== 'blank' ? kind : set;
+	return Decoration.line({ class: `line line-${name}${last ? ' line-last' : ''}` });
+}
+
+const nameMark = Decoration.mark({ class: 'line-name' });
+const hidden = Decoration.mark({ class: 'sym-hidden' });
+const subscript = Decoration.mark({ class: 'sym-sub' });
+const equals = Decoration.mark({ class: 'sym-eq' });
+const activeEquals = Decoration.mark({ class: 'sym-eq sym-active' });
+
+function* nameParts(
+	start: number,
+	text: string,
+	{ name = '', nameFrom, nameTo, formulaFrom }: LineParts,
+	active: boolean,
+): Generator<Range<Decoration>> {
+	const symbol = typeset(name);
+	const from = start + nameFrom;
+	const baseTo = from + symbol.baseTo;
+	const subFrom = from + symbol.subFrom;
+	const nameEnd = start + nameTo;
+	if (!active && symbol.glyph !== symbol.base) {
+		const attributes = { 'data-glyph': symbol.glyph };
+		yield Decoration.mark({ class: 'sym-glyph', attributes }).range(from, baseTo);
+	}
+	if (!active && subFrom > baseTo) yield hidden.range(baseTo, subFrom);
+	if (nameEnd > subFrom) yield subscript.range(subFrom, nameEnd);
+	const equalsAt = text.lastIndexOf('=', formulaFrom - 1);
+	const equalsFrom = text.slice(0, equalsAt).trimEnd().length;
+	yield (active ? activeEquals : equals).range(start + equalsFrom, start + formulaFrom);
+}

@@ -1,0 +1,70 @@
+import { WidgetType, type EditorView } from '@codemirror/view';
+import { mount, unmount, type Component } from 'svelte';
+
+/** What became of a DOM node: the component in it and what it stands for. */
+interface Mounted {
+	instance: Record<string, unknown>;
+	key: string;
+}
+
+const mounted = new WeakMap<HTMLElement, Mounted>();
+
+interface Choices<Props extends Record<string, unknown>> {
+	component: Component<Props>;
+	props: (view: EditorView) => Props;
+	/** What the widget stands for; only a widget of the same key takes over its place in the page. */
+	key: string;
+	/** All it shows; equal texts are equal widgets. */
+	text: string;
+	className?: string;
+	block?: boolean;
+	/** Keeps mouse and keys inside from the editor; a widget with buttons needs it. */
+	ownEvents?: boolean;
+	/** Called when a widget takes the place of one that showed something else. */
+	onchange?: (dom: HTMLElement) => void;
+}
+
+/** A widget that shows a Svelte component, the same one that static cells show. */
+export class MountedWidget<Props extends Record<string, unknown>> extends WidgetType {
+	constructor(readonly choices: Choices<Props>) {
+		super();
+	}
+
+	override eq(other: MountedWidget<Props>): boolean {
+		return other.choices.key === this.choices.key && other.choices.text === this.choices.text;
+	}
+
+	override toDOM(view: EditorView): HTMLElement {
+		const dom = document.createElement(this.choices.block ? 'div' : 'span');
+		if (this.choices.className) dom.className = this.choices.className;
+		this.#fill(dom, view);
+		return dom;
+	}
+
+	override updateDOM(dom: HTMLElement, view: EditorView): boolean {
+		const before = mounted.get(dom);
+		if (before?.key !== this.choices.key) return false;
+		this.destroy(dom);
+		this.#fill(dom, view);
+		this.choices.onchange?.(dom);
+		return true;
+	}
+
+	override destroy(dom: HTMLElement): void {
+		const before = mounted.get(dom);
+		if (!before) return;
+		mounted.delete(dom);
+		void unmount(before.instance);
+		dom.replaceChildren();
+	}
+
+	override ignoreEvent(): boolean {
+		return this.choices.ownEvents ?? false;
+	}
+
+	#fill(dom: HTMLElement, view: EditorView): void {
+		const { component, props, key } = this.choices;
+		const instance = mount(component, { target: dom, props: props(view) });
+		mounted.set(dom, { instance, key });
+	}
+}

@@ -1,0 +1,65 @@
+import { closeBrackets, closeBracketsKeymap } from '@codemirror/autocomplete';
+import { defaultKeymap } from '@codemirror/commands';
+import { bracketMatching } from '@codemirror/language';
+import { EditorState, type Extension } from '@codemirror/state';
+import { EditorView, keymap, placeholder } from '@codemirror/view';
+import { yCollab } from 'y-codemirror.next';
+import type { Awareness } from 'y-protocols/awareness';
+import type * as Y from 'yjs';
+import type { CellKind } from '$lib/note/document';
+import { formulaColours } from './formula-colours';
+import { keys, type Neighbours } from './keys';
+import { lineMarks } from './line-marks';
+import { look } from './look';
+import { results } from './results';
+import { singleLine } from './single-line';
+
+interface Choices {
+	parent: HTMLElement;
+	text: Y.Text;
+	awareness: Awareness;
+	undoManager: Y.UndoManager;
+	kind: CellKind | 'title';
+	/** Accessible name. */
+	label: string;
+	hint: string;
+	readOnly: boolean;
+	neighbours: Neighbours;
+	onfocus: (focused: boolean) => void;
+}
+
+/** Opens an editor on a shared text. Call `destroy` on what it gives. */
+export function openEditor(choices: Choices): EditorView {
+	const { parent, text, awareness, undoManager, kind, readOnly } = choices;
+	return new EditorView({
+		parent,
+		doc: text.toJSON(),
+		extensions: [
+			keys(choices.neighbours),
+			keymap.of([...closeBracketsKeymap, ...defaultKeymap]),
+			yCollab(text, awareness, { undoManager }),
+			look(),
+			placeholder(choices.hint),
+			EditorState.readOnly.of(readOnly),
+			EditorView.editable.of(!readOnly),
+			EditorView.contentAttributes.of({
+				'aria-label': choices.label,
+				'aria-multiline': String(kind !== 'title'),
+				spellcheck: String(kind === 'text' || kind === 'title'),
+				autocapitalize: kind === 'text' || kind === 'title' ? 'sentences' : 'off',
+				autocorrect: 'off',
+			}),
+			EditorView.domEventHandlers({
+				focus: () => choices.onfocus(true),
+				blur: () => choices.onfocus(false),
+			}),
+			ofKind(kind),
+		],
+	});
+}
+
+function ofKind(kind: Choices['kind']): Extension {
+	if (kind === 'title') return singleLine();
+	if (kind === 'text') return [];
+	return [lineMarks(kind), formulaColours(), closeBrackets(), bracketMatching(), results()];
+}

@@ -1,0 +1,84 @@
+import type { Range, Text } from '@codemirror/state';
+import { Decoration, type DecorationSet, type EditorView } from '@codemirror/view';
+import type { Fault, Readout as Shown, Requirement, WorkedLine } from '$lib/calc/results';
+import FaultNote from '$lib/components/FaultNote.svelte';
+import Readout from '$lib/components/Readout.svelte';
+import Verdict from '$lib/components/Verdict.svelte';
+import { fadeOnce } from './fade';
+import { MountedWidget } from './mounted-widget';
+
+/** A result of a cell at its place in the text. */
+export type Result =
+	| { kind: 'readout'; at: number; line: WorkedLine; shown: Shown }
+	| { kind: 'verdict'; at: number; requirement: Requirement }
+	| { kind: 'fault'; at: number; to: number; fault: Fault };
+
+type Mend = (view: EditorView, fault: Fault) => void;
+
+/** Decorations of all results; lines without a readout or verdict are marked as silent. */
+export function decorate(doc: Text, list: readonly Result[], mend: Mend): DecorationSet {
+	const ranges: Range<Decoration>[] = [];
+	const spoken = new Set<number>();
+	for (const result of list) {
+		if (result.at > doc.length) continue;
+		const line = doc.lineAt(result.at);
+		if (result.kind === 'fault') {
+			ranges.push(...faultRanges(result, line.from, line.to, mend));
+		} else if (!spoken.has(line.number)) {
+			spoken.add(line.number);
+			const widget =
+				result.kind === 'readout'
+					? readout(result.line, result.shown)
+					: verdict(result.requirement);
+			ranges.push(Decoration.widget({ widget, side: 1 }).range(line.to));
+		}
+	}
+	for (let number = 1; number <= doc.lines; number++) {
+		if (!spoken.has(number)) ranges.push(silent.range(doc.line(number).from));
+	}
+	return Decoration.set(ranges, true);
+}
+
+const silent = Decoration.line({ class: 'line-silent' });
+const underline = Decoration.mark({ class: 'fault-mark' });
+
+function readout({ name, line }: WorkedLine, shown: Shown) {
+	return new MountedWidget({
+		component: Readout,
+		props: () => ({ readout: shown, quantity: name }),
+		key: name ?? `line ${line}`,
+		text: JSON.stringify(shown),
+		className: 'line-readout',
+		onchange: fadeOnce,
+	});
+}
+
+function verdict(requirement: Requirement) {
+	return new MountedWidget({
+		component: Verdict,
+		props: () => ({ requirement }),
+		key: `line ${requirement.line}`,
+		text: JSON.stringify(requirement),
+	});
+}
+
+function* faultRanges(
+	{ fault, at, to }: Extract<Result, { kind: 'fault' }>,
+	lineFrom: number,
+	lineTo: number,
+	mend: Mend,
+): Generator<Range<Decoration>> {
+	// A fault of no width is shown at the character before it, or behind it at the line's start.
+	const from = at === to && at > lineFrom && at === lineTo ? at - 1 : at;
+	const end = Math.min(lineTo, from === to ? to + 1 : to);
+	if (end > from) yield underline.range(from, end);
+	const widget = new MountedWidget({
+		component: FaultNote,
+		props: (view: EditorView) => ({ fault, onmend: () => mend(view, fault) }),
+		key: `${fault.code} ${fault.line}`,
+		text: JSON.stringify(fault),
+		block: true,
+		ownEvents: true,
+	});
+	yield Decoration.widget({ widget, block: true, side: 1 }).range(lineTo);
+}

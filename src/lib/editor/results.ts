@@ -1,0 +1,92 @@
+import {
+	StateEffect,
+	StateField,
+	type ChangeDesc,
+	type Extension,
+	type Text,
+} from '@codemirror/state';
+import { EditorView, type DecorationSet } from '@codemirror/view';
+import type { Evaluation, Fault } from '$lib/calc/results';
+import { splitLine } from '$lib/components/lines';
+import { decorate, type Result } from './result-decorations';
+
+const arrived = StateEffect.define<Result[]>();
+
+/** Shows the results of a cell in its editor. */
+export function showResults(view: EditorView, cell: string, evaluation: Evaluation): void {
+	view.dispatch({ effects: arrived.of(placed(view.state.doc, cell, evaluation)) });
+}
+
+const field = StateField.define<{ list: Result[]; decorations: DecorationSet }>({
+	create: ({ doc }) => ({ list: [], decorations: decorate(doc, [], mend) }),
+	update(value, transaction) {
+		const news = transaction.effects.filter((effect) => effect.is(arrived)).at(-1)?.value;
+		if (!news && !transaction.docChanged) return value;
+		const list = news ?? value.list.map((result) => moved(result, transaction.changes));
+		return { list, decorations: decorate(transaction.newDoc, list, mend) };
+	},
+	provide: (self) => EditorView.decorations.from(self, (value) => value.decorations),
+});
+
+/**
+ * Readouts, verdicts and faults at their lines. They move with the text until the next results arrive, so that they
+ * stay beside their lines while the server computes.
+ */
+export function results(): Extension {
+	return field;
+}
+
+/** Puts a fault's replacement where the fault stands now. */
+function mend(view: EditorView, fault: Fault): void {
+	const place = view.state
+		.field(field)
+		.list.find((result) => result.kind === 'fault' && result.fault === fault);
+	if (place?.kind !== 'fault' || fault.replacement === undefined || view.state.readOnly) return;
+	view.dispatch({
+		changes: { from: place.at, to: place.to, insert: fault.replacement },
+		selection: { anchor: place.at + fault.replacement.length },
+		userEvent: 'input.mend',
+	});
+	view.focus();
+}
+
+function moved(result: Result, changes: ChangeDesc): Result {
+	const at = changes.mapPos(result.at, 1);
+	return result.kind === 'fault'
+		? { ...result, at, to: Math.max(at, changes.mapPos(result.to, -1)) }
+		: { ...result, at };
+}
+
+function placed(doc: Text, cell: string, evaluation: Evaluation): Result[] {
+	const list: Result[] = [];
+	for (const line of evaluation.lines) {
+		if (line.cell !== cell || !line.readout) continue;
+		const at = startOf(doc, line.line, line.name);
+		if (at !== undefined) list.push({ kind: 'readout', at, line, shown: line.readout });
+	}
+	for (const requirement of evaluation.requirements) {
+		if (requirement.cell !== cell) continue;
+		const at = startOf(doc, requirement.line);
+		if (at !== undefined) list.push({ kind: 'verdict', at, requirement });
+	}
+	for (const fault of evaluation.errors) {
+		if (fault.cell !== cell) continue;
+		const start = startOf(doc, fault.line);
+		if (start === undefined) continue;
+		const end = doc.lineAt(start).to;
+		const at = Math.min(start + fault.from, end);
+		list.push({ kind: 'fault', at, to: Math.min(Math.max(start + fault.to, at), end), fault });
+	}
+	return list;
+}
+
+/** Start of a line. Results may be a moment older than the text: a defined name is looked up where it went. */
+function startOf(doc: Text, number: number, name?: string): number | undefined {
+	const line = number <= doc.lines ? doc.line(number) : undefined;
+	if (name === undefined || (line && splitLine(line.text).name === name)) return line?.from;
+	for (let n = 1; n <= doc.lines; n++) {
+		const other = doc.line(n);
+		if (splitLine(other.text).name === name) return other.from;
+	}
+	return undefined;
+}
