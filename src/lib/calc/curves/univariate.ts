@@ -8,11 +8,20 @@ import { powerOfTwo } from './scaling';
 
 /** Sum of a column; 0 for an empty one. */
 export function sum(values: readonly number[]): number | Refusal {
-	return refuseMember('values', values) ?? narrow(total(values));
+	const fault = refuseMember('values', values);
+	if (fault) return fault;
+	const unit = powerOfTwo(values);
+	const all = narrow(total(values.map((value) => value / unit))) * unit;
+	return Number.isFinite(all)
+		? all
+		: refuse('overflow', 'The sum is too large', { argument: 'values' });
 }
 
 export function mean(values: readonly number[]): number | Refusal {
-	return refuseColumn(values, 1) ?? narrow(wideMean(values));
+	const fault = refuseColumn(values, 1);
+	if (fault) return fault;
+	const unit = powerOfTwo(values);
+	return narrow(wideMean(values.map((value) => value / unit))) * unit;
 }
 
 /** Standard deviation of the readings, with n − 1. */

@@ -35,24 +35,6 @@ export function curvatureOf(line: Line): Float64Array | undefined {
 	return result;
 }
 
-/** Second-order share of a variance (JCGM 100:2008, 5.1.2 note) and shift of the estimate, inputs independent. */
-export function secondOrder(line: Propagated, uncertainties: ArrayLike<number>) {
-	const { curvature, gradient, support } = line;
-	if (!curvature) return undefined;
-	const n = support.length;
-	let [variance, shift] = [0, 0];
-	if (curvature !== flat)
-		for (let j = 0; j < n; j++) {
-			shift += 0.5 * curvature[j * n + j]!;
-			for (let i = 0; i < n; i++) {
-				const second = curvature[j * n + i]!;
-				const third = curvature[n * n + j * n + i]!;
-				variance += 0.5 * second * second + gradient[i]! * uncertainties[support[i]!]! * third;
-			}
-		}
-	return { variance, shift };
-}
-
 function addLinear({ args, places, support, byArgument }: Line, into: Float64Array): void {
 	const n = support.length;
 	args.forEach(({ curvature = flat, support: inner }, k) => {

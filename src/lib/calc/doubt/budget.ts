@@ -1,0 +1,170 @@
+import { curvatureLimit, flat } from './curvature';
+import { uncorrelated, type Correlations } from './correlations';
+import type { Propagated } from './propagate';
+import { coverageFactor } from './student';
+
+/** What is known of the note's inputs, by their numbers. Infinite degrees of freedom are `Infinity`. */
+export interface Doubts {
+	uncertainties: ArrayLike<number>;
+	dofs: ArrayLike<number>;
+	correlations?: Correlations;
+}
+
+/** One input's part in a quantity's uncertainty. */
+export interface Contribution {
+	input: number;
+	sensitivity: number;
+	/** |sensitivity| × standard uncertainty, in the quantity's unit. */
+	contribution: number;
+	/** Part of the variance; shares add up to 1, and one may be negative where inputs are correlated. */
+	share: number;
+}
+
+export interface Uncertainty {
+	standardUncertainty: number;
+	/** Effective degrees of freedom, not truncated; `Infinity` where all that contribute have infinite ones. */
+	dof: number;
+	coverageFactor: number;
+	expandedUncertainty: number;
+}
+
+/** Second-order terms: what they make of the standard uncertainty and how far they shift the estimate. */
+export interface SecondOrder {
+	standardUncertainty: number;
+	/** Relative change of u; 1 where first order finds none at all. */
+	change: number;
+	shift: number;
+}
+
+/** Change of u by second-order terms above which first order is not enough. */
+export const notableChange = 0.01;
+
+/**
+ * Combined standard uncertainty (JCGM 100:2008, 5.1.2 and 5.2.2), effective degrees of freedom (G.4.1), coverage factor
+ * and expanded uncertainty. For the factor the degrees of freedom are truncated to a whole number, as in H.1.6.
+ * G.4.1 holds for independent contributions: inputs that are correlated count together as one of them, with the
+ * smallest degrees of freedom among them. So means of readings taken together, as in H.2, keep n − 1.
+ */
+export function uncertaintyOf(line: Propagated, doubts: Doubts, coverage: number): Uncertainty {
+	const { support, gradient } = line;
+	const correlations = doubts.correlations ?? uncorrelated;
+	let variance = 0;
+	let spread = 0;
+	let groups: Map<object, { variance: number; dof: number }> | undefined;
+	for (let i = 0; i < support.length; i++) {
+		const input = support[i]!;
+		const part = gradient[i]! * doubts.uncertainties[input]!;
+		const group = correlations.groupOf.get(input);
+		if (group) {
+			groups ??= new Map();
+			const known = groups.get(group) ?? { variance: 0, dof: Infinity };
+			known.variance += part * correlated(line, doubts, i);
+			if (part !== 0) known.dof = Math.min(known.dof, doubts.dofs[input]!);
+			groups.set(group, known);
+		} else {
+			const square = part * part;
+			variance += square;
+			spread += (square * square) / doubts.dofs[input]!;
+		}
+	}
+	for (const group of groups?.values() ?? []) {
+		variance += group.variance;
+		spread += group.variance ** 2 / group.dof;
+	}
+	// Full negative correlation may leave a rounding error below zero.
+	const standardUncertainty = Math.sqrt(Math.max(variance, 0));
+	const dof = spread > 0 ? (variance * variance) / spread : Infinity;
+	const factor = coverageFactor(coverage, Math.max(1, Math.floor(dof)));
+	return {
+		standardUncertainty,
+		dof,
+		coverageFactor: factor,
+		expandedUncertainty: factor * standardUncertainty,
+	};
+}
+
+/** Contributions of all inputs a quantity depends on, those without effect too, the greatest first. */
+export function budgetOf(line: Propagated, doubts: Doubts): Contribution[] {
+	const { support, gradient } = line;
+	const rows = Array.from(support, (input, i) => {
+		const sensitivity = gradient[i]!;
+		const part = sensitivity * doubts.uncertainties[input]!;
+		return { input, sensitivity, contribution: Math.abs(part), share: part * correlated(line, doubts, i) };
+	});
+	const variance = rows.reduce((sum, row) => sum + row.share, 0);
+	for (const row of rows) row.share = variance > 0 ? row.share / variance : 0;
+	return rows.sort((x, y) => y.contribution - x.contribution || x.input - y.input);
+}
+
+/**
+ * Second-order terms of a quantity (JCGM 100:2008, 5.1.2 note), undefined where they were not computed. The note holds
+ * for independent inputs; of correlated ones the product of second derivatives is taken with the correlation matrix,
+ * exact for normal inputs, the third derivatives only where two of their three inputs are the same.
+ */
+export function secondOrderOf(line: Propagated, doubts: Doubts): SecondOrder | undefined {
+	const { curvature, gradient, support } = line;
+	if (!curvature) return undefined;
+	const n = support.length;
+	const parts = Float64Array.from(gradient, (_, i) => correlated(line, doubts, i));
+	let first = 0;
+	for (let i = 0; i < n; i++) first += gradient[i]! * doubts.uncertainties[support[i]!]! * parts[i]!;
+	let [second, shift] = [0, 0];
+	if (curvature !== flat) {
+		const bent = withCorrelations(curvature, support, doubts.correlations ?? uncorrelated);
+		for (let j = 0; j < n; j++) {
+			shift += 0.5 * bent[j * n + j]!;
+			for (let i = 0; i < n; i++)
+				second +=
+					0.5 * bent[j * n + i]! * bent[i * n + j]! + parts[i]! * curvature[(n + j) * n + i]!;
+		}
+	}
+	const plain = Math.sqrt(Math.max(first, 0));
+	const standardUncertainty = Math.sqrt(Math.max(first + second, 0));
+	const change = plain > 0 ? standardUncertainty / plain - 1 : standardUncertainty > 0 ? 1 : 0;
+	return { standardUncertainty, change, shift };
+}
+
+/** Whether a first-order result must be doubted: its second-order terms matter, or are too many to know. */
+export function needsTrials(line: Propagated, doubts: Doubts): boolean {
+	if (line.support.length > curvatureLimit && !line.curvature) return true;
+	const second = secondOrderOf(line, doubts);
+	return second !== undefined && !(Math.abs(second.change) <= notableChange);
+}
+
+/** Sum over j of r_ij c_j u_j for input i of the line. */
+function correlated(line: Propagated, doubts: Doubts, i: number): number {
+	const { support, gradient } = line;
+	const group = doubts.correlations?.groupOf.get(support[i]!);
+	if (!group) return gradient[i]! * doubts.uncertainties[support[i]!]!;
+	const row = group.members.indexOf(support[i]!) * group.members.length;
+	let sum = 0;
+	for (let j = 0; j < support.length; j++) {
+		const column = group.members.indexOf(support[j]!);
+		if (column >= 0)
+			sum += group.matrix[row + column]! * gradient[j]! * doubts.uncertainties[support[j]!]!;
+	}
+	return sum;
+}
+
+/** Second derivatives times the correlation matrix. */
+function withCorrelations(
+	curvature: Float64Array,
+	support: Int32Array,
+	correlations: Correlations,
+): Float64Array {
+	const n = support.length;
+	if (!support.some((input) => correlations.groupOf.has(input))) return curvature;
+	const product = curvature.slice(0, n * n);
+	for (let j = 0; j < n; j++) {
+		const group = correlations.groupOf.get(support[j]!);
+		if (!group) continue;
+		const column = group.members.indexOf(support[j]!);
+		for (let k = 0; k < n; k++) {
+			const row = group.members.indexOf(support[k]!);
+			if (k === j || row < 0) continue;
+			const r = group.matrix[row * group.members.length + column]!;
+			for (let i = 0; i < n; i++) product[i * n + j]! += curvature[i * n + k]! * r;
+		}
+	}
+	return product;
+}

@@ -1,0 +1,46 @@
+import type { Correlations } from './correlations';
+import type { Distribution } from './distributions/distribution';
+import type { Tape } from './tape';
+import { evaluateTape, nodesFor } from './values';
+
+/** One line in a model: its tape, the lines its arguments are, and the numbers its own inputs have in the note. */
+export interface Step {
+	tape: Tape;
+	/** Place in `steps` of the line that each argument is. */
+	args: ArrayLike<number>;
+	inputs: ArrayLike<number>;
+}
+
+/** A note as it is computed: lines in an order in which each comes after its arguments. */
+export interface Model {
+	steps: readonly Step[];
+	/** Distribution of each input, by its number. */
+	inputs: ArrayLike<Distribution>;
+	correlations?: Correlations;
+}
+
+/** Places of the lines that `outputs` need, in their order. */
+export function neededSteps(model: Model, outputs: readonly number[]): number[] {
+	const needed = new Uint8Array(model.steps.length);
+	for (const output of outputs) needed[output] = 1;
+	for (let i = model.steps.length - 1; i >= 0; i--)
+		if (needed[i]) for (const arg of Array.from(model.steps[i]!.args)) needed[arg] = 1;
+	return Array.from(needed.keys()).filter((i) => needed[i]);
+}
+
+/** Value of a line with each input of the note at its estimate plus `deviation(number)`. */
+export function evaluateAt(
+	model: Model,
+	steps: readonly number[],
+	deviation: (input: number) => number,
+): number {
+	const values = new Float64Array(model.steps.length);
+	let value = NaN;
+	for (const place of steps) {
+		const { tape, args, inputs } = model.steps[place]!;
+		const given = Float64Array.from(args, (arg) => values[arg]!);
+		value = evaluateTape(tape, given, nodesFor(tape), Float64Array.from(inputs, deviation));
+		values[place] = value;
+	}
+	return value;
+}

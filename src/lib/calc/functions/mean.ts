@@ -1,0 +1,15 @@
+import { expectSame, type CalcFunction } from './function';
+import { gathered } from './gathered';
+
+export const mean: CalcFunction = {
+	name: 'mean',
+	signature: 'mean(a, b, …)',
+	help: 'The arithmetic mean.',
+	examples: [{ source: 'mean(1 V, 2 V, 6 V)', result: '3 V' }],
+	count: [1, Infinity],
+	type: (args) => expectSame(args, 'Averages'),
+	compute: (args) => {
+		const all = gathered(args);
+		return all.reduce((a, b) => a + b / all.length, 0);
+	},
+};

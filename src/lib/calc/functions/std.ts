@@ -1,0 +1,17 @@
+import { expectSame, type CalcFunction } from './function';
+import { ofDimension } from '../types';
+import { gathered } from './gathered';
+import { sampleVariance } from './sample-variance';
+
+export const std: CalcFunction = {
+	name: 'std',
+	signature: 'std(a, b, …)',
+	help: 'Standard deviation of a sample (divisor n − 1).',
+	examples: [{ source: 'std(1 V, 2 V, 3 V)', result: '1 V' }],
+	count: [1, Infinity],
+	type: (args) => {
+		const type = expectSame(args, 'Takes the spread of');
+		return type.point && type.dimension ? ofDimension(type.dimension) : type;
+	},
+	compute: (args) => Math.sqrt(sampleVariance(gathered(args))),
+};

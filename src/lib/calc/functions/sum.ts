@@ -1,0 +1,16 @@
+import { expectSame, refusePoint, type CalcFunction } from './function';
+import { gathered } from './gathered';
+
+export const sum: CalcFunction = {
+	name: 'sum',
+	signature: 'sum(a, b, …)',
+	help: 'The sum.',
+	examples: [{ source: 'sum([1, 2, 3] mA)', result: '6 mA' }],
+	count: [1, Infinity],
+	type: (args) => {
+		const type = expectSame(args, 'Adds');
+		if (args[0]) refusePoint({ ...args[0], type }, 'Adds');
+		return type;
+	},
+	compute: (args) => gathered(args).reduce((a, b) => a + b, 0),
+};
