@@ -1,0 +1,122 @@
+import { testPassword as password } from '../support/people';
+import { signing, type Scene } from '../support/world';
+
+/** Who visits: a stranger, each role in the note's team, its author, and an approver of another team. */
+export const visitors = [
+	'stranger',
+	'reader',
+	'engineer',
+	'approver',
+	'administrator',
+	'author',
+	'outsider',
+] as const;
+export type Visitor = (typeof visitors)[number];
+
+interface Row {
+	stage?: 'draft' | 'proposed' | 'checked' | 'frozen';
+	/** Address for a scene; the route's own where it has no parameters. */
+	at?: (scene: Scene) => string;
+	form?: (scene: Scene) => Record<string, string>;
+	json?: (scene: Scene) => unknown;
+	/** Status for each visitor; `all` is every visitor who has no own entry. */
+	expect: Partial<Record<Visitor, number>> & { all: number };
+}
+
+const page = (tail = '') => ({ at: ({ number }: Scene) => `/notes/${number}${tail}` });
+const api = (tail: (scene: Scene) => string) => ({
+	at: (scene: Scene) => `/api/notes/${scene.number}${tail(scene)}`,
+});
+const signIn = 303;
+
+/**
+ * Every route and action with who gets what. 303 is a redirect: for a stranger to the sign-in page, else to what was made.
+ * A note of another team gives 404, as one that does not exist.
+ */
+export const accessTable: Record<string, Row> = {
+	'GET /': { expect: { all: 303 } },
+	'GET /healthz': { expect: { all: 200 } },
+	'GET /sign-in': { expect: { stranger: 200, all: 303 } },
+	'POST /sign-in': {
+		form: ({ email }) => ({ email, password, to: '/notes' }),
+		expect: { all: 303 },
+	},
+	'GET /sign-out': { expect: { all: 303 } },
+	'POST /sign-out': { form: () => ({}), expect: { all: 303 } },
+	'GET /account': { expect: { stranger: signIn, all: 200 } },
+	'POST /account?/password': {
+		form: () => ({ present: password, next: 'another plaice in 52 harbours' }),
+		expect: { stranger: signIn, all: 200 },
+	},
+	'POST /account?/signOutEverywhere': { form: () => ({}), expect: { all: 303 } },
+	'GET /team': { expect: { stranger: signIn, administrator: 200, all: 403 } },
+	'POST /team?/role': {
+		form: ({ personId }) => ({ personId, role: 'reader' }),
+		expect: { stranger: signIn, administrator: 200, all: 403 },
+	},
+	'GET /notes': { expect: { stranger: signIn, all: 200 } },
+	'POST /notes?/create': {
+		form: () => ({ title: 'A new one' }),
+		expect: { reader: 403, administrator: 403, all: 303 },
+	},
+	'GET /notes/[number]': {
+		...page(),
+		expect: { stranger: signIn, reader: 404, outsider: 404, all: 200 },
+	},
+	'POST /notes/[number]?/propose': {
+		...page('?/propose'),
+		form: () => ({ password }),
+		expect: { reader: 403, administrator: 403, outsider: 404, all: 303 },
+	},
+	'GET /notes/[number]/candidate': {
+		stage: 'proposed',
+		...page('/candidate'),
+		expect: { stranger: signIn, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /notes/[number]/candidate?/check': {
+		stage: 'proposed',
+		...page('/candidate?/check'),
+		form: signing,
+		expect: { reader: 403, administrator: 403, author: 409, outsider: 404, all: 303 },
+	},
+	'POST /notes/[number]/candidate?/approve': {
+		stage: 'checked',
+		...page('/candidate?/approve'),
+		form: signing,
+		expect: { stranger: signIn, approver: 303, outsider: 404, all: 403 },
+	},
+	'POST /notes/[number]/candidate?/return': {
+		stage: 'checked',
+		...page('/candidate?/return'),
+		form: (scene) => ({ ...signing(scene), reason: 'The load is missing.' }),
+		expect: { reader: 403, administrator: 403, outsider: 404, all: 303 },
+	},
+	'GET /notes/[number]/revisions/[letter]': {
+		stage: 'frozen',
+		...page('/revisions/A'),
+		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
+	'GET /api/notes/[number]/threads': {
+		...api(() => '/threads'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /api/notes/[number]/threads': {
+		...api(() => '/threads'),
+		json: ({ cellId }) => ({ cellId, kind: 'remark', blocking: false, body: 'Noted.' }),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 201 },
+	},
+	'PATCH /api/notes/[number]/threads/[thread]': {
+		...api(({ threadId }) => `/threads/${threadId}`),
+		json: () => ({ closed: true }),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /api/notes/[number]/threads/[thread]/comments': {
+		...api(({ threadId }) => `/threads/${threadId}/comments`),
+		json: () => ({ body: 'It is.' }),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 201 },
+	},
+	'GET /api/notes/[number]/review': {
+		...api(() => '/review'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+};

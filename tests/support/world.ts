@@ -1,0 +1,47 @@
+import * as threads from '$lib/server/comments/threads';
+import type { Actor } from '$lib/server/auth/access';
+import { check, freeze, propose, seen, writeNote } from './notes';
+import { testPassword as password, type Cast } from './people';
+
+/** A note made for one visit, with what a form or address may need of it. */
+export interface Scene {
+	number: string;
+	cellId: string;
+	threadId: string;
+	digest: string;
+	/** Somebody in the note's team whose role may be changed. */
+	personId: string;
+	email: string;
+}
+
+type Stage = 'draft' | 'proposed' | 'checked' | 'frozen';
+
+/** Brings a new note of the cast's author to a stage. */
+export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Scene> {
+	const { number } = await writeNote(cast.author, secretTitle);
+	const scene: Scene = {
+		number,
+		cellId: 'abcdefghjkmn',
+		threadId: '',
+		digest: '0'.repeat(64),
+		personId: cast.reader.personId,
+		email: visitor.email,
+	};
+	const body = 'Is this the loaded value?';
+	const about = { cellId: scene.cellId, kind: 'question', blocking: false, body } as const;
+	scene.threadId = (await threads.open(cast.engineer, number, about)).id;
+	if (upTo === 'draft') return scene;
+	if (upTo === 'frozen') await freeze(cast, number);
+	else await propose(cast.author, number);
+	if (upTo === 'checked') await check(cast, number);
+	scene.digest = (await seen(cast.author, number)).digest;
+	return scene;
+}
+
+/** What a stranger or another team must never see. */
+export const secretTitle = 'Kestrel divider';
+
+/** The fields of a sign-off. */
+export function signing({ digest }: Scene) {
+	return { password, digest };
+}
