@@ -11,6 +11,7 @@ test('a wrong password keeps the e-mail, never the password', async ({ page }) =
 	await page.getByRole('button', { name: 'Sign in' }).click();
 	await expect(page.getByRole('alert')).not.toBeEmpty();
 	await expect(page.getByLabel('E-mail')).toHaveValue(emailOf('engineer'));
+	await expect(page.getByLabel('Password')).toHaveValue('');
 	expect(await page.content()).not.toContain('not the password');
 	await expect(page).toHaveURL(/\/sign-in/);
 });
