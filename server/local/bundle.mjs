@@ -18,7 +18,7 @@ const all = /** @type {Entry[]} */ (Object.keys(entries));
  * @param {Entry[]} [names]
  */
 export async function bundle(names = all) {
-	await esbuild.build(options(names));
+	for (const group of groups(names)) await esbuild.build(options(group));
 }
 
 /**
@@ -26,13 +26,26 @@ export async function bundle(names = all) {
  * @param {Entry[]} names
  */
 export async function watch(names) {
-	await esbuild.build(options(names));
-	const context = await esbuild.context(options(names));
-	await context.watch();
+	for (const group of groups(names)) {
+		await esbuild.build(options(group));
+		const context = await esbuild.context(options(group));
+		await context.watch();
+	}
 }
 
 /**
- * Packages stay outside, and so do the built pages; `$lib` comes from the TypeScript settings.
+ * The evaluator is bundled for itself, with its packages.
+ * @param {Entry[]} names
+ */
+function groups(names) {
+	const evaluator = names.filter((name) => name === 'evaluator');
+	const others = names.filter((name) => name !== 'evaluator');
+	return [evaluator, others].filter((group) => group.length > 0);
+}
+
+/**
+ * Packages stay outside, and so do the built pages; `$lib` comes from the TypeScript settings. Evaluators start often
+ * and use a small part of a large package, so that it is bundled into theirs.
  * @param {Entry[]} names
  * @returns {esbuild.BuildOptions}
  */
@@ -45,7 +58,7 @@ function options(names) {
 		platform: 'node',
 		format: 'esm',
 		target: 'node20',
-		packages: 'external',
+		packages: names.includes('evaluator') ? 'bundle' : 'external',
 		external: ['./web/*'],
 		sourcemap: true,
 		logLevel: 'warning',

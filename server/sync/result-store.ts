@@ -1,4 +1,4 @@
-import { engineVersion } from '$lib/calc/evaluate';
+import { engineVersion } from '$lib/calc/engine';
 import * as store from '$lib/server/evaluation/store';
 import { log } from '$lib/server/log';
 

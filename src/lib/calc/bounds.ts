@@ -3,7 +3,7 @@ export const bounds = {
 	/** Characters of one line. */
 	lineLength: 2_000,
 	/** Characters of all cells together. */
-	noteLength: 1_000_000,
+	noteLength: 300_000,
 	/** Calculation and requirement lines of a note. */
 	lines: 5_000,
 	/** Brackets, powers, signs and choices inside one another. */

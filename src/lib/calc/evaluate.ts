@@ -1,20 +1,21 @@
+import { engineVersion } from './engine';
 import { readFigures } from './figures';
 import { Note } from './note';
-import { readLines, type NoteLine } from './note-lines';
+import { readLines, type NoteLine, type Watch } from './note-lines';
 import { judge } from './requirements';
 import type { Cell, Evaluation, Fault, Options, Quantity, WorkedLine } from './results';
 import { figures, show } from './show';
 import type { Trouble } from './trouble';
 
-/** Version of what the engine computes. It changes with every change that may change a result. */
-export const engineVersion = '0.1.0';
+export { defaultOptions, engineVersion } from './engine';
 
-export const defaultOptions: Options = { coverage: 0.95, decisionRule: 'guarded' };
-
-/** Computes a note. Pure: the same cells and options give the same results, and no input makes it throw. */
-export function evaluate(cells: readonly Cell[], options: Options): Evaluation {
-	const { lines, readable, faults } = readLines(cells);
-	const note = new Note(lines);
+/**
+ * Computes a note. Pure: the same cells and options give the same results, and no input makes it throw. `watch` is
+ * for the process around it that must be able to end it.
+ */
+export function evaluate(cells: readonly Cell[], options: Options, watch: Watch = {}): Evaluation {
+	const { lines, readable, faults } = readLines(cells, watch);
+	const note = new Note(lines, watch);
 	const requirements = lines.flatMap((line) => judge(line, note, options) ?? []);
 	const quoted = readFigures(cells, readable, note);
 	const errors = [

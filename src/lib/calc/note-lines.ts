@@ -1,6 +1,21 @@
 import { bounds } from './bounds';
-import { parseLine, type ParsedLine } from './language/parse-line';
+import { parseLine, unreadLine, type ParsedLine } from './language/parse-line';
 import type { Cell, Fault } from './results';
+import { Trouble } from './trouble';
+
+/** How a process that watches the engine takes part: it learns where the engine is and names lines to leave out. */
+export interface Watch {
+	/** Called before each step with the line it is about. */
+	at?(cell: string, line: number): void;
+	skip?: readonly SkippedLine[];
+}
+
+/** A line that an earlier try could not finish. */
+export interface SkippedLine {
+	cell: string;
+	line: number;
+	code: 'tooLong' | 'tooLarge';
+}
 
 /** A line at its place in the note. */
 export interface NoteLine extends ParsedLine {
@@ -14,7 +29,10 @@ export interface NoteLine extends ParsedLine {
 }
 
 /** Reads calculation and requirement cells into lines. Faults say what was left out because it is too much. */
-export function readLines(cells: readonly Cell[]): {
+export function readLines(
+	cells: readonly Cell[],
+	watch: Watch,
+): {
 	lines: NoteLine[];
 	readable: Set<string>;
 	faults: Fault[];
@@ -46,7 +64,10 @@ export function readLines(cells: readonly Cell[]): {
 		readable.add(cell.id);
 		rows.forEach((text, row) => {
 			const place = { cell: cell.id, terminal: i + 1, line: row + 1, text };
-			lines.push({ ...parseLine(text), ...place, requirement: cell.kind === 'requirement' });
+			watch.at?.(cell.id, row + 1);
+			const skipped = watch.skip?.find(({ cell: id, line }) => id === cell.id && line === row + 1);
+			const parsed = skipped ? unreadLine(text, unfinished(skipped, text)) : parseLine(text);
+			lines.push({ ...parsed, ...place, requirement: cell.kind === 'requirement' });
 		});
 	});
 	return { lines, readable, faults };
@@ -55,4 +76,14 @@ export function readLines(cells: readonly Cell[]): {
 /** How a sentence points at a line: "cell 2, line 3". */
 export function whereabouts(line: NoteLine): string {
 	return `cell ${line.terminal}, line ${line.line}`;
+}
+
+function unfinished({ code }: SkippedLine, text: string): Trouble {
+	const message =
+		code === 'tooLong'
+			? 'This line took too long to compute and was stopped.'
+			: 'This line took too much memory and was stopped.';
+	return new Trouble(code, { from: 0, to: text.length }, message, {
+		mend: 'Work on fewer values, or split it into several quantities.',
+	});
 }

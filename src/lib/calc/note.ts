@@ -4,7 +4,7 @@ import type { Node, Place } from './language/nodes';
 import { builtInNames, nearest, unitNames, whyReserved } from './language/names';
 import { findSymbol, spokenName } from './units/table';
 import { Meter } from './meter';
-import { whereabouts, type NoteLine } from './note-lines';
+import { whereabouts, type NoteLine, type Watch } from './note-lines';
 import { order } from './order';
 import { run, type Scope } from './run';
 import { Trouble } from './trouble';
@@ -27,7 +27,10 @@ export class Note {
 	readonly #meter = new Meter();
 	readonly #names: Set<string>;
 
-	constructor(readonly lines: readonly NoteLine[]) {
+	constructor(
+		readonly lines: readonly NoteLine[],
+		private readonly watch: Watch,
+	) {
 		this.#names = new Set(lines.flatMap((line) => (line.defined ? [line.defined.name] : [])));
 		this.#define();
 		this.#checkDoubleReadings();
@@ -223,6 +226,7 @@ export class Note {
 			);
 		}
 		if (!line.body || this.#broken(line)) return;
+		this.watch.at?.(line.cell, line.line);
 		this.#meter.startLine();
 		try {
 			const unknowns = this.#unresolved(line);

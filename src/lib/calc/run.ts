@@ -53,23 +53,26 @@ export function run(node: Node, scope: Scope): Value {
 			const [start, step, end] = [node.start, node.step, node.end].map((part) =>
 				part ? one(run(part, scope), part) : 1,
 			);
-			return guarded(node, () => range(start ?? 0, step ?? 1, end ?? 0), scope);
+			return charged(node, () => range(start ?? 0, step ?? 1, end ?? 0), scope);
 		}
 		case 'index': {
 			const object = run(node.object, scope);
 			if (!isGrid(object)) throw new Trouble('value', node, 'Only a list has places.');
 			const places = node.indexes.map((index) => run(index, scope));
-			return guarded(node, () => pick(object, places), scope);
+			return charged(node, () => pick(object, places), scope);
 		}
 		case 'convert': {
 			const value = run(node.value, scope);
-			return node.scaled ? map(value, (x) => toSI(x, node.unit)) : value;
+			if (!node.scaled) return value;
+			scope.meter.spend(steps(value), node);
+			return map(value, (x) => toSI(x, node.unit));
 		}
 	}
 }
 
 function runUnary(node: NodeOf<'unary'>, scope: Scope): Value {
 	const value = run(node.value, scope);
+	scope.meter.spend(steps(value), node);
 	switch (node.op) {
 		case 'not':
 			return value !== true;
@@ -245,6 +248,12 @@ function outermost(scope: Scope): Scope {
 function one(value: Value, at: Place): number {
 	if (isGrid(value)) throw new Trouble('value', at, 'One number is expected here, not a list.');
 	return Number(value);
+}
+
+function charged(at: Place, compute: () => Value, scope: Scope): Value {
+	const value = guarded(at, compute, scope);
+	scope.meter.spend(steps(value), at);
+	return value;
 }
 
 function guarded<T>(at: Place, compute: () => T, scope: Scope): T {

@@ -78,7 +78,7 @@ export function expectSame(args: Argument[], doing: string): Type {
 		kind: 'number',
 		...(dimension && { dimension }),
 		...(point && { point, unit: first.type.unit }),
-	} as Type;
+	};
 }
 
 /** Throws where a condition or a series is given for a number, or a temperature on a scale where `point` forbids it. */

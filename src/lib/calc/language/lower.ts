@@ -189,7 +189,7 @@ export class Lowering {
 	}
 
 	#operator(node: M.OperatorNode): Node {
-		const [first, second] = node.args as M.MathNode[];
+		const [first, second] = node.args;
 		const fn = node.fn as string;
 		if (!first)
 			throw new Trouble('notAllowed', this.#line(), 'This operator is not part of formulas.');

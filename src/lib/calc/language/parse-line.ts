@@ -28,50 +28,62 @@ export interface ParsedLine {
 	trouble?: Trouble;
 }
 
-const most = 20_000;
+/** Characters of remembered lines. A parsed line takes some hundred bytes per character. */
+const most = 300_000;
 const cache = new Map<string, ParsedLine>();
+let remembered = 0;
 
 /** Parses a line; never throws. Lines are remembered by their text, so that a keystroke parses one line. */
 export function parseLine(text: string): ParsedLine {
 	const known = cache.get(text);
 	if (known) return known;
 	const parsed = read(text);
-	if (cache.size >= most) for (const key of [...cache.keys()].slice(0, most / 2)) cache.delete(key);
-	if (text.length <= bounds.lineLength) cache.set(text, parsed);
+	remembered += text.length + 20;
+	if (remembered > most) {
+		cache.clear();
+		remembered = text.length;
+	}
+	cache.set(text, parsed);
 	return parsed;
 }
 
+/** A line that must not be read, with the reason. The name it defines is known all the same. */
+export function unreadLine(text: string, trouble: Trouble): ParsedLine {
+	const start = headOf(text.slice(0, bounds.lineLength));
+	return { ...empty, kind: start.kind, ...start.defined, trouble };
+}
+
+const empty = { parameters: [], references: [], unitsBehindNumbers: [] };
+
 const head = /^(\s*)([\p{L}_$\u00b0\u00b5%][\p{L}\d_$\u00b0\u00b5%]*)\s*(\([^()]*\))?\s*=(?!=)/u;
 
+/** The name before `=`, found without the grammar. */
+function headOf(source: string): {
+	kind: ParsedLine['kind'];
+	defined?: Pick<ParsedLine, 'defined'>;
+} {
+	const found = head.exec(source);
+	if (!found) return { kind: 'expression' };
+	const typed = found[2] ?? '';
+	const from = found[1]?.length ?? 0;
+	const defined = { name: canonical(typed), typed, from, to: from + typed.length };
+	return { kind: found[3] === undefined ? 'definition' : 'function', defined: { defined } };
+}
+
 function read(text: string): ParsedLine {
-	const empty = { parameters: [], references: [], unitsBehindNumbers: [] };
-	if (text.length > bounds.lineLength)
-		return {
-			...empty,
-			kind: 'expression',
-			trouble: new Trouble(
-				'tooLarge',
-				{ from: 0, to: text.length },
-				`The line has ${text.length} characters; ${bounds.lineLength} are possible.`,
-				{
-					mend: 'Split it into several quantities.',
-				},
-			),
-		};
+	if (text.length > bounds.lineLength) {
+		const message = `The line has ${text.length} characters; ${bounds.lineLength} are possible.`;
+		const at = { from: 0, to: text.length };
+		const mend = 'Split it into several quantities.';
+		return unreadLine(text, new Trouble('tooLarge', at, message, { mend }));
+	}
 	const comment = text.indexOf('#');
 	const source = comment < 0 ? text : text.slice(0, comment);
 	const description = comment < 0 ? '' : text.slice(comment + 1).trim();
 	const described = description === '' ? {} : { description };
 	if (source.trim() === '')
 		return { ...empty, ...described, kind: comment < 0 ? 'blank' : 'comment' };
-
-	const found = head.exec(source);
-	const kind = !found ? 'expression' : found[3] === undefined ? 'definition' : 'function';
-	const typed = found?.[2] ?? '';
-	const from = found?.[1]?.length ?? 0;
-	const defined = found
-		? { defined: { name: canonical(typed), typed, from, to: from + typed.length } }
-		: {};
+	const { kind, defined } = headOf(source);
 	const base: ParsedLine = { ...empty, ...described, ...defined, kind };
 	try {
 		return { ...base, ...readFormula(prepared(source), kind) };
@@ -116,7 +128,7 @@ function finished(lowering: Lowering, body: Node): Partial<ParsedLine> {
 
 function treeOf(line: string, tokens: Token[]): M.MathNode {
 	try {
-		return mathjs.parse(line) as M.MathNode;
+		return mathjs.parse(line);
 	} catch (error) {
 		throw syntaxTrouble(error, line, tokens);
 	}

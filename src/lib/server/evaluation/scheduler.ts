@@ -1,4 +1,4 @@
-import { defaultOptions } from '$lib/calc/evaluate';
+import { defaultOptions } from '$lib/calc/engine';
 import type { Evaluation } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
 import { log } from '../log';

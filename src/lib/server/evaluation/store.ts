@@ -1,4 +1,4 @@
-import { defaultOptions, engineVersion } from '$lib/calc/evaluate';
+import { defaultOptions, engineVersion } from '$lib/calc/engine';
 import type { Evaluation } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { toContent, type NoteContent } from '$lib/note/document';

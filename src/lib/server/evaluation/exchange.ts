@@ -1,0 +1,28 @@
+import type { SkippedLine } from '$lib/calc/note-lines';
+import type { Cell, Evaluation, Options } from '$lib/calc/results';
+
+/** What a child is asked. */
+export interface Task {
+	id: number;
+	cells: readonly Cell[];
+	options: Options;
+	skip: SkippedLine[];
+}
+
+/** What a child answers: that it can be asked, or the results of a task. */
+export type Answer = { kind: 'ready' } | { kind: 'done'; id: number; results: Evaluation };
+
+/** File descriptor on which a child says at which line it is, so that the one that stops it can be named. */
+export const placeDescriptor = 4;
+
+/** A place on that descriptor: index of the cell and line, eight bytes. */
+export const placeBytes = 8;
+
+export function writePlace(buffer: Buffer, cell: number, line: number): void {
+	buffer.writeUInt32LE(cell, 0);
+	buffer.writeUInt32LE(line, 4);
+}
+
+export function readPlace(buffer: Buffer): { cell: number; line: number } {
+	return { cell: buffer.readUInt32LE(0), line: buffer.readUInt32LE(4) };
+}
