@@ -34,6 +34,9 @@ export default defineConfig({
 				test: {
 					name: 'sync',
 					include: ['tests/sync/**/*.test.ts'],
+					// They start, stop and cut processes.
+					testTimeout: 60_000,
+					hookTimeout: 60_000,
 					globalSetup: 'tests/support/postgres.ts',
 				},
 			},

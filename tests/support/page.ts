@@ -24,7 +24,10 @@ interface Visit {
 }
 
 /** A page that has a note open: the same working copy as in a browser, over a socket of Node's. */
-export async function openPage(server: SyncServer, visit: Visit): Promise<WorkingCopy> {
+export async function openPage(
+	server: Pick<SyncServer, 'url'>,
+	visit: Visit,
+): Promise<WorkingCopy> {
 	const page = await connectPage(server, visit);
 	await eventually(() => page.ready);
 	return page;
@@ -32,7 +35,7 @@ export async function openPage(server: SyncServer, visit: Visit): Promise<Workin
 
 /** A page that only begins to connect. */
 export async function connectPage(
-	server: SyncServer,
+	server: Pick<SyncServer, 'url'>,
 	{ noteId, cookie, epoch, person = { id: '', name: '' } }: Visit,
 ): Promise<WorkingCopy> {
 	class PageSocket extends WebSocket {
@@ -64,10 +67,12 @@ export async function storedContent(noteId: string): Promise<NoteContent> {
 }
 
 /** Waits until the condition holds. */
-export async function eventually(condition: () => unknown, timeout = 8000): Promise<void> {
+export async function eventually(condition: () => unknown, timeout = 20_000): Promise<void> {
+	// Made here, so that its stack names the caller.
+	const late = new Error('this did not come true in time');
 	await vi.waitFor(
 		async () => {
-			if (!(await condition())) throw new Error('this did not come true in time');
+			if (!(await condition())) throw late;
 		},
 		{ timeout, interval: 10 },
 	);

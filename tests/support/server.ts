@@ -2,27 +2,32 @@ import { spawn, type ChildProcess } from 'node:child_process';
 import { once } from 'node:events';
 import { createServer, type AddressInfo } from 'node:net';
 
+/** Where the built programs are; another folder keeps a run apart from a build that goes on. */
+const build = process.env.BUILD_FOLDER ?? 'build';
+
 /** The production entry, serving sockets only. */
 export interface SyncServer {
 	/** ws://host:port/sync */
 	url: string;
-	pid: number;
+	port: number;
 	/** Ends it with a signal and waits until it is gone. Returns its exit code, null where the signal ended it. */
 	stop(signal?: NodeJS.Signals): Promise<number | null>;
 }
 
+export const syncUrl = (port: number) => `ws://127.0.0.1:${port}/sync`;
+
 /** Starts the built entry on a free port, with the settings of this process, and waits until it listens. */
 export async function startSyncServer(settings: Record<string, string> = {}): Promise<SyncServer> {
 	const port = await freePort();
-	const child = spawn(process.execPath, ['build/main.js'], {
-		env: { ...process.env, ROLES: 'sync', LOG_LEVEL: 'info', PORT: String(port), ...settings },
+	const child = spawn(process.execPath, [`${build}/main.js`], {
+		env: { ...process.env, ...ownSettings(port), ...settings },
 		stdio: ['ignore', 'pipe', 'pipe'],
 	});
 	const gone = once(child, 'exit');
 	await listening(child);
 	return {
-		url: `ws://127.0.0.1:${port}/sync`,
-		pid: child.pid ?? 0,
+		url: syncUrl(port),
+		port,
 		stop: async (signal = 'SIGTERM') => {
 			child.kill(signal);
 			await gone;
@@ -35,7 +40,7 @@ export async function startSyncServer(settings: Record<string, string> = {}): Pr
 export async function runEntry(
 	settings: Record<string, string>,
 ): Promise<{ code: number | null; errors: string }> {
-	const child = spawn(process.execPath, ['build/main.js'], {
+	const child = spawn(process.execPath, [`${build}/main.js`], {
 		env: { ...process.env, ...settings },
 		stdio: ['ignore', 'ignore', 'pipe'],
 	});
@@ -43,6 +48,15 @@ export async function runEntry(
 	child.stderr.on('data', (chunk: Buffer) => (errors += chunk.toString()));
 	await once(child, 'close');
 	return { code: child.exitCode, errors };
+}
+
+function ownSettings(port: number): Record<string, string> {
+	return {
+		ROLES: 'sync',
+		LOG_LEVEL: 'info',
+		PORT: String(port),
+		EVALUATOR_ENTRY: `${build}/evaluator.js`,
+	};
 }
 
 function listening(child: ChildProcess): Promise<void> {

@@ -25,6 +25,8 @@ export function db(): Database {
 		connectionTimeoutMillis: 5000,
 	});
 	pool.on('error', (error) => log().warn({ err: error }, 'idle database connection lost'));
+	// A connection lost between two statements of a transaction: the next statement fails, the process does not.
+	pool.on('connect', (client) => client.on('error', () => undefined));
 	return (database = drizzle(pool, { schema }));
 }
 

@@ -1,0 +1,36 @@
+import type { Actor } from '$lib/server/auth/access';
+import * as notes from '$lib/server/notes/notes';
+import { createDatabase } from './database';
+import { makeMember, makeTeam, signIn } from './people';
+import { startSyncServer, type SyncServer } from './server';
+
+/** A database, a running sync server and a signed-in engineer. */
+export interface SyncBench {
+	databaseUrl: string;
+	server: SyncServer;
+	engineer: Actor;
+	cookie: string;
+	/** Makes a note of the engineer's with one calculation cell, and returns its id. */
+	makeNote(source?: string): Promise<string>;
+	close(): Promise<void>;
+}
+
+export async function startSyncBench(): Promise<SyncBench> {
+	const database = await createDatabase();
+	const engineer = await makeMember(await makeTeam(), 'engineer');
+	const server = await startSyncServer();
+	return {
+		databaseUrl: database.url,
+		server,
+		engineer,
+		cookie: await signIn(engineer),
+		makeNote: async (source = 'U = 5 V\n') => {
+			const cells = [{ kind: 'calculation' as const, source }];
+			return (await notes.create(engineer, { title: 'Divider', cells })).id;
+		},
+		close: async () => {
+			await server.stop();
+			await database.drop();
+		},
+	};
+}

@@ -1,0 +1,89 @@
+import { afterAll, beforeAll, expect, test } from 'vitest';
+import * as Y from 'yjs';
+import { messageType } from '$lib/protocol/messages';
+import * as store from '$lib/server/evaluation/store';
+import { loadDocument } from '$lib/server/notes/updates';
+import { contentOf, eventually, openPage, saved, storedContent } from '../support/page';
+import { RawSocket } from '../support/raw-socket';
+import { startSyncServer } from '../support/server';
+import { startSyncBench, type SyncBench } from '../support/sync';
+
+let bench: SyncBench;
+beforeAll(async () => {
+	bench = await startSyncBench();
+});
+afterAll(() => bench.close());
+
+/** Two edits of one author, the second of which needs the first. */
+async function twoEdits(noteId: string) {
+	const { doc } = await loadDocument(noteId);
+	const updates: Uint8Array[] = [];
+	doc.on('update', (update: Uint8Array) => updates.push(update));
+	doc.getText('title').insert(0, 'First ');
+	doc.getText('title').insert(6, 'second ');
+	return { first: updates[0]!, second: updates[1]!, title: doc.getText('title').toString() };
+}
+
+const questions = (socket: RawSocket) =>
+	socket.received.filter(({ type, decoder }) => type === messageType.sync && decoder.arr[1] === 0);
+
+test('an edit that comes before the one it needs is stored, asked about, and whole once that one is there', async () => {
+	const noteId = await bench.makeNote();
+	const { first, second, title } = await twoEdits(noteId);
+	const doomed = await startSyncServer();
+	const socket = await new RawSocket(doomed, noteId, { cookie: bench.cookie }).greeted();
+	await socket.save('second', second);
+	expect(questions(socket)).toHaveLength(1);
+	expect(await loadDocument(noteId)).toMatchObject({ seq: 2, pending: true });
+	expect((await storedContent(noteId)).title).toBe('Divider');
+
+	// The process ends between the two.
+	await doomed.stop('SIGKILL');
+	const peer = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	const late = await new RawSocket(bench.server, noteId, { cookie: bench.cookie }).greeted();
+	await late.save('first', first);
+	await eventually(() => peer.title === title);
+	expect((await storedContent(noteId)).title).toBe(title);
+	expect((await loadDocument(noteId)).pending).toBe(false);
+	await late.close();
+	peer.destroy();
+});
+
+test('no results are stored for a note with a pending edit', async () => {
+	const noteId = await bench.makeNote();
+	const { second } = await twoEdits(noteId);
+	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	await eventually(async () => (await store.find(noteId))?.seq === 1);
+	const socket = await new RawSocket(bench.server, noteId, { cookie: bench.cookie }).greeted();
+	await socket.save('second', second);
+	page.setTitle('Another title');
+	await saved(page);
+	await eventually(() => page.saving.state === 'saved');
+	expect((await store.find(noteId))?.seq).toBe(1);
+	await socket.close();
+	page.destroy();
+});
+
+test('a page that is asked for what an edit needs gives it, and both pages get everything', async () => {
+	const noteId = await bench.makeNote();
+	const author = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	const peer = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	// What the server would have lost with a process: the page has it, the outbox does not.
+	const lost: Uint8Array[] = [];
+	const elsewhere = new Y.Doc();
+	Y.applyUpdate(elsewhere, Y.encodeStateAsUpdate(author.doc));
+	elsewhere.on('update', (update: Uint8Array) => lost.push(update));
+	elsewhere.getText('title').insert(0, 'Lost ');
+	elsewhere.getText('title').insert(5, 'and found ');
+	const socket = await new RawSocket(bench.server, noteId, { cookie: bench.cookie }).greeted();
+	await socket.save('needs-the-lost-one', lost[1]!);
+	expect(peer.title).toBe('Divider');
+	Y.applyUpdate(author.doc, lost[0]!);
+	await saved(author);
+	await eventually(() => peer.title === 'Lost and found Divider');
+	await eventually(() => author.title === 'Lost and found Divider');
+	expect(contentOf(author)).toEqual(await storedContent(noteId));
+	await socket.close();
+	author.destroy();
+	peer.destroy();
+});

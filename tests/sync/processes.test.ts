@@ -1,0 +1,106 @@
+import { afterAll, beforeAll, expect, test } from 'vitest';
+import * as Y from 'yjs';
+import { sql } from 'drizzle-orm';
+import { db } from '$lib/server/db/client';
+import { notify } from '$lib/server/db/notify';
+import { append, loadDocument } from '$lib/server/notes/updates';
+import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
+import { runEntry, startSyncServer, type SyncServer } from '../support/server';
+import { startSyncBench, type SyncBench } from '../support/sync';
+
+let bench: SyncBench;
+let second: SyncServer;
+beforeAll(async () => {
+	bench = await startSyncBench();
+	second = await startSyncServer();
+});
+afterAll(async () => {
+	await second.stop();
+	await bench.close();
+});
+
+test('pages on two processes that are typed in at once end with the same content, which is stored', async () => {
+	const noteId = await bench.makeNote('');
+	const pages = await Promise.all(
+		[bench.server, second, bench.server, second].map((server) =>
+			openPage(server, { noteId, cookie: bench.cookie }),
+		),
+	);
+	for (let round = 0; round < 25; round += 1) {
+		for (const [index, page] of pages.entries()) {
+			type(page, page.cells[0]!.id, `p${index}r${round} = 1\n`);
+		}
+		await Promise.resolve();
+	}
+	await Promise.all(pages.map((page) => saved(page)));
+	const stored = await storedContent(noteId);
+	expect(stored.cells[0]!.source.split('\n')).toHaveLength(101);
+	for (const page of pages) {
+		await eventually(() => contentOf(page).cells[0]!.source === stored.cells[0]!.source);
+	}
+	for (const page of pages) page.destroy();
+});
+
+test('an edit of which no hint was heard is found within the poll', async () => {
+	const noteId = await bench.makeNote();
+	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	const { doc } = await loadDocument(noteId);
+	const before = Y.encodeStateVector(doc);
+	doc.getText('title').insert(0, 'Unheard ');
+	const bytes = Y.encodeStateAsUpdate(doc, before);
+	await append(noteId, [{ id: 'unheard', personId: bench.engineer.personId, bytes }]);
+	await eventually(() => page.title === 'Unheard Divider');
+	page.destroy();
+});
+
+const listening = sql`select pid from pg_stat_activity
+	where datname = current_database() and query like 'listen %'`;
+const listeners = () => db().execute(listening);
+
+test('a process whose listening connection is cut hears of everything again', async () => {
+	const noteId = await bench.makeNote();
+	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	const peer = await openPage(second, { noteId, cookie: bench.cookie });
+	const news: string[] = [];
+	page.onNews((about) => news.push(about));
+	for (let round = 1; round <= 3; round += 1) {
+		await eventually(async () => (await listeners()).rowCount === 2);
+		await db().execute(sql`select pg_terminate_backend(pid) from (${listening}) listening`);
+		// Each time it listens again it tells of what it may have missed.
+		await eventually(() => news.length >= 2 * round);
+		peer.setTitle(`Round ${round}`);
+		await eventually(() => page.title === `Round ${round}`);
+	}
+	page.destroy();
+	peer.destroy();
+});
+
+test('news of comments reaches the pages of that note, on every process', async () => {
+	const noteId = await bench.makeNote();
+	const elsewhere = await bench.makeNote();
+	const heard: string[] = [];
+	const pages = await Promise.all([
+		openPage(bench.server, { noteId, cookie: bench.cookie }),
+		openPage(second, { noteId, cookie: bench.cookie }),
+		openPage(second, { noteId: elsewhere, cookie: bench.cookie }),
+	]);
+	for (const [index, page] of pages.entries()) {
+		page.onNews((about) => heard.push(`${index} ${about}`));
+	}
+	await notify(noteId, 'comments');
+	await notify(elsewhere, 'review');
+	await eventually(() => heard.length === 3);
+	expect(heard.sort()).toEqual(['0 comments', '1 comments', '2 review']);
+	for (const page of pages) page.destroy();
+});
+
+test('a process does not start with heap flags in NODE_OPTIONS, or without its settings', async () => {
+	const flagged = await runEntry({ ROLES: 'sync', NODE_OPTIONS: '--max-old-space-size=512' });
+	expect(flagged.code).toBe(1);
+	expect(flagged.errors).toContain('NODE_OPTIONS holds --max-old-space-size=512');
+	const lacking = await runEntry({ ROLES: 'sync', NODE_OPTIONS: '', DATABASE_URL: '' });
+	expect(lacking.code).toBe(1);
+	expect(lacking.errors).toContain('DATABASE_URL');
+	const idle = await runEntry({ ROLES: 'cooking' });
+	expect(idle.errors).toContain('ROLES: must be some of web, sync');
+});
