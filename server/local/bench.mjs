@@ -1,22 +1,14 @@
 import { spawn } from 'node:child_process';
 import { once } from 'node:events';
-import { build } from './build.mjs';
-import { ensurePackages } from './debian.mjs';
 import { alone } from './lock.mjs';
-import { ensureNodePackages } from './node-packages.mjs';
 import { root } from './place.mjs';
-import { release, start } from './postgres.mjs';
+import { release } from './postgres.mjs';
 import { report } from './problem.mjs';
-import { step } from './progress.mjs';
+import { setUp } from './set-up.mjs';
 
 /** `npm run bench [-- engine page sync setup]`: sets up as the tests do, then measures. */
 try {
-	await alone('demo', async () => {
-		await step('Debian packages', () => ensurePackages(['postgresql', 'chromium']));
-		await step('Node.js packages', ensureNodePackages);
-		await build();
-	});
-	await start({ owned: true });
+	await alone('demo', () => setUp(['postgresql', 'chromium']));
 	const child = spawn('node_modules/.bin/tsx', ['tests/bench/run.ts', ...process.argv.slice(2)], {
 		cwd: root,
 		stdio: 'inherit',

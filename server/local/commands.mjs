@@ -40,7 +40,10 @@ export function collect(program, words, options = {}) {
 			},
 			options.limitMs ?? 15 * 60_000,
 		);
-		child.once('error', reject);
+		child.once('error', (error) => {
+			clearTimeout(limit);
+			reject(error);
+		});
 		// `exit`, not `close`: a grandchild that keeps the pipe must not keep us.
 		child.once('exit', (code, signal) => {
 			clearTimeout(limit);

@@ -6,24 +6,25 @@ import { Problem } from './problem.mjs';
 /** Where Debian's package puts the browser of the tests. */
 export const chromium = '/usr/bin/chromium';
 
-/** @type {Record<string, () => boolean>} */
+/** @typedef {'postgresql' | 'chromium'} Package */
+
+/** @type {Record<Package, () => boolean>} */
 const present = {
 	postgresql: () => findPrograms() !== undefined,
 	chromium: () => existsSync(chromium),
 };
 
 /**
- * Installs Debian packages that are missing where root may, otherwise says which command does it.
- * @param {('postgresql' | 'chromium')[]} wanted
- * @returns {Promise<string>} a remark
+ * Which of these packages must be installed. Throws a Problem with the command that does it where we may not.
+ * @param {Package[]} wanted
  */
-export async function ensurePackages(wanted) {
-	const missing = wanted.filter((name) => !present[name]?.());
-	if (missing.length === 0) return 'present';
+export function missingPackages(wanted) {
+	const missing = wanted.filter((name) => !present[name]());
+	if (missing.length === 0) return missing;
 	const command = `apt-get update && apt-get install -y ${missing.join(' ')}`;
 	if (!existsSync('/usr/bin/apt-get')) {
 		throw new Problem(
-			`${missing.join(' and ')} missing, and this is no Debian system.\nInstall PostgreSQL under /usr/lib/postgresql and Chromium as ${chromium}; on Debian 12 the command is:\n  ${command}`,
+			`Missing: ${missing.join(', ')}, and this is no Debian system.\nInstall PostgreSQL under /usr/lib/postgresql and Chromium as ${chromium}; on Debian 12 the command is:\n  ${command}`,
 		);
 	}
 	if (process.getuid?.() !== 0) {
@@ -31,6 +32,15 @@ export async function ensurePackages(wanted) {
 			`Missing: ${missing.join(', ')}. Run this command, then start again:\n  sudo sh -c '${command}'`,
 		);
 	}
+	return missing;
+}
+
+/**
+ * Installs Debian packages, as root.
+ * @param {Package[]} missing
+ * @returns {Promise<string>} a remark
+ */
+export async function installPackages(missing) {
 	await apt('update');
 	if (missing.includes('postgresql')) await withoutMainCluster(() => install(['postgresql']));
 	if (missing.includes('chromium')) await install(['chromium']);

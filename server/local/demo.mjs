@@ -1,16 +1,14 @@
 import { rmSync, writeFileSync } from 'node:fs';
-import { build } from './build.mjs';
 import { endCommands } from './commands.mjs';
-import { ensurePackages } from './debian.mjs';
 import { ensure } from './demonstration-database.mjs';
 import { alone } from './lock.mjs';
-import { ensureNodePackages } from './node-packages.mjs';
 import { inData } from './place.mjs';
 import { isFree } from './ports.mjs';
-import { release, start } from './postgres.mjs';
+import { release } from './postgres.mjs';
 import { Problem, report } from './problem.mjs';
 import { seconds, step } from './progress.mjs';
 import { endEarlier, serve } from './serving.mjs';
+import { setUp } from './set-up.mjs';
 
 /** @typedef {import('./serving.mjs').Serving} Serving */
 /** @typedef {import('./demonstration-database.mjs').Account} Account */
@@ -63,13 +61,8 @@ async function prepare() {
 			`Port ${port} is taken by another program.\nChoose another one: PORT=${port + 1} npm run demo`,
 		);
 	}
-	await step('Debian packages', () => ensurePackages(['postgresql']));
-	await step('Node.js packages', ensureNodePackages);
-	await build();
-	await step('PostgreSQL', async () => {
-		const { started, port: own } = await start({ owned: true });
-		return `${started ? 'started' : 'runs already'}, 127.0.0.1:${own}`;
-	});
+	rmSync(addressFile, { force: true });
+	await setUp(['postgresql']);
 	/** @type {Account[]} */
 	let accounts = [];
 	await step('Database and demonstration', async () => {

@@ -42,7 +42,7 @@ export function wordsOf(pid) {
  * @param {number} pid
  * @param {number} limitMs
  */
-export async function gone(pid, limitMs) {
+async function gone(pid, limitMs) {
 	const end = performance.now() + limitMs;
 	while (isAlive(pid)) {
 		if (performance.now() > end) return false;

@@ -7,19 +7,24 @@ export function seconds(ms) {
 }
 
 /**
- * Runs one step and shows its title, its time, and what it has to say (`work` may return a short remark).
+ * Runs one step and shows its beginning, its time, and what it has to say (`work` may return a short remark). Several
+ * may run at once.
  * @param {string} title
  * @param {() => unknown} work
  */
 export async function step(title, work) {
 	const from = performance.now();
-	process.stdout.write(`${title.padEnd(34, ' .')} `);
+	process.stdout.write(`          ${title} …\n`);
+	/** @param {unknown} remark */
+	const done = (remark) => {
+		const time = seconds(performance.now() - from).padStart(8);
+		const note = typeof remark === 'string' ? `: ${remark}` : '';
+		process.stdout.write(`${time}  ${title}${note}\n`);
+	};
 	try {
-		const remark = await work();
-		const note = typeof remark === 'string' ? `  ${remark}` : '';
-		process.stdout.write(`${seconds(performance.now() - from).padStart(8)}${note}\n`);
+		done(await work());
 	} catch (error) {
-		process.stdout.write(`${seconds(performance.now() - from).padStart(8)}  failed\n`);
+		done('failed');
 		throw error;
 	}
 }

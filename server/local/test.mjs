@@ -1,19 +1,18 @@
 import { mkdirSync, rmSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
-import { build } from './build.mjs';
 import { checks } from './checks.mjs';
 import { endCommands } from './commands.mjs';
-import { ensurePackages } from './debian.mjs';
 import { alone } from './lock.mjs';
-import { ensureNodePackages } from './node-packages.mjs';
 import { root } from './place.mjs';
-import { release, start } from './postgres.mjs';
+import { release } from './postgres.mjs';
 import { report } from './problem.mjs';
 import { seconds, step } from './progress.mjs';
+import { setUp } from './set-up.mjs';
 
 const results = join(root, 'test-results');
 const lastLine = join(results, 'last-line');
 const from = performance.now();
+// Each static check and each test counts as one; what stops the run before or between them counts as failed.
 let passed = 0;
 let failed = 0;
 let ending = false;
@@ -45,7 +44,7 @@ for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
 mkdirSync(results, { recursive: true });
 rmSync(lastLine, { force: true });
 try {
-	await alone('demo', prepare);
+	await alone('demo', () => setUp(['postgresql', 'chromium']));
 	for (const check of checks) await runCheck(check);
 } catch (error) {
 	if (!ending) {
@@ -54,16 +53,6 @@ try {
 	}
 }
 await finish(0);
-
-async function prepare() {
-	await step('Debian packages', () => ensurePackages(['postgresql', 'chromium']));
-	await step('Node.js packages', ensureNodePackages);
-	await build();
-	await step('PostgreSQL', async () => {
-		const { started, port } = await start({ owned: true });
-		return `${started ? 'started' : 'runs already'}, 127.0.0.1:${port}`;
-	});
-}
 
 /** @param {import('./checks.mjs').Check} check */
 async function runCheck(check) {

@@ -16,7 +16,7 @@ const serverPackages =
 	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|@node-rs\/argon2$|@zxcvbn-ts\/)/;
 
 /** Who may import whom, as DEVELOPERS.md explains it. Tests are outside these rules. */
-export const rules: readonly Rule[] = [
+const rules: readonly Rule[] = [
 	{ who: /^src\/lib\/errors\.ts$/, files: /^$/, packages: /^$/ },
 	{
 		who: /^src\/lib\/calc\//,

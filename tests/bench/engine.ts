@@ -1,4 +1,4 @@
-import { create, all, type Unit } from 'mathjs';
+import * as math from 'mathjs';
 import { defaultOptions, evaluate } from '$lib/calc/evaluate';
 import { quantile, row, type Row } from './row';
 import { lastName, sixtyLines } from './sixty-lines';
@@ -8,13 +8,12 @@ const rounds = 60;
 /** Evaluating a note of 60 worked lines, against bare mathjs that evaluates the same lines. */
 export function engineRows(): Row[] {
 	const cells = sixtyLines.map((cell, index) => ({ id: `c${index}`, ...cell }));
-	const math = create(all);
 	const sources = cells.filter((cell) => cell.kind === 'calculation').map((cell) => cell.source);
 
 	const ours = evaluate(cells, defaultOptions).quantities[lastName]?.value;
 	const scope = new Map<string, unknown>();
 	math.evaluate(sources, scope);
-	const theirs = (scope.get(lastName) as Unit).toNumber('V');
+	const theirs = (scope.get(lastName) as math.Unit).toNumber('V');
 	if (typeof ours !== 'number' || Math.abs(ours / theirs - 1) > 1e-9) {
 		throw new Error(`the two evaluations disagree: ${String(ours)} V and ${theirs} V`);
 	}
