@@ -89,7 +89,12 @@ export function budgetOf(line: Propagated, doubts: Doubts): Contribution[] {
 	const rows = Array.from(support, (input, i) => {
 		const sensitivity = gradient[i]!;
 		const part = sensitivity * doubts.uncertainties[input]!;
-		return { input, sensitivity, contribution: Math.abs(part), share: part * correlated(line, doubts, i) };
+		return {
+			input,
+			sensitivity,
+			contribution: Math.abs(part),
+			share: part * correlated(line, doubts, i),
+		};
 	});
 	const variance = rows.reduce((sum, row) => sum + row.share, 0);
 	for (const row of rows) row.share = variance > 0 ? row.share / variance : 0;
@@ -107,7 +112,8 @@ export function secondOrderOf(line: Propagated, doubts: Doubts): SecondOrder | u
 	const n = support.length;
 	const parts = Float64Array.from(gradient, (_, i) => correlated(line, doubts, i));
 	let first = 0;
-	for (let i = 0; i < n; i++) first += gradient[i]! * doubts.uncertainties[support[i]!]! * parts[i]!;
+	for (let i = 0; i < n; i++)
+		first += gradient[i]! * doubts.uncertainties[support[i]!]! * parts[i]!;
 	let [second, shift] = [0, 0];
 	if (curvature !== flat) {
 		const bent = withCorrelations(curvature, support, doubts.correlations ?? uncorrelated);

@@ -54,7 +54,8 @@ export function correlate(pairs: readonly Correlation[]): Correlations | Correla
 		const factor = choleskyFactor(matrix, members.length);
 		if (!factor) {
 			const index = pairs.findLastIndex((pair) => members.includes(pair.first));
-			const message = 'These correlations contradict each other: no quantities can have all of them';
+			const message =
+				'These correlations contradict each other: no quantities can have all of them';
 			return { fault: 'impossible', index, message };
 		}
 		const group = { members: Int32Array.from(members), matrix, factor };

@@ -61,7 +61,10 @@ export function histogram(sorted: Float64Array, bins = 100): Histogram {
 		const value = sorted[i]!;
 		if (value < from) below++;
 		else if (value > to) above++;
-		else counts[to > from ? Math.min(bins - 1, Math.floor(((value - from) / (to - from)) * bins)) : 0]!++;
+		else
+			counts[
+				to > from ? Math.min(bins - 1, Math.floor(((value - from) / (to - from)) * bins)) : 0
+			]!++;
 	}
 	return { from, to, counts, below, above };
 }

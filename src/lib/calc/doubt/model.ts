@@ -17,6 +17,15 @@ export interface Model {
 	/** Distribution of each input, by its number. */
 	inputs: ArrayLike<Distribution>;
 	correlations?: Correlations;
+	/**
+	 * Number of each input's random stream, its own number by default. Taken from the input's name, it keeps the trials of
+	 * a quantity the same when other lines come and go.
+	 */
+	streams?: ArrayLike<number>;
+}
+
+export function streamOf(model: Model, input: number): number {
+	return model.streams?.[input] ?? input;
 }
 
 /** Places of the lines that `outputs` need, in their order. */

@@ -68,7 +68,10 @@ export function compile(model: Model, outputs: readonly number[]): Program {
 							: emit({ do: 'binary', op, x, y, out: registers++ }),
 					);
 				else if (isScalar(x)) nodes.push(x.scalar !== 0 ? y : z);
-				else nodes.push(emit({ do: 'select', condition: x.register, yes: y, no: z, out: registers++ }));
+				else
+					nodes.push(
+						emit({ do: 'select', condition: x.register, yes: y, no: z, out: registers++ }),
+					);
 			}
 		}
 		lines.set(place, nodes[nodes.length - 1]!);

@@ -4,7 +4,7 @@
  * MurmurHash3's 32-bit finaliser over these, so that streams are independent of the order in which they are used.
  */
 export class Random {
-	readonly #state = new Int32Array(4);
+	readonly #state = Int32Array.of(1, 2, 3, 4);
 	#bits = new Uint32Array(0);
 
 	/** Starts the stream of these whole numbers. */
@@ -20,14 +20,10 @@ export class Random {
 		if (any === 0) this.#state[0] = 1;
 	}
 
-	/** Numbers between 0 and 1, neither of them included, on a grid of 2⁻⁵². */
+	/** Numbers between 0 and 1, neither of them included, on a grid of 2⁻³²: finer than any number of trials can show. */
 	uniforms(into: Float64Array, count: number): void {
-		const bits = this.#draw(2 * count);
-		for (let i = 0; i < count; i++) {
-			const high = bits[2 * i]! >>> 6;
-			const low = bits[2 * i + 1]! >>> 6;
-			into[i] = (high * 67108864 + low + 0.5) / 4503599627370496;
-		}
+		const bits = this.#draw(count);
+		for (let i = 0; i < count; i++) into[i] = (bits[i]! + 0.5) / 4294967296;
 	}
 
 	/**
@@ -39,7 +35,8 @@ export class Random {
 		for (let i = 0; i < count; i++) {
 			const first = bits[2 * i]!;
 			const layer = first & 127;
-			const place = ((first >>> 7) * 134217728 + (bits[2 * i + 1]! >>> 5) + 0.5) / 2251799813685248 - 1;
+			const place =
+				((first >>> 7) * 134217728 + (bits[2 * i + 1]! >>> 5) + 0.5) / 2251799813685248 - 1;
 			const z = place * edges[layer]!;
 			into[i] = Math.abs(z) < edges[layer + 1]! ? z : this.#edge(layer, z);
 		}

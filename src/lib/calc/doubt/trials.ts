@@ -1,7 +1,7 @@
 import type { Correlations, Group } from './correlations';
 import { shapes } from './distributions/shapes';
 import { binaryBlock, scalarBlock, unaryBlock } from './kernels';
-import type { Model } from './model';
+import { streamOf, type Model } from './model';
 import { isScalar, type Instruction, type Operand, type Program } from './program';
 import { Random } from './random';
 import { normalProbability } from './student';
@@ -16,7 +16,6 @@ export const stretchLength = 1_000;
 export class Trials {
 	readonly #random = new Random();
 	readonly #registers: Float64Array[];
-	readonly #spare = new Float64Array(stretchLength);
 	readonly #correlated: CorrelatedDraws | undefined;
 
 	constructor(
@@ -49,7 +48,7 @@ export class Trials {
 				const { input } = instruction;
 				if (this.#correlated?.take(input, out)) return;
 				const { kind, parameters } = this.model.inputs[input]!;
-				this.#random.start(this.seed, input, stretch);
+				this.#random.start(this.seed, streamOf(this.model, input), stretch);
 				shapes[kind].fill(parameters, this.#random, out, count);
 				return;
 			}
@@ -58,9 +57,12 @@ export class Trials {
 				return;
 			case 'binary': {
 				const { op, x, y } = instruction;
-				if (isScalar(y)) scalarBlock(op, this.#block(x), y.scalar, false, out, count);
-				else if (isScalar(x)) scalarBlock(op, this.#block(y), x.scalar, true, out, count);
-				else binaryBlock(op, this.#block(x), this.#block(y), out, count);
+				if (isScalar(x)) {
+					if (!isScalar(y))
+						scalarBlock(op, this.#registers[y.register]!, x.scalar, true, out, count);
+				} else if (isScalar(y))
+					scalarBlock(op, this.#registers[x.register]!, y.scalar, false, out, count);
+				else binaryBlock(op, this.#registers[x.register]!, this.#registers[y.register]!, out, count);
 				return;
 			}
 			case 'select': {
@@ -82,11 +84,6 @@ export class Trials {
 		}
 	}
 
-	#block(operand: Operand): Float64Array {
-		if (!isScalar(operand)) return this.#registers[operand.register]!;
-		return this.#spare.fill(operand.scalar);
-	}
-
 	#at(operand: Operand): (trial: number) => number {
 		if (isScalar(operand)) return () => operand.scalar;
 		const register = this.#registers[operand.register]!;
@@ -101,7 +98,7 @@ export class Trials {
  * keeps each distribution and the rank order; its linear coefficient comes out a few hundredths of itself smaller.
  */
 class CorrelatedDraws {
-	readonly #groups: { group: Group; seed: number }[] = [];
+	readonly #groups: Group[] = [];
 	readonly #blocks = new Map<number, Float64Array>();
 	readonly #normals: Float64Array[] = [];
 
@@ -112,7 +109,7 @@ class CorrelatedDraws {
 	) {
 		for (const group of correlations.groups) {
 			if (!inputs.some((input) => correlations.groupOf.get(input) === group)) continue;
-			this.#groups.push({ group, seed: group.members[0]! });
+			this.#groups.push(group);
 			for (const member of group.members) this.#blocks.set(member, new Float64Array(stretchLength));
 			while (this.#normals.length < group.members.length)
 				this.#normals.push(new Float64Array(stretchLength));
@@ -120,11 +117,10 @@ class CorrelatedDraws {
 	}
 
 	draw(random: Random, seed: number, stretch: number, count: number): void {
-		for (const { group } of this.#groups) {
-			const { members, factor } = group;
+		for (const { members, factor } of this.#groups) {
 			const n = members.length;
 			for (let k = 0; k < n; k++) {
-				random.start(seed, members[k]!, stretch);
+				random.start(seed, streamOf(this.model, members[k]!), stretch);
 				random.normals(this.#normals[k]!, count);
 			}
 			const divisors = new Map<number, Float64Array>();
@@ -157,12 +153,12 @@ class CorrelatedDraws {
 		divisors: Map<number, Float64Array>,
 	): void {
 		const { kind, parameters } = this.model.inputs[input]!;
-		const { place } = shapes[kind];
+		const shape = shapes[kind];
 		// A stream beside the one that the normal numbers of this input came from.
-		random.start(seed, input + 0x40000000, stretch);
-		if (place) {
+		random.start(seed, ~streamOf(this.model, input), stretch);
+		if (shape.place) {
 			for (let i = 0; i < count; i++) block[i] = normalProbability(block[i]!);
-			place(parameters, random, block, count);
+			shape.place(parameters, random, block, count);
 			return;
 		}
 		const [u = 0, dof = Infinity] = parameters;
@@ -187,6 +183,7 @@ function gamma(random: Random, shape: number): number {
 	for (;;) {
 		const z = random.normal();
 		const v = (1 + c * z) ** 3;
-		if (v > 0 && Math.log(random.uniform()) < 0.5 * z * z + d - d * v + d * Math.log(v)) return d * v;
+		if (v > 0 && Math.log(random.uniform()) < 0.5 * z * z + d - d * v + d * Math.log(v))
+			return d * v;
 	}
 }

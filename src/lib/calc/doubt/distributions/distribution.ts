@@ -38,10 +38,7 @@ export interface Shape {
 }
 
 /** A shape that is drawn by turning uniform numbers into deviations. */
-export function placed(
-	halfWidth: Shape['halfWidth'],
-	place: NonNullable<Shape['place']>,
-): Shape {
+export function placed(halfWidth: Shape['halfWidth'], place: NonNullable<Shape['place']>): Shape {
 	return {
 		halfWidth,
 		place,

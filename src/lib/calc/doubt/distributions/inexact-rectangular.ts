@@ -6,7 +6,11 @@ export function inexactRectangular(a: number, d: number): Distribution | Paramet
 		positiveFault(a, 1, 'The half-width') ??
 		positiveFault(d, 2, 'The inexactness of the half-width') ??
 		(d > a
-			? ({ fault: 'order', parameter: 2, message: 'A half-width cannot be inexact by more than itself' } as const)
+			? ({
+					fault: 'order',
+					parameter: 2,
+					message: 'A half-width cannot be inexact by more than itself',
+				} as const)
 			: undefined);
 	const uncertainty = Math.sqrt((a * a) / 3 + (d * d) / 9);
 	return fault ?? { kind: 'inexactRectangular', parameters: [a, d], uncertainty, dof: Infinity };

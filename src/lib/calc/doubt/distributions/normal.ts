@@ -3,8 +3,11 @@ import { positiveFault, type Distribution, type ParameterFault, type Shape } fro
 /** Normal with standard uncertainty u, or with expanded uncertainty and coverage factor k. Parameters: u. */
 export function normal(uncertainty: number, k = 1): Distribution | ParameterFault {
 	const fault =
-		positiveFault(uncertainty, 1, k === 1 ? 'The standard uncertainty' : 'The expanded uncertainty') ??
-		positiveFault(k, 2, 'The coverage factor');
+		positiveFault(
+			uncertainty,
+			1,
+			k === 1 ? 'The standard uncertainty' : 'The expanded uncertainty',
+		) ?? positiveFault(k, 2, 'The coverage factor');
 	const u = uncertainty / k;
 	return fault ?? { kind: 'normal', parameters: [u], uncertainty: u, dof: Infinity };
 }

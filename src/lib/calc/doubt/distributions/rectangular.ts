@@ -3,7 +3,9 @@ import { placed, positiveFault, type Distribution, type ParameterFault } from '.
 /** Rectangular of half-width a. Parameters: a. */
 export function rectangular(a: number): Distribution | ParameterFault {
 	const fault = positiveFault(a, 1, 'The half-width');
-	return fault ?? { kind: 'rectangular', parameters: [a], uncertainty: a / Math.sqrt(3), dof: Infinity };
+	return (
+		fault ?? { kind: 'rectangular', parameters: [a], uncertainty: a / Math.sqrt(3), dof: Infinity }
+	);
 }
 
 /** JCGM 101:2008, 6.4.2. */

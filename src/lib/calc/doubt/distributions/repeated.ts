@@ -10,7 +10,11 @@ export interface Readings {
 export function repeated(values: ArrayLike<number>): Readings | ParameterFault {
 	const n = values.length;
 	if (n < 2)
-		return { fault: 'tooFew', parameter: 1, message: 'The spread of readings needs two of them at least' };
+		return {
+			fault: 'tooFew',
+			parameter: 1,
+			message: 'The spread of readings needs two of them at least',
+		};
 	let mean = 0;
 	for (let i = 0; i < n; i++) {
 		const value = values[i]!;

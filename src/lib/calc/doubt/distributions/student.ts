@@ -17,7 +17,8 @@ export const studentShape: Shape = {
 	halfWidth: ([u = 0], sigmas) => sigmas * u,
 	fill([u = 0, dof = 1], random, into, count) {
 		if (dof === Infinity) random.normals(into, count);
-		for (let i = 0; i < count; i++) into[i] = u * (dof === Infinity ? into[i]! : polar(random, dof));
+		for (let i = 0; i < count; i++)
+			into[i] = u * (dof === Infinity ? into[i]! : polar(random, dof));
 	},
 };
 

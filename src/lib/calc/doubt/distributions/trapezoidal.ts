@@ -9,11 +9,23 @@ export function trapezoidal(a: number, b: number): Distribution | ParameterFault
 
 function topFault(a: number, b: number): ParameterFault | undefined {
 	if (!Number.isFinite(b))
-		return { fault: 'notFinite', parameter: 2, message: 'The half-width at the top must be a finite number' };
+		return {
+			fault: 'notFinite',
+			parameter: 2,
+			message: 'The half-width at the top must be a finite number',
+		};
 	if (b < 0)
-		return { fault: 'notPositive', parameter: 2, message: 'The half-width at the top cannot be negative' };
+		return {
+			fault: 'notPositive',
+			parameter: 2,
+			message: 'The half-width at the top cannot be negative',
+		};
 	if (b > a)
-		return { fault: 'order', parameter: 2, message: 'A trapezoid is not wider at the top than at the base' };
+		return {
+			fault: 'order',
+			parameter: 2,
+			message: 'A trapezoid is not wider at the top than at the base',
+		};
 	return undefined;
 }
 

@@ -3,7 +3,9 @@ import { placed, positiveFault, type Distribution, type ParameterFault } from '.
 /** Symmetric triangular of half-width a. Parameters: a. */
 export function triangular(a: number): Distribution | ParameterFault {
 	const fault = positiveFault(a, 1, 'The half-width');
-	return fault ?? { kind: 'triangular', parameters: [a], uncertainty: a / Math.sqrt(6), dof: Infinity };
+	return (
+		fault ?? { kind: 'triangular', parameters: [a], uncertainty: a / Math.sqrt(6), dof: Infinity }
+	);
 }
 
 /** JCGM 101:2008, 6.4.5, by its inverse distribution function. */
