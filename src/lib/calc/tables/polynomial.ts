@@ -1,3 +1,4 @@
+import { exactProduct, exactSum } from '../curves/double-double';
 import { refuseNotFinite, type Refusal } from './refusal';
 import type { Slope } from './root';
 
@@ -10,6 +11,24 @@ export function polynomial(x: number, coefficients: readonly number[]): Slope {
 		value = value * x + coefficients[k]!;
 	}
 	return { value, derivative };
+}
+
+/**
+ * The same with the value as good as if computed in twice the digits, for coefficients whose terms cancel: Horner's
+ * scheme with its rounding errors carried along (Graillat, Langlois and Louvet, 2005).
+ */
+export function compensatedPolynomial(x: number, coefficients: readonly number[]): Slope {
+	let value = 0;
+	let error = 0;
+	let derivative = 0;
+	for (let k = coefficients.length - 1; k >= 0; k--) {
+		derivative = derivative * x + value;
+		const product = exactProduct(value, x);
+		const sum = exactSum(product.hi, coefficients[k]!);
+		value = sum.hi;
+		error = error * x + (product.lo + sum.lo);
+	}
+	return { value: value + error, derivative };
 }
 
 /** Coefficients of the derivative. */
