@@ -37,19 +37,20 @@ export function neededSteps(model: Model, outputs: readonly number[]): number[] 
 	return Array.from(needed.keys()).filter((i) => needed[i]);
 }
 
-/** Value of a line with each input of the note at its estimate plus `deviation(number)`. */
-export function evaluateAt(
-	model: Model,
-	steps: readonly number[],
-	deviation: (input: number) => number,
-): number {
-	const values = new Float64Array(model.steps.length);
-	let value = NaN;
-	for (const place of steps) {
+/** A line as a function of the deviations of all inputs of the note, by their numbers. */
+export function lineFunction(model: Model, output: number): (deviations: Float64Array) => number {
+	const values = new Float64Array(output + 1);
+	const steps = neededSteps(model, [output]).map((place) => {
 		const { tape, args, inputs } = model.steps[place]!;
-		const given = Float64Array.from(args, (arg) => values[arg]!);
-		value = evaluateTape(tape, given, nodesFor(tape), Float64Array.from(inputs, deviation));
-		values[place] = value;
-	}
-	return value;
+		const given = new Float64Array(args.length);
+		return { place, tape, args, inputs, given, own: new Float64Array(inputs.length) };
+	});
+	return (deviations) => {
+		for (const { place, tape, args, inputs, given, own } of steps) {
+			for (let k = 0; k < given.length; k++) given[k] = values[args[k]!]!;
+			for (let k = 0; k < own.length; k++) own[k] = deviations[inputs[k]!] ?? 0;
+			values[place] = evaluateTape(tape, given, nodesFor(tape), own);
+		}
+		return values[output]!;
+	};
 }

@@ -12,7 +12,8 @@ export function sorted(values: Float64Array): Float64Array {
 	if (n < 4_000 || !(scale > 0) || !Number.isFinite(scale)) return values.slice().sort();
 
 	const starts = new Uint32Array(buckets + 2);
-	for (let i = 0; i < n; i++) starts[Math.min(buckets - 1, Math.floor((values[i]! - low) * scale)) + 2]!++;
+	for (let i = 0; i < n; i++)
+		starts[Math.min(buckets - 1, Math.floor((values[i]! - low) * scale)) + 2]!++;
 	for (let k = 2; k < starts.length; k++) starts[k]! += starts[k - 1]!;
 	const result = new Float64Array(n);
 	for (let i = 0; i < n; i++) {

@@ -62,7 +62,8 @@ export class Trials {
 						scalarBlock(op, this.#registers[y.register]!, x.scalar, true, out, count);
 				} else if (isScalar(y))
 					scalarBlock(op, this.#registers[x.register]!, y.scalar, false, out, count);
-				else binaryBlock(op, this.#registers[x.register]!, this.#registers[y.register]!, out, count);
+				else
+					binaryBlock(op, this.#registers[x.register]!, this.#registers[y.register]!, out, count);
 				return;
 			}
 			case 'select': {
