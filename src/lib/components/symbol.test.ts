@@ -15,6 +15,7 @@ describe('typesetting a name', () => {
 		['Power', 'Power', ''],
 		['Top', 'Top', ''],
 		['k', 'k', ''],
+		['V_step_batt', 'V', 'step,batt'],
 		['_x', '_x', ''],
 		['x_', 'x_', ''],
 	])('%s shows %s with subscript %j', (name, glyph, sub) => {

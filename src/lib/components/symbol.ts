@@ -7,6 +7,7 @@ export interface SymbolParts {
 	baseTo: number;
 	/** Start of the subscript in the name, behind an underscore; the name's length where it has none. */
 	subFrom: number;
+	/** Subscript as it is shown: further underscores part it with commas. */
 	sub: string;
 }
 
@@ -62,5 +63,11 @@ export function typeset(name: string): SymbolParts {
 
 function cut(name: string, baseTo: number, subFrom: number): SymbolParts {
 	const base = name.slice(0, baseTo);
-	return { base, glyph: greek[base] ?? base, baseTo, subFrom, sub: name.slice(subFrom) };
+	return {
+		base,
+		glyph: greek[base] ?? base,
+		baseTo,
+		subFrom,
+		sub: name.slice(subFrom).replaceAll('_', ','),
+	};
 }

@@ -3,7 +3,7 @@ import { HighlightStyle, syntaxHighlighting } from '@codemirror/language';
 import type { EditorState, Extension, Range } from '@codemirror/state';
 import { Decoration, ViewPlugin, type EditorView, type ViewUpdate } from '@codemirror/view';
 import { tags } from '@lezer/highlight';
-import { tokenize } from '$lib/components/lines';
+import { splitLine, tokenize } from '$lib/components/lines';
 
 const style = HighlightStyle.define([
 	{ tag: tags.number, class: 'tk-number' },
@@ -39,8 +39,10 @@ function coloured({ doc }: EditorState) {
 	const ranges: Range<Decoration>[] = [];
 	for (let number = 1; number <= doc.lines; number++) {
 		const line = doc.line(number);
-		let at = line.from;
-		for (const { kind, text } of tokenize(line.text)) {
+		// What stands before a definition's equals sign is typeset as a name.
+		const { formulaFrom } = splitLine(line.text);
+		let at = line.from + formulaFrom;
+		for (const { kind, text } of tokenize(line.text.slice(formulaFrom))) {
 			const to = at + text.length;
 			if (kind === 'call') ranges.push(call.range(at, to));
 			if (kind === 'comment') ranges.push(comment.range(at, to));

@@ -68,6 +68,11 @@ const subscript = Decoration.mark({ class: 'sym-sub' });
 const equals = Decoration.mark({ class: 'sym-eq' });
 const activeEquals = Decoration.mark({ class: 'sym-eq sym-active' });
 
+/** Shows a sign in place of the text that stands there. */
+function shown(glyph: string): Decoration {
+	return Decoration.mark({ class: 'sym-glyph', attributes: { 'data-glyph': glyph } });
+}
+
 function* nameParts(
 	start: number,
 	text: string,
@@ -79,12 +84,16 @@ function* nameParts(
 	const baseTo = from + symbol.baseTo;
 	const subFrom = from + symbol.subFrom;
 	const nameEnd = start + nameTo;
-	if (!active && symbol.glyph !== symbol.base) {
-		const attributes = { 'data-glyph': symbol.glyph };
-		yield Decoration.mark({ class: 'sym-glyph', attributes }).range(from, baseTo);
-	}
+	if (!active && symbol.glyph !== symbol.base) yield shown(symbol.glyph).range(from, baseTo);
 	if (!active && subFrom > baseTo) yield hidden.range(baseTo, subFrom);
 	if (nameEnd > subFrom) yield subscript.range(subFrom, nameEnd);
+	for (
+		let at = name.indexOf('_', symbol.subFrom);
+		!active && at > 0;
+		at = name.indexOf('_', at + 1)
+	) {
+		yield shown(',').range(from + at, from + at + 1);
+	}
 	const equalsAt = text.lastIndexOf('=', formulaFrom - 1);
 	const equalsFrom = text.slice(0, equalsAt).trimEnd().length;
 	yield (active ? activeEquals : equals).range(start + equalsFrom, start + formulaFrom);

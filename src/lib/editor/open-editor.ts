@@ -1,8 +1,8 @@
 import { closeBrackets, closeBracketsKeymap } from '@codemirror/autocomplete';
-import { defaultKeymap } from '@codemirror/commands';
+import { defaultKeymap, insertNewline, insertNewlineKeepIndent } from '@codemirror/commands';
 import { bracketMatching } from '@codemirror/language';
 import { EditorState, type Extension } from '@codemirror/state';
-import { EditorView, keymap, placeholder } from '@codemirror/view';
+import { EditorView, keymap, placeholder, type KeyBinding } from '@codemirror/view';
 import { yCollab } from 'y-codemirror.next';
 import type { Awareness } from 'y-protocols/awareness';
 import type * as Y from 'yjs';
@@ -36,7 +36,7 @@ export function openEditor(choices: Choices): EditorView {
 		doc: text.toJSON(),
 		extensions: [
 			keys(choices.neighbours),
-			keymap.of([...closeBracketsKeymap, ...defaultKeymap]),
+			keymap.of([enter(kind), ...closeBracketsKeymap, ...defaultKeymap]),
 			yCollab(text, awareness, { undoManager }),
 			look(),
 			placeholder(choices.hint),
@@ -56,6 +56,11 @@ export function openEditor(choices: Choices): EditorView {
 			ofKind(kind),
 		],
 	});
+}
+
+/** A formula goes on no second line, so nothing is indented for it. */
+function enter(kind: Choices['kind']): KeyBinding {
+	return { key: 'Enter', run: kind === 'text' ? insertNewlineKeepIndent : insertNewline };
 }
 
 function ofKind(kind: Choices['kind']): Extension {
