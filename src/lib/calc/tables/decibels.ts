@@ -1,7 +1,7 @@
 import { refuse, refuseNotFinite, refuseNotPositive, type Refusal } from './refusal';
 import type { Worked } from './worked';
 
-/** What a level is of: amplitudes count 20 lg, powers 10 lg of their ratio (IEC 60027-3). */
+/** What a level is of: amplitudes count 20 lg, powers 10 lg of their ratio (NIST SP 811, 2008, 8.7). */
 export type LevelOf = 'amplitude' | 'power';
 
 const factors: Readonly<Record<LevelOf, number>> = { amplitude: 20, power: 10 };
