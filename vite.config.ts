@@ -26,6 +26,9 @@ export default defineConfig({
 				test: {
 					name: 'db',
 					include: ['tests/db/**/*.test.ts'],
+					// They start the production entry.
+					testTimeout: 30_000,
+					hookTimeout: 60_000,
 					globalSetup: 'tests/support/postgres.ts',
 				},
 			},

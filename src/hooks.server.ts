@@ -2,6 +2,9 @@ import { sequence } from '@sveltejs/kit/hooks';
 import * as auth from '$lib/server/web/auth';
 import * as errors from '$lib/server/web/errors';
 import * as guard from '$lib/server/web/guard';
+import * as shutdown from '$lib/server/web/shutdown';
+
+export const init = shutdown.listenForEnd;
 
 export const handle = sequence(
 	guard.headers,

@@ -66,7 +66,8 @@ export const accessTable: Record<string, Row> = {
 	'POST /notes/[number]?/propose': {
 		...page('?/propose'),
 		form: () => ({ password }),
-		expect: { reader: 403, administrator: 403, outsider: 404, all: 303 },
+		// A refused form shows its page again, and this one is none of a reader's.
+		expect: { reader: 404, administrator: 403, outsider: 404, all: 303 },
 	},
 	'GET /notes/[number]/candidate': {
 		stage: 'proposed',

@@ -3,6 +3,7 @@ import canonicalize from 'canonicalize';
 import { eq } from 'drizzle-orm';
 import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { defaultOptions, evaluate } from '$lib/calc/evaluate';
 import { db } from '$lib/server/db/client';
 import { candidate, revision, signOff } from '$lib/server/db/schema/review';
 import { closePool } from '$lib/server/evaluation/pool';
@@ -178,7 +179,6 @@ describe('a frozen revision', () => {
 	test('holds the results that its engine gives for its sources', async () => {
 		const { id, number } = await writeNote(cast.author, 'Another');
 		await freeze(cast, number);
-		const { defaultOptions, evaluate } = await import('$lib/calc/evaluate');
 		const [frozen] = await rows(id);
 		const results = evaluate(frozen?.candidate.content.cells ?? [], defaultOptions);
 		expect(results.quantities.V_out?.value).toBe(2.5);

@@ -22,7 +22,7 @@ beforeAll(async () => {
 	cast = await makeCast();
 	scene = await stage(cast, 'proposed', cast.engineer);
 	cookie = await signIn(cast.engineer);
-}, 60_000);
+});
 afterAll(async () => {
 	await server.stop();
 	await closePool();

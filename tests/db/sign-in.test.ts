@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { eq, sql } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import * as passwords from '$lib/server/auth/passwords';
+import * as sessions from '$lib/server/auth/sessions';
 import { db } from '$lib/server/db/client';
 import { person, session, signInAttempt } from '$lib/server/db/schema/people';
 import { createDatabase, type TestDatabase } from '../support/database';
@@ -16,7 +17,7 @@ beforeAll(async () => {
 	database = await createDatabase();
 	server = await startSyncServer({ ROLES: 'web' });
 	team = await makeTeam();
-}, 60_000);
+});
 afterAll(async () => {
 	await server.stop();
 	await database.drop();
@@ -234,11 +235,36 @@ test('too many wrong tries are answered with the time to wait, and the right pas
 });
 
 test('the account page lists the sessions and says which one this is', async () => {
-	const { email } = await newcomer();
-	const visitor = await signedIn(email);
-	await signedIn(email);
-	const data = (await visitor.get('/account/__data.json')).body;
-	expect(data).not.toContain(sha256(tokenOf(visitor)));
-	expect((data.match(/"current"/g) ?? []).length).toBe(1);
-	expect((await visitor.get('/account')).status).toBe(200);
+	const actor = await newcomer();
+	const [here, there] = [await signedIn(actor.email), await signedIn(actor.email)];
+	const listed = await sessions.list(actor, tokenOf(here));
+	expect(listed.map((one) => one.current)).toEqual([false, true]);
+	const page = await here.get('/account');
+	expect(page.status).toBe(200);
+	for (const visitor of [here, there]) {
+		expect(page.body).not.toContain(tokenOf(visitor));
+		expect(page.body).not.toContain(sha256(tokenOf(visitor)));
+	}
+});
+
+test('a database that cannot be reached is named as the reason, and what was typed comes back', async () => {
+	const cut = await startSyncServer({
+		ROLES: 'web',
+		DATABASE_URL: 'postgresql://nobody@127.0.0.1:1/nothing',
+	});
+	try {
+		const visitor = new Visitor(cut.port);
+		const fields = { email: 'robin@example.test', password: testPassword, to: '/notes' };
+		const answer = await visitor.post('/sign-in', fields);
+		expect(answer.status).toBe(503);
+		expect(answer.body).toContain('The database cannot be reached just now.');
+		expect(answer.body).toContain('robin@example.test');
+		expect(answer.body).not.toMatch(/ECONNREFUSED|select|127\.0\.0\.1:1/);
+		visitor.cookie = `halfdigit.session=${'A'.repeat(43)}`;
+		expect((await visitor.get('/notes')).status).toBe(503);
+		expect((await visitor.get('/api/notes/MN-001/review')).status).toBe(503);
+		expect(visitor.cookie).toBe(`halfdigit.session=${'A'.repeat(43)}`);
+	} finally {
+		await cut.stop();
+	}
 });

@@ -22,7 +22,7 @@ export async function rewrite(
 	const cells = placedCells(doc);
 	for (const { cell, from, to } of replacements) {
 		const text = cells[cell]?.text;
-		const at = text?.toString().indexOf(from) ?? -1;
+		const at = text?.toJSON().indexOf(from) ?? -1;
 		if (!text || at < 0) throw new Error(`cell ${cell} does not hold "${from}"`);
 		text.delete(at, from.length);
 		text.insert(at, to);

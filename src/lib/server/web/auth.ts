@@ -1,6 +1,7 @@
 import { DrizzleAdapter } from '@auth/drizzle-adapter';
 import { SvelteKitAuth, type SvelteKitAuthConfig } from '@auth/sveltekit';
 import type { Cookies, Handle, RequestEvent } from '@sveltejs/kit';
+import type { Actor } from '../auth/access';
 import { sessionCookie } from '../auth/cookie';
 import { absoluteMs, idleMs, touchMs } from '../auth/limits';
 import * as sessions from '../auth/sessions';
@@ -9,6 +10,7 @@ import { db } from '../db/client';
 import { account, person, session, verificationToken } from '../db/schema/people';
 import { env } from '../env';
 import { log } from '../log';
+import { toHttp } from './errors';
 
 type Adapter = NonNullable<SvelteKitAuthConfig['adapter']>;
 
@@ -96,10 +98,18 @@ export const handle: Handle = ({ event, resolve }) => {
 /** Puts the signed-in person into `locals.actor`, and lets the library prolong the session in use. */
 export const identify: Handle = async ({ event, resolve }) => {
 	const token = event.cookies.get(sessionCookie().name);
-	const actor = token ? await sessions.findActor(token) : undefined;
+	const actor = token ? await findActor(token) : undefined;
 	if (actor && (await event.locals.auth())) event.locals.actor = actor;
 	return resolve(event);
 };
+
+async function findActor(token: string): Promise<Actor | undefined> {
+	try {
+		return await sessions.findActor(token);
+	} catch (thrown) {
+		throw toHttp(thrown);
+	}
+}
 
 /** Sets the cookie of a session that was just opened. */
 export function remember(cookies: Cookies, token: string): void {

@@ -1,13 +1,27 @@
 import { randomUUID } from 'node:crypto';
 import { error, type HandleServerError } from '@sveltejs/kit';
 import { AppError, statusOf } from '$lib/errors';
+import { isOutage } from '../db/outage';
 import { log } from '../log';
+
+/** The failure as an expected one, with a sentence for strangers; undefined for a fault nobody expected. */
+export function expected(thrown: unknown): AppError | undefined {
+	if (thrown instanceof AppError) return thrown;
+	if (!isOutage(thrown)) return undefined;
+	log().error({ err: thrown }, 'the database cannot be reached');
+	return new AppError(
+		'unavailable',
+		'The database cannot be reached just now. Try again in a moment.',
+		{ cause: thrown },
+	);
+}
 
 /** An expected failure as SvelteKit's error with its status and sentence; anything else as it is. */
 export function toHttp(thrown: unknown): unknown {
-	if (!(thrown instanceof AppError)) return thrown;
+	const failure = expected(thrown);
+	if (!failure) return thrown;
 	try {
-		error(statusOf[thrown.code], { message: thrown.message });
+		error(statusOf[failure.code], { message: failure.message });
 	} catch (http) {
 		return http;
 	}

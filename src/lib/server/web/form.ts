@@ -3,7 +3,7 @@ import { AppError, statusOf } from '$lib/errors';
 import type { Blocker } from '$lib/schemas/review';
 import type { z } from 'zod';
 import type { Actor } from '../auth/access';
-import { toHttp } from './errors';
+import { expected, toHttp } from './errors';
 import { forMember } from './guard';
 
 const secrets = ['password', 'present', 'next'] as const;
@@ -34,12 +34,10 @@ export async function submit<S extends z.ZodObject, T>(
 	try {
 		return await deed(parsed.data);
 	} catch (thrown) {
-		if (!(thrown instanceof AppError) || thrown.code === 'notFound') throw toHttp(thrown);
-		return refuse(
-			statusOf[thrown.code],
-			thrown.message,
-			thrown.details.blockers as Blocker[] | undefined,
-		);
+		const failure = expected(thrown);
+		if (!failure || failure.code === 'notFound') throw toHttp(thrown);
+		const { code, message, details } = failure;
+		return refuse(statusOf[code], message, details.blockers as Blocker[] | undefined);
 	}
 }
 

@@ -2,7 +2,7 @@ import { json, redirect, type Handle } from '@sveltejs/kit';
 import { AppError, statusOf } from '$lib/errors';
 import type { Actor } from '../auth/access';
 import { env } from '../env';
-import { toHttp } from './errors';
+import { expected, toHttp } from './errors';
 
 const changing = new Set(['POST', 'PUT', 'PATCH', 'DELETE']);
 
@@ -75,8 +75,9 @@ export function api<E extends Known>(
 		try {
 			return json(await deed(actorOf(event), event), { status });
 		} catch (thrown) {
-			if (!(thrown instanceof AppError)) throw thrown;
-			return json({ message: thrown.message }, { status: statusOf[thrown.code] });
+			const failure = expected(thrown);
+			if (!failure) throw thrown;
+			return json({ message: failure.message }, { status: statusOf[failure.code] });
 		}
 	};
 }

@@ -1,0 +1,13 @@
+import type { ServerInit } from '@sveltejs/kit';
+import { dev } from '$app/environment';
+import { closeDb } from '../db/client';
+import { closePool } from '../evaluation/pool';
+
+/** Lets go of the database and the evaluators when the process ends. */
+export const listenForEnd: ServerInit = () => {
+	// The development server runs this again at each edit, and ends by being killed.
+	if (dev) return;
+	process.once('sveltekit:shutdown' as 'exit', () => {
+		void Promise.allSettled([closePool(), closeDb()]);
+	});
+};
