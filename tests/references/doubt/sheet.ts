@@ -104,8 +104,7 @@ export class Sheet {
 			.contribution;
 	}
 
-	worst(name: string): WorstCase {
-		const widths = this.#inputs.map((input) => halfWidth(input));
+	enclosure(name: string): Enclosure {
 		const enclosures: Enclosure[] = [];
 		for (const { tape, args, inputs } of this.#steps)
 			enclosures.push(
@@ -113,10 +112,18 @@ export class Sheet {
 					tape,
 					Array.from(args, (arg) => enclosures[arg]!),
 					inputs,
-					widths,
+					this.#widths,
 				),
 			);
-		return worstCase(this.model, this.place(name), enclosures[this.place(name)]!, widths);
+		return enclosures[this.place(name)]!;
+	}
+
+	worst(name: string): WorstCase {
+		return worstCase(this.model, this.place(name), this.enclosure(name), this.#widths);
+	}
+
+	get #widths(): number[] {
+		return this.#inputs.map((input) => halfWidth(input));
 	}
 
 	#add(name: string, tape: TapeBuilder, node: Node, args: number[], inputs: number[]): this {
