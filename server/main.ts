@@ -1,10 +1,12 @@
 import { AppError } from '$lib/errors';
 import { closeDb } from '$lib/server/db/client';
 import { env } from '$lib/server/env';
-import { closePool } from '$lib/server/evaluation/pool';
+import { defaultOptions } from '$lib/calc/engine';
+import { closePool, evaluateInChild } from '$lib/server/evaluation/pool';
 import { log } from '$lib/server/log';
 import { closeCode } from '$lib/protocol/closing';
 import { createServer, type RequestListener, type Server } from 'node:http';
+import { inspect } from 'node:util';
 import { checkNodeOptions, readRoles } from './roles';
 import { onSignal, within } from './shutdown';
 import { Rooms } from './sync/rooms';
@@ -39,6 +41,10 @@ function openSync(server: Server): { rooms: Rooms; gate: Gate } {
 	const rooms = new Rooms();
 	const gate = new Gate(rooms);
 	server.on('upgrade', gate.onUpgrade);
+	// The first edit finds its evaluators running.
+	evaluateInChild([], defaultOptions).catch((error: unknown) => {
+		log().error({ err: error }, 'the evaluators do not start');
+	});
 	return { rooms, gate };
 }
 
@@ -72,7 +78,6 @@ function closed(server: Server): Promise<void> {
 }
 
 start().catch((error: unknown) => {
-	if (error instanceof AppError) console.error(error.message);
-	else console.error(error);
+	process.stderr.write(error instanceof AppError ? `${error.message}\n` : `${inspect(error)}\n`);
 	process.exit(1);
 });

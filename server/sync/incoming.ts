@@ -12,7 +12,9 @@ export interface Said {
 
 export type Incoming =
 	| { kind: 'question'; stateVector: Uint8Array }
-	| { kind: 'update'; update: Uint8Array }
+	/** An answer that brings nothing, as pages that send all they have as edits give it. */
+	| { kind: 'nothing' }
+	| { kind: 'update' }
 	| { kind: 'edit'; id: string; update: Uint8Array }
 	| { kind: 'presence'; said: Said[] };
 
@@ -55,7 +57,12 @@ function readSync(decoder: decoding.Decoder): Incoming {
 	if (step !== messageYjsSyncStep2 && step !== messageYjsUpdate) {
 		throw new Error(`a sync message of unknown step ${step}`);
 	}
-	return { kind: 'update', update: bytes };
+	return { kind: isNothing(bytes) ? 'nothing' : 'update' };
+}
+
+/** Whether an update holds neither content nor deletions. */
+function isNothing(update: Uint8Array): boolean {
+	return update.length === 2 && update[0] === 0 && update[1] === 0;
 }
 
 function readPresence(bytes: Uint8Array): Said[] {

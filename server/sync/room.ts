@@ -13,12 +13,19 @@ import { log } from '$lib/server/log';
 import * as updates from '$lib/server/notes/updates';
 import * as Y from 'yjs';
 import type { Connection } from './connection';
+import { Follower } from './follower';
 import type { Incoming } from './incoming';
 import { Journal, type Entry } from './journal';
 import * as outgoing from './outgoing';
 import { People } from './people';
 import { Proof } from './proof';
 import { ResultStore } from './result-store';
+
+interface Events {
+	onEmpty: (room: Room) => void;
+	/** What is in memory cannot be stored any more. */
+	onBroken: (room: Room) => void;
+}
 
 /**
  * A note's document in this process and the pages that have it open. Where a change comes from is its
@@ -35,20 +42,13 @@ export class Room {
 	readonly #journal: Journal<Connection>;
 	readonly #scheduler: Scheduler;
 	readonly #store: ResultStore;
-	readonly #onEmpty: (room: Room) => void;
-	readonly #onBroken: (room: Room) => void;
-	/** Everything in the log up to here is in the document. */
-	#seq: number;
+	readonly #follower: Follower;
+	readonly #events: Events;
 	/** Counts the document's states, whoever made them. */
 	#version = 0;
-	#catchingUp: Promise<void> | undefined;
-	#heardOf = 0;
 
 	/** Loads a note. Throws where that fails: there is no room then, and no document. */
-	static async load(
-		noteId: string,
-		events: { onEmpty(room: Room): void; onBroken(room: Room): void },
-	): Promise<Room> {
+	static async load(noteId: string, events: Events): Promise<Room> {
 		const [loaded, stored] = await Promise.all([
 			updates.loadDocument(noteId),
 			ResultStore.read(noteId),
@@ -65,21 +65,23 @@ export class Room {
 	private constructor(
 		noteId: string,
 		loaded: { doc: Y.Doc; seq: number; epoch: string },
-		events: { onEmpty(room: Room): void; onBroken(room: Room): void },
+		events: Events,
 	) {
 		this.noteId = noteId;
 		this.#doc = loaded.doc;
-		this.#seq = loaded.seq;
 		this.#epoch = loaded.epoch;
-		this.#onEmpty = events.onEmpty;
-		this.#onBroken = events.onBroken;
+		this.#events = events;
 		this.#proof = new Proof(this.#doc);
 		this.#store = new ResultStore(noteId);
+		this.#follower = new Follower(noteId, loaded.seq, {
+			apply: (rows) => this.#applyRows(rows),
+			onCaughtUp: () => this.#storeResults(),
+		});
 		this.#journal = new Journal(noteId, {
 			onSaved: (entries, appended) => this.#onSaved(entries, appended),
 			onFailed: (error) => {
 				log().error({ err: error, noteId }, 'a room was given up');
-				this.#onBroken(this);
+				this.#events.onBroken(this);
 			},
 		});
 		this.#scheduler = new Scheduler(
@@ -123,7 +125,7 @@ export class Room {
 		if (!this.connections.delete(connection)) return;
 		const message = this.#people.leave(connection);
 		if (message) this.#broadcast(message, connection);
-		if (this.isEmpty) this.#onEmpty(this);
+		if (this.isEmpty) this.#events.onEmpty(this);
 	}
 
 	/** Acts on a message; false where its bytes are no update. */
@@ -138,9 +140,9 @@ export class Room {
 				if (message) this.#broadcast(message, connection);
 				return true;
 			}
+			case 'nothing':
+				return true;
 			case 'update':
-				// Pages send what they have as edits. An empty answer to a question is nothing.
-				if (isNothing(incoming.update)) return true;
 				return refuse(connection, '', 'An edit without an id cannot be stored.');
 			case 'edit':
 				if (connection.mayWrite) return this.#edit(connection, incoming.id, incoming.update);
@@ -148,10 +150,9 @@ export class Room {
 		}
 	}
 
-	/** Hears that the log has grown to `seq`, and reads what is missing. */
+	/** Hears that the log has grown to `seq`. */
 	hear(seq: number): void {
-		this.#heardOf = Math.max(this.#heardOf, seq);
-		if (this.#heardOf > this.#seq) this.#catchingUp ??= this.#catchUp();
+		this.#follower.hear(seq);
 	}
 
 	/** Whether this room's document is the one with that epoch. */
@@ -176,7 +177,7 @@ export class Room {
 	/** Settles when all edits are acknowledged and the results stored. */
 	async flush(): Promise<void> {
 		await this.#journal.idle();
-		await this.#catchingUp;
+		await this.#follower.idle();
 		await this.#scheduler.idle();
 		await this.#store.idle();
 	}
@@ -218,9 +219,8 @@ export class Room {
 		connection.send(outgoing.question(this.#doc));
 	}
 
-	#onSaved(entries: readonly Entry<Connection>[], { seq, first, at }: updates.Appended): void {
-		// Rows of another process may lie before ours; then those are read, and ours with them.
-		if (first !== undefined && first <= this.#seq + 1) this.#seq = Math.max(this.#seq, seq);
+	#onSaved(entries: readonly Entry<Connection>[], appended: updates.Appended): void {
+		const { seq, at } = appended;
 		const idsOf = new Map<Connection, string[]>();
 		for (const { id, sender } of entries) {
 			idsOf.set(sender, [...(idsOf.get(sender) ?? []), id]);
@@ -229,40 +229,23 @@ export class Room {
 			const saved: Saved = { ids, seq, at: at.toISOString() };
 			connection.send(encodeJson('saved', saved));
 		}
-		this.hear(seq);
+		this.#follower.stored(appended);
 		this.#storeResults();
-		if (first !== undefined) void announce(this.noteId, seq);
+		if (appended.first !== undefined) void announce(this.noteId, seq);
 	}
 
-	async #catchUp(): Promise<void> {
-		try {
-			while (this.#heardOf > this.#seq) {
-				const rows = await updates.rowsSince(this.noteId, this.#seq);
-				const last = rows.at(-1);
-				if (!last) {
-					this.#heardOf = this.#seq;
-					break;
-				}
-				for (const row of rows) {
-					if (!this.#proof.passes(row.bytes)) throw new Error(`row ${row.seq} cannot be read`);
-				}
-				updates.applyRows(this.#doc, rows, 'database');
-				this.#seq = Math.max(this.#seq, last.seq);
-			}
-			this.#storeResults();
-		} catch (error) {
-			// The next poll hears of the same rows and tries again.
-			log().warn({ err: error, noteId: this.noteId }, 'a room could not catch up');
-		}
-		this.#catchingUp = undefined;
+	#applyRows(rows: readonly { seq: number; bytes: Uint8Array }[]): void {
+		const broken = rows.find((row) => !this.#proof.passes(row.bytes));
+		if (broken) throw new Error(`row ${broken.seq} cannot be read`);
+		updates.applyRows(this.#doc, rows, 'database');
 	}
 
 	/** Stores the newest results if the document they belong to is exactly what is stored at a sequence number. */
 	#storeResults(): void {
 		const last = this.#scheduler.last;
-		const settled = this.#journal.isEmpty && this.#heardOf <= this.#seq;
+		const settled = this.#journal.isEmpty && !this.#follower.isBehind;
 		if (!last || last.version !== this.#version || !settled || updates.isPending(this.#doc)) return;
-		this.#store.keep({ seq: this.#seq, content: last.content, results: last.results });
+		this.#store.keep({ seq: this.#follower.seq, content: last.content, results: last.results });
 	}
 
 	#broadcast(message: Uint8Array, but: unknown): void {
@@ -276,9 +259,4 @@ function refuse(connection: Connection, id: string, reason: string): true {
 	const refused: Refused = { id, reason };
 	connection.send(encodeJson('refused', refused));
 	return true;
-}
-
-/** Whether an update holds neither content nor deletions. */
-function isNothing(update: Uint8Array): boolean {
-	return update.length === 2 && update[0] === 0 && update[1] === 0;
 }

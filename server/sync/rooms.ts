@@ -27,7 +27,9 @@ export class Rooms {
 			() => this.#onGap(),
 		);
 		this.#timers = [
-			setInterval(() => (this.#polling ??= this.#poll()), pollMs),
+			setInterval(() => {
+				this.#polling ??= this.#poll();
+			}, pollMs),
 			setInterval(() => this.#open.forEach((room) => room.keepAlive()), keepAliveMs),
 		];
 	}

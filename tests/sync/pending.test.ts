@@ -21,7 +21,7 @@ async function twoEdits(noteId: string) {
 	doc.on('update', (update: Uint8Array) => updates.push(update));
 	doc.getText('title').insert(0, 'First ');
 	doc.getText('title').insert(6, 'second ');
-	return { first: updates[0]!, second: updates[1]!, title: doc.getText('title').toString() };
+	return { first: updates[0]!, second: updates[1]!, title: doc.getText('title').toJSON() };
 }
 
 const questions = (socket: RawSocket) =>

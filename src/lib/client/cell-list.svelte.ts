@@ -21,7 +21,7 @@ export class LiveCell implements NoteCell {
 
 	/** Takes the text's present state over. */
 	refresh(): void {
-		this.#source = this.text?.toString() ?? this.#source;
+		this.#source = this.text?.toJSON() ?? this.#source;
 	}
 }
 
@@ -47,8 +47,9 @@ export class CellList {
 		this.#rebuild();
 		cellsOf(this.#doc).observeDeep((events) => {
 			if (events.some((event) => !(event.target instanceof Y.Text))) this.#rebuild();
-			const texts = new Set(events.map((event) => event.target));
-			for (const cell of this.#list) if (cell.text && texts.has(cell.text)) cell.refresh();
+			for (const cell of this.#list) {
+				if (events.some(({ target }) => target === cell.text)) cell.refresh();
+			}
 		});
 	}
 
@@ -57,9 +58,8 @@ export class CellList {
 	}
 
 	#rebuild(): void {
-		const before = new Map(this.#list.map((cell) => [cell.id, cell]));
 		const next = placedCells(this.#doc).map((placed) => {
-			const known = before.get(placed.id);
+			const known = this.#list.find(({ id }) => id === placed.id);
 			// An undone deletion brings a new text under the old id; editors are bound to the text.
 			const same = known?.kind === placed.kind && (!known.text || known.text === placed.text);
 			const cell = same ? known : new LiveCell(placed);

@@ -22,12 +22,12 @@ export type ConnectionState = 'connecting' | 'online' | 'offline' | 'closed';
 
 interface Events {
 	/** Something of `connection`, `count`, `synced` or `mayWrite` changed. */
-	onChange(): void;
-	onSaved(saved: Saved): void;
+	onChange: () => void;
+	onSaved: (saved: Saved) => void;
 	/** An edit will never be stored. */
-	onRefused(reason: string): void;
-	onResults(results: Evaluation): void;
-	onNews(news: News): void;
+	onRefused: (reason: string) => void;
+	onResults: (results: Evaluation) => void;
+	onNews: (news: News) => void;
 }
 
 interface Options {

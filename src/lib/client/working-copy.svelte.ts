@@ -1,11 +1,14 @@
 import type { Evaluation } from '$lib/calc/results';
 import * as document from '$lib/note/document';
+import { replaceText } from '$lib/note/replace-text';
 import type { News } from '$lib/protocol/messages';
-import type { Presence } from '$lib/protocol/presence';
 import { Awareness } from 'y-protocols/awareness';
 import * as Y from 'yjs';
 import { CellList, type LiveCell } from './cell-list.svelte';
 import { NoteSocket, type ConnectionState } from './note-socket';
+import { othersIn, type Other } from './others';
+import { undoManagerOf } from './undo';
+import { watchWindow } from './window-watch';
 
 /** Whether what was typed here is stored. `count`: edits that are not, as far as this page knows. */
 export interface Saving {
@@ -15,14 +18,6 @@ export interface Saving {
 	at?: string;
 	/** Why an edit will not be stored. */
 	reason?: string;
-}
-
-/** Somebody else who has the note open. */
-export interface Other {
-	id: string;
-	name: string;
-	colour: string;
-	cellId: string | null;
 }
 
 interface Options {
@@ -45,8 +40,9 @@ export class WorkingCopy {
 	readonly #person: Options['person'];
 	readonly #cells: CellList;
 	readonly #socket: NoteSocket | undefined;
-	readonly #newsHandlers = new Set<(about: News['about']) => void>();
+	#newsHandlers: readonly ((about: News['about']) => void)[] = [];
 	#awareness: Awareness | undefined;
+	#stopWatching: (() => void) | undefined;
 	#title = $state('');
 	#evaluation = $state.raw<Evaluation>() as Evaluation;
 	#connection = $state<ConnectionState>('connecting');
@@ -66,10 +62,7 @@ export class WorkingCopy {
 		this.#title = content.title;
 		this.#evaluation = evaluation;
 		this.#cells = new CellList(this.doc, content.cells);
-		this.undoManager = new Y.UndoManager(
-			[document.titleOf(this.doc), document.cellsOf(this.doc)] as Y.AbstractType<unknown>[],
-			{ trackedOrigins: new Set([local]), captureTimeout: 500 },
-		);
+		this.undoManager = undoManagerOf(this.doc, local);
 		for (const event of ['stack-item-added', 'stack-item-popped', 'stack-cleared'] as const) {
 			this.undoManager.on(event, () => this.#onStack());
 		}
@@ -167,16 +160,14 @@ export class WorkingCopy {
 
 	/** Calls `handle` when comments or the review changed; returns what ends that. */
 	onNews(handle: (about: News['about']) => void): () => void {
-		this.#newsHandlers.add(handle);
-		return () => this.#newsHandlers.delete(handle);
+		this.#newsHandlers = [...this.#newsHandlers, handle];
+		return () => {
+			this.#newsHandlers = this.#newsHandlers.filter((other) => other !== handle);
+		};
 	}
 
 	destroy(): void {
-		if (this.#socket && typeof window !== 'undefined') {
-			window.removeEventListener('beforeunload', this.#onLeaving);
-			window.removeEventListener('offline', this.#onNetwork);
-			window.removeEventListener('online', this.#onNetwork);
-		}
+		this.#stopWatching?.();
 		this.#socket?.destroy();
 		this.undoManager.destroy();
 		this.#awareness?.destroy();
@@ -196,12 +187,14 @@ export class WorkingCopy {
 		{ noteId, epoch }: Options,
 		server: { url: string; WebSocket?: typeof WebSocket },
 	): NoteSocket {
-		this.awareness.on('change', () => this.#onPeople());
-		if (typeof window !== 'undefined') {
-			window.addEventListener('beforeunload', this.#onLeaving);
-			window.addEventListener('offline', this.#onNetwork);
-			window.addEventListener('online', this.#onNetwork);
-		}
+		this.awareness.on('change', () => {
+			this.#people = othersIn(this.awareness.getStates(), this.#person.id);
+		});
+		this.#stopWatching = watchWindow({
+			onLeaving: (event) => socket.count > 0 && event.preventDefault(),
+			// What is connected may be dead.
+			onNetwork: () => socket.reconnect(),
+		});
 		const socket: NoteSocket = new NoteSocket({
 			...server,
 			noteId,
@@ -232,8 +225,8 @@ export class WorkingCopy {
 		if (!synced || this.#ready) return;
 		this.#ready = true;
 		const title = document.titleOf(this.doc);
-		title.observe(() => (this.#title = title.toString()));
-		this.#title = title.toString();
+		title.observe(() => (this.#title = title.toJSON()));
+		this.#title = title.toJSON();
 		this.#cells.follow();
 	}
 
@@ -247,43 +240,9 @@ export class WorkingCopy {
 		this.#canUndo = this.undoManager.canUndo();
 		this.#canRedo = this.undoManager.canRedo();
 	}
-
-	#onPeople(): void {
-		const others = new Map<string, Other>();
-		for (const state of this.awareness.getStates().values() as Iterable<Partial<Presence>>) {
-			const { user, cellId } = state;
-			if (!user || user.id === this.#person.id) continue;
-			const known = others.get(user.id);
-			others.set(user.id, {
-				id: user.id,
-				name: user.name,
-				colour: user.color,
-				cellId: cellId ?? known?.cellId ?? null,
-			});
-		}
-		this.#people = [...others.values()].sort((a, b) => a.name.localeCompare(b.name));
-	}
-
-	readonly #onLeaving = (event: BeforeUnloadEvent) => {
-		if ((this.#socket?.count ?? 0) > 0) event.preventDefault();
-	};
-
-	/** The browser's network came or went: what is connected may be dead. */
-	readonly #onNetwork = () => this.#socket?.reconnect();
 }
 
 function serverOfPage(): { url: string } | undefined {
 	if (typeof location === 'undefined') return undefined;
 	return { url: `${location.protocol === 'https:' ? 'wss' : 'ws'}://${location.host}/sync` };
-}
-
-function replaceText(text: Y.Text, next: string): void {
-	const before = text.toString();
-	let start = 0;
-	while (start < before.length && before[start] === next[start]) start += 1;
-	let end = 0;
-	const most = Math.min(before.length, next.length) - start;
-	while (end < most && before[before.length - 1 - end] === next[next.length - 1 - end]) end += 1;
-	text.delete(start, before.length - start - end);
-	text.insert(start, next.slice(start, next.length - end));
 }

@@ -50,7 +50,7 @@ export function placedCells(doc: Y.Doc): PlacedCell[] {
 		const order = entry.get('order');
 		const text = entry.get('source');
 		if (!cellKinds.includes(kind) || !isOrderKey(order) || !(text instanceof Y.Text)) continue;
-		placed.push({ id, kind, order, text, source: text.toString() });
+		placed.push({ id, kind, order, text, source: text.toJSON() });
 	}
 	return placed.sort((a, b) => compare(a.order, b.order) || compare(a.id, b.id));
 }
@@ -75,7 +75,7 @@ function compare(a: string, b: string): number {
 /** The document as plain data, in sheet order. */
 export function toContent(doc: Y.Doc): NoteContent {
 	return {
-		title: titleOf(doc).toString(),
+		title: titleOf(doc).toJSON(),
 		cells: placedCells(doc).map(({ id, kind, source }) => ({ id, kind, source })),
 	};
 }
@@ -125,7 +125,7 @@ function orderAfter(doc: Y.Doc, after: string | null, moving: string): string {
 function keyBetween(before: string | null, after: string | null): string {
 	let low = generateKeyBetween(before, after);
 	let high = generateKeyBetween(low, after);
-	for (const byte of crypto.getRandomValues(new Uint8Array(12))) {
+	for (const byte of crypto.getRandomValues(new Uint8Array(24))) {
 		const middle = generateKeyBetween(low, high);
 		if (byte % 2 === 0) low = middle;
 		else high = middle;

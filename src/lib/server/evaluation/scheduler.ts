@@ -61,7 +61,6 @@ export class Scheduler {
 			const { version, content } = this.#read();
 			try {
 				const results = await this.#evaluate(content);
-				if (this.#stopped) break;
 				this.#last = { version, content, results };
 				this.#onResults(this.#last);
 			} catch (error) {

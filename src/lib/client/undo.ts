@@ -1,0 +1,13 @@
+import { cellsOf, titleOf } from '$lib/note/document';
+import * as Y from 'yjs';
+
+/** Changes within this time of each other, typing above all, are undone together. */
+const captureMs = 500;
+
+/** Undoes a document's changes that carry this origin; editors add theirs to its tracked origins. */
+export function undoManagerOf(doc: Y.Doc, origin: unknown): Y.UndoManager {
+	return new Y.UndoManager([titleOf(doc), cellsOf(doc)] as Y.AbstractType<unknown>[], {
+		trackedOrigins: new Set([origin]),
+		captureTimeout: captureMs,
+	});
+}
