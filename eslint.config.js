@@ -28,6 +28,11 @@ export default ts.config(
 				'error',
 				{ fixStyle: 'inline-type-imports', disallowTypeAnnotations: false },
 			],
+			// The text of a shared document is read with `toString()`.
+			'@typescript-eslint/no-base-to-string': [
+				'error',
+				{ ignoredTypeNames: ['Error', 'URL', 'YText'] },
+			],
 			'@typescript-eslint/no-floating-promises': 'error',
 			'@typescript-eslint/no-unnecessary-condition': 'error',
 			'@typescript-eslint/no-unused-vars': ['error', { argsIgnorePattern: '^_' }],
@@ -44,6 +49,8 @@ export default ts.config(
 		rules: {
 			// Addresses are written as they are: the product is always served from the root of its host.
 			'svelte/no-navigation-without-resolve': 'off',
+			// The rule cannot tell a set that a template reads from one that only a method uses.
+			'svelte/prefer-svelte-reactivity': 'off',
 		},
 	},
 	{

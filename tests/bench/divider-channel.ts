@@ -31,7 +31,8 @@ export function dividerChannel(): { model: Model; output: number } {
 		const tape = new TapeBuilder();
 		return { tape: tape.finish(write(tape)), args, inputs: own };
 	};
-	const about = (value: number) => (t: TapeBuilder) => t.binary('add', t.constant(value), t.input(0));
+	const about = (value: number) => (t: TapeBuilder) =>
+		t.binary('add', t.constant(value), t.input(0));
 	const warmed = (ohms: number) => (t: TapeBuilder) => {
 		const one = t.constant(1);
 		const tolerance = t.binary('add', one, t.input(0));

@@ -4,7 +4,7 @@ import { lastName } from './sixty-lines';
 
 const edits = 120;
 const warming = 10;
-const readout = `[data-quantity="${lastName}"]`;
+const readout = `[data-cell] [data-quantity="${lastName}"]`;
 
 /** Instants of one edit on the clock that all pages of the machine share, in ms. */
 interface Instants {
@@ -21,6 +21,9 @@ export async function syncRows(
 	const writing = await writer.newPage();
 	const watching = await watcher.newPage();
 	await Promise.all([writing.goto(notePath), watching.goto(notePath)]);
+	// From here on both pages have the whole document and can write.
+	for (const page of [writing, watching])
+		await page.locator('[data-saving="saved"]').first().waitFor();
 	await watching.locator(readout).first().waitFor();
 	await openFirstLine(writing);
 	await writing.evaluate(noteKeys);
@@ -52,11 +55,7 @@ export async function syncRows(
 
 /** Puts the cursor behind the `5` of `tap_1 = 5 V`, the first line of the first calculation. */
 async function openFirstLine(page: Page): Promise<void> {
-	const cell = page.locator('[data-cell]').nth(1);
-	await cell.click();
-	const line = page.locator('.cm-line', { hasText: 'tap_1 =' }).first();
-	await line.waitFor();
-	await line.click();
+	await page.locator('[data-cell] .cm-line', { hasText: 'tap_1 =' }).first().click();
 	await page.keyboard.press('Home');
 	for (let step = 0; step < 'tap_1 = 5'.length; step++) await page.keyboard.press('ArrowRight');
 }
@@ -89,7 +88,7 @@ function watchReadout(selector: string): void {
 	const element = document.querySelector(selector);
 	const before = element?.textContent;
 	(window as Watching).shown = new Promise((resolve, reject) => {
-		const limit = setTimeout(() => reject(new Error('no new figure within 5 s')), 5000);
+		const limit = setTimeout(() => reject(new Error('no new figure within 30 s')), 30_000);
 		const observer = new MutationObserver(() => {
 			if (document.querySelector(selector)?.textContent === before) return;
 			observer.disconnect();
