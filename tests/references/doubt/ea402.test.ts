@@ -67,10 +67,8 @@ describe(titleOf('ea-s9'), () => {
 
 	it('has the coverage interval of a dominant rectangular input by trials', () => {
 		// Print takes k from the rectangular distribution alone; the exact convolution, which trials draw, gives 1.710.
-		const [{ symmetric }] = simulate(sheet.model, [sheet.place('EX')], {
-			seed: 3,
-			trials: 400_000,
-		}) as [{ symmetric: [number, number] }];
+		const [result] = simulate(sheet.model, [sheet.place('EX')], { seed: 3, trials: 400_000 });
+		const { symmetric } = result!;
 		const { half_width_95_convolution_V: exact } = ea402.cases.find(
 			(each) => each.id === id,
 		)!.exact!;
@@ -88,11 +86,12 @@ describe(titleOf('ea-s9'), () => {
 
 describe(titleOf('ea-s5'), () => {
 	it('adds contributions by their squares', () => {
-		const parts = ea402.cases.find((each) => each.id === 'ea-s5')!.inputs![0]!.values!;
+		const [{ values: parts }] = ea402.cases.find((each) => each.id === 'ea-s5')!
+			.inputs as unknown as [{ values: [u: number, c: number][] }];
 		const sheet = new Sheet();
-		parts.forEach(([u], i) => sheet.input(`x${i}`, 0, normal(u!)));
+		parts.forEach(([u], i) => sheet.input(`x${i}`, 0, normal(u)));
 		parts.forEach(([, c], i) =>
-			sheet.line(`y${i}`, i === 0 ? ['mul', c!, 'x0'] : ['add', `y${i - 1}`, ['mul', c!, `x${i}`]]),
+			sheet.line(`y${i}`, i === 0 ? ['mul', c, 'x0'] : ['add', `y${i - 1}`, ['mul', c, `x${i}`]]),
 		);
 		const { standardUncertainty } = sheet.uncertainty(`y${parts.length - 1}`);
 		check('ea-s5', 'u', standardUncertainty);

@@ -81,7 +81,7 @@ export function directly(formula: Formula, at: Readonly<Record<string, number>>)
 }
 
 export const estimates = { p: 1.3, q: 0.8, r: 2.1 };
-export const widths = { p: 0.01, q: 0.02, r: 0.05 };
+const widths = { p: 0.01, q: 0.02, r: 0.05 };
 
 /** A sheet with three doubtful inputs, a formula, and a second line that uses it beside an input. */
 export function sheetOf(formula: Formula): Sheet {

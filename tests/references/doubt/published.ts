@@ -56,7 +56,7 @@ export function check(id: string, quantity: string, computed: number, relative =
 }
 
 /** Half a unit of the last printed digit, with what binary numbers lose of it. */
-export function halfUnit(printed: string): number {
+function halfUnit(printed: string): number {
 	const [digits = '', exponent = '0'] = printed.split('e');
 	const decimals = digits.split('.')[1]?.length ?? 0;
 	return 0.5 * 10 ** (Number(exponent) - decimals) * (1 + 1e-9);
