@@ -155,6 +155,10 @@ test('a frozen revision prints dark on white, without the bench, numbered at the
 	expect(await style('color')).toBe('rgb(0, 0, 0)');
 	await expect(page.getByRole('navigation', { name: 'Main' })).toBeHidden();
 	await expect(page.getByLabel('Title block')).toBeVisible();
+	const rules = (await page.locator('head style').allTextContents()).join('');
+	expect(rules).toContain('"Page " counter(page) " of " counter(pages)');
+	const number = new URL(page.url()).pathname.split('/')[2]!;
+	expect(rules).toContain(`"${number}, revision `);
 });
 
 test('signing in, filtering and reading work without scripts', async ({ browser }) => {
