@@ -34,7 +34,7 @@ export default defineConfig({
 	webServer: {
 		command: `node server/local/serve-tests.mjs ${port}`,
 		url: `http://localhost:${port}/sign-in`,
-		timeout: 60_000,
+		timeout: 240_000,
 		reuseExistingServer: false,
 		gracefulShutdown: { signal: 'SIGTERM', timeout: 15_000 },
 		stdout: 'pipe',

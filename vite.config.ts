@@ -8,6 +8,9 @@ export default defineConfig({
 		proxy: { '/sync': { target: `http://127.0.0.1:${process.env.SYNC_PORT ?? '4174'}`, ws: true } },
 	},
 	test: {
+		// Bounds for a busy machine; a test that needs as long on an idle one says so itself.
+		testTimeout: 30_000,
+		hookTimeout: 60_000,
 		projects: [
 			{
 				extends: true,
@@ -28,7 +31,7 @@ export default defineConfig({
 					include: ['tests/db/**/*.test.ts'],
 					// They start the production entry.
 					testTimeout: 30_000,
-					hookTimeout: 60_000,
+					hookTimeout: 90_000,
 					globalSetup: 'tests/support/postgres.ts',
 				},
 			},
@@ -39,7 +42,7 @@ export default defineConfig({
 					include: ['tests/sync/**/*.test.ts'],
 					// They start, stop and cut processes.
 					testTimeout: 60_000,
-					hookTimeout: 60_000,
+					hookTimeout: 90_000,
 					globalSetup: 'tests/support/postgres.ts',
 				},
 			},
