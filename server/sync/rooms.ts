@@ -89,13 +89,14 @@ export class Rooms {
 	#unloadLater(room: Room): void {
 		if (!this.#open.has(room)) return;
 		clearTimeout(this.#unloading.get(room));
-		const timer = setTimeout(() => void this.#unload(room), graceMs);
+		const timer: NodeJS.Timeout = setTimeout(() => void this.#unload(room, timer), graceMs);
 		this.#unloading.set(room, timer);
 	}
 
-	async #unload(room: Room): Promise<void> {
+	async #unload(room: Room, timer: NodeJS.Timeout): Promise<void> {
 		await room.flush();
-		if (room.isEmpty) this.#forget(room);
+		// Whoever asked for the room meanwhile has set another timer, and may be about to come in.
+		if (room.isEmpty && this.#unloading.get(room) === timer) this.#forget(room);
 	}
 
 	#forget(room: Room): void {

@@ -1,6 +1,7 @@
 import type { Actor } from '$lib/server/auth/access';
 import * as notes from '$lib/server/notes/notes';
 import { createDatabase } from './database';
+import { eventually, openPage } from './page';
 import { makeMember, makeTeam, signIn } from './people';
 import { startSyncServer, type SyncServer } from './server';
 
@@ -12,6 +13,8 @@ export interface SyncBench {
 	cookie: string;
 	/** Makes a note of the engineer's with one calculation cell, and returns its id. */
 	makeNote(source?: string): Promise<string>;
+	/** Waits until the server's evaluators have started. */
+	computes(): Promise<void>;
 	close(): Promise<void>;
 }
 
@@ -19,14 +22,21 @@ export async function startSyncBench(): Promise<SyncBench> {
 	const database = await createDatabase();
 	const engineer = await makeMember(await makeTeam(), 'engineer');
 	const server = await startSyncServer();
+	const cookie = await signIn(engineer);
+	const makeNote = async (source = 'U = 5 V\n') => {
+		const cells = [{ kind: 'calculation' as const, source }];
+		return (await notes.create(engineer, { title: 'Divider', cells })).id;
+	};
 	return {
 		databaseUrl: database.url,
 		server,
 		engineer,
-		cookie: await signIn(engineer),
-		makeNote: async (source = 'U = 5 V\n') => {
-			const cells = [{ kind: 'calculation' as const, source }];
-			return (await notes.create(engineer, { title: 'Divider', cells })).id;
+		cookie,
+		makeNote,
+		computes: async () => {
+			const page = await openPage(server, { noteId: await makeNote(), cookie });
+			await eventually(() => page.evaluation.quantities.U, 60_000);
+			page.destroy();
 		},
 		close: async () => {
 			await server.stop();

@@ -11,6 +11,7 @@ import { startSyncBench, type SyncBench } from '../support/sync';
 let bench: SyncBench;
 beforeAll(async () => {
 	bench = await startSyncBench();
+	await bench.computes();
 });
 afterAll(async () => {
 	await closePool();
@@ -94,7 +95,8 @@ test('recalculations, cursors and presence add nothing to the document or the lo
 	}
 	await saved(page);
 	expect([...peer.doc.share.keys()].sort()).toEqual(['cells', 'title']);
-	expect((await store.current(noteId)).seq).toBe(2 + digits);
+	// Edits make rows, one each or several in one; nothing else does.
+	expect((await store.current(noteId)).seq).toBeLessThanOrEqual(2 + digits);
 	expect(contentOf(peer)).toEqual(contentOf(page));
 	// Text typed in one go takes a byte a letter, and a few for the client that typed it.
 	expect(Y.encodeStateAsUpdate(peer.doc).length - before).toBeLessThanOrEqual(digits + 40);

@@ -75,12 +75,12 @@ test('appends to one note from many sides get sequence numbers without gap or do
 	const bytes = Y.encodeStateAsUpdate(new Y.Doc());
 	const personId = bench.engineer.personId;
 	await Promise.all(
-		Array.from({ length: 40 }, (_, index) =>
+		Array.from({ length: 20 }, (_, index) =>
 			append(noteId, [{ id: `edit-${index}`, personId, bytes }]),
 		),
 	);
 	expect((await rowsOf(noteId)).map((row) => row.seq)).toEqual(
-		Array.from({ length: 41 }, (_, index) => index + 1),
+		Array.from({ length: 21 }, (_, index) => index + 1),
 	);
 });
 

@@ -72,11 +72,16 @@ function compare(a: string, b: string): number {
 	return a < b ? -1 : a > b ? 1 : 0;
 }
 
-/** The document as plain data, in sheet order. */
+/** The document as plain data, in sheet order. A null character, which the database cannot keep, becomes U+FFFD. */
 export function toContent(doc: Y.Doc): NoteContent {
+	const kept = (text: string) => text.replaceAll('\0', '\ufffd');
 	return {
-		title: titleOf(doc).toJSON(),
-		cells: placedCells(doc).map(({ id, kind, source }) => ({ id, kind, source })),
+		title: kept(titleOf(doc).toJSON()),
+		cells: placedCells(doc).map(({ id, kind, source }) => ({
+			id: kept(id),
+			kind,
+			source: kept(source),
+		})),
 	};
 }
 

@@ -15,6 +15,7 @@ export interface Evaluated {
 export class Scheduler {
 	readonly #read: () => { version: number; content: NoteContent };
 	readonly #onResults: (evaluated: Evaluated) => void;
+	readonly #compute: typeof evaluateInChild;
 	#running: Promise<void> | undefined;
 	#wanted = false;
 	#stopped = false;
@@ -23,7 +24,9 @@ export class Scheduler {
 	constructor(
 		read: () => { version: number; content: NoteContent },
 		onResults: (evaluated: Evaluated) => void,
+		compute = evaluateInChild,
 	) {
+		this.#compute = compute;
 		this.#read = read;
 		this.#onResults = onResults;
 	}
@@ -76,6 +79,6 @@ export class Scheduler {
 		if (last && JSON.stringify(last.content.cells) === JSON.stringify(content.cells)) {
 			return last.results;
 		}
-		return evaluateInChild(content.cells, defaultOptions);
+		return this.#compute(content.cells, defaultOptions);
 	}
 }
