@@ -1,4 +1,7 @@
+import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { db } from '$lib/server/db/client';
+import { team } from '$lib/server/db/schema/people';
 import { closePool } from '$lib/server/evaluation/pool';
 import { createDatabase, type TestDatabase } from '../support/database';
 import { givePassword, makeCast, makeMember, signIn, type Cast } from '../support/people';
@@ -17,6 +20,8 @@ beforeAll(async () => {
 	server = await startSyncServer({ ROLES: 'web' });
 	cast = await makeCast('Kestrel Bench');
 	others = await makeCast('Other Bench');
+	// Numbers that no note of the other team has.
+	await db().update(team).set({ nextNoteNumber: 500 }).where(eq(team.id, cast.author.teamId));
 });
 afterAll(async () => {
 	await server.stop();

@@ -13,7 +13,7 @@ beforeAll(async () => {
 	database = await createDatabase();
 	cast = await makeCast();
 	const draft = await writeNote(cast.author, 'Zener clamp', [
-		{ kind: 'calculation', source: 'V_z = 5.1 V\nI_100% = 1 mA' },
+		{ kind: 'calculation', source: 'V_z = 5.1 V  # at 100% load\nI_z = V_z / R_lost' },
 		{ kind: 'requirement', source: 'V_z <= 5 V\nV_z >= 4 V' },
 	]);
 	await current(draft.id);

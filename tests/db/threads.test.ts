@@ -1,5 +1,8 @@
 import { afterAll, beforeAll, expect, test } from 'vitest';
+import { newComment } from '$lib/schemas/comments';
 import * as threads from '$lib/server/comments/threads';
+import { closePool } from '$lib/server/evaluation/pool';
+import { current } from '$lib/server/evaluation/store';
 import { createDatabase, type TestDatabase } from '../support/database';
 import { writeNote } from '../support/notes';
 import { makeCast, type Cast } from '../support/people';
@@ -10,7 +13,10 @@ beforeAll(async () => {
 	database = await createDatabase();
 	cast = await makeCast();
 });
-afterAll(() => database.drop());
+afterAll(async () => {
+	await closePool();
+	await database.drop();
+});
 
 const question = { cellId: 'abcdefghjkmn', kind: 'question', blocking: true } as const;
 
@@ -54,4 +60,13 @@ test('readers neither read nor write comments', async () => {
 	]) {
 		await expect(deed).rejects.toMatchObject({ code: 'forbidden' });
 	}
+});
+
+test('a null character, which the database cannot keep, breaks neither a comment nor a note', async () => {
+	const body = newComment.parse({ body: 'Why\0 4?' });
+	expect(body).toEqual({ body: 'Why 4?' });
+	expect(newComment.safeParse({ body: '\0' }).success).toBe(false);
+	const cells = [{ kind: 'text' as const, source: 'a\0b' }];
+	const { id } = await writeNote(cast.author, 'Pasted', cells);
+	expect((await current(id)).content.cells[0]?.source).toBe('a\ufffdb');
 });

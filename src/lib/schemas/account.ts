@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { role } from './role';
+import { typed } from './text';
 
 /** Longer ones are refused before they are hashed. */
 const maxPasswordLength = 200;
@@ -31,4 +32,4 @@ export const passwordChange = z.object({
 		.max(maxPasswordLength, `At most ${maxPasswordLength} characters.`),
 });
 
-export const roleChange = z.object({ personId: z.string().min(1).max(64), role });
+export const roleChange = z.object({ personId: typed.min(1).max(64), role });

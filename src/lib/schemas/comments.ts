@@ -1,12 +1,13 @@
 import { z } from 'zod';
+import { typed } from './text';
 
 export const threadKinds = ['question', 'correction', 'remark'] as const;
 
 export const newThread = z.object({
-	cellId: z.string().min(1).max(40),
+	cellId: typed.min(1).max(40),
 	kind: z.enum(threadKinds),
 	blocking: z.boolean(),
-	body: z.string().trim().min(1, 'Write something first.').max(4000, 'At most 4 000 characters.'),
+	body: typed.trim().min(1, 'Write something first.').max(4000, 'At most 4 000 characters.'),
 });
 
 export const newComment = newThread.pick({ body: true });

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { typed } from './text';
 
 /** Where a note stands. Derived from candidates and sign-offs, never stored. */
 export type NoteState = 'draft' | 'in check' | 'checked' | 'returned' | 'frozen';
@@ -21,7 +22,7 @@ export interface NoteRow {
 }
 
 export const listQuery = z.object({
-	q: z.string().trim().max(200).catch(''),
+	q: typed.trim().max(200).catch(''),
 	state: z
 		.enum(['all', 'draft', 'in check', 'checked', 'returned', 'frozen', 'not met'])
 		.catch('all'),
@@ -33,5 +34,5 @@ export const listQuery = z.object({
 export type ListQuery = z.infer<typeof listQuery>;
 
 export const newNote = z.object({
-	title: z.string().trim().min(1, 'Give the note a title.').max(200, 'At most 200 characters.'),
+	title: typed.trim().min(1, 'Give the note a title.').max(200, 'At most 200 characters.'),
 });

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import type { NoteState } from './notes';
+import { typed } from './text';
 
 const password = z.string().min(1, 'Give your password.').max(200, 'At most 200 characters.');
 
@@ -12,7 +13,7 @@ export const signing = z.object({
 	digest: z.string().regex(/^[0-9a-f]{64}$/, 'Reload the page and look at the candidate again.'),
 });
 export const returning = signing.extend({
-	reason: z.string().trim().min(1, 'Say why it goes back.').max(2000, 'At most 2 000 characters.'),
+	reason: typed.trim().min(1, 'Say why it goes back.').max(2000, 'At most 2 000 characters.'),
 });
 
 export type Meaning = 'prepared' | 'checked' | 'approved' | 'returned';

@@ -24,16 +24,19 @@ export interface Frozen {
 	results: Evaluation;
 }
 
+const noSuchRevision = () => new AppError('notFound', 'There is no such revision.');
+
 /** A frozen revision as it was frozen. */
 export async function get(actor: Actor, number: string, letter: string): Promise<Frozen> {
 	demand(actor, 'readFrozen');
 	const { id } = await notes.get(actor, number);
+	if (!/^[A-Z]{1,9}$/.test(letter)) throw noSuchRevision();
 	const [found] = await db()
 		.select({ revision, candidate })
 		.from(revision)
 		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
 		.where(and(eq(revision.noteId, id), eq(revision.letter, letter)));
-	if (!found) throw new AppError('notFound', 'There is no such revision.');
+	if (!found) throw noSuchRevision();
 	const { content, results, engine, authors } = found.candidate;
 	return {
 		revision: {

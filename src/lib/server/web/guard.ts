@@ -40,6 +40,7 @@ export const headers: Handle = async ({ event, resolve }) => {
 	set('cross-origin-opener-policy', 'same-origin');
 	set('permissions-policy', 'camera=(), microphone=(), geolocation=()');
 	set('content-security-policy', "default-src 'none'; frame-ancestors 'none'");
+	if (event.locals.actor) set('cache-control', 'private, no-cache');
 	if (env().ORIGIN.startsWith('https:')) set('strict-transport-security', 'max-age=31536000');
 	return response;
 };
