@@ -10,7 +10,7 @@ import { closePool } from '$lib/server/evaluation/pool';
 import { seal } from '$lib/server/revisions/digest';
 import { canonicalJson } from '../support/canonical';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { edit, freeze, writeNote } from '../support/notes';
+import { edit, freeze, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
 
 const sha256 = (text: string) => createHash('sha256').update(text, 'utf8').digest('hex');

@@ -4,7 +4,7 @@ import { current } from '$lib/server/evaluation/store';
 import { closePool } from '$lib/server/evaluation/pool';
 import * as listing from '$lib/server/notes/listing';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { check, edit, freeze, propose, writeNote } from '../support/notes';
+import { check, edit, freeze, propose, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
 
 let database: TestDatabase;

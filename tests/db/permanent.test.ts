@@ -3,7 +3,7 @@ import { afterAll, beforeAll, expect, test } from 'vitest';
 import { db } from '$lib/server/db/client';
 import { closePool } from '$lib/server/evaluation/pool';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { freeze, writeNote } from '../support/notes';
+import { freeze, writeNote } from '../support/note-life';
 import { makeCast } from '../support/people';
 
 let database: TestDatabase;

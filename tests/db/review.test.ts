@@ -9,7 +9,7 @@ import { closePool } from '$lib/server/evaluation/pool';
 import * as candidates from '$lib/server/revisions/candidates';
 import * as review from '$lib/server/revisions/review';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { check, edit, freeze, propose, seen, writeNote } from '../support/notes';
+import { check, edit, freeze, propose, seen, writeNote } from '../support/note-life';
 import { makeCast, testPassword, type Cast } from '../support/people';
 
 let database: TestDatabase;

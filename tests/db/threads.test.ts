@@ -4,7 +4,7 @@ import * as threads from '$lib/server/comments/threads';
 import { closePool } from '$lib/server/evaluation/pool';
 import { current } from '$lib/server/evaluation/store';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { writeNote } from '../support/notes';
+import { writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
 
 let database: TestDatabase;

@@ -1,6 +1,6 @@
 import * as threads from '$lib/server/comments/threads';
 import type { Actor } from '$lib/server/auth/access';
-import { check, freeze, propose, seen, writeNote } from './notes';
+import { check, freeze, propose, seen, writeNote } from './note-life';
 import { testPassword as password, type Cast } from './people';
 
 /** A note made for one visit, with what a form or address may need of it. */
