@@ -27,8 +27,6 @@ export class Sheet {
 	readonly margin = new MarginPlaces();
 	/** Cell whose thread form is open. */
 	composing = $state<string>();
-	// Nothing is drawn from it, so it need not be watched.
-	// eslint-disable-next-line svelte/prefer-svelte-reactivity
 	readonly #doors = new Map<string, (edge: Edge) => void>();
 
 	constructor({ note, person, content, evaluation, threads }: Start) {
