@@ -1,50 +1,47 @@
-import type { NoteCell } from '$lib/note/document';
-import type { Actor } from '$lib/server/auth/access';
-import * as notes from '$lib/server/notes/notes';
-import * as updates from '$lib/server/notes/updates';
-import * as candidates from '$lib/server/revisions/candidates';
-import { placedCells } from '$lib/note/document';
-import * as Y from 'yjs';
-import { testPassword as password, type Cast } from './people';
+import { defaultOptions, evaluate } from '$lib/calc/evaluate';
+import type { Cell, Evaluation, Fault } from '$lib/calc/results';
 
-const sound: Omit<NoteCell, 'id'>[] = [
-	{ kind: 'text', source: '## Purpose\n\nThe divider gives {{V_out}}.' },
-	{ kind: 'calculation', source: 'V_in = 10 V\nV_out = V_in / 4' },
-	{ kind: 'requirement', source: 'V_out <= 3 V' },
-];
-
-/** A note of the author's that can be proposed and frozen, unless other cells are given. */
-export async function writeNote(author: Actor, title = 'Divider', cells = sound) {
-	return await notes.create(author, { title, cells });
+/** A calculation cell. */
+export function calculation(source: string, id = 'calc'): Cell {
+	return { id, kind: 'calculation', source };
 }
 
-export async function propose(author: Actor, number: string): Promise<void> {
-	await candidates.propose(author, number, password);
+/** A requirement cell. */
+export function requirement(source: string, id = 'req'): Cell {
+	return { id, kind: 'requirement', source };
 }
 
-/** What a person signs who looks at the newest candidate. */
-export async function seen(actor: Actor, number: string) {
-	return { password, digest: (await candidates.get(actor, number)).candidate.digest };
+/** A text cell. */
+export function text(source: string, id = 'text'): Cell {
+	return { id, kind: 'text', source };
 }
 
-export async function check({ engineer }: Cast, number: string): Promise<void> {
-	await candidates.check(engineer, number, await seen(engineer, number));
+/** Evaluates cells; a plain text stands for one calculation cell. */
+export function compute(...cells: (Cell | string)[]): Evaluation {
+	const all = cells.map((cell, i) =>
+		typeof cell === 'string' ? calculation(cell, `c${i}`) : cell,
+	);
+	return evaluate(all, defaultOptions);
 }
 
-/** Proposes, checks and approves a note; returns the letter. */
-export async function freeze(cast: Cast, number: string): Promise<string> {
-	await propose(cast.author, number);
-	await check(cast, number);
-	return await candidates.approve(cast.approver, number, await seen(cast.approver, number));
+/** Readout of the last line of a calculation, with ordinary spaces; its fault's code where it has none. */
+export function shown(source: string): string {
+	const { lines, errors } = compute(source);
+	const last = lines.at(-1);
+	const fault = errors.find((error) => error.line === last?.line);
+	return spaced(last?.readout?.text ?? fault?.code ?? '');
 }
 
-/** Adds text at the end of a cell, as an edit of the person. */
-export async function edit(person: Actor, noteId: string, cell: number, text: string) {
-	const { doc } = await updates.loadDocument(noteId);
-	const before = Y.encodeStateVector(doc);
-	const source = placedCells(doc)[cell]?.text;
-	if (!source) throw new Error(`there is no cell ${cell}`);
-	source.insert(source.length, text);
-	const bytes = Y.encodeStateAsUpdate(doc, before);
-	await updates.append(noteId, [{ id: crypto.randomUUID(), personId: person.personId, bytes }]);
+/** The only fault of a calculation. Throws where there are none or several. */
+export function onlyFault(...cells: (Cell | string)[]): Fault {
+	const { errors } = compute(...cells);
+	const [fault] = errors;
+	if (!fault || errors.length > 1)
+		throw new Error(`Expected one fault, found ${JSON.stringify(errors)}`);
+	return fault;
+}
+
+/** Text with its no-break spaces made ordinary. */
+export function spaced(value: string): string {
+	return value.replace(/[\u00a0\u202f]/g, ' ');
 }

@@ -12,10 +12,12 @@ export const bounds = {
 	members: 100_000,
 	/** Function calls inside one another. */
 	calls: 128,
+	/** Levels of formulas that calls inside one another stand on; each takes some of the process's stack. */
+	levels: 1_500,
 	/** Operations of one line, a member of a matrix counting as one. */
-	lineSteps: 500_000,
+	lineSteps: 250_000,
 	/** Operations of a note. */
-	noteSteps: 3_000_000,
+	noteSteps: 1_000_000,
 	/** Members of a matrix that are handed out with the results. */
 	listedMembers: 10_000,
 } as const;

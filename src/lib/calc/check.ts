@@ -44,28 +44,25 @@ export function check(node: Node, types: Types): Type {
 			return checkChoice(node, types);
 		case 'call':
 			return checkCall(node, types);
-		case 'array':
-			return node.rows
-				.flat()
-				.map((item) => numeric(item, types, 'A list holds'))
-				.reduce((a, b, i) =>
-					alike(
-						a,
-						b,
-						node.rows.flat()[i] ?? node,
-						(x, y) => `A list holds values of one unit, not ${x} and ${y}.`,
-					),
-				);
+		case 'array': {
+			const items = node.rows.flat();
+			return uniform(
+				items,
+				items.map((item) => numeric(item, types, 'A list holds')),
+				'A list has',
+			);
+		}
 		case 'range': {
-			const parts = [node.start, node.step ?? node.start, node.end];
-			return parts
-				.map((part) => numeric(part, types, 'A range counts'))
-				.reduce((a, b, i) =>
-					alike(a, b, parts[i] ?? node, (x, y) => `A range has one unit, not ${x} and ${y}.`),
-				);
+			const parts = node.step ? [node.start, node.step, node.end] : [node.start, node.end];
+			return uniform(
+				parts,
+				parts.map((part) => numeric(part, types, 'A range counts')),
+				'A range has',
+			);
 		}
 		case 'index':
-			for (const index of node.indexes) expectPlain(index, types, 'An index');
+			for (const index of node.indexes)
+				expectPlain(index, numeric(index, types, 'An index takes'), 'An index');
 			return check(node.object, types);
 		case 'convert':
 			return checkConversion(node, types);
@@ -95,6 +92,13 @@ function ofLiteral(unit: Unit | undefined): Type {
 	};
 }
 
+/** The type that all parts share. */
+function uniform(parts: Node[], found: Type[], what: string): Type {
+	return found.reduce((a, b, i) =>
+		alike(a, b, parts[i] ?? parts[0]!, (x, y) => `${what} one unit, not ${x} and ${y}.`),
+	);
+}
+
 function numeric(node: Node, types: Types, doing: string): Type {
 	const type = check(node, types);
 	if (type.kind === 'boolean' || type.kind === 'series')
@@ -110,8 +114,7 @@ function condition(node: Node, types: Types): void {
 		});
 }
 
-function expectPlain(node: Node, types: Types, what: string): void {
-	const type = numeric(node, types, `${what} takes`);
+function expectPlain(node: Node, type: Type, what: string): void {
 	if (type.dimension && !isPure(type))
 		throw new Trouble('dimension', node, `${what} is a pure number, not ${spoken(type)}.`);
 }
@@ -134,7 +137,7 @@ function checkUnary(node: NodeOf<'unary'>, types: Types): Type {
 		node.op === '!' ? 'A factorial takes' : 'A sign stands before',
 	);
 	if (node.op === '!') {
-		expectPlain(node.value, types, 'The value of a factorial');
+		expectPlain(node.value, type, 'The value of a factorial');
 		return pure;
 	}
 	if (node.op === '-') noPoint(node, type, 'Changes the sign of');

@@ -1,6 +1,6 @@
 import { parseUnit } from './language/parse-line';
 import { canonical } from './language/characters';
-import { builtInNames, nearest } from './language/names';
+import { builtInNames } from './language/names';
 import type { Note } from './note';
 import type { Cell, Fault, Figure } from './results';
 import { show } from './show';
@@ -78,7 +78,7 @@ function unitAt(text: string, offset: number) {
 function unknownName(typed: string, at: { from: number; to: number }, note: Note): Trouble {
 	if (typed === '')
 		return new Trouble('syntax', at, 'The name of a quantity is missing between the braces.');
-	const near = nearest(typed, note.known());
+	const near = note.suggest(typed, []);
 	const built = [...builtInNames()].includes(typed);
 	return new Trouble(
 		'unknownName',

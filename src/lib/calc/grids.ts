@@ -53,7 +53,9 @@ export function range(start: number, step: number, end: number): Grid {
 	const count = Math.max(0, Math.floor((end - start) / step + 1e-9) + 1);
 	if (!(count <= bounds.members)) throw new TooLarge(count);
 	if (count === 0) throw new Refusal('This range is empty.');
-	return list(Float64Array.from({ length: count }, (_, i) => start + i * step));
+	const data = new Float64Array(count);
+	for (let i = 0; i < count; i++) data[i] = start + i * step;
+	return list(data);
 }
 
 /** More members than a list may have. */

@@ -5,11 +5,14 @@ import { builtInNames, nearest, unitNames, whyReserved } from './language/names'
 import { findSymbol, spokenName } from './units/table';
 import { Meter } from './meter';
 import { whereabouts, type NoteLine, type Watch } from './note-lines';
-import { order } from './order';
+import { leftOut, order } from './order';
 import { run, type Scope } from './run';
 import { Trouble } from './trouble';
 import type { Type } from './types';
 import type { Value } from './values';
+
+const mostSuggestions = 25;
+const mostCandidates = 1_000;
 
 /** A line that was computed. */
 export interface Computed {
@@ -26,6 +29,9 @@ export class Note {
 	readonly #definitions = new Map<string, NoteLine>();
 	readonly #meter = new Meter();
 	readonly #names: Set<string>;
+	/** For each waiting line the one whose error it waits for; never a circle, for a line on a circle does not wait. */
+	readonly #awaited = new Map<NoteLine, NoteLine>();
+	#suggestions = 0;
 
 	constructor(
 		readonly lines: readonly NoteLine[],
@@ -47,9 +53,9 @@ export class Note {
 		return this.#definitions.get(name);
 	}
 
-	/** Names that a wrong one may have meant. */
-	known(): string[] {
-		return [...this.#definitions.values()].map((line) => line.defined?.typed ?? '');
+	#known(): string[] {
+		const lines = [...this.#definitions.values()].slice(0, mostCandidates);
+		return lines.map((line) => line.defined?.typed ?? '');
 	}
 
 	/** Why a use of a defined name has no value: it, or what it waits for, has an error. */
@@ -170,13 +176,17 @@ export class Note {
 	}
 
 	#reportCircle(name: string, circle: string[]): void {
-		const lines = circle.map((member) => this.#definitions.get(member)!);
+		const lines = circle
+			.filter((member) => member !== leftOut)
+			.map((member) => this.#definitions.get(member)!);
 		// A function may use itself: whether it ends is seen when it is computed.
 		if (lines.every((line) => line.kind === 'function')) return;
 		const line = this.#definitions.get(name)!;
 		const next = circle[1];
 		const at = line.references.find((reference) => reference.name === next) ?? line.defined!;
-		const shown = lines.map((member) => member.defined?.typed ?? '').join(' → ');
+		const shown = circle
+			.map((member) => this.#definitions.get(member)?.defined?.typed ?? member)
+			.join(' → ');
 		const itself = circle.length === 2;
 		this.fail(
 			line,
@@ -195,19 +205,8 @@ export class Note {
 
 	/** The line at the bottom of a chain of waiting lines. */
 	#root(line: NoteLine): NoteLine {
-		const seen = new Set<NoteLine>();
 		let at = line;
-		while (!seen.has(at)) {
-			seen.add(at);
-			const waits = this.troubles.get(at)?.every((trouble) => trouble.code === 'waits');
-			const next = waits
-				? this.#usedBy(at)
-						.map((name) => this.#definitions.get(name)!)
-						.find((used) => this.#broken(used))
-				: undefined;
-			if (!next) return at;
-			at = next;
-		}
+		for (let next = this.#awaited.get(at); next; next = this.#awaited.get(at)) at = next;
 		return at;
 	}
 
@@ -220,6 +219,7 @@ export class Note {
 		if (line.trouble) {
 			const unit = line.trouble.how.unitName;
 			const meant = unit === undefined ? undefined : this.#definitions.get(unit);
+			if (meant) this.#awaited.set(line, meant);
 			this.fail(
 				line,
 				meant && unit !== undefined ? this.waiting(unit, meant, line.trouble.at) : line.trouble,
@@ -232,7 +232,12 @@ export class Note {
 			const unknowns = this.#unresolved(line);
 			const type = check(line.body, this.#types);
 			const [first] = unknowns;
-			if (first) throw first;
+			if (first) {
+				const awaited = line.references.map(({ name }) => this.#definitions.get(name));
+				const used = awaited.find((other) => other && this.#broken(other));
+				if (first.code === 'waits' && used) this.#awaited.set(line, used);
+				throw first;
+			}
 			if (line.kind === 'function') return;
 			const value = run(line.body, this.#scope);
 			if (type.kind === 'series')
@@ -297,24 +302,41 @@ export class Note {
 		{ typed, called, from, to }: { typed: string; called: boolean } & Place,
 		line: NoteLine,
 	): Trouble {
-		const behindNumber = /\d\s*$/.test(line.text.slice(0, from));
+		const before = line.text.slice(0, from);
+		const behindNumber = /\d\s*$/.test(before);
+		const message = called ? `There is no function \`${typed}\`.` : `\`${typed}\` is not defined.`;
+		const code = /^([kMGmRunp\u00b5])(\d+)$/.exec(typed);
+		if (behindNumber && code) {
+			const number = `${/\d+\s*$/.exec(before)?.[0].trim() ?? ''}.${code[2] ?? ''}`;
+			const mend = `Write the decimal mark and the unit: \`${number} ${code[1] === 'R' ? '' : (code[1] ?? '')}ohm\`, say.`;
+			return new Trouble('unknownName', { from, to }, message, { mend });
+		}
+		if (behindNumber && /^[kMGmunp\u00b5]$/.test(typed))
+			return new Trouble('unknownName', { from, to }, message, {
+				mend: `A prefix needs its unit: \`${typed}ohm\` or \`${typed}V\`, say.`,
+			});
 		const own = line.parameters.map((parameter) => parameter.typed);
-		const names = [
+		const near = this.suggest(typed, [
 			...own,
-			...this.known(),
 			...builtInNames(),
 			...(behindNumber ? unitNames() : []),
-		];
-		const near = nearest(
-			typed,
-			names.filter((name) => name !== typed),
-		);
-		const message = called ? `There is no function \`${typed}\`.` : `\`${typed}\` is not defined.`;
+		]);
 		return new Trouble(
 			'unknownName',
 			{ from, to },
 			message,
 			near === undefined ? {} : { mend: `Did you mean \`${near}\`?`, replacement: near },
+		);
+	}
+
+	/** The name that a wrong one may have meant. Comparing takes time: only the first wrong ones of a note get one. */
+	suggest(typed: string, others: Iterable<string>): string | undefined {
+		if (this.#suggestions >= mostSuggestions || typed.length > 60) return undefined;
+		this.#suggestions += 1;
+		const names = [...others, ...this.#known()];
+		return nearest(
+			typed,
+			names.filter((name) => name !== typed),
 		);
 	}
 
@@ -330,6 +352,7 @@ export class Note {
 		function: (name) => this.#function(name),
 		meter: this.#meter,
 		depth: 0,
+		levels: 0,
 	};
 
 	#function(name: string): NoteLine | undefined {

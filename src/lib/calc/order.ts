@@ -44,10 +44,32 @@ export function order(names: Iterable<string>, uses: (name: string) => readonly 
 			// Members leave the stack last first; those found first are used by those found later.
 			sorted.push(...component);
 			if (component.size > 1 || uses(name).includes(name))
-				for (const member of component) circles.set(member, shortest(member, component, uses));
+				for (const member of component) circles.set(member, circleOf(member, component, uses));
 		}
 	}
 	return { sorted, circles };
+}
+
+/** Largest circle that is searched for the shortest way round; of larger ones the beginning is told. */
+const mostSearched = 60;
+
+/** Stands in a circle for the names that are left out. */
+export const leftOut = '…';
+
+function circleOf(
+	start: string,
+	within: Set<string>,
+	uses: (name: string) => readonly string[],
+): string[] {
+	if (within.size <= mostSearched) return shortest(start, within, uses);
+	const path = [start];
+	while (path.length < 5) {
+		const next = uses(path.at(-1) ?? start).find((used) => within.has(used));
+		if (next === undefined) break;
+		path.push(next);
+		if (next === start) return path;
+	}
+	return [...path, leftOut, start];
 }
 
 /** The shortest way from a name back to itself within its circle. */

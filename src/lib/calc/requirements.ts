@@ -1,4 +1,4 @@
-import type { Comparison, Node } from './language/nodes';
+import { hasNames, type Comparison, type Node } from './language/nodes';
 import type { Note } from './note';
 import type { NoteLine } from './note-lines';
 import type { Options, Requirement, Verdict } from './results';
@@ -92,26 +92,6 @@ function shapeOf(body: Node): Shape {
 	if (!hasNames(first) && hasNames(middle))
 		return { value: middle, limits: [{ node: first, op: turned[op] }] };
 	return { value: first, limits: [{ node: middle, op }] };
-}
-
-function hasNames(node: Node): boolean {
-	switch (node.kind) {
-		case 'name':
-			return true;
-		case 'unary':
-		case 'convert':
-			return hasNames(node.value);
-		case 'binary':
-			return hasNames(node.left) || hasNames(node.right);
-		case 'call':
-			return node.args.some(hasNames);
-		case 'choice':
-			return [node.condition, node.yes, node.no].some(hasNames);
-		case 'compare':
-			return node.operands.some(hasNames);
-		default:
-			return node.kind !== 'number' && node.kind !== 'boolean';
-	}
 }
 
 interface Bound {

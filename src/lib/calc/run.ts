@@ -14,8 +14,41 @@ export interface Scope {
 	of(name: string): Value | undefined;
 	function(name: string): ParsedLine | undefined;
 	readonly meter: Meter;
-	/** Function calls around this one. */
+	/** Function calls around this one, and how many levels of formulas they stand on. */
 	readonly depth: number;
+	readonly levels: number;
+	/** The note, seen from inside a function: it knows its parameters and the note, not what its caller bound. */
+	readonly note?: Scope;
+}
+
+/** What a function computes from: the values it was called with. */
+class Frame implements Scope {
+	readonly note: Scope;
+	readonly meter: Meter;
+	readonly depth: number;
+	readonly levels: number;
+
+	constructor(
+		caller: Scope,
+		private readonly own: ParsedLine,
+		private readonly values: Value[],
+	) {
+		this.note = caller.note ?? caller;
+		this.meter = caller.meter;
+		this.depth = caller.depth + 1;
+		this.levels = caller.levels + own.height;
+	}
+
+	of(name: string): Value | undefined {
+		const { parameters } = this.own;
+		for (let i = 0; i < parameters.length; i++)
+			if (parameters[i]?.name === name) return this.values[i];
+		return this.note.of(name);
+	}
+
+	function(name: string): ParsedLine | undefined {
+		return this.note.function(name);
+	}
 }
 
 /** Computes a checked expression in SI units. Throws Trouble. */
@@ -211,38 +244,23 @@ function runCall(node: NodeOf<'call'>, scope: Scope): Value {
 	}
 	const own = scope.function(node.name);
 	if (!own?.body) throw new Trouble('waits', node, `Waits for \`${node.typed}\`.`);
-	if (scope.depth >= bounds.calls)
+	if (scope.depth >= bounds.calls || scope.levels > bounds.levels)
 		throw new Trouble(
 			'tooDeep',
 			node,
-			`\`${node.typed}\` calls itself more than ${bounds.calls} times inside itself.`,
+			`The calls of \`${node.typed}\` stand too deeply in one another.`,
 			{
 				mend: 'Give it a case that ends: `f(n) = n <= 1 ? 1 : n * f(n - 1)`.',
 			},
 		);
-	const bound = new Map(own.parameters.map((parameter, i) => [parameter.name, args[i] ?? NaN]));
-	const inner: Scope = {
-		of: (name) =>
-			bound.get(name) ??
-			(own.parameters.some((p) => p.name === name) ? undefined : outermost(scope).of(name)),
-		function: (name) => scope.function(name),
-		meter: scope.meter,
-		depth: scope.depth + 1,
-	};
-	outer.set(inner, outermost(scope));
 	try {
-		return run(own.body, inner);
+		return run(own.body, new Frame(scope, own, args));
 	} catch (error) {
-		if (error instanceof Trouble) throw new Trouble(error.code, node, error.message, error.how);
+		// Columns inside a function are those of its own line; the caller is told where it called.
+		if (error instanceof Trouble && scope.depth === 0)
+			throw new Trouble(error.code, node, error.message, error.how);
 		throw error;
 	}
-}
-
-const outer = new WeakMap<Scope, Scope>();
-
-/** The note's own scope: a function sees its parameters and the note, not what its caller bound. */
-function outermost(scope: Scope): Scope {
-	return outer.get(scope) ?? scope;
 }
 
 function one(value: Value, at: Place): number {

@@ -1,4 +1,5 @@
 import { Trouble } from '../trouble';
+import { spokenName } from '../units/table';
 import { divided, multiplied, power, toSI, type Unit } from '../units/unit';
 import type { BinaryOperator, Node, NodeOf, Place } from './nodes';
 
@@ -48,11 +49,13 @@ function endsInUnit(node: Node): boolean {
 
 /** The fault of a unit symbol where a value is expected. */
 export function bareUnit(node: NodeOf<'unit'>): Trouble {
-	const { label, text } = node.unit;
+	const { parts, label, text } = node.unit;
+	const [only] = parts;
+	const name = only && parts.length === 1 ? spokenName(only.symbol) : label;
 	return new Trouble(
 		'ambiguous',
 		node,
-		`\`${text}\` here reads as the unit ${label}, not as a quantity.`,
+		`\`${text}\` here reads as the unit ${name}, not as a quantity.`,
 		{
 			mend: `Write \`(1 ${text})\` for the unit, or give the quantity another name.`,
 			replacement: `(1 ${text})`,

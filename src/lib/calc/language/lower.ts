@@ -120,6 +120,10 @@ export class Lowering {
 						mend: 'Give each quantity a line of its own.',
 					},
 				);
+			case 'BlockNode':
+				throw new Trouble('notAllowed', this.#line(), 'A line holds one formula, without `;`.', {
+					mend: 'Give each formula a line of its own.',
+				});
 			default:
 				throw new Trouble('notAllowed', this.#line(), 'This is not part of the formula language.');
 		}
@@ -152,7 +156,7 @@ export class Lowering {
 		if (this.parameters.has(name)) return { kind: 'name', name, typed, ...at };
 		const symbol = findSymbol(typed);
 		if (symbol) {
-			const before = this.tokens[this.tokens.indexOf(token) - 1];
+			const before = this.tokens[(this.#starts.get(token.from) ?? 0) - 1];
 			if (before?.kind === 'number')
 				this.unitsBehindNumbers.push({ typed, number: before.text, from: before.from, to: at.to });
 			return { kind: 'unit', unit: fromSymbol(symbol), ...at };
@@ -203,7 +207,11 @@ export class Lowering {
 		if (comparison) return this.#relation({ conditionals: [fn], params: [first, second] });
 		const op = binary[fn];
 		if (!op)
-			throw new Trouble('notAllowed', this.#line(), `\`${node.op}\` is not part of formulas.`);
+			throw new Trouble(
+				'notAllowed',
+				this.#line(),
+				`\`${String(node.op)}\` is not part of formulas.`,
+			);
 		const left = this.#any(first);
 		const right = this.#any(second);
 		if (node.implicit) this.#checkSideBySide(left, right);
@@ -336,7 +344,7 @@ export class Lowering {
 
 	#closing(last: Node | undefined, name: Token): number {
 		if (last) return this.#closeAfter(last.to);
-		return this.tokens[this.tokens.indexOf(name) + 2]?.to ?? name.to;
+		return this.tokens[(this.#starts.get(name.from) ?? 0) + 2]?.to ?? name.to;
 	}
 
 	/** End of the first closing bracket from `to` on; a trailing comma or semicolon may stand before it. */

@@ -27,21 +27,26 @@ export function whyReserved(
 	taken: ReadonlySet<string>,
 ): { message: string; suggestion: string } | undefined {
 	const name = canonical(typed);
-	const suggestion = free(typed, taken);
 	const unit = findSymbol(typed);
-	if (unit) return { message: `\`${typed}\` is the unit ${spokenName(unit)}.`, suggestion };
-	if (constants.has(name)) return { message: `\`${typed}\` is a constant.`, suggestion };
-	if (series.has(name))
-		return { message: `\`${typed}\` is a series of preferred values.`, suggestion };
-	if (functions.has(name)) return { message: `\`${typed}\` is a function.`, suggestion };
-	if (words.has(name))
-		return { message: `\`${typed}\` is a word of the formula language.`, suggestion };
-	if (name.startsWith('_') || name in Object.prototype || name === 'prototype')
-		return {
-			message: `\`${typed}\` cannot be the name of a quantity.`,
-			suggestion: name.startsWith('_') ? free(typed.replace(/^_+/, '') || 'x', taken) : suggestion,
-		};
-	return undefined;
+	const kind = unit
+		? `the unit ${spokenName(unit)}`
+		: constants.has(name)
+			? 'a constant'
+			: series.has(name)
+				? 'a series of preferred values'
+				: functions.has(name)
+					? 'a function'
+					: words.has(name)
+						? 'a word of the formula language'
+						: undefined;
+	if (kind !== undefined)
+		return { message: `\`${typed}\` is ${kind}.`, suggestion: free(typed, taken) };
+	if (!name.startsWith('_') && !(name in Object.prototype) && name !== 'prototype')
+		return undefined;
+	return {
+		message: `\`${typed}\` cannot be the name of a quantity.`,
+		suggestion: free(typed.replace(/^_+/, ''), taken),
+	};
 }
 
 function free(typed: string, taken: ReadonlySet<string>): string {
@@ -65,7 +70,7 @@ function isTaken(typed: string): boolean {
 /** The known name that looks most like an unknown one; undefined where none is near. */
 export function nearest(typed: string, candidates: Iterable<string>): string | undefined {
 	const wanted = canonical(typed);
-	const most = wanted.length <= 2 ? 1 : wanted.length <= 5 ? 1 : 2;
+	const most = wanted.length <= 2 ? 0.5 : wanted.length <= 5 ? 1 : 2;
 	let best: { name: string; distance: number } | undefined;
 	for (const name of candidates) {
 		if (Math.abs(name.length - typed.length) > most + 1) continue;

@@ -46,3 +46,44 @@ export interface UnitBehindNumber extends Place {
 	typed: string;
 	number: string;
 }
+
+/** The parts of an expression that are expressions themselves. */
+export function partsOf(node: Node): readonly Node[] {
+	switch (node.kind) {
+		case 'unary':
+		case 'convert':
+			return [node.value];
+		case 'binary':
+			return [node.left, node.right];
+		case 'compare':
+			return node.operands;
+		case 'choice':
+			return [node.condition, node.yes, node.no];
+		case 'call':
+			return node.args;
+		case 'array':
+			return node.rows.flat();
+		case 'range':
+			return node.step ? [node.start, node.step, node.end] : [node.start, node.end];
+		case 'index':
+			return [node.object, ...node.indexes];
+		default:
+			return [];
+	}
+}
+
+/** Levels of an expression's tree. */
+export function heightOf(node: Node): number {
+	let height = 0;
+	let level: readonly Node[] = [node];
+	while (level.length > 0) {
+		height += 1;
+		level = level.flatMap(partsOf);
+	}
+	return height;
+}
+
+/** Whether an expression uses a name. */
+export function hasNames(node: Node): boolean {
+	return node.kind === 'name' || partsOf(node).some(hasNames);
+}

@@ -5,7 +5,7 @@ import type { Unit } from '../units/unit';
 import { asTyped, canonical, prepared } from './characters';
 import { Lowering } from './lower';
 import { mathjs } from './mathjs';
-import type { Node, Place, Reference, UnitBehindNumber } from './nodes';
+import { heightOf, type Node, type Place, type Reference, type UnitBehindNumber } from './nodes';
 import { syntaxTrouble } from './syntax-errors';
 import { tokenize, type Token } from './tokens';
 
@@ -21,6 +21,8 @@ export interface ParsedLine {
 	defined?: Place & { name: string; typed: string };
 	parameters: Parameter[];
 	body?: Node;
+	/** Levels of the formula's tree. */
+	height: number;
 	references: Reference[];
 	/** `5 C`: places of a number with the unit symbol behind it. */
 	unitsBehindNumbers: UnitBehindNumber[];
@@ -53,7 +55,7 @@ export function unreadLine(text: string, trouble: Trouble): ParsedLine {
 	return { ...empty, kind: start.kind, ...start.defined, trouble };
 }
 
-const empty = { parameters: [], references: [], unitsBehindNumbers: [] };
+const empty = { height: 0, parameters: [], references: [], unitsBehindNumbers: [] };
 
 const head = /^(\s*)([\p{L}_$\u00b0\u00b5%][\p{L}\d_$\u00b0\u00b5%]*)\s*(\([^()]*\))?\s*=(?!=)/u;
 
@@ -123,7 +125,7 @@ function readFormula(line: string, kind: ParsedLine['kind']): Partial<ParsedLine
 
 function finished(lowering: Lowering, body: Node): Partial<ParsedLine> {
 	const { references, unitsBehindNumbers } = lowering;
-	return { body, references, unitsBehindNumbers };
+	return { body, references, unitsBehindNumbers, height: heightOf(body) };
 }
 
 function treeOf(line: string, tokens: Token[]): M.MathNode {

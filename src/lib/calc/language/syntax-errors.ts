@@ -15,6 +15,10 @@ export function syntaxTrouble(error: unknown, line: string, tokens: Token[]): Tr
 	const last = tokens.at(-1) ?? { ...whole(line), text: '' };
 	const place = found ?? { from: last.from, to: last.to };
 
+	if (message.startsWith('Column dimensions'))
+		return new Trouble('syntax', whole(line), 'The rows of this matrix differ in length.');
+	if (message.startsWith('False part'))
+		return new Trouble('syntax', place, 'A choice needs both cases: `condition ? this : that`.');
 	const open = unclosed(tokens);
 	if (
 		open &&
@@ -59,12 +63,15 @@ export function syntaxTrouble(error: unknown, line: string, tokens: Token[]): Tr
 			mend: 'Remove it.',
 		});
 	}
-	if (message.startsWith('False part'))
-		return new Trouble('syntax', place, 'A choice needs both cases: `condition ? this : that`.');
 	if (message.startsWith('Digit expected'))
 		return new Trouble('syntax', place, 'The exponent of this number is incomplete.');
-	if (message.startsWith('Column dimensions'))
-		return new Trouble('syntax', whole(line), 'The rows of this matrix differ in length.');
+	if (message.startsWith('Unexpected part'))
+		return new Trouble('syntax', place, `\`${asTyped(found.text)}\` follows without an operator.`, {
+			mend:
+				found.kind === 'number'
+					? 'Write a number without spaces, or put an operator.'
+					: 'Put an operator.',
+		});
 	return new Trouble(
 		'syntax',
 		place,

@@ -9,10 +9,10 @@ function symbol(text: string): UnitSymbol {
 }
 
 /**
- * Named units in the order they are preferred. Hertz is not among them: 1/s may be a rate, so that it is shown as Hz
- * where a line was typed in hertz or asks for it with `to Hz`.
+ * Named units in the order they are preferred. Hertz is not among them, 1/s may be a rate: it is shown where a line was
+ * typed in hertz or asks for it with `to Hz`. Nor is the weber: the trade says V·s of what an integrator sees.
  */
-const named = ['V', 'A', 'ohm', 'W', 'F', 'H', 'S', 'C', 'J', 'N', 'Pa', 'T', 'Wb']
+const named = ['V', 'A', 'ohm', 'W', 'F', 'H', 'S', 'C', 'J', 'N', 'Pa', 'T']
 	.concat(['K', 's', 'm', 'kg', 'mol', 'cd', 'bit'])
 	.map(symbol);
 const bases = ['kg', 'm', 's', 'A', 'K', 'cd', 'mol', 'bit'].map(symbol);

@@ -10,7 +10,7 @@ const minus = '\u2212';
 
 /** Prefixes that a readout may choose, by unit; others are shown without a prefix. */
 const shown: Readonly<Record<string, readonly string[]>> = {
-	V: ['n', 'u', 'm', '', 'k', 'M'],
+	V: ['p', 'n', 'u', 'm', '', 'k', 'M'],
 	A: ['f', 'p', 'n', 'u', 'm', '', 'k'],
 	ohm: ['u', 'm', '', 'k', 'M', 'G', 'T'],
 	W: ['p', 'n', 'u', 'm', '', 'k', 'M', 'G'],
@@ -71,6 +71,7 @@ function choose(value: number, unit: Unit, digits: number) {
 		const option = reprefixed(unit, prefix);
 		if (!option) continue;
 		const size = Math.abs(Number(shifted(value, option.shift).toPrecision(digits)));
+		if (best === undefined && size < 1e-3) return undefined;
 		if (size >= 1 || best === undefined) best = option;
 	}
 	return best;

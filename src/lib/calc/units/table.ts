@@ -99,12 +99,16 @@ const exact: Readonly<Record<string, { factor: number; like?: string }>> = {
 	// NIST SP 811 (2008), B.8: conventional millimetre of mercury, and torr as 101 325/760 Pa.
 	mmHg: { factor: 133.322387415 },
 	torr: { factor: 101325 / 760 },
+	// SP 811: pound-force per square inch and 550 foot pound-force per second, from the exact pound and inch.
+	psi: { factor: (0.45359237 * 9.80665) / 0.0254 ** 2 },
+	hp: { factor: 550 * 0.3048 * 0.45359237 * 9.80665 },
 	VA: { factor: 1, like: 'W' },
 };
 
 /** Spelled-out names, each with its plural. */
 const spelled: Readonly<Record<string, string>> = {
 	volt: 'V',
+	ohm: 'ohm',
 	ampere: 'A',
 	watt: 'W',
 	farad: 'F',
@@ -123,6 +127,7 @@ const spelled: Readonly<Record<string, string>> = {
 	hour: 'h',
 	meter: 'm',
 	gram: 'g',
+	percent: '%',
 	inch: 'in',
 	radian: 'rad',
 	degree: 'deg',
@@ -220,8 +225,24 @@ export function symbolTexts(): Iterable<string> {
 	return table.keys();
 }
 
-/** What a unit is called in a sentence. */
-export function spokenName(symbol: UnitSymbol): string {
-	const base = Object.keys(spelled).find((name) => spelled[name] === symbol.base);
-	return base !== undefined && symbol.text === symbol.base ? `${base}` : symbol.label;
+const prefixNames: Readonly<Record<string, string>> = {
+	f: 'femto',
+	p: 'pico',
+	n: 'nano',
+	u: 'micro',
+	m: 'milli',
+	c: 'centi',
+	d: 'deci',
+	h: 'hecto',
+	k: 'kilo',
+	M: 'mega',
+	G: 'giga',
+	T: 'tera',
+};
+
+/** What a unit is called in a sentence: volt, kiloohm, °C. */
+export function spokenName({ text, base, label }: UnitSymbol): string {
+	const name = Object.keys(spelled).find((word) => spelled[word] === base);
+	if (name === undefined) return label;
+	return text === base ? name : (prefixNames[text.slice(0, -base.length)] ?? '') + name;
 }

@@ -103,7 +103,15 @@ function spell(parts: readonly Part[]): { text: string; label: string } {
 	const above = parts.filter((part) => part.power > 0);
 	const below = parts.filter((part) => part.power < 0);
 	const text = join(above.map(plainPower), below.map(plainPower), '*');
-	const label = join(above.map(printedPower), below.map(printedPower), '·');
+	// 1/s alone is printed as s⁻¹, so that no figure runs into the 1.
+	const label =
+		above.length > 0
+			? join(
+					above.map((part) => printedPower(part)),
+					below.map((part) => printedPower(part)),
+					'·',
+				)
+			: below.map((part) => printedPower(part, '⁻')).join('·');
 	return { text: text || '1', label };
 }
 
@@ -123,10 +131,12 @@ function plainPower({ symbol, power: p }: Part): string {
 
 const raisedDigits = '⁰¹²³⁴⁵⁶⁷⁸⁹';
 
-function printedPower({ symbol, power: p }: Part): string {
+function printedPower({ symbol, power: p }: Part, sign = ''): string {
 	const size = Math.abs(p);
-	if (size === 1) return symbol.label;
-	if (size === 0.5) return `√${symbol.label}`;
-	if (!Number.isInteger(size)) return `${symbol.label}^${size}`;
-	return symbol.label + [...String(size)].map((digit) => raisedDigits[Number(digit)]).join('');
+	const mark = sign === '⁻' ? '⁻' : '';
+	if (size === 1) return symbol.label + (mark && '⁻¹');
+	if (size === 0.5) return mark ? `1/√${symbol.label}` : `√${symbol.label}`;
+	if (!Number.isInteger(size)) return `${symbol.label}^${mark && '−'}${size}`;
+	const digits = [...String(size)].map((digit) => raisedDigits[Number(digit)]).join('');
+	return symbol.label + mark + digits;
 }

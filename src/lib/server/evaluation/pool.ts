@@ -66,6 +66,8 @@ export class Pool {
 			log().warn({ outcome: outcome.kind, ...blamed }, 'an evaluation was stopped');
 			if (blamed) skip.push(blamed);
 		}
+		if (skip.length === 0)
+			throw new AppError('unavailable', 'Formulas cannot be computed at the moment.');
 		return withoutResults(cells, skip);
 	}
 
@@ -116,16 +118,17 @@ export class Pool {
 	}
 }
 
-/** The line a stopped child was at. */
+/** The line a stopped child was at; undefined where it had not begun, so that no line is to blame. */
 function blame(
 	outcome: Exclude<Outcome, { kind: 'done' }>,
 	cells: readonly Cell[],
 ): SkippedLine | undefined {
-	const cell = cells[outcome.place?.cell ?? 0];
+	const { place } = outcome;
+	const cell = place && cells[place.cell];
 	if (!cell) return undefined;
 	// A child that ended by itself ran out of its heap.
 	const code = outcome.kind === 'tooLong' ? 'tooLong' : 'tooLarge';
-	return { cell: cell.id, line: outcome.place?.line ?? 1, code };
+	return { cell: cell.id, line: place.line, code };
 }
 
 function closedError(): AppError {

@@ -1,0 +1,154 @@
+import { defaultOptions } from '$lib/calc/engine';
+import type { Cell } from '$lib/calc/results';
+import { AppError } from '$lib/errors';
+import { build } from 'esbuild';
+import { mkdtemp, readFile, rm } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest';
+import { Pool, type PoolSettings } from './pool';
+
+let folder = '';
+let entry = '';
+const pools: Pool[] = [];
+
+beforeAll(async () => {
+	folder = await mkdtemp(join(tmpdir(), 'halfdigit-'));
+	entry = join(folder, 'evaluator.mjs');
+	await build({
+		entryPoints: ['server/evaluator.ts'],
+		outfile: entry,
+		bundle: true,
+		platform: 'node',
+		format: 'esm',
+		target: 'node20',
+	});
+}, 60_000);
+
+afterEach(async () => {
+	await Promise.all(pools.splice(0).map((pool) => pool.close()));
+});
+
+afterAll(() => rm(folder, { recursive: true, force: true }));
+
+function open(settings: Partial<PoolSettings> = {}): Pool {
+	const pool = new Pool({
+		entry,
+		size: 1,
+		heapMegabytes: 192,
+		residentMegabytes: 400,
+		limitsMs: [10_000, 10_000, 10_000],
+		...settings,
+	});
+	pools.push(pool);
+	return pool;
+}
+
+function calculation(source: string): Cell[] {
+	return [{ id: 'c', kind: 'calculation', source }];
+}
+
+/** Kills the evaluators that this test file started (Linux), and tells how many. */
+async function killEvaluators(): Promise<number> {
+	const file = `/proc/${process.pid}/task/${process.pid}/children`;
+	const children = (await readFile(file, 'utf8')).split(' ').filter(Boolean).map(Number);
+	let killed = 0;
+	for (const pid of children) {
+		const command = await readFile(`/proc/${pid}/cmdline`, 'utf8').catch(() => '');
+		if (!command.includes(entry)) continue;
+		process.kill(pid, 'SIGKILL');
+		killed += 1;
+	}
+	return killed;
+}
+
+/** Lines that stay within the operations of a line and of a note but keep a processor busy for a while. */
+const busy = Array.from({ length: 8 }, (_, i) => `busy${i} = max(((1:24000) * 0 + 170)!)`);
+const mixed = [
+	'a = 1 V',
+	...busy,
+	'b = a * 2',
+	'c = busy0 + busy1 + busy2 + busy3 + busy4 + busy5 + busy6 + busy7',
+];
+
+describe('A pool of evaluators', () => {
+	it('computes a note in a child', async () => {
+		const results = await open().evaluate(calculation('x = 3 V\ny = x / 2 A'), defaultOptions);
+		expect(results.quantities.y).toMatchObject({ value: 1.5, unit: 'ohm' });
+	}, 30_000);
+
+	it('computes several notes at once, each with its own answer', async () => {
+		const pool = open({ size: 2 });
+		const answers = await Promise.all(
+			Array.from({ length: 20 }, (_, i) =>
+				pool.evaluate(calculation(`x = ${i} * 2`), defaultOptions),
+			),
+		);
+		expect(answers.map(({ quantities }) => quantities.x?.value)).toEqual(
+			Array.from({ length: 20 }, (_, i) => i * 2),
+		);
+	}, 30_000);
+
+	it('stops a child that takes too long, names the line and computes the others', async () => {
+		const pool = open({ limitsMs: [20, 20_000] });
+		const results = await pool.evaluate(calculation(mixed.join('\n')), defaultOptions);
+		const [stopped, waiting] = results.errors;
+		expect(results.errors).toHaveLength(2);
+		expect(stopped).toMatchObject({ cell: 'c', code: 'tooLong', from: 0 });
+		expect(mixed[(stopped?.line ?? 0) - 1]).toMatch(/^busy/);
+		expect(stopped?.to).toBe(mixed[(stopped?.line ?? 0) - 1]?.length);
+		expect(waiting).toMatchObject({ line: mixed.length, code: 'waits' });
+		expect(results.quantities.b?.value).toBe(2);
+		expect(Object.keys(results.quantities)).toHaveLength(mixed.length - 2);
+	}, 60_000);
+
+	it('stops a child that takes too much memory, and answers although every try ends so', async () => {
+		const pool = open({ residentMegabytes: 1 });
+		const results = await pool.evaluate(calculation(mixed.join('\n')), defaultOptions);
+		expect(results.quantities).toEqual({});
+		expect(results.errors.map(({ code }) => code)).toEqual(['tooLarge', 'tooLarge', 'tooLarge']);
+	}, 60_000);
+
+	it('takes a child that was killed from outside for one with too little memory, and goes on', async () => {
+		const pool = open();
+		await pool.evaluate(calculation('x = 1'), defaultOptions);
+		const answer = pool.evaluate(calculation(mixed.join('\n')), defaultOptions);
+		let killed = 0;
+		while (killed === 0) killed = await killEvaluators();
+		const results = await answer;
+		expect(results.quantities.a?.value).toBe(1);
+		for (const { code } of results.errors) expect(['tooLarge', 'waits']).toContain(code);
+		expect((await pool.evaluate(calculation('x = 2'), defaultOptions)).quantities.x?.value).toBe(2);
+	}, 60_000);
+
+	it('is ready for the next note after it stopped one', async () => {
+		const pool = open({ limitsMs: [20, 20_000] });
+		await pool.evaluate(calculation(mixed.join('\n')), defaultOptions);
+		const results = await pool.evaluate(calculation('x = 1'), defaultOptions);
+		expect(results.quantities.x?.value).toBe(1);
+	}, 60_000);
+
+	it('gives a formula none of its environment and no way to it', async () => {
+		const results = await open().evaluate(
+			calculation('process\nprocess.env\nrequire("fs")\nconstructor.constructor("return 1")()'),
+			defaultOptions,
+		);
+		expect(results.errors).toHaveLength(4);
+		expect(results.lines.every(({ readout }) => readout === undefined)).toBe(true);
+	}, 30_000);
+
+	it('says that it cannot compute where its children do not start', async () => {
+		const pool = open({ entry: join(folder, 'missing.mjs') });
+		await expect(pool.evaluate(calculation('x = 1'), defaultOptions)).rejects.toMatchObject({
+			code: 'unavailable',
+		});
+	}, 60_000);
+
+	it('refuses notes once it is closed', async () => {
+		const pool = open();
+		await pool.close();
+		await expect(pool.evaluate(calculation('x = 1'), defaultOptions)).rejects.toBeInstanceOf(
+			AppError,
+		);
+	}, 30_000);
+});
