@@ -47,10 +47,11 @@ function marksOf(state: EditorState, focused: boolean, kind: string): Marks {
 	for (let number = 1; number <= doc.lines; number++) {
 		const line = doc.line(number);
 		const pieces = splitLine(line.text);
-		parts.push(lineClass(pieces, kind, number === doc.lines).range(line.from));
-		if (kind !== 'calculation' || pieces.name === undefined) continue;
 		const active =
 			focused && selection.ranges.some((range) => range.to >= line.from && range.from <= line.to);
+		parts.push(lineClass(pieces, kind, number === doc.lines).range(line.from));
+		if (active) parts.push(activeLine.range(line.from));
+		if (kind !== 'calculation' || pieces.name === undefined) continue;
 		names.push(nameMark.range(line.from, line.from + pieces.formulaFrom));
 		parts.push(...nameParts(line.from, line.text, pieces, active));
 	}
@@ -62,6 +63,7 @@ function lineClass({ kind: set }: LineParts, kind: string, last: boolean): Decor
 	return Decoration.line({ class: `line line-${name}${last ? ' line-last' : ''}` });
 }
 
+const activeLine = Decoration.line({ class: 'line-active' });
 const nameMark = Decoration.mark({ class: 'line-name' });
 const hidden = Decoration.mark({ class: 'sym-hidden' });
 const subscript = Decoration.mark({ class: 'sym-sub' });
