@@ -6,7 +6,7 @@ import svelteConfig from './svelte.config.js';
 
 export default ts.config(
 	{
-		ignores: ['build/', '.svelte-kit/', '.data/', 'test-results/', 'node_modules/', 'static/'],
+		ignores: ['build/', '**/.svelte-kit/', '.data/', 'test-results/', 'static/'],
 	},
 	js.configs.recommended,
 	...ts.configs.recommendedTypeChecked,
