@@ -1,0 +1,21 @@
+import type { Page } from '@playwright/test';
+
+const widths = [1400, 1024, 390] as const;
+
+/** Saves pictures of the page as it is now, light and dark at three widths, for people to look at. */
+export async function shoot(page: Page, name: string): Promise<void> {
+	const before = page.viewportSize();
+	for (const width of widths) {
+		await page.setViewportSize({ width, height: width < 600 ? 844 : 900 });
+		for (const colorScheme of ['light', 'dark'] as const) {
+			await page.emulateMedia({ colorScheme });
+			await page.screenshot({
+				path: `test-results/screens/${name}-${width}-${colorScheme}.png`,
+				fullPage: true,
+				animations: 'disabled',
+			});
+		}
+	}
+	await page.emulateMedia({ colorScheme: null });
+	if (before) await page.setViewportSize(before);
+}
