@@ -1,4 +1,5 @@
-import { ownPresence, presenceColours, type Presence } from '$lib/protocol/presence';
+import { personColour } from '$lib/protocol/person-colour';
+import { ownPresence, type Presence } from '$lib/protocol/presence';
 import type { Connection } from './connection';
 import type { Said } from './incoming';
 import * as outgoing from './outgoing';
@@ -59,21 +60,11 @@ export class People {
 
 	#describe(connection: Connection, state: unknown): Presence {
 		const { personId: id, name } = connection.actor;
-		const color = this.#colourOf(id);
+		const color = personColour(id);
 		const own = ownPresence.safeParse(state);
 		return {
 			...(own.success ? own.data : {}),
 			user: { id, name, color, colorLight: `${color}33` },
 		};
-	}
-
-	/** A person's colour in this room: the one they have, or the one that fewest others have. */
-	#colourOf(personId: string): string {
-		const uses = new Map<string, number>(presenceColours.map((colour) => [colour, 0]));
-		for (const { state } of this.#seen.values()) {
-			if (state?.user.id === personId) return state.user.color;
-			if (state) uses.set(state.user.color, (uses.get(state.user.color) ?? 0) + 1);
-		}
-		return [...uses].reduce((least, next) => (next[1] < least[1] ? next : least))[0];
 	}
 }

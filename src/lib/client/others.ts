@@ -4,7 +4,6 @@ import type { Presence } from '$lib/protocol/presence';
 export interface Other {
 	id: string;
 	name: string;
-	colour: string;
 	cellId: string | null;
 }
 
@@ -18,7 +17,7 @@ export function othersIn(
 		if (!user || user.id === personId) continue;
 		// One page of theirs may be at a cell and another at none.
 		const place = cellId ?? others.get(user.id)?.cellId ?? null;
-		others.set(user.id, { id: user.id, name: user.name, colour: user.color, cellId: place });
+		others.set(user.id, { id: user.id, name: user.name, cellId: place });
 	}
 	return [...others.values()].sort((a, b) => a.name.localeCompare(b.name));
 }

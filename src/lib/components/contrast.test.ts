@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { expect, test } from 'vitest';
-import { groundOf } from './person-mark';
+import { personColour } from '$lib/protocol/person-colour';
 
 const css = readFileSync('src/app.css', 'utf8');
 const darkAt = css.indexOf('prefers-color-scheme: dark');
@@ -39,10 +39,16 @@ for (const [scheme, colours] of Object.entries(schemes)) {
 	}
 }
 
-test("a person's white letters can be read on every ground", () => {
-	const grounds = new Set(Array.from({ length: 200 }, (_, index) => groundOf(`person-${index}`)));
-	expect(grounds.size).toBeGreaterThan(4);
-	for (const ground of grounds) expect(contrast('#ffffff', ground)).toBeGreaterThanOrEqual(4.5);
+test("a person's colour carries white letters and stands out from every ground", () => {
+	const colours = new Set(Array.from({ length: 200 }, (_, index) => personColour(`p-${index}`)));
+	expect(colours.size).toBeGreaterThan(4);
+	for (const colour of colours) {
+		expect(contrast('#ffffff', colour)).toBeGreaterThanOrEqual(4.5);
+		for (const { sheet, bench } of Object.values(schemes)) {
+			expect(contrast(sheet!, colour)).toBeGreaterThanOrEqual(3);
+			expect(contrast(bench!, colour)).toBeGreaterThanOrEqual(3);
+		}
+	}
 });
 
 function tokens(part: string): Record<string, string> {

@@ -1,15 +1,5 @@
 import { z } from 'zod';
 
-/** Colours of people's cursors and marks: none means a verdict or an action, each at least 3 : 1 on every ground. */
-export const presenceColours = [
-	'#7b61d1',
-	'#c2479b',
-	'#4a6fd8',
-	'#8a6d52',
-	'#a04fc0',
-	'#6b7790',
-] as const;
-
 const id = z.object({ client: z.int().min(0), clock: z.int().min(0) });
 
 /** Yjs's relative position as JSON. */
