@@ -14,6 +14,8 @@ export const bounds = {
 	calls: 128,
 	/** Levels of formulas that calls inside one another stand on; each takes some of the process's stack. */
 	levels: 1_500,
+	/** Calls of one line whose units are found, those inside functions included. */
+	checkedCalls: 2_000,
 	/** Operations of one line, a member of a matrix counting as one. */
 	lineSteps: 250_000,
 	/** Operations of a note. */

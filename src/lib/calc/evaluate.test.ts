@@ -172,6 +172,9 @@ describe('Units', () => {
 	it('of a function follow from the values it is called with', () => {
 		expect(shown('sq(x) = x^2\nsq(3 V)')).toBe('9 V²');
 		expect(shown('p(x, n) = x^n\np(2 V, 3)')).toBe('8 V³');
+		expect(shown('p(x, n) = x^n\np(2 V, 3)\np(2 V, 2)')).toBe('4 V²');
+		expect(shown('f(n) = n < 1 ? 1 V : q(n)\nq(n) = f(n - 1)\nq(3)')).toBe('1 V');
+		expect(shown('x = 2 A\nq(y) = x * y\nf(x) = q(1) + x\nf(1 A)')).toBe('3 A');
 		const fault = onlyFault('f(x) = x + 1 V\nf(2 A)');
 		expect(fault).toMatchObject({ line: 2, from: 0, to: 6, code: 'dimension' });
 	});

@@ -78,7 +78,7 @@ function unitAt(text: string, offset: number) {
 function unknownName(typed: string, at: { from: number; to: number }, note: Note): Trouble {
 	if (typed === '')
 		return new Trouble('syntax', at, 'The name of a quantity is missing between the braces.');
-	const near = note.suggest(typed, []);
+	const near = note.suggestions.nearest(typed, []);
 	const built = [...builtInNames()].includes(typed);
 	return new Trouble(
 		'unknownName',

@@ -169,6 +169,18 @@ describe('A note beyond its bounds', () => {
 		expect(quantities.v0?.value).toBe(1_600_040_000);
 	});
 
+	it('ends although lines with the names of units wait for one another', () => {
+		expect(compute('V = V').errors.map(({ code }) => code)).toEqual(['reserved']);
+		const { errors } = compute('V = A\nA = V\nx = V');
+		expect(errors.map(({ code }) => code)).toEqual([
+			'reserved',
+			'waits',
+			'reserved',
+			'waits',
+			'waits',
+		]);
+	});
+
 	it('names a long circle by its beginning', () => {
 		const names = Array.from({ length: 500 }, (_, i) => `v${i} = v${(i + 1) % 500}`);
 		const { errors } = compute(names.join('\n'));

@@ -1,18 +1,16 @@
 import { bounds } from './bounds';
-import { check, type Types } from './check';
+import { check } from './check';
 import type { Node, Place } from './language/nodes';
-import { builtInNames, nearest, unitNames, whyReserved } from './language/names';
-import { findSymbol, spokenName } from './units/table';
+import { circleTrouble, define, doubleReadings } from './definitions';
+import { Suggestions, unknownName } from './unknown-names';
 import { Meter } from './meter';
 import { whereabouts, type NoteLine, type Watch } from './note-lines';
-import { leftOut, order } from './order';
+import { order } from './order';
 import { run, type Scope } from './run';
 import { Trouble } from './trouble';
+import type { Types } from './type-scope';
 import type { Type } from './types';
 import type { Value } from './values';
-
-const mostSuggestions = 25;
-const mostCandidates = 1_000;
 
 /** A line that was computed. */
 export interface Computed {
@@ -24,25 +22,30 @@ export interface Computed {
 export class Note {
 	readonly troubles = new Map<NoteLine, Trouble[]>();
 	/** Faults that do not keep a line from being computed. */
-	readonly remarks = new Map<NoteLine, Trouble>();
+	readonly remarks: ReadonlyMap<NoteLine, Trouble>;
 	readonly computed = new Map<NoteLine, Computed>();
-	readonly #definitions = new Map<string, NoteLine>();
+	readonly #definitions: ReadonlyMap<string, NoteLine>;
 	readonly #meter = new Meter();
-	readonly #names: Set<string>;
-	/** For each waiting line the one whose error it waits for; never a circle, for a line on a circle does not wait. */
+	/** For each waiting line the one whose error it waits for. `V = A` and `A = V` wait for one another. */
 	readonly #awaited = new Map<NoteLine, NoteLine>();
-	#suggestions = 0;
+	readonly suggestions: Suggestions;
 
 	constructor(
 		readonly lines: readonly NoteLine[],
 		private readonly watch: Watch,
 	) {
-		this.#names = new Set(lines.flatMap((line) => (line.defined ? [line.defined.name] : [])));
-		this.#define();
-		this.#checkDoubleReadings();
+		const names = new Set(lines.flatMap((line) => (line.defined ? [line.defined.name] : [])));
+		const fail = (line: NoteLine, trouble: Trouble) => this.fail(line, trouble);
+		this.#definitions = define(lines, names, fail);
+		this.remarks = doubleReadings(lines, this.#definitions, names);
+		const known = [...this.#definitions.values()].map((line) => line.defined?.typed ?? '');
+		this.suggestions = new Suggestions(known);
 		const uses = new Map([...this.#definitions].map(([name, line]) => [name, this.#usedBy(line)]));
 		const { sorted, circles } = order(this.#definitions.keys(), (name) => uses.get(name) ?? []);
-		for (const [name, circle] of circles) this.#reportCircle(name, circle);
+		for (const [name, circle] of circles) {
+			const trouble = circleTrouble(circle, this.#definitions);
+			if (trouble) this.fail(this.#definitions.get(name)!, trouble);
+		}
 		for (const name of sorted) this.#evaluate(this.#definitions.get(name)!);
 		for (const line of lines)
 			if (this.#definitions.get(line.defined?.name ?? '') !== line) this.#evaluate(line);
@@ -51,11 +54,6 @@ export class Note {
 	/** The line that defines a name, the first where there are several. */
 	definition(name: string): NoteLine | undefined {
 		return this.#definitions.get(name);
-	}
-
-	#known(): string[] {
-		const lines = [...this.#definitions.values()].slice(0, mostCandidates);
-		return lines.map((line) => line.defined?.typed ?? '');
 	}
 
 	/** Why a use of a defined name has no value: it, or what it waits for, has an error. */
@@ -72,6 +70,7 @@ export class Note {
 
 	/** One side of a comparison that was computed, as a number. Throws Trouble. */
 	measure(node: Node): { value: number; type: Type } {
+		this.#startLine();
 		const type = check(node, this.#types);
 		const value = run(node, this.#scope);
 		if (typeof value !== 'number' || type.kind !== 'number')
@@ -88,126 +87,26 @@ export class Note {
 		this.troubles.set(line, [...(this.troubles.get(line) ?? []), trouble]);
 	}
 
-	#define(): void {
-		for (const line of this.lines) {
-			const { defined } = line;
-			if (!defined || line.requirement) continue;
-			const first = this.#definitions.get(defined.name);
-			if (first) {
-				const named =
-					first.defined?.typed === defined.typed
-						? `\`${defined.typed}\``
-						: `\`${defined.typed}\`, the same name as \`${first.defined?.typed ?? ''}\`,`;
-				this.fail(
-					line,
-					new Trouble(
-						'duplicate',
-						defined,
-						`${named} is already defined in ${whereabouts(first)}.`,
-						{
-							mend: 'Give one of the two another name.',
-						},
-					),
-				);
-				continue;
-			}
-			this.#definitions.set(defined.name, line);
-			const reserved = whyReserved(defined.typed, this.#names);
-			if (reserved)
-				this.fail(
-					line,
-					new Trouble('reserved', defined, reserved.message, {
-						mend: `Call the quantity \`${reserved.suggestion}\`, say.`,
-						replacement: reserved.suggestion,
-					}),
-				);
-			for (const [i, parameter] of line.parameters.entries()) {
-				const why = whyReserved(parameter.typed, this.#names);
-				if (why)
-					this.fail(
-						line,
-						new Trouble('reserved', parameter, why.message, {
-							mend: `Call it \`${why.suggestion}\`, say.`,
-						}),
-					);
-				if (line.parameters.findIndex((p) => p.name === parameter.name) !== i)
-					this.fail(
-						line,
-						new Trouble(
-							'duplicate',
-							parameter,
-							`\`${parameter.typed}\` is already a value of this function.`,
-						),
-					);
-			}
-		}
-	}
-
-	/** `C = 10 nF`, then `5 C`: the unit is meant, but a reader may take it for the quantity. */
-	#checkDoubleReadings(): void {
-		const seen = new Set<string>();
-		for (const line of this.lines)
-			for (const behind of line.unitsBehindNumbers) {
-				const { typed } = behind;
-				const definition = this.#definitions.get(typed);
-				if (!definition?.defined || seen.has(typed)) continue;
-				seen.add(typed);
-				const text = line.text.slice(behind.from, behind.to);
-				const readings = `${behind.number} ${spokenUnit(typed)}, and as ${behind.number} times the quantity \`${typed}\``;
-				const suggestion = whyReserved(typed, this.#names)?.suggestion ?? `${typed}1`;
-				this.remarks.set(
-					line,
-					new Trouble(
-						'ambiguous',
-						behind,
-						`\`${text}\` can be read as ${readings} (${whereabouts(definition)}). It counts as the unit.`,
-						{
-							mend: `Call the quantity \`${suggestion}\`, say.`,
-						},
-					),
-				);
-			}
-	}
-
 	#usedBy(line: NoteLine): string[] {
 		return line.references
 			.map((reference) => reference.name)
 			.filter((name) => this.#definitions.has(name));
 	}
 
-	#reportCircle(name: string, circle: string[]): void {
-		const lines = circle
-			.filter((member) => member !== leftOut)
-			.map((member) => this.#definitions.get(member)!);
-		// A function may use itself: whether it ends is seen when it is computed.
-		if (lines.every((line) => line.kind === 'function')) return;
-		const line = this.#definitions.get(name)!;
-		const next = circle[1];
-		const at = line.references.find((reference) => reference.name === next) ?? line.defined!;
-		const shown = circle
-			.map((member) => this.#definitions.get(member)?.defined?.typed ?? member)
-			.join(' → ');
-		const itself = circle.length === 2;
-		this.fail(
-			line,
-			new Trouble(
-				'circle',
-				at,
-				itself
-					? `\`${line.defined?.typed ?? ''}\` is defined by itself: ${shown}.`
-					: `The definitions go in a circle: ${shown}.`,
-				{
-					mend: 'Define one of them without the others.',
-				},
-			),
-		);
-	}
-
 	/** The line at the bottom of a chain of waiting lines. */
 	#root(line: NoteLine): NoteLine {
+		const seen = new Set<NoteLine>();
 		let at = line;
-		for (let next = this.#awaited.get(at); next; next = this.#awaited.get(at)) at = next;
+		for (let next = this.#awaited.get(at); next && !seen.has(next); next = this.#awaited.get(at)) {
+			seen.add(next);
+			at = next;
+		}
 		return at;
+	}
+
+	#startLine(): void {
+		this.#meter.startLine();
+		this.#types.budget.calls = bounds.checkedCalls;
 	}
 
 	#broken(line: NoteLine): boolean {
@@ -219,15 +118,14 @@ export class Note {
 		if (line.trouble) {
 			const unit = line.trouble.how.unitName;
 			const meant = unit === undefined ? undefined : this.#definitions.get(unit);
-			if (meant) this.#awaited.set(line, meant);
-			this.fail(
-				line,
-				meant && unit !== undefined ? this.waiting(unit, meant, line.trouble.at) : line.trouble,
-			);
+			if (meant && meant !== line) this.#awaited.set(line, meant);
+			const waits = meant && unit !== undefined && this.waiting(unit, meant, line.trouble.at);
+			// `V = V`: that the name is not free is all there is to say.
+			if (meant !== line) this.fail(line, waits || line.trouble);
 		}
 		if (!line.body || this.#broken(line)) return;
 		this.watch.at?.(line.cell, line.line);
-		this.#meter.startLine();
+		this.#startLine();
 		try {
 			const unknowns = this.#unresolved(line);
 			const type = check(line.body, this.#types);
@@ -272,7 +170,7 @@ export class Note {
 		const found: Trouble[] = [];
 		for (const reference of line.references) {
 			const used = this.#definitions.get(reference.name);
-			if (!used) found.push(this.#unknown(reference, line));
+			if (!used) found.push(unknownName(reference, line, this.suggestions));
 			else if (this.#broken(used)) found.push(this.waiting(reference.typed, used, reference));
 			else if (reference.called && used.kind !== 'function')
 				found.push(
@@ -298,53 +196,12 @@ export class Note {
 		return found.sort((a, b) => rank(a) - rank(b));
 	}
 
-	#unknown(
-		{ typed, called, from, to }: { typed: string; called: boolean } & Place,
-		line: NoteLine,
-	): Trouble {
-		const before = line.text.slice(0, from);
-		const behindNumber = /\d\s*$/.test(before);
-		const message = called ? `There is no function \`${typed}\`.` : `\`${typed}\` is not defined.`;
-		const code = /^([kMGmRunp\u00b5])(\d+)$/.exec(typed);
-		if (behindNumber && code) {
-			const number = `${/\d+\s*$/.exec(before)?.[0].trim() ?? ''}.${code[2] ?? ''}`;
-			const mend = `Write the decimal mark and the unit: \`${number} ${code[1] === 'R' ? '' : (code[1] ?? '')}ohm\`, say.`;
-			return new Trouble('unknownName', { from, to }, message, { mend });
-		}
-		if (behindNumber && /^[kMGmunp\u00b5]$/.test(typed))
-			return new Trouble('unknownName', { from, to }, message, {
-				mend: `A prefix needs its unit: \`${typed}ohm\` or \`${typed}V\`, say.`,
-			});
-		const own = line.parameters.map((parameter) => parameter.typed);
-		const near = this.suggest(typed, [
-			...own,
-			...builtInNames(),
-			...(behindNumber ? unitNames() : []),
-		]);
-		return new Trouble(
-			'unknownName',
-			{ from, to },
-			message,
-			near === undefined ? {} : { mend: `Did you mean \`${near}\`?`, replacement: near },
-		);
-	}
-
-	/** The name that a wrong one may have meant. Comparing takes time: only the first wrong ones of a note get one. */
-	suggest(typed: string, others: Iterable<string>): string | undefined {
-		if (this.#suggestions >= mostSuggestions || typed.length > 60) return undefined;
-		this.#suggestions += 1;
-		const names = [...others, ...this.#known()];
-		return nearest(
-			typed,
-			names.filter((name) => name !== typed),
-		);
-	}
-
 	readonly #types: Types = {
 		of: (name) => this.computed.get(this.#definitions.get(name)!)?.type,
 		function: (name) => this.#function(name),
 		constant: (node) => this.#constant(node),
 		calls: new Map(),
+		budget: { calls: bounds.checkedCalls, pending: 0 },
 	};
 
 	readonly #scope: Scope = {
@@ -375,9 +232,4 @@ export class Note {
 /** What to tell first: what is wrong here before what waits for something else. */
 function rank(trouble: Trouble): number {
 	return trouble.code === 'waits' ? 1 : 0;
-}
-
-function spokenUnit(typed: string): string {
-	const symbol = findSymbol(typed);
-	return symbol ? spokenName(symbol) : typed;
 }

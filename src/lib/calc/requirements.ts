@@ -2,7 +2,7 @@ import { hasNames, type Comparison, type Node } from './language/nodes';
 import type { Note } from './note';
 import type { NoteLine } from './note-lines';
 import type { Options, Requirement, Verdict } from './results';
-import { holds } from './run';
+import { holds } from './arithmetic';
 import { unitOf } from './show';
 import { Trouble } from './trouble';
 import type { Type } from './types';

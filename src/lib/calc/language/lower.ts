@@ -17,6 +17,7 @@ import type {
 	Reference,
 	UnitBehindNumber,
 } from './nodes';
+import { Places } from './places';
 import type { Token } from './tokens';
 
 const binary: Readonly<Record<string, BinaryOperator>> = {
@@ -41,7 +42,6 @@ const comparisons: Readonly<Record<string, Comparison>> = {
 	equal: '==',
 	unequal: '!=',
 };
-const operatorWords = new Set(['mod', 'to', 'in', 'and', 'or', 'xor', 'not']);
 
 /**
  * Turns mathjs's tree into ours. What it does not know is refused: this is the allow-list, and nothing but its
@@ -51,18 +51,14 @@ export class Lowering {
 	readonly references: Reference[] = [];
 	/** Unit symbols that stand directly behind a number. */
 	readonly unitsBehindNumbers: UnitBehindNumber[] = [];
-	#next = 0;
-	readonly #starts: ReadonlyMap<number, number>;
-	readonly #ends: ReadonlyMap<number, number>;
+	readonly #places: Places;
 
 	constructor(
-		private readonly tokens: readonly Token[],
+		tokens: readonly Token[],
 		private readonly parameters: ReadonlySet<string> = new Set(),
 		start = 0,
 	) {
-		this.#next = start;
-		this.#starts = new Map(tokens.map((token, i) => [token.from, i]));
-		this.#ends = new Map(tokens.map((token, i) => [token.to, i]));
+		this.#places = new Places(tokens, start);
 	}
 
 	/** An expression with a value. */
@@ -95,7 +91,7 @@ export class Lowering {
 			case 'SymbolNode':
 				return this.#symbol(node as M.SymbolNode);
 			case 'ParenthesisNode':
-				return this.#widened(this.#any((node as M.ParenthesisNode).content), 1, 1);
+				return this.#places.widened(this.#any((node as M.ParenthesisNode).content), 1, 1);
 			case 'OperatorNode':
 				return this.#operator(node as M.OperatorNode);
 			case 'RelationalNode':
@@ -114,23 +110,32 @@ export class Lowering {
 			case 'FunctionAssignmentNode':
 				throw new Trouble(
 					'notAllowed',
-					this.#line(),
+					this.#places.line(),
 					'A line defines one name, at its beginning.',
 					{
 						mend: 'Give each quantity a line of its own.',
 					},
 				);
 			case 'BlockNode':
-				throw new Trouble('notAllowed', this.#line(), 'A line holds one formula, without `;`.', {
-					mend: 'Give each formula a line of its own.',
-				});
+				throw new Trouble(
+					'notAllowed',
+					this.#places.line(),
+					'A line holds one formula, without `;`.',
+					{
+						mend: 'Give each formula a line of its own.',
+					},
+				);
 			default:
-				throw new Trouble('notAllowed', this.#line(), 'This is not part of the formula language.');
+				throw new Trouble(
+					'notAllowed',
+					this.#places.line(),
+					'This is not part of the formula language.',
+				);
 		}
 	}
 
 	#constant(node: M.ConstantNode): Node {
-		const token = this.#leaf();
+		const token = this.#places.leaf();
 		const value: unknown = node.value;
 		if (typeof value === 'boolean') return { kind: 'boolean', value, ...place(token) };
 		if (typeof value !== 'number' || token.kind !== 'number')
@@ -148,7 +153,7 @@ export class Lowering {
 	}
 
 	#symbol(node: M.SymbolNode): Node {
-		const token = this.#leaf(node.name);
+		const token = this.#places.leaf(node.name);
 		const at = place(token);
 		if (token.text.includes(percent) && token.text !== percent) return this.#joinedPercent(token);
 		const typed = asTyped(token.text);
@@ -156,7 +161,7 @@ export class Lowering {
 		if (this.parameters.has(name)) return { kind: 'name', name, typed, ...at };
 		const symbol = findSymbol(typed);
 		if (symbol) {
-			const before = this.tokens[(this.#starts.get(token.from) ?? 0) - 1];
+			const before = this.#places.before(token.from);
 			if (before?.kind === 'number')
 				this.unitsBehindNumbers.push({ typed, number: before.text, from: before.from, to: at.to });
 			return { kind: 'unit', unit: fromSymbol(symbol), ...at };
@@ -196,7 +201,11 @@ export class Lowering {
 		const [first, second] = node.args;
 		const fn = node.fn as string;
 		if (!first)
-			throw new Trouble('notAllowed', this.#line(), 'This operator is not part of formulas.');
+			throw new Trouble(
+				'notAllowed',
+				this.#places.line(),
+				'This operator is not part of formulas.',
+			);
 		if (!second) return this.#unary(fn, first);
 		if (fn === 'to') {
 			const value = this.value(first);
@@ -209,13 +218,13 @@ export class Lowering {
 		if (!op)
 			throw new Trouble(
 				'notAllowed',
-				this.#line(),
+				this.#places.line(),
 				`\`${String(node.op)}\` is not part of formulas.`,
 			);
 		const left = this.#any(first);
 		const right = this.#any(second);
 		if (node.implicit) this.#checkSideBySide(left, right);
-		const closed = /^[)\]]$/.test(this.tokens[this.#ends.get(left.to) ?? -1]?.text ?? '');
+		const closed = this.#places.endsInBracket(left);
 		const joined = joinUnits(op, left, right, { implicit: node.implicit, closed });
 		if (joined) return joined;
 		for (const side of [left, right]) if (side.kind === 'unit') throw bareUnit(side);
@@ -223,9 +232,8 @@ export class Lowering {
 	}
 
 	#checkSideBySide(left: Node, right: Node): void {
-		const start = this.#starts.get(right.from) ?? 0;
-		if (this.tokens[start]?.kind !== 'number') return;
-		const between = this.tokens[start - 1];
+		if (this.#places.at(right.from)?.kind !== 'number') return;
+		const between = this.#places.before(right.from);
 		if (between?.text === percent) throw remainder({ from: left.from, to: right.to });
 		throw new Trouble(
 			'syntax',
@@ -240,13 +248,17 @@ export class Lowering {
 	#unary(fn: string, argument: M.MathNode): Node {
 		if (fn === 'factorial') {
 			const value = this.value(argument);
-			return { ...this.#widened(value, 0, 1), kind: 'unary', op: '!', value };
+			return { ...this.#places.widened(value, 0, 1), kind: 'unary', op: '!', value };
 		}
 		const op = ({ unaryMinus: '-', unaryPlus: '+', not: 'not' } as const)[fn];
 		if (!op)
-			throw new Trouble('notAllowed', this.#line(), 'This operator is not part of formulas.');
+			throw new Trouble(
+				'notAllowed',
+				this.#places.line(),
+				'This operator is not part of formulas.',
+			);
 		const value = this.value(argument);
-		const wide = this.#widened(value, 1, 0);
+		const wide = this.#places.widened(value, 1, 0);
 		if (op === '-' && value.kind === 'number' && (value.unit?.offset ?? 0) === 0)
 			return literal(-value.typed, value.unit, wide);
 		return { kind: 'unary', op, value, from: wide.from, to: wide.to };
@@ -267,8 +279,8 @@ export class Lowering {
 
 	#call(node: M.FunctionNode): Node {
 		if ((node.fn as unknown as M.MathNode).type !== 'SymbolNode')
-			throw new Trouble('notAllowed', this.#line(), 'Only a function can be called.');
-		const token = this.#leaf(node.fn.name);
+			throw new Trouble('notAllowed', this.#places.line(), 'Only a function can be called.');
+		const token = this.#places.leaf(node.fn.name);
 		const typed = asTyped(token.text);
 		const name = canonical(typed);
 		const known = functions.get(name);
@@ -277,7 +289,7 @@ export class Lowering {
 				? this.#any(argument)
 				: this.value(argument),
 		);
-		const end = this.#closing(args.at(-1), token);
+		const end = this.#places.closing(args.at(-1), token);
 		const at = { from: token.from, to: end };
 		const [only] = args;
 		if (name === 'sqrt' && only?.kind === 'unit') {
@@ -295,9 +307,9 @@ export class Lowering {
 			: [node.items.map((item) => this.value(item))];
 		const members = rows.flat();
 		if (members.length === 0)
-			throw new Trouble('value', this.#line(), 'An empty list has no value.');
-		const open = this.#openBefore(members[0]?.from ?? 0);
-		const at = { from: open, to: this.#closeAfter(members.at(-1)?.to ?? 0) };
+			throw new Trouble('value', this.#places.line(), 'An empty list has no value.');
+		const open = this.#places.openBefore(members[0]?.from ?? 0);
+		const at = { from: open, to: this.#places.closeAfter(members.at(-1)?.to ?? 0) };
 		return { kind: 'array', rows, flat: !nested, ...at };
 	}
 
@@ -312,58 +324,14 @@ export class Lowering {
 		const object = this.value(node.object);
 		const index = node.index as unknown as { dimensions: M.MathNode[]; dotNotation: boolean };
 		if (index.dotNotation)
-			throw new Trouble('notAllowed', this.#line(), 'Quantities have no members.');
+			throw new Trouble('notAllowed', this.#places.line(), 'Quantities have no members.');
 		const indexes = index.dimensions.map((part) => this.value(part));
 		return {
 			kind: 'index',
 			object,
 			indexes,
 			from: object.from,
-			to: this.#closeAfter(indexes.at(-1)?.to ?? object.to),
-		};
-	}
-
-	/** The token of the next leaf; operator words between leaves are passed over. */
-	#leaf(name?: string): Token {
-		for (;;) {
-			const token = this.tokens[this.#next++];
-			if (!token) throw new Trouble('syntax', this.#line(), 'This line cannot be read.');
-			if (
-				token.kind === 'number' ||
-				(token.kind === 'word' && (token.text === name || !operatorWords.has(token.text)))
-			)
-				return token;
-		}
-	}
-
-	#widened<T extends Node>(node: T, before: number, after: number): T {
-		const first = this.tokens[(this.#starts.get(node.from) ?? 0) - before];
-		const last = this.tokens[(this.#ends.get(node.to) ?? 0) + after];
-		return { ...node, from: first?.from ?? node.from, to: last?.to ?? node.to };
-	}
-
-	#closing(last: Node | undefined, name: Token): number {
-		if (last) return this.#closeAfter(last.to);
-		return this.tokens[(this.#starts.get(name.from) ?? 0) + 2]?.to ?? name.to;
-	}
-
-	/** End of the first closing bracket from `to` on; a trailing comma or semicolon may stand before it. */
-	#closeAfter(to: number): number {
-		return this.tokens.find((token) => token.from >= to && /^[)\]]$/.test(token.text))?.to ?? to;
-	}
-
-	#openBefore(from: number): number {
-		const index = this.#starts.get(from) ?? 0;
-		let first = index;
-		while (this.tokens[first - 1]?.text === '[') first -= 1;
-		return this.tokens[first]?.from ?? from;
-	}
-
-	#line(): Place {
-		const next = this.tokens[Math.min(this.#next, this.tokens.length - 1)];
-		return {
-			from: this.tokens[0]?.from ?? 0,
-			to: Math.max(next?.to ?? 1, this.tokens.at(-1)?.to ?? 1),
+			to: this.#places.closeAfter(indexes.at(-1)?.to ?? object.to),
 		};
 	}
 }
