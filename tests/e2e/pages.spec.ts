@@ -1,5 +1,6 @@
 import { expect, test, type Page } from '@playwright/test';
 import { demoPassword, emailOf, signIn } from '../support/browser';
+import { shoot } from '../support/screens';
 
 const rows = (page: Page) => page.locator('tbody tr');
 const column = (page: Page, name: string) => page.locator(`tbody td.${name}`).allInnerTexts();
@@ -209,4 +210,16 @@ test('no page is wider than a phone', async ({ page }) => {
 	await page.goto(`/notes/${number}/revisions/${revision}`);
 	await expect(page.getByLabel('Title block')).toBeVisible();
 	expect(await tooWide(), 'revision').toBe(0);
+});
+
+test('pictures are kept of the pages beside the notes', async ({ page }) => {
+	await page.goto('/sign-in');
+	await expect(page.getByRole('button', { name: 'Sign in' })).toBeVisible();
+	await shoot(page, 'sign-in');
+	await signIn(page, 'administrator');
+	for (const path of ['/account', '/team', '/no-such-page']) {
+		await page.goto(path);
+		await expect(page.getByRole('heading', { level: 1 })).toBeVisible();
+		await shoot(page, path.slice(1));
+	}
 });

@@ -1,19 +1,15 @@
 import { expect, test, type Page } from '@playwright/test';
-import { signIn } from '../support/browser';
+import { addCell as add, figure, newNote, signIn } from '../support/browser';
 
 const cells = (page: Page) => page.locator('[data-cell]');
 const terminal = (page: Page, number: number) =>
 	page.getByRole('button', { name: new RegExp(`^Cell ${number}(,|$)`) });
-const figure = (page: Page, name: string) =>
-	page.locator(`[data-cell] [data-quantity="${name}"]`).first();
 const saving = (page: Page) => page.locator('[data-saving]');
 
-async function newNote(page: Page, title: string): Promise<void> {
+/** A new note whose sheet is empty. */
+async function emptyNote(page: Page, title: string): Promise<void> {
 	await signIn(page, 'engineer');
-	await page.getByRole('button', { name: 'New note' }).click();
-	await page.getByLabel('Title').fill(title);
-	await page.getByRole('button', { name: 'Create note' }).click();
-	// A new note comes with a first cell; these tests begin on an empty sheet.
+	await newNote(page, title);
 	await terminal(page, 1).click();
 	await page.getByRole('menuitem', { name: 'Delete' }).click();
 	await expect(page.getByText('This note is empty. Begin with')).toBeVisible();
@@ -26,13 +22,6 @@ async function openBattery(page: Page, account: 'engineer' | 'administrator'): P
 	await expect(cells(page).first()).toBeVisible();
 }
 
-async function add(page: Page, kind: 'text' | 'calculation' | 'requirement', source: string) {
-	await page.getByRole('button', { name: kind, exact: true }).click();
-	await expect(page.locator(`[data-kind=${kind}] .cm-focused`)).toBeVisible();
-	await page.keyboard.insertText(source);
-	await page.keyboard.press('Escape');
-}
-
 async function sources(page: Page): Promise<string[]> {
 	const texts = await cells(page).locator('.cm-content, .prose').allInnerTexts();
 	return texts.map((text) => text.split('\n')[0] ?? '');
@@ -41,7 +30,7 @@ async function sources(page: Page): Promise<string[]> {
 test('cells are moved by their terminals, with the pointer and with the keyboard', async ({
 	page,
 }) => {
-	await newNote(page, 'Moving');
+	await emptyNote(page, 'Moving');
 	for (const name of ['a', 'b', 'c']) await add(page, 'text', `cell ${name}`);
 	await expect.poll(() => sources(page)).toEqual(['cell a', 'cell b', 'cell c']);
 
@@ -70,7 +59,7 @@ test('cells are moved by their terminals, with the pointer and with the keyboard
 });
 
 test('a cell is duplicated, deleted and brought back', async ({ page }) => {
-	await newNote(page, 'Copies');
+	await emptyNote(page, 'Copies');
 	await add(page, 'calculation', 'I_max = 8 A');
 	await expect(figure(page, 'I_max')).toHaveText(/8\s*A/);
 	await terminal(page, 1).click();
@@ -88,7 +77,7 @@ test('a cell is duplicated, deleted and brought back', async ({ page }) => {
 });
 
 test('a fault stands under its line, and one click mends it', async ({ page }) => {
-	await newNote(page, 'Mends');
+	await emptyNote(page, 'Mends');
 	await add(page, 'calculation', 'V = 3 V\nI_max = 8 A\nbad = V_x + I_max');
 	const fault = page.locator('[data-fault=reserved], [data-fault=ambiguous]').first();
 	await expect(fault).toContainText('unit');
@@ -103,7 +92,7 @@ test('a fault stands under its line, and one click mends it', async ({ page }) =
 test('text is shown set, opens with a click or Enter, and quotes live figures', async ({
 	page,
 }) => {
-	await newNote(page, 'Text');
+	await emptyNote(page, 'Text');
 	await add(page, 'calculation', 'V_top = 80 mV');
 	await add(page, 'text', '## Shunt\n\nDrops **{{V_top}}** <img src=x onerror="alert(1)">');
 	const text = page.locator('[data-kind=text]');
@@ -127,7 +116,7 @@ test('text is shown set, opens with a click or Enter, and quotes live figures', 
 test('the arrow keys go through the whole sheet, and the title is edited in place', async ({
 	page,
 }) => {
-	await newNote(page, 'Arrows');
+	await emptyNote(page, 'Arrows');
 	await add(page, 'calculation', 'a1 = 1');
 	await add(page, 'calculation', 'b1 = 2');
 	await page.getByRole('textbox', { name: 'Title of the note' }).click();
@@ -148,7 +137,7 @@ test('without a connection the page says so, keeps the edits and sends them late
 	page,
 	context,
 }) => {
-	await newNote(page, 'Offline');
+	await emptyNote(page, 'Offline');
 	await add(page, 'calculation', 'V_a = 1 V');
 	await expect(figure(page, 'V_a')).toHaveText(/1\s*V/);
 	await expect(saving(page)).toHaveText(/^Saved/);
@@ -165,7 +154,7 @@ test('without a connection the page says so, keeps the edits and sends them late
 });
 
 test('a comment that cannot be posted keeps its words and says why', async ({ page }) => {
-	await newNote(page, 'Comments');
+	await emptyNote(page, 'Comments');
 	await add(page, 'text', 'words');
 	await terminal(page, 1).click();
 	await page.getByRole('menuitem', { name: 'Comment' }).click();

@@ -1,9 +1,7 @@
 import { expect, test, type Browser, type Page } from '@playwright/test';
-import { demoPassword, signIn } from '../support/browser';
+import { addCell, demoPassword, figure, newNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
-const figure = (page: Page, name: string) =>
-	page.locator(`[data-cell] [data-quantity="${name}"]`).first();
 const sheetSays = (page: Page, words: string | RegExp) =>
 	expect(page.locator('[data-saving]').first()).toHaveText(words);
 
@@ -14,15 +12,6 @@ async function arrive(browser: Browser, account: Account): Promise<Page> {
 	const page = await context.newPage();
 	await signIn(page, account);
 	return page;
-}
-
-async function addCell(page: Page, kind: 'calculation' | 'requirement', source: string) {
-	await page.getByRole('button', { name: kind, exact: true }).click();
-	await expect(
-		page.locator(`[data-cell][data-kind="${kind}"] .cm-editor.cm-focused`),
-	).toBeVisible();
-	await page.keyboard.insertText(source);
-	await page.keyboard.press('Escape');
 }
 
 async function comment(page: Page, terminal: number, body: string, kind: string) {
@@ -51,11 +40,7 @@ test('three people draft, comment, return, mend, check, approve and freeze a not
 	const approver = await arrive(browser, 'approver');
 
 	// The engineer drafts; the peer has the same note open and sees each figure as it comes.
-	await engineer.getByRole('button', { name: 'New note' }).click();
-	await engineer.getByLabel('Title').fill('Panel voltage channel, 0 to 15 V');
-	await engineer.getByRole('button', { name: 'Create note' }).click();
-	await expect(engineer).toHaveURL(/\/notes\/[A-Z]+-\d+$/);
-	const note = new URL(engineer.url()).pathname;
+	const note = await newNote(engineer, 'Panel voltage channel, 0 to 15 V');
 	const number = note.split('/').at(-1)!;
 	await peer.goto(note);
 	await engineer.getByRole('button', { name: 'Edit text' }).click();

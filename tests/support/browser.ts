@@ -17,3 +17,28 @@ export async function signIn(page: Page, account: DemoAccount): Promise<void> {
 	await page.getByRole('button', { name: 'Sign in' }).click();
 	await expect(page.getByRole('heading', { name: 'Notes', level: 1 })).toBeVisible();
 }
+
+/** Makes a note and opens it; it has one text cell. Gives its path. */
+export async function newNote(page: Page, title: string): Promise<string> {
+	await page.getByRole('button', { name: 'New note' }).click();
+	await page.getByLabel('Title').fill(title);
+	await page.getByRole('button', { name: 'Create note' }).click();
+	await expect(page).toHaveURL(/\/notes\/[A-Z]+-\d+$/);
+	return new URL(page.url()).pathname;
+}
+
+/** Adds a cell at the end of the sheet, with its source. */
+export async function addCell(
+	page: Page,
+	kind: 'text' | 'calculation' | 'requirement',
+	source: string,
+): Promise<void> {
+	await page.getByRole('button', { name: kind, exact: true }).click();
+	await expect(page.locator(`[data-kind=${kind}] .cm-focused`)).toBeVisible();
+	await page.keyboard.insertText(source);
+	await page.keyboard.press('Escape');
+}
+
+/** The readout of a quantity on its line. */
+export const figure = (page: Page, name: string) =>
+	page.locator(`[data-cell] [data-quantity="${name}"]`).first();
