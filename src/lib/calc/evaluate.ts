@@ -3,7 +3,7 @@ import { readFigures } from './figures';
 import { Note } from './note';
 import { readLines, type NoteLine, type Watch } from './note-lines';
 import { judge } from './requirements';
-import type { Cell, Evaluation, Fault, Options, Quantity, WorkedLine } from './results';
+import type { Cell, Evaluation, Fault, Options, Quantity, Readout, WorkedLine } from './results';
 import { figures, show } from './show';
 import type { Trouble } from './trouble';
 
@@ -16,6 +16,9 @@ export { defaultOptions, engineVersion } from './engine';
 export function evaluate(cells: readonly Cell[], options: Options, watch: Watch = {}): Evaluation {
 	const { lines, readable, faults } = readLines(cells, watch);
 	const note = new Note(lines, watch);
+	const readouts = new Map(
+		[...note.computed].map(([line, { value, type }]) => [line, show(value, type)]),
+	);
 	const requirements = lines.flatMap((line) => judge(line, note, options) ?? []);
 	const quoted = readFigures(cells, readable, note);
 	const errors = [
@@ -25,20 +28,22 @@ export function evaluate(cells: readonly Cell[], options: Options, watch: Watch 
 	];
 	return {
 		engine: engineVersion,
-		quantities: quantities(note),
-		lines: lines.filter((line) => !line.requirement).map((line) => workedLine(line, note)),
+		quantities: quantities(note, readouts),
+		lines: lines.filter((line) => !line.requirement).map((line) => workedLine(line, readouts)),
 		requirements,
 		figures: quoted.figures,
 		errors: inSheetOrder(errors, cells),
 	};
 }
 
-function quantities(note: Note): Record<string, Quantity> {
+type Readouts = ReadonlyMap<NoteLine, Readout>;
+
+function quantities(note: Note, readouts: Readouts): Record<string, Quantity> {
 	const all: Record<string, Quantity> = {};
 	for (const line of note.lines) {
 		const computed = note.computed.get(line);
-		if (!line.defined || line.kind !== 'definition' || !computed) continue;
-		const readout = show(computed.value, computed.type);
+		const readout = readouts.get(line);
+		if (!line.defined || line.kind !== 'definition' || !computed || !readout) continue;
 		all[line.defined.typed] = {
 			cell: line.cell,
 			line: line.line,
@@ -54,14 +59,14 @@ function quantities(note: Note): Record<string, Quantity> {
 	return all;
 }
 
-function workedLine(line: NoteLine, note: Note): WorkedLine {
-	const computed = note.computed.get(line);
+function workedLine(line: NoteLine, readouts: Readouts): WorkedLine {
+	const readout = readouts.get(line);
 	return {
 		cell: line.cell,
 		line: line.line,
 		kind: line.kind,
 		...(line.defined && { name: line.defined.typed }),
-		...(computed && { readout: show(computed.value, computed.type) }),
+		...(readout && { readout }),
 	};
 }
 

@@ -19,10 +19,14 @@ export function preferredType(args: Argument[]): Type {
 
 /** The neighbours of a number in a series: the largest value not above and the smallest not below it. */
 function neighbours(x: number, name: string): [below: number, above: number] {
-	const size = series.get(name)?.length ?? 1;
+	const values = series.get(name) ?? [1];
 	const exponent = Math.floor(Math.log10(x));
-	let index = 0;
-	while (index < size && member(name, index, exponent) <= x * (1 + 1e-12)) index += 1;
+	const mantissa = x / 10 ** exponent;
+	// The index found by mantissa may be one off by rounding; the exact members decide.
+	let index = values.findIndex((value) => value > mantissa);
+	if (index < 0) index = values.length;
+	while (member(name, index, exponent) <= x * (1 + 1e-12)) index += 1;
+	while (member(name, index - 1, exponent) > x * (1 + 1e-12)) index -= 1;
 	const below = member(name, index - 1, exponent);
 	// A value that was computed, 27 kΩ as 27 000.000 000 1 Ω, counts as the preferred value itself.
 	if (Math.abs(below - x) <= x * 1e-12) return [below, below];

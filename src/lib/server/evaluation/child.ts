@@ -17,7 +17,7 @@ export type Outcome =
 	| { kind: 'done'; results: Evaluation }
 	| { kind: 'tooLong' | 'tooLarge' | 'gone'; place: { cell: number; line: number } | undefined };
 
-const memoryCheckMs = 50;
+const memoryCheckMs = 20;
 const startMs = 15_000;
 
 /** One evaluator process. It takes one task at a time and is not used again after it was stopped. */
