@@ -232,3 +232,26 @@ for (const width of [1400, 1024, 390]) {
 		await expect(page).toHaveURL(/#cell-/);
 	});
 }
+
+test('figures follow each edit also after a fault has come and gone beside them', async ({
+	page,
+}) => {
+	await emptyNote(page, 'Following');
+	await add(page, 'calculation', 'a = 1 V\nb = 2 * a\nc = 3 V');
+	await expect(figure(page, 'b')).toHaveText(/^2\s*V$/);
+	const append = async (name: string, typed: string) => {
+		await page.locator('.cm-line', { hasText: `${name} =` }).click();
+		await page.keyboard.press('End');
+		await page.keyboard.type(typed);
+	};
+	await append('c', ' +');
+	await expect(page.locator('[data-fault=syntax]')).toBeVisible();
+	await append('a', ' * 2');
+	await expect(figure(page, 'b')).toHaveText(/^4\s*V$/);
+	await append('c', ' a');
+	await expect(page.locator('[data-fault]')).toHaveCount(0);
+	await expect(figure(page, 'c')).toHaveText(/^5\s*V$/);
+	await append('a', '0');
+	await expect(figure(page, 'b')).toHaveText(/^40\s*V$/);
+	await expect(figure(page, 'c')).toHaveText(/^23\s*V$/);
+});

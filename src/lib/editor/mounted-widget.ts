@@ -26,8 +26,20 @@ interface Choices<Props extends Record<string, unknown>> {
 
 /** A widget that shows a Svelte component, the same one that static cells show. */
 export class MountedWidget<Props extends Record<string, unknown>> extends WidgetType {
-	constructor(readonly choices: Choices<Props>) {
+	choices: Choices<Props>;
+	/** Where it stands while it is drawn. */
+	#place: { dom: HTMLElement; view: EditorView } | undefined;
+
+	constructor(choices: Choices<Props>) {
 		super();
+		this.choices = choices;
+	}
+
+	/** Shows what another widget of the same key would, without an update of the editor. */
+	become(next: MountedWidget<Props>): void {
+		if (this.eq(next)) return;
+		this.choices = next.choices;
+		if (this.#place) this.updateDOM(this.#place.dom, this.#place.view);
 	}
 
 	override eq(other: MountedWidget<Props>): boolean {
@@ -53,6 +65,7 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 	override destroy(dom: HTMLElement): void {
 		const before = mounted.get(dom);
 		if (!before) return;
+		if (this.#place?.dom === dom) this.#place = undefined;
 		mounted.delete(dom);
 		void unmount(before.instance);
 		dom.replaceChildren();
@@ -66,5 +79,6 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 		const { component, props, key } = this.choices;
 		const instance = mount(component, { target: dom, props: props(view) });
 		mounted.set(dom, { instance, key });
+		this.#place = { dom, view };
 	}
 }

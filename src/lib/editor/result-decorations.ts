@@ -9,10 +9,12 @@ import { MountedWidget } from './mounted-widget';
 
 /** A result of a cell at its place in the text. */
 export type Result =
-	| { kind: 'readout'; at: number; line: WorkedLine; shown: Shown }
-	| { kind: 'verdict'; at: number; requirement: Requirement }
+	| { kind: 'readout'; at: number; widget: ReadoutWidget }
+	| { kind: 'verdict'; at: number; widget: VerdictWidget }
 	| { kind: 'fault'; at: number; to: number; fault: Fault };
 
+export type ReadoutWidget = ReturnType<typeof readout>;
+export type VerdictWidget = ReturnType<typeof verdict>;
 type Mend = (view: EditorView, fault: Fault) => void;
 
 /** Decorations of all results; lines without a readout or verdict are marked as silent. */
@@ -26,11 +28,7 @@ export function decorate(doc: Text, list: readonly Result[], mend: Mend): Decora
 			ranges.push(...faultRanges(result, line.from, line.to, mend));
 		} else if (!spoken.has(line.number)) {
 			spoken.add(line.number);
-			const widget =
-				result.kind === 'readout'
-					? readout(result.line, result.shown)
-					: verdict(result.requirement);
-			ranges.push(Decoration.widget({ widget, side: 1 }).range(line.to));
+			ranges.push(Decoration.widget({ widget: result.widget, side: 1 }).range(line.to));
 		}
 	}
 	for (let number = 1; number <= doc.lines; number++) {
@@ -42,7 +40,7 @@ export function decorate(doc: Text, list: readonly Result[], mend: Mend): Decora
 const silent = Decoration.line({ class: 'line-silent' });
 const underline = Decoration.mark({ class: 'fault-mark' });
 
-function readout({ name, line }: WorkedLine, shown: Shown) {
+export function readout({ name, line }: WorkedLine, shown: Shown) {
 	return new MountedWidget({
 		component: Readout,
 		props: () => ({ readout: shown, quantity: name }),
@@ -53,7 +51,7 @@ function readout({ name, line }: WorkedLine, shown: Shown) {
 	});
 }
 
-function verdict(requirement: Requirement) {
+export function verdict(requirement: Requirement) {
 	return new MountedWidget({
 		component: Verdict,
 		props: () => ({ requirement }),

@@ -8,13 +8,60 @@ import {
 import { EditorView, type DecorationSet } from '@codemirror/view';
 import type { Evaluation, Fault } from '$lib/calc/results';
 import { splitLine } from '$lib/components/lines';
-import { decorate, type Result } from './result-decorations';
+import {
+	decorate,
+	readout,
+	verdict,
+	type ReadoutWidget,
+	type Result,
+	type VerdictWidget,
+} from './result-decorations';
 
 const arrived = StateEffect.define<Result[]>();
 
 /** Shows the results of a cell in its editor. */
 export function showResults(view: EditorView, cell: string, evaluation: Evaluation): void {
-	view.dispatch({ effects: arrived.of(placed(view.state.doc, cell, evaluation)) });
+	const list = placed(view.state.doc, cell, evaluation);
+	const before = view.state.field(field).list;
+	const next = list.map(keepingWidget(before));
+	// An update of an editor lays the page out; most edits change figures, not where they stand.
+	if (!standAlike(before, next)) view.dispatch({ effects: arrived.of(next) });
+}
+
+/** Gives a result the widget that shows its line already, with the new figure: one line has one widget for good. */
+function keepingWidget(before: readonly Result[]): (result: Result) => Result {
+	const readouts = new Map<string, ReadoutWidget>();
+	const verdicts = new Map<string, VerdictWidget>();
+	for (const result of before) {
+		if (result.kind === 'readout') readouts.set(result.widget.choices.key, result.widget);
+		if (result.kind === 'verdict') verdicts.set(result.widget.choices.key, result.widget);
+	}
+	return (result) => {
+		if (result.kind === 'readout') return { ...result, widget: kept(readouts, result.widget) };
+		if (result.kind === 'verdict') return { ...result, widget: kept(verdicts, result.widget) };
+		return result;
+	};
+}
+
+function kept<Widget extends { choices: { key: string }; become(next: Widget): void }>(
+	known: Map<string, Widget>,
+	widget: Widget,
+): Widget {
+	const { key } = widget.choices;
+	const before = known.get(key);
+	if (!before) return widget;
+	known.delete(key);
+	before.become(widget);
+	return before;
+}
+
+/** Whether all results stand where they stood, in the same widgets, and no fault changed. */
+function standAlike(before: readonly Result[], next: readonly Result[]): boolean {
+	const alike = (a: Result, b: Result | undefined) => {
+		if (a.kind === 'fault' || b?.kind === 'fault') return JSON.stringify(a) === JSON.stringify(b);
+		return a.at === b?.at && a.widget === b.widget;
+	};
+	return before.length === next.length && before.every((it, index) => alike(it, next[index]));
 }
 
 const field = StateField.define<{ list: Result[]; decorations: DecorationSet }>({
@@ -62,12 +109,16 @@ function placed(doc: Text, cell: string, evaluation: Evaluation): Result[] {
 	for (const line of evaluation.lines) {
 		if (line.cell !== cell || !line.readout) continue;
 		const at = startOf(doc, line.line, line.name);
-		if (at !== undefined) list.push({ kind: 'readout', at, line, shown: line.readout });
+		if (at !== undefined) {
+			list.push({ kind: 'readout', at, widget: readout(line, line.readout) });
+		}
 	}
 	for (const requirement of evaluation.requirements) {
 		if (requirement.cell !== cell) continue;
 		const at = startOf(doc, requirement.line);
-		if (at !== undefined) list.push({ kind: 'verdict', at, requirement });
+		if (at !== undefined) {
+			list.push({ kind: 'verdict', at, widget: verdict(requirement) });
+		}
 	}
 	for (const fault of evaluation.errors) {
 		if (fault.cell !== cell) continue;
