@@ -16,7 +16,7 @@ test('no file of the project names a folder of one machine or the host of a regi
 
 test.each([
 	['cd /home/someone/halfdigit', '/home/someone'],
-	['import "/work/main/src/a.ts"', '/work/main'],
+	['import "/mnt/disk/src/a.ts"', '/mnt/disk'],
 	['log in /tmp/run-1.log', '/tmp/run-1'],
 	['"resolved": "https://registry.example.org/a.tgz"', '"resolved": "https:'],
 	['npm --registry=https://registry.example.org', 'registry.example.org'],
