@@ -24,7 +24,7 @@ test.each([
 	expect(findMachineNames(text)).toContain(expected);
 });
 
-test.each(['/usr/lib/postgresql', '$lib/home/page', 'routes/work/list', '{base}/home/a'])(
+test.each(['/usr/lib/postgresql', '$lib/home/page', 'routes/home/list', '{base}/home/a'])(
 	'the check lets %s pass',
 	(text) => {
 		expect(findMachineNames(text)).toEqual([]);
