@@ -1,14 +1,59 @@
-/** A cell as the engine reads it. `text` cells are read for their `{{name}}` figures only. */
-export interface Cell {
+/** A cell of formulas or prose. `text` cells are read for their `{{name}}` figures only. */
+export interface SourceCell {
 	id: string;
 	kind: 'text' | 'calculation' | 'requirement';
 	source: string;
 }
 
+/** A column of bench readings; its name is a quantity of the note. */
+export interface Column {
+	name: string;
+	unit: string;
+	/** In `unit`. */
+	values: number[];
+	/** Standard uncertainty of each value, same unit. */
+	uncertainties?: number[];
+}
+
+export interface ReadingsCell {
+	id: string;
+	kind: 'readings';
+	columns: Column[];
+}
+
+/** A least-squares curve through two columns. It defines the functions `name(x)` and `name_inverse(y)`. */
+export interface CurveCell {
+	id: string;
+	kind: 'curve';
+	name: string;
+	/** Names of the columns. */
+	x: string;
+	y: string;
+	/** 1 is a straight line. */
+	degree: number;
+	/** Whether points count by the uncertainties of the y column. */
+	weighted?: boolean;
+}
+
+/** A cell as the engine reads it. */
+export type Cell = SourceCell | ReadingsCell | CurveCell;
+
 export interface Options {
 	/** Coverage probability of expanded uncertainties, 0 to 1. */
 	coverage: number;
 	decisionRule: 'simple' | 'guarded';
+	/** Quantities whose budget and worst case are wanted; none where absent. */
+	detail?: 'all' | string[];
+	monteCarlo?: MonteCarloOptions;
+}
+
+export interface MonteCarloOptions {
+	quantities: string[];
+	/** 1 000 000 where nothing is said. */
+	trials?: number;
+	/** Stops once the results are stable (JCGM 101:2008, 7.9). */
+	adaptive?: boolean;
+	seed: number;
 }
 
 /** A computed number as it is shown. `text` is `number`, a no-break space and `unit`. */
@@ -45,6 +90,62 @@ export interface Quantity {
 	degreesOfFreedom?: number | null;
 	coverageFactor?: number;
 	expandedUncertainty?: number;
+	/** What must be known beside the uncertainty: sentences. */
+	remarks?: string[];
+	/** Set where second-order terms change u by more than 1 %, or are too many to know. */
+	needsMonteCarlo?: boolean;
+	worstCase?: WorstCase;
+	/** The greatest contribution first. */
+	budget?: BudgetRow[];
+	monteCarlo?: MonteCarlo;
+}
+
+/** Lowest and highest value over the intervals of the inputs, in the quantity's unit. */
+export interface WorstCase {
+	lower: number;
+	upper: number;
+	/** Proved rather than searched for. */
+	exact: boolean;
+	text: string;
+}
+
+/** One input's part in a quantity's uncertainty. */
+export interface BudgetRow {
+	/** Name of the quantity that states the input, with a number where it states several. */
+	input: string;
+	/** Unit of the input's numbers. */
+	unit: string;
+	value: number;
+	standardUncertainty: number;
+	degreesOfFreedom: number | null;
+	distribution: string;
+	/** In the quantity's unit for each unit of the input. */
+	sensitivity: number;
+	/** |sensitivity| × standard uncertainty, in the quantity's unit. */
+	contribution: number;
+	/** Part of the variance. */
+	share: number;
+	/** The numbers as they are shown, each with its unit. */
+	texts: { value: string; standardUncertainty: string; contribution: string };
+}
+
+/** Trials of a quantity, numbers in its unit. */
+export interface MonteCarlo {
+	trials: number;
+	/** Trials that gave no value. */
+	invalid: number;
+	seed: number;
+	mean: number;
+	standardUncertainty: number;
+	/** Probabilistically symmetric and shortest interval of the note's coverage. */
+	symmetric: [number, number];
+	shortest: [number, number];
+	histogram: { from: number; to: number; counts: number[] };
+	/** Whether the first-order interval agrees with the trials (JCGM 101:2008, clause 8); null without one. */
+	validated: boolean | null;
+	/** With adaptive trials: whether the results became stable. */
+	stable?: boolean;
+	texts: { mean: string; standardUncertainty: string; symmetric: string; shortest: string };
 }
 
 /** One line of a calculation cell, as the sheet shows it. */
@@ -79,7 +180,12 @@ export interface Requirement {
 	valueText: string;
 	lowerText: string | null;
 	upperText: string | null;
-	probability?: number;
+	/** Expanded uncertainty of the value, in `unit`; absent while it is exact. */
+	expandedUncertainty?: number;
+	/** Guard band w at each limit, in `unit`: U of the distance to it; absent while that is exact. */
+	guardBand?: { lower: number | null; upper: number | null };
+	/** Probability that the requirement is fulfilled (JCGM 106:2012, 7). */
+	probability: number;
 }
 
 /** A `{{name}}` of a text cell; `from` and `to` are offsets in the cell's source. */

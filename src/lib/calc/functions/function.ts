@@ -1,4 +1,6 @@
+import type { TapeBuilder } from '../doubt/tape';
 import type { Place } from '../language/nodes';
+import type { Traced } from '../traced';
 import { Trouble } from '../trouble';
 import { differ, isPure, pure, spoken, type Type } from '../types';
 import type { Unit } from '../units/unit';
@@ -28,6 +30,13 @@ export interface CalcFunction {
 	readonly type: (args: Argument[]) => Type;
 	/** Computes in SI units. Throws Refusal. A unit is passed as its size. */
 	readonly compute: (args: Value[]) => Value;
+	/**
+	 * Derivative of `compute` by each of its values where all numbers are single ones, 0 at the place of a value that is no
+	 * number. A function with neither `slopes` nor `trace` has its sensitivities taken from differences.
+	 */
+	readonly slopes?: (args: Value[]) => number[];
+	/** Puts a call of doubtful values on a tape, operation by operation. Throws Refusal. */
+	readonly trace?: (tape: TapeBuilder, args: Traced[]) => Traced;
 }
 
 /** A value that a function cannot take, found while computing. */
