@@ -2,6 +2,8 @@
 export const bounds = {
 	/** Characters of one line. */
 	lineLength: 2_000,
+	/** Characters of a text in quotes. */
+	textLength: 40,
 	/** Characters of all cells together. */
 	noteLength: 300_000,
 	/** Calculation and requirement lines of a note. */

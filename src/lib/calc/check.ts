@@ -4,7 +4,17 @@ import type { Node, NodeOf } from './language/nodes';
 import { ofLiteral } from './literal-type';
 import { Trouble } from './trouble';
 import type { Types } from './type-scope';
-import { differ, isPure, ofDimension, pure, spoken, truth, unknown, type Type } from './types';
+import {
+	differ,
+	isNumeric,
+	isPure,
+	ofDimension,
+	pure,
+	spoken,
+	truth,
+	unknown,
+	type Type,
+} from './types';
 import { raised, same, times } from './units/dimension';
 import { isPure as isPureUnit } from './units/unit';
 
@@ -19,6 +29,8 @@ export function check(node: Node, types: Types): Type {
 			return types.of(node.name) ?? unknown;
 		case 'series':
 			return { kind: 'series' };
+		case 'text':
+			return { kind: 'text', text: node.value };
 		case 'boolean':
 			return truth;
 		case 'unary':
@@ -50,7 +62,7 @@ export function check(node: Node, types: Types): Type {
 		case 'index':
 			for (const index of node.indexes)
 				expectPlain(index, numeric(index, types, 'An index takes'), 'An index');
-			return check(node.object, types);
+			return numeric(node.object, types, 'Places are those of');
 		case 'convert':
 			return checkConversion(node, types);
 	}
@@ -58,14 +70,14 @@ export function check(node: Node, types: Types): Type {
 
 function numeric(node: Node, types: Types, doing: string): Type {
 	const type = check(node, types);
-	if (type.kind === 'boolean' || type.kind === 'series')
+	if (!isNumeric(type))
 		throw new Trouble('dimension', node, `${doing} numbers, not ${spoken(type)}.`);
 	return type;
 }
 
 function condition(node: Node, types: Types): void {
 	const type = check(node, types);
-	if (type.kind === 'number' || type.kind === 'series')
+	if (type.kind !== 'boolean' && type.kind !== 'unknown')
 		throw new Trouble('dimension', node, `A condition is expected, not ${spoken(type)}.`, {
 			mend: 'Compare it with something.',
 		});
@@ -130,6 +142,8 @@ function checkComparison(node: NodeOf<'compare'>, types: Types): Type {
 	let previous: Type | undefined;
 	for (const operand of node.operands) {
 		const type = check(operand, types);
+		if (type.kind === 'text' || type.kind === 'series')
+			throw new Trouble('dimension', operand, `A comparison takes values, not ${spoken(type)}.`);
 		if (previous) {
 			const mixed =
 				previous.kind !== type.kind && previous.kind !== 'unknown' && type.kind !== 'unknown';
@@ -153,6 +167,12 @@ function checkChoice(node: NodeOf<'choice'>, types: Types): Type {
 	condition(node.condition, types);
 	const yes = check(node.yes, types);
 	const no = check(node.no, types);
+	for (const [type, part] of [
+		[yes, node.yes],
+		[no, node.no],
+	] as const)
+		if (type.kind === 'text')
+			throw new Trouble('dimension', part, 'A choice is between values, not text in quotes.');
 	if (yes.kind !== no.kind && yes.kind !== 'unknown' && no.kind !== 'unknown')
 		throw new Trouble('dimension', node, `The two cases give ${spoken(yes)} and ${spoken(no)}.`);
 	return alike(yes, no, node, (a, b) => `The two cases give ${a} and ${b}.`);

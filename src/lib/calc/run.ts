@@ -68,6 +68,7 @@ export function run(node: Node, scope: Scope): Value {
 		case 'series':
 			return node.name;
 		case 'boolean':
+		case 'text':
 			return node.value;
 		case 'unary':
 			return runUnary(node, scope);

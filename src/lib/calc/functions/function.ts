@@ -2,7 +2,7 @@ import type { TapeBuilder } from '../doubt/tape';
 import type { Place } from '../language/nodes';
 import type { Traced } from '../traced';
 import { Trouble } from '../trouble';
-import { differ, isPure, pure, spoken, type Type } from '../types';
+import { differ, isNumeric, isPure, pure, spoken, type Type } from '../types';
 import type { Unit } from '../units/unit';
 import { isGrid, map, type Value } from '../values';
 
@@ -90,9 +90,9 @@ export function expectSame(args: Argument[], doing: string): Type {
 	};
 }
 
-/** Throws where a condition or a series is given for a number, or a temperature on a scale where `point` forbids it. */
+/** Throws where a condition, a series or a text is given for a number, or a temperature on a scale where `point` forbids it. */
 export function expectNumber(argument: Argument, doing: string): void {
-	if (argument.type.kind === 'boolean' || argument.type.kind === 'series')
+	if (!isNumeric(argument.type))
 		throw new Trouble('dimension', argument, `${doing} numbers, not ${spoken(argument.type)}.`);
 }
 

@@ -3,6 +3,8 @@ export const percent = '\ue000';
 
 const replaced: Readonly<Record<string, string>> = {
 	'%': percent,
+	'\u201c': '"',
+	'\u201d': '"',
 	'\u2212': '-',
 	'\u00d7': '*',
 	'\u00b7': '*',
@@ -15,7 +17,10 @@ const replaced: Readonly<Record<string, string>> = {
 
 /** The line as mathjs is given it: as many characters, at the same places. */
 export function prepared(line: string): string {
-	return line.replace(/[%\u2212\u00d7\u00b7\u22c5\u202f\u2009\ufeff\r]/g, (c) => replaced[c] ?? c);
+	return line.replace(
+		/[%\u201c\u201d\u2212\u00d7\u00b7\u22c5\u202f\u2009\ufeff\r]/g,
+		(c) => replaced[c] ?? c,
+	);
 }
 
 /** A prepared piece as the person typed it, as far as that shows. */

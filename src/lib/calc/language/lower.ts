@@ -138,6 +138,8 @@ export class Lowering {
 		const token = this.#places.leaf();
 		const value: unknown = node.value;
 		if (typeof value === 'boolean') return { kind: 'boolean', value, ...place(token) };
+		if (typeof value === 'string' && token.kind === 'text')
+			return { kind: 'text', value: asTyped(token.text.slice(1, -1)), ...place(token) };
 		if (typeof value !== 'number' || token.kind !== 'number')
 			throw new Trouble('notAllowed', place(token), `\`${token.text}\` is not a value here.`);
 		if (!Number.isFinite(value))

@@ -19,6 +19,8 @@ export type Node = Place &
 		| { kind: 'name'; name: string; typed: string }
 		| { kind: 'series'; name: string }
 		| { kind: 'boolean'; value: boolean }
+		/** Characters in quotes. */
+		| { kind: 'text'; value: string }
 		| { kind: 'unary'; op: '-' | '+' | 'not' | '!'; value: Node }
 		| { kind: 'binary'; op: BinaryOperator; left: Node; right: Node }
 		| { kind: 'compare'; ops: Comparison[]; operands: Node[] }

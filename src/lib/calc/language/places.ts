@@ -40,6 +40,7 @@ export class Places {
 			if (!token) throw new Trouble('syntax', this.line(), 'This line cannot be read.');
 			if (
 				token.kind === 'number' ||
+				token.kind === 'text' ||
 				(token.kind === 'word' && (token.text === name || !operatorWords.has(token.text)))
 			)
 				return token;

@@ -4,18 +4,26 @@ import { asTyped, isNameCharacter } from './characters';
 import type { Place } from './nodes';
 
 export interface Token extends Place {
-	kind: 'number' | 'word' | 'sign';
+	kind: 'number' | 'word' | 'sign' | 'text';
 	text: string;
 }
 
 const number = /0[xbo][0-9a-fA-F.]+|(?:\d+\.?(?![*/^])\d*|\d+|\.\d+)(?:[eE][+-]?\d+)?/y;
+/** No escapes, and nothing that is not seen. */
+const quoted = /"([^"\\\p{Cc}\p{Cf}\p{Cs}]*)"/uy;
 const sign = /\.[*/^]|[<>=!]=|[-+*/^()[\],:;<>=!?]/y;
 
 const refused: readonly [test: RegExp, message: string, mend?: string][] = [
 	[
-		/^["'`\u2018\u2019\u201c\u201d]/,
-		'Text in quotes has no meaning in a formula.',
-		'Write a comment behind `#` instead.',
+		/^"[^"]*$/,
+		'This text in quotes has no end.',
+		'Add the closing `"`; a `#` cannot be part of it.',
+	],
+	[/^"/, 'Text in quotes holds plain characters only, no `\\`.'],
+	[
+		/^['`\u2018\u2019]/,
+		'This quotation mark has no meaning in a formula.',
+		'Write text between double quotes, `"4k7"`, or a comment behind `#`.',
 	],
 	[/^[{}]/, 'Braces have no meaning in a formula.', 'Group with round brackets.'],
 	[/^\.(?![\d*/^])/, 'A point stands only inside a number.'],
@@ -42,7 +50,7 @@ export function tokenize(line: string): Token[] {
 			at += 1;
 			continue;
 		}
-		const token = numberAt(line, at) ?? wordAt(line, at) ?? signAt(line, at);
+		const token = numberAt(line, at) ?? wordAt(line, at) ?? textAt(line, at) ?? signAt(line, at);
 		if (!token) throw refusal(line, at);
 		tokens.push(token);
 		at = token.to;
@@ -67,6 +75,21 @@ function wordAt(line: string, from: number): Token | undefined {
 	return to === from ? undefined : { kind: 'word', text: line.slice(from, to), from, to };
 }
 
+function textAt(line: string, from: number): Token | undefined {
+	quoted.lastIndex = from;
+	const found = quoted.exec(line);
+	if (!found) return undefined;
+	const [text, inner = ''] = found;
+	const to = from + text.length;
+	if (inner.length <= bounds.textLength) return { kind: 'text', text, from, to };
+	throw new Trouble(
+		'tooLarge',
+		{ from, to },
+		`A text in quotes has at most ${bounds.textLength} characters.`,
+		{ mend: 'Shorten it, or write a comment behind `#`.' },
+	);
+}
+
 function signAt(line: string, from: number): Token | undefined {
 	sign.lastIndex = from;
 	const rest = line.slice(from, from + 2);
@@ -84,7 +107,7 @@ function refusal(line: string, from: number): Trouble {
 		return new Trouble('syntax', place, `\`${asTyped(character)}\` has no meaning in a formula.`);
 	const [, message, mend] = rule;
 	return new Trouble(
-		/quotes|Braces|point|bits|operator/.test(message) ? 'notAllowed' : 'syntax',
+		/quot|Braces|point|bits|operator/.test(message) ? 'notAllowed' : 'syntax',
 		place,
 		message,
 		mend === undefined ? {} : { mend },
@@ -100,7 +123,7 @@ function checkNesting(tokens: Token[]): void {
 		if (token.text === '(' || token.text === '[') depth += 1;
 		if (token.text === ')' || token.text === ']') depth -= 1;
 		if (token.text === '?' || token.text === '=') choices += 1;
-		const operand = token.kind === 'number' || token.kind === 'word';
+		const operand = token.kind !== 'sign';
 		const prefix = /^[-+]$|^not$/.test(token.text) && (i === 0 || tokens[i - 1]?.kind === 'sign');
 		if (/^\.?\^$/.test(token.text) || prefix || token.text === 'not') chain += 1;
 		else if (!operand && token.text !== '(' && token.text !== ')') chain = 0;
