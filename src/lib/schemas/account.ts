@@ -32,4 +32,19 @@ export const passwordChange = z.object({
 		.max(maxPasswordLength, `At most ${maxPasswordLength} characters.`),
 });
 
+/** How long a new token may last, in days; '' is until it is revoked. */
+const tokenDays = ['30', '90', '365', ''] as const;
+
+export const newToken = z.object({
+	name: typed
+		.trim()
+		.min(1, 'Name the token after the script that will use it.')
+		.max(80, 'At most 80 characters.'),
+	days: z
+		.enum(tokenDays, 'Say how long the token may last.')
+		.transform((days) => (days === '' ? null : Number(days))),
+});
+
+export const tokenChoice = z.object({ id: z.uuid('There is no such token.') });
+
 export const roleChange = z.object({ personId: typed.min(1).max(64), role });

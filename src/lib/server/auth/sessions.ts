@@ -6,7 +6,8 @@ import type { Actor } from './access';
 import { absoluteMs, idleMs } from './limits';
 import { hashOf, newToken } from './tokens';
 
-const actorColumns = {
+/** What a query reads of a person as a member of a team. */
+export const actorColumns = {
 	personId: person.id,
 	name: person.name,
 	email: person.email,
