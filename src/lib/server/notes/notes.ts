@@ -1,5 +1,6 @@
 import { AppError } from '$lib/errors';
 import type { NoteContent } from '$lib/note/document';
+import type { NoteState } from '$lib/schemas/notes';
 import { may } from '$lib/schemas/role';
 import { and, eq, sql } from 'drizzle-orm';
 import * as audit from '../audit/audit';
@@ -21,6 +22,9 @@ export interface NoteHead {
 	/** ISO 8601 */
 	changedAt: string;
 	seq: number;
+	state: NoteState;
+	/** Letter of the last frozen revision. */
+	revision: string | null;
 }
 
 const noSuchNote = () => new AppError('notFound', 'There is no such note.');
@@ -31,7 +35,12 @@ export async function get(actor: Actor, number: string): Promise<NoteHead> {
 	const wanted = parseNumber(number);
 	if (!wanted) throw noSuchNote();
 	const [found] = await db()
-		.select({ note, revisions: noteStanding.revisions })
+		.select({
+			note,
+			state: noteStanding.state,
+			revision: noteStanding.letter,
+			revisions: noteStanding.revisions,
+		})
 		.from(note)
 		.innerJoin(team, eq(team.id, note.teamId))
 		.innerJoin(noteStanding, eq(noteStanding.noteId, note.id))
@@ -44,7 +53,16 @@ export async function get(actor: Actor, number: string): Promise<NoteHead> {
 		);
 	if (!found || hidden(actor, found.revisions)) throw noSuchNote();
 	const { id, title, epoch, changedAt, seq } = found.note;
-	return { id, number, title, epoch, changedAt: changedAt.toISOString(), seq };
+	return {
+		id,
+		number,
+		title,
+		epoch,
+		changedAt: changedAt.toISOString(),
+		seq,
+		state: found.state,
+		revision: found.revision,
+	};
 }
 
 /** What a socket may do with a note's working copy. */

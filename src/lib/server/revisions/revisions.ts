@@ -12,6 +12,8 @@ import { signOffsOf } from './standing';
 export interface Frozen {
 	revision: {
 		letter: string;
+		/** Sequence number of the working copy it was taken at. */
+		seq: number;
 		digest: string;
 		frozenAt: string;
 		engine: string;
@@ -37,10 +39,11 @@ export async function get(actor: Actor, number: string, letter: string): Promise
 		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
 		.where(and(eq(revision.noteId, id), eq(revision.letter, letter)));
 	if (!found) throw noSuchRevision();
-	const { content, results, engine, authors } = found.candidate;
+	const { seq, content, results, engine, authors } = found.candidate;
 	return {
 		revision: {
 			letter,
+			seq,
 			digest: found.revision.digest,
 			frozenAt: found.revision.frozenAt.toISOString(),
 			engine,

@@ -1,5 +1,5 @@
 import { randomUUID } from 'node:crypto';
-import { error, type HandleServerError } from '@sveltejs/kit';
+import { error, json, type HandleServerError } from '@sveltejs/kit';
 import { AppError, statusOf } from '$lib/errors';
 import { isOutage } from '../db/outage';
 import { log } from '../log';
@@ -25,6 +25,17 @@ export function toHttp(thrown: unknown): unknown {
 	} catch (http) {
 		return http;
 	}
+}
+
+/** An expected failure as an API route answers it: its sentence, and the faults or the time to wait where it has them. */
+export function toJson({ code, message, details }: AppError): Response {
+	const { faults, waitMs } = details;
+	const headers = new Headers();
+	if (typeof waitMs === 'number') headers.set('retry-after', String(Math.ceil(waitMs / 1000)));
+	return json(faults === undefined ? { message } : { message, faults }, {
+		status: statusOf[code],
+		headers,
+	});
 }
 
 /** What a stranger sees of a fault nobody expected: a sentence and the id of its log line. */

@@ -1,8 +1,8 @@
 import { json, redirect, type Handle } from '@sveltejs/kit';
-import { AppError, statusOf } from '$lib/errors';
+import { AppError } from '$lib/errors';
 import type { Actor } from '../auth/access';
 import { env } from '../env';
-import { expected, toHttp } from './errors';
+import { expected, toHttp, toJson } from './errors';
 
 const changing = new Set(['POST', 'PUT', 'PATCH', 'DELETE']);
 
@@ -78,7 +78,7 @@ export function api<E extends Known>(
 		} catch (thrown) {
 			const failure = expected(thrown);
 			if (!failure) throw thrown;
-			return json({ message: failure.message }, { status: statusOf[failure.code] });
+			return toJson(failure);
 		}
 	};
 }
