@@ -1,4 +1,4 @@
-import { json, type Handle } from '@sveltejs/kit';
+import { json, type Handle, type RequestEvent } from '@sveltejs/kit';
 import { AppError } from '$lib/errors';
 import * as apiTokens from '../auth/api-tokens';
 import { expected, toJson } from './errors';
@@ -21,6 +21,16 @@ export function scriptsOr(others: Handle): Handle {
 }
 
 const answer: Handle = async ({ event, resolve }) => {
+	const response = await answerTo(event, resolve);
+	// What was refused unread is read now, up to the HTTP server's bound: it would block the connection's next request.
+	if (!event.request.bodyUsed) await event.request.arrayBuffer().catch(() => undefined);
+	return response;
+};
+
+async function answerTo(
+	event: RequestEvent,
+	resolve: Parameters<Handle>[0]['resolve'],
+): Promise<Response> {
 	try {
 		const token = bearerOf(event.request.headers);
 		const actor = token === undefined ? undefined : await apiTokens.findActor(token);
@@ -32,7 +42,7 @@ const answer: Handle = async ({ event, resolve }) => {
 		if (!failure) throw thrown;
 		return toJson(failure);
 	}
-};
+}
 
 function bearerOf(headers: Headers): string | undefined {
 	return /^Bearer +(\S+)$/i.exec(headers.get('authorization')?.trim() ?? '')?.[1];

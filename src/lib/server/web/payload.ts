@@ -29,7 +29,6 @@ export async function payload<S extends z.ZodType>(
 }
 
 async function textOf(request: Request): Promise<string> {
-	if (Number(request.headers.get('content-length')) > maxBytes) throw tooLarge();
 	const bytes = await request.arrayBuffer().catch((cause: unknown) => {
 		if (cause instanceof Error && 'status' in cause && cause.status === 413) throw tooLarge(cause);
 		throw new AppError('invalid', 'The body did not arrive whole.', { cause });
