@@ -162,7 +162,7 @@ function runCall(node: NodeOf<'call'>, scope: Scope): Value {
 	const known = functions.get(node.name);
 	if (known) {
 		scope.meter.spend(
-			args.reduce<number>((sum, value) => sum + steps(value), 0),
+			args.reduce<number>((sum, value) => sum + steps(value), known.cost?.(args) ?? 0),
 			node,
 		);
 		return finite(

@@ -8,6 +8,7 @@ export const count: CalcFunction = {
 	help: 'How many values there are.',
 	examples: [{ source: 'count([4, 5, 6])', result: '3' }],
 	count: [1, Infinity],
+	ofEstimate: true,
 	type: (args) => {
 		for (const argument of args) expectNumber(argument, 'Counts');
 		return pure;

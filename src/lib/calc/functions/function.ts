@@ -30,6 +30,8 @@ export interface CalcFunction {
 	readonly type: (args: Argument[]) => Type;
 	/** Computes in SI units. Throws Refusal. A unit is passed as its size. */
 	readonly compute: (args: Value[]) => Value;
+	/** Operations of a call beyond one for each number that it is given. */
+	readonly cost?: (args: Value[]) => number;
 	/**
 	 * Derivative of `compute` by each of its values where all numbers are single ones, 0 at the place of a value that is no
 	 * number. A function with neither `slopes` nor `trace` has its sensitivities taken from differences.
@@ -37,6 +39,8 @@ export interface CalcFunction {
 	readonly slopes?: (args: Value[]) => number[];
 	/** Puts a call of doubtful values on a tape, operation by operation. Throws Refusal. */
 	readonly trace?: (tape: TapeBuilder, args: Traced[]) => Traced;
+	/** Takes the estimates of its values and gives an exact result: a chosen part, a text. */
+	readonly ofEstimate?: boolean;
 }
 
 /** A value that a function cannot take, found while computing. */

@@ -1,5 +1,6 @@
 import { expectNumber, type CalcFunction } from './function';
 import { Trouble } from '../trouble';
+import { mapNodes, nodesOf } from '../traced';
 import { differ, pure, spoken } from '../types';
 import { map } from '../values';
 
@@ -25,4 +26,8 @@ export const number: CalcFunction = {
 		return pure;
 	},
 	compute: ([x = 0, unit = 1]) => map(x, (number) => number / Number(unit)),
+	trace: (tape, [x, unit]) => {
+		const [size] = nodesOf(tape, unit!);
+		return mapNodes(tape, x!, (node) => tape.binary('div', node, size!));
+	},
 };

@@ -11,6 +11,7 @@ export const preferredBelow: CalcFunction = {
 	],
 	source: 'IEC 60063:2015',
 	count: [2, 2],
+	ofEstimate: true,
 	type: preferredType,
 	compute: (args) => choose(args, (_, below) => below),
 };

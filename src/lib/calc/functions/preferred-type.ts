@@ -10,11 +10,16 @@ export function preferredType(args: Argument[]): Type {
 	if (!x || !which) return pure;
 	expectNumber(x, 'Preferred values are chosen for');
 	refusePoint(x, 'Preferred values are chosen for');
-	if (which.type.kind !== 'series' && which.type.kind !== 'unknown')
-		throw new Trouble('value', which, `The second value is a series, not ${spoken(which.type)}.`, {
-			mend: `Write one of ${[...series.keys()].join(', ')}.`,
-		});
+	expectSeries(which, 'The second value');
 	return x.type;
+}
+
+/** Throws Trouble unless a series is given. */
+export function expectSeries(which: Argument, what: string): void {
+	if (which.type.kind === 'series' || which.type.kind === 'unknown') return;
+	throw new Trouble('value', which, `${what} is a series, not ${spoken(which.type)}.`, {
+		mend: `Write one of ${[...series.keys()].join(', ')}.`,
+	});
 }
 
 /** The neighbours of a number in a series: the largest value not above and the smallest not below it. */

@@ -11,6 +11,7 @@ export const preferred: CalcFunction = {
 	],
 	source: 'IEC 60063:2015',
 	count: [2, 2],
+	ofEstimate: true,
 	type: preferredType,
 	compute: (args) => choose(args, (x, below, above) => (x / below <= above / x ? below : above)),
 };

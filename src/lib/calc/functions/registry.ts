@@ -47,6 +47,29 @@ import { sum } from './sum';
 import { tan } from './tan';
 import { tanh } from './tanh';
 import { variance } from './variance';
+import { bands } from './bands';
+import { bandsValue } from './bands-value';
+import { dB } from './db';
+import { dBm } from './db-m';
+import { dBV } from './db-v';
+import { findDivider } from './find-divider';
+import { findPart } from './find-part';
+import { fromdB } from './from-db';
+import { interpolate } from './interpolate';
+import { johnson } from './johnson';
+import { ntcBeta } from './ntc-beta';
+import { ntcBetaTemperature } from './ntc-beta-temperature';
+import { polynomial } from './polynomial';
+import { pt } from './pt';
+import { ptTemperature } from './pt-temperature';
+import { rkm } from './rkm';
+import { rkmText } from './rkm-text';
+import { rkmTextC } from './rkm-text-c';
+import { settling } from './settling';
+import { steinhart } from './steinhart';
+import { steinhartResistance } from './steinhart-resistance';
+import { thermocouple } from './thermocouple';
+import { thermocoupleTemperature } from './thermocouple-temperature';
 
 const all: CalcFunction[] = [
 	abs,
@@ -97,6 +120,29 @@ const all: CalcFunction[] = [
 	tan,
 	tanh,
 	variance,
+	bands,
+	bandsValue,
+	dB,
+	dBm,
+	dBV,
+	findDivider,
+	findPart,
+	fromdB,
+	interpolate,
+	johnson,
+	ntcBeta,
+	ntcBetaTemperature,
+	polynomial,
+	pt,
+	ptTemperature,
+	rkm,
+	rkmText,
+	rkmTextC,
+	settling,
+	steinhart,
+	steinhartResistance,
+	thermocouple,
+	thermocoupleTemperature,
 ];
 
 /** The functions of the language by name. What is not here cannot be called. */

@@ -1,4 +1,5 @@
 import { expectNumber, refusePoint, type CalcFunction } from './function';
+import { mapNodes } from '../traced';
 import { pure } from '../types';
 import { map } from '../values';
 
@@ -14,4 +15,5 @@ export const sign: CalcFunction = {
 		return pure;
 	},
 	compute: ([x = 0]) => map(x, Math.sign),
+	trace: (tape, [x]) => mapNodes(tape, x!, (node) => tape.unary('sign', node)),
 };
