@@ -55,21 +55,9 @@ function checkOwn(
 		throw new Trouble('tooLong', node, 'The functions of this note call one another too often.');
 	types.calls.set(key, pending);
 	const before = types.budget.pending;
-	const bound = new Map(names.map((name, i) => [name, args[i]?.type ?? unknown]));
-	const note = types.note ?? types;
 	const exponent = { byValue: false };
-	const inner: Types = {
-		of: (name) => bound.get(name) ?? note.of(name),
-		function: (name) => note.function(name),
-		note,
-		constant: (wanted) => {
-			if (wanted.kind === 'number') return wanted.value;
-			exponent.byValue = true;
-			return types.constant(substituted(wanted, names, node.args));
-		},
-		calls: types.calls,
-		budget: types.budget,
-	};
+	const given = args.map(({ type }) => type);
+	const inner = boundTypes(types, names, given, node.args, () => (exponent.byValue = true));
 	try {
 		const type = check(body, inner);
 		// An exponent that the call gives decides over the unit, so that the next call may have another.
@@ -91,8 +79,32 @@ function checkOwn(
 	}
 }
 
+/** What a function's body may refer to where it is called with `values` of these types. */
+export function boundTypes(
+	types: Types,
+	names: readonly string[],
+	given: readonly Type[],
+	values: Node[],
+	onExponent?: () => void,
+): Types {
+	const bound = new Map(names.map((name, i) => [name, given[i] ?? unknown]));
+	const note = types.note ?? types;
+	return {
+		of: (name) => bound.get(name) ?? note.of(name),
+		function: (name) => note.function(name),
+		note,
+		constant: (wanted) => {
+			if (wanted.kind === 'number') return wanted.value;
+			onExponent?.();
+			return types.constant(substituted(wanted, names, values));
+		},
+		calls: types.calls,
+		budget: types.budget,
+	};
+}
+
 /** The expression with a call's values in place of the parameters; only for the short expressions of exponents. */
-function substituted(node: Node, names: string[], values: Node[]): Node {
+function substituted(node: Node, names: readonly string[], values: Node[]): Node {
 	if (node.kind === 'name') {
 		const index = names.indexOf(node.name);
 		return (index < 0 ? undefined : values[index]) ?? node;

@@ -100,7 +100,7 @@ export function circleTrouble(
 ): Trouble | undefined {
 	const lines = circle
 		.filter((member) => member !== leftOut)
-		.map((member) => definitions.get(member)!);
+		.flatMap((member) => definitions.get(member) ?? []);
 	// A function may use itself: whether it ends is seen when it is computed.
 	if (lines.every((line) => line.kind === 'function')) return undefined;
 	const [line] = lines;

@@ -2,8 +2,8 @@ import { parseUnit } from './language/parse-line';
 import { canonical } from './language/characters';
 import { builtInNames } from './language/names';
 import type { Note } from './note';
-import type { Cell, Fault, Figure } from './results';
-import { show } from './show';
+import type { Cell, Fault, Figure, SourceCell } from './results';
+import type { Worked } from './worked';
 import { Trouble } from './trouble';
 import { spoken } from './types';
 import { same } from './units/dimension';
@@ -15,6 +15,7 @@ export function readFigures(
 	cells: readonly Cell[],
 	readable: ReadonlySet<string>,
 	note: Note,
+	worked: Worked,
 ): { figures: Figure[]; faults: Fault[] } {
 	const figures: Figure[] = [];
 	const faults: Fault[] = [];
@@ -24,7 +25,7 @@ export function readFigures(
 			const from = match.index;
 			const figure: Figure = { cell: cell.id, from, to: from + match[0].length };
 			try {
-				figure.readout = quote(match[1] ?? '', note);
+				figure.readout = quote(match[1] ?? '', note, worked);
 			} catch (error) {
 				if (!(error instanceof Trouble)) throw error;
 				faults.push(fault(cell, from + 2, error));
@@ -36,7 +37,7 @@ export function readFigures(
 }
 
 /** The readout of what stands between the braces. Throws Trouble with columns counted from behind the braces. */
-function quote(inner: string, note: Note) {
+function quote(inner: string, note: Note, worked: Worked) {
 	const [left = '', right] = inner.split(/:(.*)/s, 2);
 	const typed = left.trim();
 	const from = left.length - left.trimStart().length;
@@ -47,8 +48,9 @@ function quote(inner: string, note: Note) {
 	if (line.kind === 'function')
 		throw new Trouble('value', at, `\`${typed}\` is a function; only a quantity can be quoted.`);
 	if (!computed) throw note.waiting(typed, line, at);
-	if (right === undefined) return show(computed.value, computed.type);
-	const unit = unitAt(right, left.length + 1);
+	const remembered = note.remembered.get(line);
+	if (right === undefined && remembered) return worked.shown(remembered).readout;
+	const unit = unitAt(right ?? '', left.length + 1);
 	const { type } = computed;
 	if (type.dimension && !same(type.dimension, unit.dimension))
 		throw new Trouble(
@@ -56,7 +58,8 @@ function quote(inner: string, note: Note) {
 			{ from: left.length + 1, to: inner.length },
 			`\`${typed}\` is in ${spoken(type)}, not in ${unit.label}.`,
 		);
-	return show(computed.value, { ...type, unit, fixed: true, point: unit.offset !== 0 });
+	const quoted = { ...computed, type: { ...type, unit, fixed: true, point: unit.offset !== 0 } };
+	return worked.inUnit(quoted);
 }
 
 function unitAt(text: string, offset: number) {
@@ -88,7 +91,7 @@ function unknownName(typed: string, at: { from: number; to: number }, note: Note
 	);
 }
 
-function fault(cell: Cell, start: number, { at, code, message, how }: Trouble): Fault {
+function fault(cell: SourceCell, start: number, { at, code, message, how }: Trouble): Fault {
 	const before = cell.source.slice(0, start);
 	const line = before.split('\n').length;
 	const column = start - (before.lastIndexOf('\n') + 1);

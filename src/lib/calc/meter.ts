@@ -11,6 +11,21 @@ export class Meter {
 		this.#line = 0;
 	}
 
+	/** Operations of the current line. */
+	get spent(): number {
+		return this.#line;
+	}
+
+	/** Whether the note has so many operations left. */
+	affords(steps: number): boolean {
+		return this.#note + steps <= bounds.noteSteps;
+	}
+
+	/** Counts operations of a line whose result is known. */
+	charge(steps: number): void {
+		this.#note += steps;
+	}
+
 	/** Throws Trouble `tooLong` once the line or the note has used up its operations. */
 	spend(steps: number, at: Place): void {
 		this.#line += steps;

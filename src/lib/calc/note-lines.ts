@@ -1,4 +1,5 @@
 import { bounds } from './bounds';
+import { sourceOf } from './cells';
 import { parseLine, unreadLine, type ParsedLine } from './language/parse-line';
 import type { Cell, Fault } from './results';
 import { Trouble } from './trouble';
@@ -8,6 +9,8 @@ export interface Watch {
 	/** Called before each step with the line it is about. */
 	at?(cell: string, line: number): void;
 	skip?: readonly SkippedLine[];
+	/** Told how many trials are drawn; answers false to stop them. */
+	trials?: (drawn: number, total: number) => boolean;
 }
 
 /** A line that an earlier try could not finish. */
@@ -42,8 +45,9 @@ export function readLines(
 	const readable = new Set<string>();
 	let length = 0;
 	cells.forEach((cell, i) => {
-		length += cell.source.length;
-		const rows = cell.kind === 'text' ? [] : cell.source.split('\n');
+		const source = sourceOf(cell);
+		length += source.length;
+		const rows = hasLines(cell) ? source.split('\n') : [];
 		if (length > bounds.noteLength || lines.length + rows.length > bounds.lines) {
 			const message =
 				length > bounds.noteLength
@@ -71,6 +75,10 @@ export function readLines(
 		});
 	});
 	return { lines, readable, faults };
+}
+
+function hasLines(cell: Cell): boolean {
+	return cell.kind === 'calculation' || cell.kind === 'requirement';
 }
 
 /** How a sentence points at a line: "cell 2, line 3". */

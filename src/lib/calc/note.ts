@@ -1,59 +1,127 @@
 import { bounds } from './bounds';
 import { check } from './check';
-import type { Node, Place } from './language/nodes';
+import { isStatement, linesOfStatements, stateCorrelations } from './correlated-lines';
 import { circleTrouble, define, doubleReadings } from './definitions';
-import { Suggestions, unknownName } from './unknown-names';
+import { uncertaintyOf, type Doubts } from './doubt/budget';
+import { uncorrelated, type Correlations } from './doubt/correlations';
+import { TapeBuilder } from './doubt/tape';
+import { DoubtfulFunctions, readsUncertainty } from './doubtful-calls';
+import { Inputs, type Input } from './inputs';
+import { canonical } from './language/characters';
+import type { Node, Place } from './language/nodes';
+import type { Memory, Computed, Remembered } from './memory';
 import { Meter } from './meter';
 import { whereabouts, type NoteLine, type Watch } from './note-lines';
 import { order } from './order';
 import { run, type Scope } from './run';
+import { Bounds, stepsOf, type Step } from './steps';
+import { Tracer, type Doubt, type Surroundings } from './trace';
+import { isExact, nodesOf, shapeOf } from './traced';
 import { Trouble } from './trouble';
 import type { Types } from './type-scope';
 import type { Type } from './types';
+import { Suggestions, unknownName } from './unknown-names';
 import type { Value } from './values';
 
-/** A line that was computed. */
-export interface Computed {
-	type: Type;
-	value: Value;
-}
+/** Stands among the names for all that the note says of correlations. */
+const statements = '(correlations)';
 
-/** All lines of a note in one name space: finds what each means, whether it stands, and its value. */
+/** All lines of a note in one name space: finds what each means, whether it stands, its value and its doubt. */
 export class Note {
 	readonly troubles = new Map<NoteLine, Trouble[]>();
 	/** Faults that do not keep a line from being computed. */
 	readonly remarks: ReadonlyMap<NoteLine, Trouble>;
 	readonly computed = new Map<NoteLine, Computed>();
+	readonly remembered = new Map<NoteLine, Remembered>();
+	readonly inputs = new Inputs();
+	readonly suggestions: Suggestions;
 	readonly #definitions: ReadonlyMap<string, NoteLine>;
 	readonly #meter = new Meter();
 	/** For each waiting line the one whose error it waits for. `V = A` and `A = V` wait for one another. */
 	readonly #awaited = new Map<NoteLine, NoteLine>();
-	readonly suggestions: Suggestions;
+	readonly #functionTokens = new Map<NoteLine, object>();
+	readonly #doubtfulFunctions: DoubtfulFunctions;
+	readonly #bounds: Bounds;
+	#correlations: Correlations = uncorrelated;
 
 	constructor(
 		readonly lines: readonly NoteLine[],
 		private readonly watch: Watch,
+		readonly memory: Memory,
 	) {
+		memory.begin();
 		const names = new Set(lines.flatMap((line) => (line.defined ? [line.defined.name] : [])));
 		const fail = (line: NoteLine, trouble: Trouble) => this.fail(line, trouble);
 		this.#definitions = define(lines, names, fail);
 		this.remarks = doubleReadings(lines, this.#definitions, names);
 		const known = [...this.#definitions.values()].map((line) => line.defined?.typed ?? '');
 		this.suggestions = new Suggestions(known);
-		const uses = new Map([...this.#definitions].map(([name, line]) => [name, this.#usedBy(line)]));
-		const { sorted, circles } = order(this.#definitions.keys(), (name) => uses.get(name) ?? []);
+		this.#doubtfulFunctions = new DoubtfulFunctions(
+			(name) => this.#definitions.get(name),
+			(name) => this.#doubt(name) !== undefined,
+		);
+		this.#bounds = new Bounds(this.inputs);
+		this.#evaluateAll();
+	}
+
+	/** What the note says of correlations between its inputs. */
+	get correlations(): Correlations {
+		return this.#correlations;
+	}
+
+	get doubts(): Doubts {
+		const { uncertainties, dofs } = this.inputs;
+		return { uncertainties, dofs, correlations: this.#correlations };
+	}
+
+	/** Lines in an order in which each comes behind those it uses; what the note says of correlations is one of them. */
+	#evaluateAll(): void {
+		const stating = linesOfStatements(this.lines);
+		const names = [...this.#definitions.keys(), ...(stating.length > 0 ? [statements] : [])];
+		const uses = new Map(
+			[...this.#definitions].map(([name, line]) => {
+				const asks = line.body && stating.length > 0 && readsUncertainty(line.body);
+				return [name, [...this.#usedBy(line), ...(asks ? [statements] : [])]];
+			}),
+		);
+		uses.set(statements, [...new Set(stating.flatMap((line) => this.#usedBy(line)))]);
+		const { sorted, circles } = order(names, (name) => uses.get(name) ?? []);
 		for (const [name, circle] of circles) {
 			const trouble = circleTrouble(circle, this.#definitions);
-			if (trouble) this.fail(this.#definitions.get(name)!, trouble);
+			const line = this.#definitions.get(name);
+			if (trouble && line) this.fail(line, trouble);
 		}
-		for (const name of sorted) this.#evaluate(this.#definitions.get(name)!);
-		for (const line of lines)
-			if (this.#definitions.get(line.defined?.name ?? '') !== line) this.#evaluate(line);
+		for (const name of sorted) {
+			const line = this.#definitions.get(name);
+			if (line) this.#evaluate(line, circles.has(name));
+			else this.#state(stating);
+		}
+		for (const line of this.lines)
+			if (this.#definitions.get(line.defined?.name ?? '') !== line && !isStatement(line))
+				this.#evaluate(line);
+	}
+
+	#state(lines: readonly NoteLine[]): void {
+		for (const line of lines) this.#evaluate(line);
+		const stated = lines.filter((line) => !this.#broken(line) && line.body);
+		const used = stated.flatMap((line) => [line.body, ...this.#usesOf(line)]);
+		const correlations = stateCorrelations(stated, {
+			computed: (name) => this.computed.get(this.#definitions.get(name)!),
+			coefficient: (node) => Number(run(node, this.#scope)),
+			fail: (line, trouble) => this.fail(line, trouble),
+		});
+		this.#correlations = this.memory.correlations(used, correlations);
 	}
 
 	/** The line that defines a name, the first where there are several. */
 	definition(name: string): NoteLine | undefined {
 		return this.#definitions.get(name);
+	}
+
+	/** The computed quantity of a name as it is typed. */
+	find(typed: string): Computed | undefined {
+		const line = this.#definitions.get(canonical(typed));
+		return line?.kind === 'definition' ? this.computed.get(line) : undefined;
 	}
 
 	/** Why a use of a defined name has no value: it, or what it waits for, has an error. */
@@ -68,7 +136,7 @@ export class Note {
 		);
 	}
 
-	/** One side of a comparison that was computed, as a number. Throws Trouble. */
+	/** Sides of a comparison as numbers with their types. Throws Trouble. */
 	measure(node: Node): { value: number; type: Type } {
 		this.#startLine();
 		const type = check(node, this.#types);
@@ -76,6 +144,20 @@ export class Note {
 		if (typeof value !== 'number' || type.kind !== 'number')
 			throw new Trouble('notComparable', node, 'A requirement compares single numbers.');
 		return { value, type };
+	}
+
+	/** The step of an expression of a requirement, undefined where it is exact. Throws Trouble. */
+	traced(line: NoteLine, nodes: readonly Node[]): (Step | undefined)[] {
+		this.#startLine();
+		const tracer = this.#tracer(line);
+		const parts = nodes.map((node) => tracer.trace(node));
+		const first = this.inputs.add(tracer.inputs);
+		return parts.map((part) => {
+			if (isExact(part)) return undefined;
+			const count = tracer.inputs.length;
+			const out = nodesOf(tracer.tape, part);
+			return stepsOf(tracer.tape, out, tracer.args, first, this.inputs, count)[0];
+		});
 	}
 
 	faultsOf(line: NoteLine): Trouble[] {
@@ -113,7 +195,7 @@ export class Note {
 		return this.troubles.has(line);
 	}
 
-	#evaluate(line: NoteLine): void {
+	#evaluate(line: NoteLine, onCircle = false): void {
 		if (line.kind === 'blank' || line.kind === 'comment') return;
 		if (line.trouble) {
 			const unit = line.trouble.how.unitName;
@@ -124,34 +206,24 @@ export class Note {
 			if (meant !== line) this.fail(line, waits || line.trouble);
 		}
 		if (!line.body || this.#broken(line)) return;
+		const uses = this.#usesOf(line);
+		const known = this.memory.recall(line.body, uses, this.inputs.next);
+		if (known && this.#meter.affords(known.spent)) {
+			this.#meter.charge(known.spent);
+			this.#keep(line, line.body, known);
+			return;
+		}
 		this.watch.at?.(line.cell, line.line);
 		this.#startLine();
+		const firstInput = this.inputs.next;
 		try {
-			const unknowns = this.#unresolved(line);
-			const type = check(line.body, this.#types);
-			const [first] = unknowns;
-			if (first) {
-				const awaited = line.references.map(({ name }) => this.#definitions.get(name));
-				const used = awaited.find((other) => other && this.#broken(other));
-				if (first.code === 'waits' && used) this.#awaited.set(line, used);
-				throw first;
+			const computed = this.#compute(line, line.body);
+			if (line.kind === 'function') {
+				const token = onCircle ? {} : this.memory.functionToken(line.body, uses);
+				this.#functionTokens.set(line, token);
 			}
-			if (line.kind === 'function') return;
-			const value = run(line.body, this.#scope);
-			if (type.kind === 'series')
-				throw new Trouble('value', line.body, 'A series is not a value.', {
-					mend: 'Write `preferred(x, E24)`.',
-				});
-			if (type.kind === 'unknown' || (type.kind === 'number' && !type.dimension))
-				throw new Trouble(
-					'dimension',
-					line.body,
-					'The unit of this cannot be told before it is computed.',
-					{
-						mend: 'Write exponents as numbers.',
-					},
-				);
-			this.computed.set(line, { type, value });
+			if (computed)
+				this.#keep(line, line.body, { uses, firstInput, spent: this.#meter.spent, computed });
 		} catch (error) {
 			if (error instanceof Trouble) this.fail(line, error);
 			else if (error instanceof RangeError)
@@ -163,6 +235,121 @@ export class Note {
 				);
 			else throw error;
 		}
+	}
+
+	#keep(line: NoteLine, body: Node, remembered: Remembered): void {
+		const { computed } = remembered;
+		// Remembered inputs take the numbers that they had: recall has seen to it that these are the next ones.
+		if (computed.inputs.length > 0 && computed.firstInput === this.inputs.next)
+			this.inputs.add(computed.inputs);
+		const name = line.kind === 'definition' ? line.defined?.name : undefined;
+		const kept = this.memory.settled(name, remembered);
+		this.memory.keep(body, name, kept);
+		this.computed.set(line, kept.computed);
+		this.remembered.set(line, kept);
+	}
+
+	/** Value and doubt of a line; undefined for a function, which has none before it is called. */
+	#compute(line: NoteLine, body: Node): Computed | undefined {
+		const unknowns = this.#unresolved(line);
+		const type = check(body, this.#types);
+		const [first] = unknowns;
+		if (first) {
+			const awaited = line.references.map(({ name }) => this.#definitions.get(name));
+			const used = awaited.find((other) => other && this.#broken(other));
+			if (first.code === 'waits' && used) this.#awaited.set(line, used);
+			throw first;
+		}
+		if (line.kind === 'function') return undefined;
+		const value = run(body, this.#scope);
+		if (type.kind === 'series')
+			throw new Trouble('value', body, 'A series is not a value.', {
+				mend: 'Write `preferred(x, E24)`.',
+			});
+		if (type.kind === 'unknown' || (type.kind === 'number' && !type.dimension))
+			throw new Trouble(
+				'dimension',
+				body,
+				'The unit of this cannot be told before it is computed.',
+				{
+					mend: 'Write exponents as numbers.',
+				},
+			);
+		return { type, value, ...this.#doubtOf(line, body, value) };
+	}
+
+	/** How a line depends on inputs, and the inputs it states itself. */
+	#doubtOf(
+		line: NoteLine,
+		body: Node,
+		value: Value,
+	): Pick<Computed, 'doubt' | 'inputs' | 'firstInput'> {
+		const firstInput = this.inputs.next;
+		const exact = { inputs: [], firstInput };
+		// Of a requirement the sides are followed, when it is judged.
+		if (typeof value === 'string' || line.requirement) return exact;
+		const tracer = this.#tracer(line);
+		if (!tracer.isDoubtful(body, tracer.outer)) return exact;
+		const traced = tracer.trace(body);
+		if (isExact(traced)) return exact;
+		const { tape, args } = tracer;
+		const inputs = labelled(tracer.inputs);
+		this.inputs.add(inputs);
+		const steps = stepsOf(
+			tape,
+			nodesOf(tape, traced),
+			args,
+			firstInput,
+			this.inputs,
+			inputs.length,
+		);
+		const shape = shapeOf(traced);
+		return { doubt: { steps, ...(shape && { shape }) }, inputs, firstInput };
+	}
+
+	#tracer(line: NoteLine): Tracer {
+		const name = line.requirement ? undefined : line.defined?.typed;
+		return new Tracer(
+			this.#surroundings,
+			new TapeBuilder(),
+			({ from, to }) => name ?? line.text.slice(from, to),
+		);
+	}
+
+	/** The doubt of a quantity, undefined for exact ones. */
+	#doubt(name: string): Doubt | undefined {
+		return this.computed.get(this.#definitions.get(name)!)?.doubt;
+	}
+
+	/** What a line is computed from, each the same object as long as it stays the same. */
+	#usesOf(line: NoteLine): unknown[] {
+		const uses: unknown[] = line.references.map(({ name }) => {
+			const used = this.#definitions.get(name);
+			return used && (this.#functionTokens.get(used) ?? this.computed.get(used));
+		});
+		if (line.body && readsUncertainty(line.body)) uses.push(this.#correlations);
+		return uses;
+	}
+
+	/** The uncertainty or a bound of an expression of a line, in SI units. */
+	#read(what: 'uncertainty' | 'lower' | 'upper', node: Node): number {
+		const value = Number(run(node, this.#scope));
+		const tracer = new Tracer(this.#surroundings, new TapeBuilder(), () => '');
+		const traced = tracer.trace(node);
+		if (isExact(traced)) return what === 'uncertainty' ? 0 : value;
+		if (shapeOf(traced))
+			throw new Trouble('value', node, 'One number is expected here, not a list.');
+		// Inputs stated within the brackets are no inputs of the note.
+		const inputs = this.inputs.with(tracer.inputs);
+		const nodes = nodesOf(tracer.tape, traced);
+		const own = tracer.inputs.length;
+		const [step] = stepsOf(tracer.tape, nodes, tracer.args, this.inputs.next, inputs, own);
+		if (what === 'uncertainty') {
+			const { uncertainties, dofs } = inputs;
+			const doubts = { uncertainties, dofs, correlations: this.#correlations };
+			return uncertaintyOf(step!.propagated, doubts, 0.95).standardUncertainty;
+		}
+		return (own > 0 ? new Bounds(inputs) : this.#bounds).of(step!)[what];
 	}
 
 	/** Names of the line that are unknown, wrongly used, or wait; in order of first use. */
@@ -207,9 +394,17 @@ export class Note {
 	readonly #scope: Scope = {
 		of: (name) => this.computed.get(this.#definitions.get(name)!)?.value,
 		function: (name) => this.#function(name),
+		read: (what, node) => this.#read(what, node),
 		meter: this.#meter,
 		depth: 0,
 		levels: 0,
+	};
+
+	readonly #surroundings: Surroundings = {
+		scope: this.#scope,
+		types: this.#types,
+		doubt: (name) => this.#doubt(name),
+		isDoubtful: (name) => this.#doubtfulFunctions.has(name),
 	};
 
 	#function(name: string): NoteLine | undefined {
@@ -227,6 +422,16 @@ export class Note {
 			throw error;
 		}
 	}
+}
+
+/** Inputs of one line get numbers where it states several. */
+function labelled(inputs: readonly Input[]): Input[] {
+	const counts = new Map<string, number>();
+	return inputs.map((input) => {
+		const count = (counts.get(input.label) ?? 0) + 1;
+		counts.set(input.label, count);
+		return count === 1 ? input : { ...input, label: `${input.label} (${count})` };
+	});
 }
 
 /** What to tell first: what is wrong here before what waits for something else. */

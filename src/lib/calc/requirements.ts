@@ -2,11 +2,16 @@ import { hasNames, type Comparison, type Node } from './language/nodes';
 import type { Note } from './note';
 import type { NoteLine } from './note-lines';
 import type { Options, Requirement, Verdict } from './results';
+import type { Step } from './steps';
 import { holds } from './arithmetic';
+import type { Uncertainty } from './doubt/budget';
+import { decide, type Conformity } from './doubt/conformity';
+import { statesInput } from './doubtful-calls';
+import { finiteUncertainty } from './uncertainty';
 import { unitOf } from './show';
 import { Trouble } from './trouble';
 import type { Type } from './types';
-import { readout } from './units/display';
+import { compose, doubtfulReadout, readout } from './units/display';
 import { differenceFromSI, fromSI } from './units/unit';
 
 interface Limit {
@@ -30,10 +35,23 @@ const turned: Readonly<Record<Comparison, Comparison>> = {
 };
 
 /** Judges a requirement line. Undefined for blank lines, comments and lines with an error. */
-export function judge(line: NoteLine, note: Note, _options: Options): Requirement | undefined {
+export function judge(line: NoteLine, note: Note, options: Options): Requirement | undefined {
 	if (!line.requirement || line.kind === 'blank' || line.kind === 'comment') return undefined;
+	const remembered = note.remembered.get(line);
+	const known = remembered?.shown;
+	if (known?.correlations === note.correlations && known.requirement) {
+		const { requirement } = known;
+		if (requirement.cell === line.cell && requirement.line === line.line) return requirement;
+		return (known.requirement = { ...requirement, cell: line.cell, line: line.line });
+	}
 	try {
-		return assess(line, note);
+		const requirement = assess(line, note, options);
+		// One that states inputs of its own is judged anew each time, so that they are numbered.
+		if (remembered && requirement && line.body && !statesInput(line.body)) {
+			const { correlations } = note;
+			remembered.shown = { correlations, readout: compose('', ''), fields: {}, requirement };
+		}
+		return requirement;
 	} catch (error) {
 		if (!(error instanceof Trouble)) throw error;
 		note.fail(line, error);
@@ -41,7 +59,7 @@ export function judge(line: NoteLine, note: Note, _options: Options): Requiremen
 	}
 }
 
-function assess(line: NoteLine, note: Note): Requirement | undefined {
+function assess(line: NoteLine, note: Note, options: Options): Requirement | undefined {
 	if (line.kind === 'definition' || line.kind === 'function')
 		throw new Trouble(
 			'notComparable',
@@ -56,8 +74,41 @@ function assess(line: NoteLine, note: Note): Requirement | undefined {
 	if (!body) return undefined;
 	const { value, limits } = shapeOf(body);
 	const measured = note.measure(value);
-	const bounds = limits.map(({ node, op }) => ({ op, node, si: note.measure(node).value }));
-	return verdictOf(line, measured, bounds);
+	const sides = limits.map(({ node, op }) => ({ op, node, si: note.measure(node).value }));
+	// The distance to a limit is followed as a whole: what value and limit share cancels.
+	const [own, ...steps] = note.traced(line, [
+		value,
+		...sides.map(({ node, op }) => distanceNode(op, value, node)),
+	]);
+	const uncertain = (step: Step | undefined, at: Node): Uncertainty => {
+		if (!step) return exact;
+		const found = finiteUncertainty(step, note.doubts, options.coverage);
+		if (!found)
+			throw new Trouble(
+				'value',
+				at,
+				'This has no finite uncertainty, so that no verdict can be given.',
+				{
+					mend: 'Compare plain values, `value(x)`, or look at trials.',
+				},
+			);
+		return found;
+	};
+	const bounds = sides.map((side, i) => ({ ...side, doubt: uncertain(steps[i], side.node) }));
+	const doubt = uncertain(own, value);
+	return verdictOf(line, measured, bounds, doubt, options.decisionRule);
+}
+
+const exact: Uncertainty = {
+	standardUncertainty: 0,
+	dof: Infinity,
+	coverageFactor: 0,
+	expandedUncertainty: 0,
+};
+
+function distanceNode(op: Comparison, value: Node, limit: Node): Node {
+	const [left, right] = op.startsWith('>') ? [value, limit] : [limit, value];
+	return { kind: 'binary', op: '-', left, right, from: limit.from, to: limit.to };
 }
 
 /** Which side is the value and which are the limits. Throws Trouble `notComparable`. */
@@ -97,12 +148,16 @@ function shapeOf(body: Node): Shape {
 interface Bound {
 	op: Comparison;
 	si: number;
+	/** Of the distance to it. */
+	doubt: Uncertainty;
 }
 
 function verdictOf(
 	line: NoteLine,
 	measured: { value: number; type: Type },
 	bounds: Bound[],
+	doubt: Uncertainty,
+	rule: Options['decisionRule'],
 ): Requirement {
 	const { value, type } = measured;
 	const unit = unitOf(type);
@@ -111,14 +166,21 @@ function verdictOf(
 		return op.startsWith('<') ? si - value : value - si;
 	};
 	const nearest = bounds.reduce((a, b) => (distance(b) < distance(a) ? b : a));
-	const met = bounds.every(({ op, si }) => holds(op, value, si));
 	// What rounding leaves at the very limit is no margin.
 	const margin = holds('==', value, nearest.si) ? 0 : distance(nearest);
 	const relative = type.point || nearest.si === 0 ? null : margin / Math.abs(nearest.si);
-	const verdict: Verdict = met ? 'met' : 'not met';
-	const spoken = (si: number) => readout(si, unit, !type.fixed).text;
+	const { verdict, probability } = bounds.every((bound) => bound.doubt === exact)
+		? plainVerdict(value, bounds)
+		: decided(bounds, distance, rule);
+	const spoken = (si: number, expanded?: number) =>
+		(expanded ? doubtfulReadout(si, expanded, unit, !type.fixed) : readout(si, unit, !type.fixed))
+			.text;
 	const lower = bounds.find(({ op }) => op.startsWith('>') || op === '==');
 	const upper = bounds.find(({ op }) => op.startsWith('<') || op === '==');
+	const guard = (bound: Bound | undefined) =>
+		bound && bound.doubt !== exact ? differenceFromSI(bound.doubt.expandedUncertainty, unit) : null;
+	const guardBand = { lower: guard(lower), upper: guard(upper) };
+	const guarded = guardBand.lower !== null || guardBand.upper !== null;
 	return {
 		cell: line.cell,
 		line: line.line,
@@ -126,36 +188,80 @@ function verdictOf(
 		margin: differenceFromSI(margin, unit),
 		relativeMargin: relative,
 		unit: unit.text,
-		text: sentence(met, nearest.op, margin, relative, type),
+		text: sentence(verdict, nearest, margin, relative, type),
 		value: fromSI(value, unit),
 		lower: lower ? fromSI(lower.si, unit) : null,
 		upper: upper ? fromSI(upper.si, unit) : null,
-		valueText: spoken(value),
+		valueText: spoken(value, doubt.expandedUncertainty),
 		lowerText: lower ? spoken(lower.si) : null,
 		upperText: upper ? spoken(upper.si) : null,
+		...(doubt !== exact && {
+			expandedUncertainty: differenceFromSI(doubt.expandedUncertainty, unit),
+		}),
+		...(guarded && { guardBand }),
+		probability,
 	};
+}
+
+function plainVerdict(
+	value: number,
+	bounds: readonly Bound[],
+): Pick<Conformity, 'verdict' | 'probability'> {
+	const met = bounds.every(({ op, si }) => holds(op, value, si));
+	return met ? { verdict: 'met', probability: 1 } : { verdict: 'not met', probability: 0 };
+}
+
+/** An equality in doubt is never met for certain: it is undecided while the two agree within their uncertainty. */
+function decided(
+	bounds: readonly Bound[],
+	distance: (bound: Bound) => number,
+	rule: Options['decisionRule'],
+): Pick<Conformity, 'verdict' | 'probability'> {
+	if (bounds.some(({ op }) => op === '==')) {
+		const apart = bounds.some((bound) => -distance(bound) > bound.doubt.expandedUncertainty);
+		return { verdict: apart ? 'not met' : 'undecided', probability: 0 };
+	}
+	return decide(
+		bounds.map((bound) => ({
+			margin: distance(bound),
+			...bound.doubt,
+			strict: bound.op === '<' || bound.op === '>',
+		})),
+		rule,
+	);
 }
 
 /** "Met, 1.5 % to spare". The margin has two or three digits: it is a distance, not a result. */
 function sentence(
-	met: boolean,
-	op: Comparison,
+	verdict: Verdict,
+	{ op, doubt }: Bound,
 	margin: number,
 	relative: number | null,
 	type: Type,
 ): string {
+	const difference: Type = type.point
+		? { kind: 'number', ...(type.dimension && { dimension: type.dimension }) }
+		: type;
+	const amount = (si: number) =>
+		readout(Math.abs(si), unitOf(difference), !difference.fixed, 3).text;
+	if (verdict === 'undecided') {
+		const band = `±\u00a0${amount(doubt.expandedUncertainty)}`;
+		if (op === '==') return `Undecided, equal within ${band}`;
+		const where = margin < 0 ? `${amount(margin)} beyond the limit` : `${amount(margin)} to spare`;
+		return `Undecided, ${where} within ${band}`;
+	}
+	const met = verdict === 'met';
 	if (margin === 0)
 		return met
 			? op === '=='
 				? 'Met, equal'
 				: 'Met, exactly at the limit'
 			: 'Not met, exactly at the limit';
-	const difference: Type = type.point
-		? { kind: 'number', ...(type.dimension && { dimension: type.dimension }) }
-		: type;
-	const amount = readout(Math.abs(margin), unitOf(difference), !difference.fixed, 3).text;
-	if (!met) return op === '==' ? `Not met, ${amount} apart` : `Not met, ${amount} beyond the limit`;
-	if (relative === null || relative > 10) return `Met, ${amount} to spare`;
+	if (!met)
+		return op === '=='
+			? `Not met, ${amount(margin)} apart`
+			: `Not met, ${amount(margin)} beyond the limit`;
+	if (relative === null || relative > 10) return `Met, ${amount(margin)} to spare`;
 	return `Met, ${percentage(relative)} to spare`;
 }
 

@@ -42,6 +42,8 @@ export interface Options {
 	/** Coverage probability of expanded uncertainties, 0 to 1. */
 	coverage: number;
 	decisionRule: 'simple' | 'guarded';
+	/** Standard uncertainties that a normal input's interval reaches to either side in the worst case, 3 by default. */
+	normalInterval?: number;
 	/** Quantities whose budget and worst case are wanted; none where absent. */
 	detail?: 'all' | string[];
 	monteCarlo?: MonteCarloOptions;

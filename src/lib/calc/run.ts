@@ -1,6 +1,6 @@
 import { factorial, finite, holds, operate } from './arithmetic';
 import { bounds } from './bounds';
-import { Refusal } from './functions/function';
+import { Refusal, type CalcFunction } from './functions/function';
 import { functions } from './functions/registry';
 import { pick, product, productSteps, range, steps, TooLarge, zip } from './grids';
 import type { ParsedLine } from './language/parse-line';
@@ -18,12 +18,14 @@ export interface Scope {
 	/** Function calls around this one, and how many levels of formulas they stand on. */
 	readonly depth: number;
 	readonly levels: number;
+	/** The doubt of an expression: its uncertainty or a bound, in SI units. Only where a line of the note asks. */
+	readonly read?: (what: 'uncertainty' | 'lower' | 'upper', node: Node) => number;
 	/** The note, seen from inside a function: it knows its parameters and the note, not what its caller bound. */
 	readonly note?: Scope;
 }
 
 /** What a function computes from: the values it was called with. */
-class Frame implements Scope {
+export class Frame implements Scope {
 	readonly note: Scope;
 	readonly meter: Meter;
 	readonly depth: number;
@@ -158,8 +160,9 @@ function runArray(node: NodeOf<'array'>, scope: Scope): Grid {
 }
 
 function runCall(node: NodeOf<'call'>, scope: Scope): Value {
-	const args = node.args.map((argument) => run(argument, scope));
 	const known = functions.get(node.name);
+	if (known?.reads) return readDoubt(node, known.reads, scope);
+	const args = node.args.map((argument) => run(argument, scope));
 	if (known) {
 		scope.meter.spend(
 			args.reduce<number>((sum, value) => sum + steps(value), known.cost?.(args) ?? 0),
@@ -192,6 +195,25 @@ function runCall(node: NodeOf<'call'>, scope: Scope): Value {
 	}
 }
 
+function readDoubt(
+	node: NodeOf<'call'>,
+	what: NonNullable<CalcFunction['reads']>,
+	scope: Scope,
+): Value {
+	const [argument] = node.args;
+	if (scope.note || !scope.read || !argument)
+		throw new Trouble('notAllowed', node, `\`${node.typed}\` cannot be used inside a function.`, {
+			mend: 'Give it a line of its own, and the function its result.',
+		});
+	return scope.read(what, argument);
+}
+
+/** The fault that a function's refusal is, at its call. */
+export function tell(refusal: Refusal, at: Place): Trouble {
+	const mend = refusal.mend === undefined ? {} : { mend: refusal.mend };
+	return new Trouble('value', at, refusal.message, mend);
+}
+
 function one(value: Value, at: Place): number {
 	if (isGrid(value)) throw new Trouble('value', at, 'One number is expected here, not a list.');
 	return Number(value);
@@ -207,13 +229,7 @@ function guarded<T>(at: Place, compute: () => T, scope: Scope): T {
 	try {
 		return compute();
 	} catch (error) {
-		if (error instanceof Refusal)
-			throw new Trouble(
-				'value',
-				at,
-				error.message,
-				error.mend === undefined ? {} : { mend: error.mend },
-			);
+		if (error instanceof Refusal) throw tell(error, at);
 		if (error instanceof TooLarge) {
 			scope.meter.spend(0, at);
 			throw new Trouble(

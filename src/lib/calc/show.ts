@@ -3,7 +3,7 @@ import type { Quantity, Readout } from './results';
 import type { Type } from './types';
 import { none } from './units/dimension';
 import { coherentUnit } from './units/coherent';
-import { compose, formatNumber, readout } from './units/display';
+import { compose, doubtfulReadout, formatNumber, readout } from './units/display';
 import { fromSI, type Unit } from './units/unit';
 import { isGrid, type Value } from './values';
 
@@ -12,12 +12,15 @@ export function unitOf(type: Type): Unit {
 	return type.unit ?? coherentUnit(type.dimension ?? none);
 }
 
-/** The readout of a value. Exact values have six significant digits. */
-export function show(value: Value, type: Type): Readout {
+/** The readout of a value, with its expanded uncertainty where it has one. Exact values have six significant digits. */
+export function show(value: Value, type: Type, expanded?: number): Readout {
 	if (typeof value === 'boolean') return compose(value ? 'true' : 'false', '');
 	if (typeof value === 'string') return compose(value, '');
 	const unit = unitOf(type);
-	if (!isGrid(value)) return readout(value, unit, !type.fixed);
+	if (!isGrid(value))
+		return expanded === undefined
+			? readout(value, unit, !type.fixed)
+			: doubtfulReadout(value, expanded, unit, !type.fixed);
 	return showGrid(value.data, value.shape, unit, !type.fixed);
 }
 

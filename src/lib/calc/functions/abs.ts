@@ -1,6 +1,7 @@
 import { expectNumber, refusePoint, type CalcFunction } from './function';
 import { pure } from '../types';
 import { map } from '../values';
+import { mapNodes } from '../traced';
 
 export const abs: CalcFunction = {
 	name: 'abs',
@@ -15,4 +16,5 @@ export const abs: CalcFunction = {
 		return x.type;
 	},
 	compute: ([x = 0]) => map(x, Math.abs),
+	trace: (tape, [x]) => mapNodes(tape, x!, (node) => tape.unary('abs', node)),
 };

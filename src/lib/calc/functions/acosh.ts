@@ -9,4 +9,5 @@ export const acosh = ofNumber(
 	},
 	Math.acosh,
 	{ holds: (x) => x >= 1, message: 'A hyperbolic cosine is 1 or more.' },
+	(x) => 1 / Math.sqrt(x * x - 1),
 );

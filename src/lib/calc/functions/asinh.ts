@@ -8,4 +8,6 @@ export const asinh = ofNumber(
 		examples: [{ source: 'asinh(1)', result: '0.881 374' }],
 	},
 	Math.asinh,
+	undefined,
+	(x) => 1 / Math.hypot(x, 1),
 );

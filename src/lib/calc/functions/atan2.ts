@@ -1,5 +1,6 @@
 import { expectSame, refusePoint, scalar, type CalcFunction } from './function';
 import { pure } from '../types';
+import { nodesOf } from '../traced';
 
 export const atan2: CalcFunction = {
 	name: 'atan2',
@@ -13,4 +14,7 @@ export const atan2: CalcFunction = {
 		return pure;
 	},
 	compute: ([y, x]) => Math.atan2(scalar(y, 'The first value'), scalar(x, 'The second value')),
+	trace: (tape, [a, b]) => ({
+		node: tape.binary('atan2', nodesOf(tape, a!)[0]!, nodesOf(tape, b!)[0]!),
+	}),
 };

@@ -9,4 +9,5 @@ export const atanh = ofNumber(
 	},
 	Math.atanh,
 	{ holds: (x) => Math.abs(x) < 1, message: 'A hyperbolic tangent lies between −1 and 1.' },
+	(x) => 1 / (1 - x * x),
 );

@@ -2,6 +2,7 @@ import { expectNumber, refusePoint, type CalcFunction } from './function';
 import { isPure, ofDimension, pure, unknown } from '../types';
 import { raised } from '../units/dimension';
 import { map } from '../values';
+import { mapNodes } from '../traced';
 
 export const cbrt: CalcFunction = {
 	name: 'cbrt',
@@ -17,4 +18,5 @@ export const cbrt: CalcFunction = {
 		return isPure(x.type) ? pure : ofDimension(raised(x.type.dimension, 1 / 3));
 	},
 	compute: ([x = 0]) => map(x, Math.cbrt),
+	trace: (tape, [x]) => mapNodes(tape, x!, (node) => tape.unary('cbrt', node)),
 };

@@ -1,5 +1,5 @@
 import type { CalcFunction } from './function';
-import { rounded, roundingType } from './rounding';
+import { rounded, roundedNodes, roundingType } from './rounding';
 
 export const ceil: CalcFunction = {
 	name: 'ceil',
@@ -13,4 +13,5 @@ export const ceil: CalcFunction = {
 	unitAt: 2,
 	type: roundingType,
 	compute: (args) => rounded(args, Math.ceil),
+	trace: (tape, args) => roundedNodes(tape, args, (node) => tape.unary('ceil', node)),
 };

@@ -2,6 +2,7 @@ import { expectSame, Refusal, refusePoint, scalar, type CalcFunction } from './f
 import { pure } from '../types';
 import { map } from '../values';
 import { expectBits, wholeBits } from './bits';
+import { mapNodes, nodesOf, plainValue } from '../traced';
 
 export const code: CalcFunction = {
 	name: 'code',
@@ -26,5 +27,21 @@ export const code: CalcFunction = {
 		// A value on a step must not fall below it by the last digit of the division.
 		const step = (x: number) => Math.floor((x / range) * codes * (1 + 4 * Number.EPSILON));
 		return map(value, (x) => Math.min(codes - 1, Math.max(0, step(x))));
+	},
+	trace: (tape, [value, reference, bits]) => {
+		const codes = 2 ** wholeBits(plainValue(bits!, 'The number of bits'));
+		const range = nodesOf(tape, reference!)[0]!;
+		return mapNodes(tape, value!, (x) => {
+			const share = tape.binary('mul', tape.binary('div', x, range), tape.constant(codes));
+			const step = tape.unary(
+				'floor',
+				tape.binary('mul', share, tape.constant(1 + 4 * Number.EPSILON)),
+			);
+			return tape.binary(
+				'min',
+				tape.constant(codes - 1),
+				tape.binary('max', tape.constant(0), step),
+			);
+		});
 	},
 };

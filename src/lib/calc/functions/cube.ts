@@ -2,6 +2,7 @@ import { expectNumber, refusePoint, type CalcFunction } from './function';
 import { isPure, ofDimension, pure, unknown } from '../types';
 import { raised } from '../units/dimension';
 import { map } from '../values';
+import { mapNodes } from '../traced';
 
 export const cube: CalcFunction = {
 	name: 'cube',
@@ -17,4 +18,5 @@ export const cube: CalcFunction = {
 		return isPure(x.type) ? pure : ofDimension(raised(x.type.dimension, 3));
 	},
 	compute: ([x = 0]) => map(x, (number) => number ** 3),
+	trace: (tape, [x]) => mapNodes(tape, x!, (node) => tape.binary('pow', node, tape.constant(3))),
 };

@@ -7,6 +7,8 @@ import {
 	type CalcFunction,
 } from './function';
 import { map } from '../values';
+import type { Node } from '../doubt/tape';
+import { mapNodes, nodesOf } from '../traced';
 
 function loaded(arm: number, load: number): number {
 	return arm === 0 || load === 0 ? 0 : (arm * load) / (arm + load);
@@ -35,5 +37,14 @@ export const divider: CalcFunction = {
 		const below = load === undefined ? arm : loaded(arm, scalar(load, 'The load'));
 		if (above + below === 0) throw new Refusal('Both arms are zero.');
 		return map(input, (voltage) => (voltage * below) / (above + below));
+	},
+	trace: (tape, [input, ...arms]) => {
+		const [above, arm, load] = arms.map((each) => nodesOf(tape, each)[0]!);
+		const sum = (x: Node, y: Node) => tape.binary('add', x, y);
+		const product = (x: Node, y: Node) => tape.binary('mul', x, y);
+		const below =
+			load === undefined ? arm! : tape.binary('div', product(arm!, load), sum(arm!, load));
+		const ratio = tape.binary('div', below, sum(above!, below));
+		return mapNodes(tape, input!, (voltage) => product(voltage, ratio));
 	},
 };

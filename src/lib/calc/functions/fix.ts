@@ -1,5 +1,5 @@
 import type { CalcFunction } from './function';
-import { rounded, roundingType } from './rounding';
+import { rounded, roundedNodes, roundingType } from './rounding';
 
 export const fix: CalcFunction = {
 	name: 'fix',
@@ -10,4 +10,8 @@ export const fix: CalcFunction = {
 	unitAt: 2,
 	type: roundingType,
 	compute: (args) => rounded(args, Math.trunc),
+	trace: (tape, args) =>
+		roundedNodes(tape, args, (node) =>
+			tape.binary('mul', tape.unary('sign', node), tape.unary('floor', tape.unary('abs', node))),
+		),
 };

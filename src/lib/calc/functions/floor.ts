@@ -1,5 +1,5 @@
 import type { CalcFunction } from './function';
-import { rounded, roundingType } from './rounding';
+import { rounded, roundedNodes, roundingType } from './rounding';
 
 export const floor: CalcFunction = {
 	name: 'floor',
@@ -13,4 +13,5 @@ export const floor: CalcFunction = {
 	unitAt: 2,
 	type: roundingType,
 	compute: (args) => rounded(args, Math.floor),
+	trace: (tape, args) => roundedNodes(tape, args, (node) => tape.unary('floor', node)),
 };

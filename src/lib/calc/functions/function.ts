@@ -1,6 +1,8 @@
+import type { Distribution, ParameterFault } from '../doubt/distributions/distribution';
+import type { Unary } from '../doubt/operations';
 import type { TapeBuilder } from '../doubt/tape';
 import type { Place } from '../language/nodes';
-import type { Traced } from '../traced';
+import { mapNodes, type Traced } from '../traced';
 import { Trouble } from '../trouble';
 import { differ, isNumeric, isPure, pure, spoken, type Type } from '../types';
 import type { Unit } from '../units/unit';
@@ -41,6 +43,22 @@ export interface CalcFunction {
 	readonly trace?: (tape: TapeBuilder, args: Traced[]) => Traced;
 	/** Takes the estimates of its values and gives an exact result: a chosen part, a text. */
 	readonly ofEstimate?: boolean;
+	/** States an input: its result deviates from `compute`, or from the traced first value, as this says. */
+	readonly states?: Statement;
+	/** Changes the input that its first value, a call of a function that states one, has stated. */
+	readonly restates?: (stated: Distribution, args: Value[]) => Distribution | ParameterFault;
+	/** Asks for the doubt of its value instead of computing with it. */
+	readonly reads?: 'uncertainty' | 'lower' | 'upper';
+}
+
+/** How a function states an input. */
+export interface Statement {
+	/** Whether the first value is the centre, and may itself be in doubt. */
+	readonly centred: boolean;
+	/** Positions of half-widths and uncertainties, in the unit of the centre or relative to it. */
+	readonly widths: readonly number[];
+	/** Numbers in SI units, widths absolute. */
+	readonly distribution: (args: Value[]) => Distribution | ParameterFault;
 }
 
 /** A value that a function cannot take, found while computing. */
@@ -118,6 +136,8 @@ export function ofNumber(
 	about: Pick<CalcFunction, 'name' | 'signature' | 'help' | 'examples'>,
 	fn: (x: number) => number,
 	domain?: { holds: (x: number) => boolean; message: string },
+	/** Its derivative; without it the tape has an operation of this name. */
+	slope?: (x: number) => number,
 ): CalcFunction {
 	return {
 		...about,
@@ -131,6 +151,12 @@ export function ofNumber(
 				if (domain && !domain.holds(number)) throw new Refusal(domain.message);
 				return fn(number);
 			}),
+		...(slope
+			? { slopes: ([x]: Value[]) => [slope(Number(x))] }
+			: {
+					trace: (tape: TapeBuilder, [x]: Traced[]) =>
+						mapNodes(tape, x!, (node) => tape.unary(about.name as Unary, node)),
+				}),
 	};
 }
 

@@ -1,5 +1,6 @@
 import { expectSame, refusePoint, type CalcFunction } from './function';
 import { members } from '../values';
+import { folded } from './traced-lists';
 
 export const hypot: CalcFunction = {
 	name: 'hypot',
@@ -13,4 +14,5 @@ export const hypot: CalcFunction = {
 		return type;
 	},
 	compute: (args) => Math.hypot(...args.map((value) => Math.hypot(...members(value)))),
+	trace: (tape, args) => folded(tape, args, 'hypot'),
 };

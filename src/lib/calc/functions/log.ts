@@ -1,6 +1,7 @@
 import { expectPure, Refusal, scalar, type CalcFunction } from './function';
 import { pure } from '../types';
 import { map } from '../values';
+import { mapNodes, nodesOf } from '../traced';
 
 export const log: CalcFunction = {
 	name: 'log',
@@ -24,4 +25,10 @@ export const log: CalcFunction = {
 			return Math.log(number) / divisor;
 		});
 	},
+	trace: (tape, [x, base]) =>
+		mapNodes(tape, x!, (node) => {
+			const natural = tape.unary('log', node);
+			if (!base) return natural;
+			return tape.binary('div', natural, tape.unary('log', nodesOf(tape, base)[0]!));
+		}),
 };

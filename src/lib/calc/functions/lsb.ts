@@ -2,6 +2,7 @@ import { expectNumber, refusePoint, type CalcFunction } from './function';
 import { pure } from '../types';
 import { map } from '../values';
 import { expectBits, wholeBits } from './bits';
+import { mapNodes, plainValue } from '../traced';
 
 export const lsb: CalcFunction = {
 	name: 'lsb',
@@ -18,4 +19,8 @@ export const lsb: CalcFunction = {
 		return reference.type;
 	},
 	compute: ([reference = 0, bits]) => map(reference, (range) => range / 2 ** wholeBits(bits)),
+	trace: (tape, [reference, bits]) => {
+		const codes = tape.constant(2 ** wholeBits(plainValue(bits!, 'The number of bits')));
+		return mapNodes(tape, reference!, (range) => tape.binary('div', range, codes));
+	},
 };

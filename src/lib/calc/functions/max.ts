@@ -1,5 +1,6 @@
 import { expectSame, type CalcFunction } from './function';
 import { gathered } from './gathered';
+import { folded } from './traced-lists';
 
 export const max: CalcFunction = {
 	name: 'max',
@@ -12,4 +13,5 @@ export const max: CalcFunction = {
 	count: [1, Infinity],
 	type: (args) => expectSame(args, 'Compares'),
 	compute: (args) => gathered(args).reduce((a, b) => Math.max(a, b)),
+	trace: (tape, args) => folded(tape, args, 'max'),
 };

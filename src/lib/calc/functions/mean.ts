@@ -1,5 +1,6 @@
 import { expectSame, type CalcFunction } from './function';
 import { gathered } from './gathered';
+import { allNodes, meanOf } from './traced-lists';
 
 export const mean: CalcFunction = {
 	name: 'mean',
@@ -12,4 +13,5 @@ export const mean: CalcFunction = {
 		const all = gathered(args);
 		return all.reduce((a, b) => a + b / all.length, 0);
 	},
+	trace: (tape, args) => ({ node: meanOf(tape, allNodes(tape, args)) }),
 };

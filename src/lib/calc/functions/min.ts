@@ -1,5 +1,6 @@
 import { expectSame, type CalcFunction } from './function';
 import { gathered } from './gathered';
+import { folded } from './traced-lists';
 
 export const min: CalcFunction = {
 	name: 'min',
@@ -9,4 +10,5 @@ export const min: CalcFunction = {
 	count: [1, Infinity],
 	type: (args) => expectSame(args, 'Compares'),
 	compute: (args) => gathered(args).reduce((a, b) => Math.min(a, b)),
+	trace: (tape, args) => folded(tape, args, 'min'),
 };

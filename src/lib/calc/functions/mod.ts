@@ -1,4 +1,5 @@
 import { expectSame, refusePoint, scalar, type CalcFunction } from './function';
+import { nodesOf } from '../traced';
 
 export const mod: CalcFunction = {
 	name: 'mod',
@@ -18,4 +19,7 @@ export const mod: CalcFunction = {
 		const [x, y] = [scalar(a, 'The first value'), scalar(b, 'The second value')];
 		return y === 0 ? x : x - y * Math.floor(x / y);
 	},
+	trace: (tape, [a, b]) => ({
+		node: tape.binary('mod', nodesOf(tape, a!)[0]!, nodesOf(tape, b!)[0]!),
+	}),
 };

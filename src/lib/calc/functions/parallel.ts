@@ -1,5 +1,7 @@
 import { expectSame, refusePoint, type CalcFunction } from './function';
 import { gathered } from './gathered';
+import { sum } from '../trace-operators';
+import { allNodes } from './traced-lists';
 
 export const parallel: CalcFunction = {
 	name: 'parallel',
@@ -19,5 +21,10 @@ export const parallel: CalcFunction = {
 		const all = gathered(args);
 		// One short circuit shorts them all.
 		return all.includes(0) ? 0 : 1 / all.reduce((sum, value) => sum + 1 / value, 0);
+	},
+	trace: (tape, args) => {
+		const one = tape.constant(1);
+		const conductances = allNodes(tape, args).map((node) => tape.binary('div', one, node));
+		return { node: tape.binary('div', one, sum(tape, conductances)) };
 	},
 };

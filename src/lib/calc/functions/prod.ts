@@ -1,6 +1,7 @@
 import { expectPure, type CalcFunction } from './function';
 import { pure } from '../types';
 import { gathered } from './gathered';
+import { folded } from './traced-lists';
 
 export const prod: CalcFunction = {
 	name: 'prod',
@@ -13,4 +14,5 @@ export const prod: CalcFunction = {
 		return pure;
 	},
 	compute: (args) => gathered(args).reduce((a, b) => a * b, 1),
+	trace: (tape, args) => folded(tape, args, 'mul'),
 };

@@ -11,7 +11,7 @@ describe('The functions of the language', () => {
 		const cells = [{ id: 'c', kind: 'calculation' as const, source }];
 		const { lines, errors } = evaluate(cells, defaultOptions);
 		expect(errors).toEqual([]);
-		expect(lines[0]?.readout?.text.replace(/[\u00a0\u202f]/g, ' ')).toBe(result);
+		expect(lines.at(-1)?.readout?.text.replace(/[\u00a0\u202f]/g, ' ')).toBe(result);
 	});
 
 	it('each have help, a signature that begins with the name, and an example', () => {

@@ -70,8 +70,40 @@ import { steinhart } from './steinhart';
 import { steinhartResistance } from './steinhart-resistance';
 import { thermocouple } from './thermocouple';
 import { thermocoupleTemperature } from './thermocouple-temperature';
+import { normal } from './normal';
+import { rectangular } from './rectangular';
+import { tolerance } from './tolerance';
+import { triangular } from './triangular';
+import { arcsine } from './arcsine';
+import { trapezoidal } from './trapezoidal';
+import { inexactRectangular } from './inexact-rectangular';
+import { student } from './student';
+import { repeated } from './repeated';
+import { quantisation } from './quantisation';
+import { value } from './value';
+import { uncertainty } from './uncertainty';
+import { lower } from './lower';
+import { upper } from './upper';
+import { correlated } from './correlated';
+import { dof } from './dof';
 
 const all: CalcFunction[] = [
+	normal,
+	rectangular,
+	tolerance,
+	triangular,
+	arcsine,
+	trapezoidal,
+	inexactRectangular,
+	student,
+	repeated,
+	quantisation,
+	value,
+	uncertainty,
+	lower,
+	upper,
+	correlated,
+	dof,
 	abs,
 	acos,
 	acosh,

@@ -1,5 +1,5 @@
 import type { CalcFunction } from './function';
-import { rounded, roundingType } from './rounding';
+import { rounded, roundedNodes, roundingType } from './rounding';
 
 export const round: CalcFunction = {
 	name: 'round',
@@ -13,4 +13,5 @@ export const round: CalcFunction = {
 	unitAt: 2,
 	type: roundingType,
 	compute: (args) => rounded(args, (x) => Math.sign(x) * Math.round(Math.abs(x))),
+	trace: (tape, args) => roundedNodes(tape, args, (node) => tape.unary('round', node)),
 };

@@ -1,4 +1,6 @@
 import { Trouble } from '../trouble';
+import type { Node, TapeBuilder } from '../doubt/tape';
+import { mapNodes, plainValue, type Traced } from '../traced';
 import { differ, isPure, pure, spoken, type Type } from '../types';
 import { map, type Value } from '../values';
 import { expectNumber, expectPure, Refusal, refusePoint, scalar, type Argument } from './function';
@@ -18,6 +20,18 @@ export function roundingType([x, digits, unit]: Argument[]): Type {
 	if (unit && differ(x.type, unit.type))
 		throw new Trouble('dimension', unit, `Rounds ${name} in ${unit.unit?.label ?? ''}.`);
 	return x.type;
+}
+
+/** Puts the rounding of each number on a tape. Throws Refusal. */
+export function roundedNodes(
+	tape: TapeBuilder,
+	[x, digits, unit]: Traced[],
+	fn: (node: Node) => Node,
+): Traced {
+	const places = digits ? Number(plainValue(digits, 'The number of decimals')) : 0;
+	const size = unit ? Number(plainValue(unit, 'The unit')) : 1;
+	const step = tape.constant(size / 10 ** places);
+	return mapNodes(tape, x!, (node) => tape.binary('mul', fn(tape.binary('div', node, step)), step));
 }
 
 /** Rounds each number to `digits` decimals of the unit's size. Throws Refusal. */

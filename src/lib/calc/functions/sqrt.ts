@@ -2,6 +2,7 @@ import { expectNumber, Refusal, refusePoint, type CalcFunction } from './functio
 import { isPure, ofDimension, pure, unknown } from '../types';
 import { raised } from '../units/dimension';
 import { map } from '../values';
+import { mapNodes } from '../traced';
 
 export const sqrt: CalcFunction = {
 	name: 'sqrt',
@@ -25,4 +26,5 @@ export const sqrt: CalcFunction = {
 				throw new Refusal('The square root of a negative value is not a real number.');
 			return Math.sqrt(number);
 		}),
+	trace: (tape, [x]) => mapNodes(tape, x!, (node) => tape.unary('sqrt', node)),
 };

@@ -2,6 +2,7 @@ import { expectNumber, refusePoint, type CalcFunction } from './function';
 import { isPure, ofDimension, pure, unknown } from '../types';
 import { raised } from '../units/dimension';
 import { map } from '../values';
+import { mapNodes } from '../traced';
 
 export const square: CalcFunction = {
 	name: 'square',
@@ -17,4 +18,5 @@ export const square: CalcFunction = {
 		return isPure(x.type) ? pure : ofDimension(raised(x.type.dimension, 2));
 	},
 	compute: ([x = 0]) => map(x, (number) => number * number),
+	trace: (tape, [x]) => mapNodes(tape, x!, (node) => tape.binary('pow', node, tape.constant(2))),
 };

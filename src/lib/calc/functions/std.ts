@@ -2,6 +2,7 @@ import { expectSame, type CalcFunction } from './function';
 import { ofDimension } from '../types';
 import { gathered } from './gathered';
 import { sampleVariance } from './sample-variance';
+import { allNodes, varianceOf } from './traced-lists';
 
 export const std: CalcFunction = {
 	name: 'std',
@@ -14,4 +15,7 @@ export const std: CalcFunction = {
 		return type.point && type.dimension ? ofDimension(type.dimension) : type;
 	},
 	compute: (args) => Math.sqrt(sampleVariance(gathered(args))),
+	trace: (tape, args) => ({
+		node: tape.unary('sqrt', varianceOf(tape, allNodes(tape, args))),
+	}),
 };

@@ -1,5 +1,6 @@
 import { expectSame, refusePoint, type CalcFunction } from './function';
 import { gathered } from './gathered';
+import { folded } from './traced-lists';
 
 export const sum: CalcFunction = {
 	name: 'sum',
@@ -13,4 +14,5 @@ export const sum: CalcFunction = {
 		return type;
 	},
 	compute: (args) => gathered(args).reduce((a, b) => a + b, 0),
+	trace: (tape, args) => folded(tape, args, 'add'),
 };

@@ -3,6 +3,7 @@ import { ofDimension, unknown } from '../types';
 import { raised } from '../units/dimension';
 import { gathered } from './gathered';
 import { sampleVariance } from './sample-variance';
+import { allNodes, varianceOf } from './traced-lists';
 
 export const variance: CalcFunction = {
 	name: 'variance',
@@ -15,4 +16,5 @@ export const variance: CalcFunction = {
 		return type.dimension ? ofDimension(raised(type.dimension, 2)) : unknown;
 	},
 	compute: (args) => sampleVariance(gathered(args)),
+	trace: (tape, args) => ({ node: varianceOf(tape, allNodes(tape, args)) }),
 };

@@ -1,6 +1,7 @@
+import { rounded } from '../doubt/display';
 import type { Readout } from '../results';
 import type { Unit } from './unit';
-import { fromSI } from './unit';
+import { differenceFromSI, fromSI } from './unit';
 import { findSymbol } from './table';
 
 const noBreak = '\u00a0';
@@ -56,6 +57,52 @@ export function readout(si: number, unit: Unit, engineering: boolean, digits = 6
 	const chosen = engineering ? choose(value, unit, digits) : undefined;
 	const number = formatNumber(chosen ? shifted(value, chosen.shift) : value, digits);
 	return compose(number, chosen?.label ?? unit.label);
+}
+
+/**
+ * A value of SI units with its expanded uncertainty, a difference: both to the same place and with one unit, the
+ * uncertainty to two significant digits (JCGM 100:2008, 7.2.6).
+ */
+export function doubtfulReadout(
+	si: number,
+	expanded: number,
+	unit: Unit,
+	engineering: boolean,
+): Readout {
+	const value = fromSI(si, unit);
+	const doubt = differenceFromSI(expanded, unit);
+	const leading = Math.max(Math.abs(value), doubt);
+	const chosen = engineering ? choose(leading, unit, 6) : undefined;
+	const shift = chosen?.shift ?? plainShift(leading);
+	const power = chosen ? '' : powerOfTen(-shift);
+	const figures = rounded(shifted(value, shift), shifted(doubt, shift));
+	if (!figures) return readout(si, unit, engineering);
+	const number = typeset(figures.value) + power;
+	const plusMinus = typeset(figures.uncertainty) + power;
+	const label = chosen?.label ?? unit.label;
+	const behind = label === '' ? '' : noBreak + label;
+	return {
+		text: `${number}${behind} ±${noBreak}${plusMinus}${behind}`,
+		number,
+		unit: label,
+		doubt: plusMinus,
+	};
+}
+
+/** Decade that a figure without a prefix is shifted by, so that no row of zeros is shown. */
+function plainShift(size: number): number {
+	if (size >= 1e-4 && size < 1e7) return 0;
+	return -Math.floor(Math.log10(size));
+}
+
+function powerOfTen(decade: number): string {
+	return decade === 0 ? '' : `${noBreak}×${noBreak}10${superscript(decade)}`;
+}
+
+/** Decimal digits in groups, with a minus sign. */
+function typeset(digits: string): string {
+	const bare = digits.replace(/^-/, '');
+	return (bare === digits ? '' : minus) + group(bare);
 }
 
 /** Joins figure and unit. */

@@ -1,4 +1,5 @@
 import { expect, test } from 'vitest';
+import { sourceOf } from '$lib/calc/cells';
 import type { Cell, Evaluation } from '$lib/calc/results';
 import { Scheduler, type Evaluated } from './scheduler';
 
@@ -17,7 +18,7 @@ function bench() {
 	const shown: Evaluated[] = [];
 	const compute = (cells: readonly Cell[]) =>
 		new Promise<Evaluation>((resolve, reject) => {
-			const { source } = cells[0]!;
+			const source = sourceOf(cells[0]!);
 			const answer = (error?: Error) =>
 				error ? reject(error) : resolve({ engine: source, ...results });
 			running.push({ source, answer });

@@ -1,0 +1,104 @@
+import { budgetRows, trialsOf, worstCaseOf } from './details';
+import { engineVersion } from './engine';
+import { readFigures } from './figures';
+import { Memory } from './memory';
+import { Note } from './note';
+import { readLines, type NoteLine, type Watch } from './note-lines';
+import { judge } from './requirements';
+import type { Cell, Evaluation, Fault, Options, Quantity } from './results';
+import { Bounds } from './steps';
+import type { Trouble } from './trouble';
+import { stepOf } from './uncertainty';
+import { Worked } from './worked';
+
+/**
+ * Computes a note again and again: what an edit does not touch is taken from the evaluation before, down to the same
+ * objects in the results. The results are those of a first evaluation.
+ */
+export class Calculator {
+	#memory = new Memory();
+	#options = '';
+
+	/** No input makes it throw. `watch` is for the process around it that must be able to end it. */
+	evaluate(cells: readonly Cell[], options: Options, watch: Watch = {}): Evaluation {
+		const { coverage, decisionRule } = options;
+		const settings = JSON.stringify([coverage, decisionRule]);
+		if (settings !== this.#options) this.#memory = new Memory();
+		this.#options = settings;
+		const { lines, readable, faults } = readLines(cells, watch);
+		const note = new Note(lines, watch, this.#memory);
+		const worked = new Worked(note, options);
+		const requirements = lines.flatMap((line) => judge(line, note, options) ?? []);
+		const quoted = readFigures(cells, readable, note, worked);
+		const errors = [
+			...faults,
+			...lines.flatMap((line) => note.faultsOf(line).map((trouble) => fault(line, trouble))),
+			...quoted.faults,
+		];
+		const quantities = worked.quantities();
+		addDetails(quantities, note, options, watch);
+		return {
+			engine: engineVersion,
+			quantities,
+			lines: worked.lines(),
+			requirements,
+			figures: quoted.figures,
+			errors: inSheetOrder(errors, cells),
+		};
+	}
+}
+
+/** Adds budgets, worst cases and trials to the quantities that they are asked of. */
+function addDetails(
+	quantities: Record<string, Quantity>,
+	note: Note,
+	options: Options,
+	watch: Watch,
+): void {
+	const { detail = [], monteCarlo } = options;
+	const names = detail === 'all' ? Object.keys(quantities) : detail;
+	const bounds = new Bounds(note.inputs, options.normalInterval);
+	for (const name of names) {
+		const computed = note.find(name);
+		const step = computed && stepOf(computed);
+		const quantity = Object.hasOwn(quantities, name) ? quantities[name] : undefined;
+		if (!step || !quantity) continue;
+		watch.at?.(quantity.cell, quantity.line);
+		quantities[name] = {
+			...quantity,
+			worstCase: worstCaseOf(step, computed.type, bounds),
+			budget: budgetRows(step, computed.type, note.inputs.all, note.doubts),
+		};
+	}
+	if (!monteCarlo) return;
+	const trials = trialsOf(note, options, monteCarlo, watch.trials);
+	for (const name of monteCarlo.quantities) {
+		const computed = note.find(name);
+		const quantity = Object.hasOwn(quantities, name) ? quantities[name] : undefined;
+		const found = computed && trials.get(computed);
+		if (found && quantity) quantities[name] = { ...quantity, monteCarlo: found };
+	}
+}
+
+function fault(line: NoteLine, { code, at, message, how }: Trouble): Fault {
+	const length = line.text.length;
+	const from = Math.min(at.from, Math.max(0, length - 1));
+	return {
+		cell: line.cell,
+		line: line.line,
+		from,
+		to: Math.max(from, Math.min(at.to, length)),
+		code,
+		message,
+		...(how.mend !== undefined && { mend: how.mend }),
+		...(how.replacement !== undefined && { replacement: how.replacement }),
+	};
+}
+
+function inSheetOrder(errors: Fault[], cells: readonly Cell[]): Fault[] {
+	const place = new Map(cells.map((cell, i) => [cell.id, i]));
+	return errors.sort(
+		(a, b) =>
+			(place.get(a.cell) ?? 0) - (place.get(b.cell) ?? 0) || a.line - b.line || a.from - b.from,
+	);
+}

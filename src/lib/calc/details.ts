@@ -1,0 +1,135 @@
+import { budgetOf, type Doubts } from './doubt/budget';
+import { simulate } from './doubt/monte-carlo';
+import { validate } from './doubt/validation';
+import type { Input } from './inputs';
+import type { Computed } from './memory';
+import type { Note } from './note';
+import type { BudgetRow, MonteCarlo, MonteCarloOptions, Options, WorstCase } from './results';
+import { unitOf } from './show';
+import { modelOf, type Bounds, type Step } from './steps';
+import type { Type } from './types';
+import { difference } from './functions/stated';
+import { readout } from './units/display';
+import { differenceFromSI, fromSI } from './units/unit';
+import { finiteUncertainty, stepOf } from './uncertainty';
+
+/** The uncertainty budget of a number: every input it depends on, the greatest contribution first. */
+export function budgetRows(
+	step: Step,
+	type: Type,
+	inputs: readonly Input[],
+	doubts: Doubts,
+): BudgetRow[] {
+	const unit = unitOf(type);
+	return budgetOf(step.propagated, doubts).map(({ input, sensitivity, contribution, share }) => {
+		const { label, value, type: inputType, distribution } = inputs[input]!;
+		const inputUnit = unitOf(inputType);
+		const perUnit = differenceFromSI(1, inputUnit);
+		const { uncertainty, dof, kind } = distribution;
+		return {
+			input: label,
+			unit: inputUnit.text,
+			value: fromSI(value, inputUnit),
+			standardUncertainty: differenceFromSI(uncertainty, inputUnit),
+			degreesOfFreedom: Number.isFinite(dof) ? dof : null,
+			distribution: kind,
+			sensitivity: differenceFromSI(sensitivity, unit) / perUnit,
+			contribution: differenceFromSI(contribution, unit),
+			share,
+			texts: {
+				value: readout(value, inputUnit, !inputType.fixed).text,
+				standardUncertainty: short(uncertainty, inputType),
+				contribution: short(contribution, type),
+			},
+		};
+	});
+}
+
+/** An uncertainty as it is written, to two significant digits. */
+function short(si: number, type: Type): string {
+	const plain = difference(type);
+	return readout(si, unitOf(plain), !plain.fixed, 2).text;
+}
+
+export function worstCaseOf(step: Step, type: Type, bounds: Bounds): WorstCase {
+	const { lower, upper, exact } = bounds.of(step);
+	const unit = unitOf(type);
+	const spoken = (si: number) => readout(si, unit, !type.fixed).text;
+	return {
+		lower: fromSI(lower, unit),
+		upper: fromSI(upper, unit),
+		exact,
+		text: `${spoken(lower)} to ${spoken(upper)}`,
+	};
+}
+
+/** Trials of some quantities of a note by name; those that are exact or unknown are left out. */
+export function trialsOf(
+	note: Note,
+	{ coverage }: Options,
+	{ quantities, trials, adaptive, seed }: MonteCarloOptions,
+	onProgress?: (drawn: number, total: number) => boolean,
+): Map<Computed, MonteCarlo> {
+	const wanted = quantities.flatMap((name) => {
+		const computed = note.find(name);
+		const step = computed && stepOf(computed);
+		return step ? [{ computed, step }] : [];
+	});
+	const found = new Map<Computed, MonteCarlo>();
+	if (wanted.length === 0) return found;
+	const { model, places } = modelOf(
+		wanted.map(({ step }) => step),
+		note.inputs,
+		note.correlations,
+	);
+	const options = {
+		seed,
+		coverage,
+		...(trials !== undefined && { trials }),
+		...(adaptive !== undefined && { adaptive }),
+	};
+	const results = simulate(model, places, options, onProgress);
+	wanted.forEach(({ computed, step }, i) => {
+		const result = results[i]!;
+		const { type } = computed;
+		const unit = unitOf(type);
+		const spoken = (si: number) => readout(si, unit, !type.fixed).text;
+		const between = ([low, high]: readonly [number, number]) => `${spoken(low)} to ${spoken(high)}`;
+		const inUnit = ([low, high]: readonly [number, number]): [number, number] => [
+			fromSI(low, unit),
+			fromSI(high, unit),
+		];
+		const first = finiteUncertainty(step, note.doubts, coverage);
+		const { histogram, mean, standardUncertainty, symmetric, shortest } = result;
+		found.set(computed, {
+			trials: result.trials,
+			invalid: result.invalid,
+			seed,
+			mean: fromSI(mean, unit),
+			standardUncertainty: differenceFromSI(standardUncertainty, unit),
+			symmetric: inUnit(symmetric),
+			shortest: inUnit(shortest),
+			histogram: {
+				from: fromSI(histogram.from, unit),
+				to: fromSI(histogram.to, unit),
+				counts: histogram.counts,
+			},
+			validated: first
+				? validate(
+						step.propagated.value,
+						first.standardUncertainty,
+						first.expandedUncertainty,
+						symmetric,
+					).holds
+				: null,
+			...(result.stable !== undefined && { stable: result.stable }),
+			texts: {
+				mean: spoken(mean),
+				standardUncertainty: short(standardUncertainty, type),
+				symmetric: between(symmetric),
+				shortest: between(shortest),
+			},
+		});
+	});
+	return found;
+}

@@ -1,0 +1,86 @@
+import { isStatement } from './correlated-lines';
+import type { Computed, Remembered, Shown } from './memory';
+import type { Note } from './note';
+import type { NoteLine } from './note-lines';
+import type { Options, Quantity, Readout, WorkedLine } from './results';
+import { figures } from './show';
+import { shown } from './uncertainty';
+
+/** The lines of a note as they are shown. */
+export class Worked {
+	constructor(
+		private readonly note: Note,
+		private readonly options: Options,
+	) {}
+
+	/** Readout and uncertainty of a line that was computed. */
+	shown(remembered: Remembered): Shown {
+		const { correlations } = this.note;
+		const known = remembered.shown;
+		if (known?.correlations === correlations) return known;
+		const made = shown(remembered.computed, this.note.doubts, this.options.coverage);
+		return (remembered.shown = { correlations, ...made });
+	}
+
+	/** Readout of a computed value in a unit of its own choice. */
+	inUnit(computed: Computed): Readout {
+		return shown(computed, this.note.doubts, this.options.coverage).readout;
+	}
+
+	quantities(): Record<string, Quantity> {
+		const all: Record<string, Quantity> = {};
+		for (const line of this.note.lines) {
+			const remembered = this.note.remembered.get(line);
+			if (!line.defined || line.kind !== 'definition' || !remembered || line.requirement) continue;
+			all[line.defined.typed] = this.#quantity(line, remembered);
+		}
+		return all;
+	}
+
+	lines(): WorkedLine[] {
+		return this.note.lines.filter((line) => !line.requirement).map((line) => this.#line(line));
+	}
+
+	#quantity(line: NoteLine, remembered: Remembered): Quantity {
+		const shown = this.shown(remembered);
+		const dependsOn = line.references.map(
+			({ name, typed }) => this.note.definition(name)?.defined?.typed ?? typed,
+		);
+		const known = shown.quantity;
+		const same =
+			known?.cell === line.cell &&
+			known.line === line.line &&
+			known.description === line.description &&
+			known.dependsOn.join() === dependsOn.join();
+		if (same) return known;
+		const { computed } = remembered;
+		return (shown.quantity = {
+			cell: line.cell,
+			line: line.line,
+			...figures(computed.value, computed.type),
+			text: shown.readout.text,
+			readout: shown.readout,
+			...(line.description !== undefined && { description: line.description }),
+			dependsOn,
+			...shown.fields,
+		});
+	}
+
+	#line(line: NoteLine): WorkedLine {
+		const remembered = this.note.remembered.get(line);
+		// What states a correlation has nothing to show.
+		const shown = remembered && !isStatement(line) ? this.shown(remembered) : undefined;
+		const known = shown?.line;
+		const name = line.defined?.typed;
+		if (known?.cell === line.cell && known.line === line.line && known.name === name) return known;
+		const made: WorkedLine = {
+			cell: line.cell,
+			line: line.line,
+			kind: line.kind,
+			...(name !== undefined && { name }),
+			...(shown && { readout: shown.readout }),
+		};
+		if (shown) shown.line = made;
+		return made;
+	}
+}
