@@ -178,6 +178,58 @@ test('signing in, filtering and reading work without scripts', async ({ browser 
 	await context.close();
 });
 
+test('a token is shown once, reads a note in its person’s name and ends when it is revoked', async ({
+	page,
+	context,
+	request,
+}) => {
+	await context.grantPermissions(['clipboard-read', 'clipboard-write']);
+	await signIn(page, 'engineer');
+	const note = `/api/v1/notes/${(await column(page, 'number'))[0]!}`;
+	await page.goto('/account');
+	await page.getByLabel('Name', { exact: true }).fill('   ');
+	await page.getByRole('button', { name: 'Create token' }).click();
+	await expect(page.getByRole('alert')).toContainText('Name the token');
+	await page.getByLabel('Name', { exact: true }).fill('Climate chamber 2');
+	await page.getByLabel('Lasts').selectOption('a year');
+	await page.getByRole('button', { name: 'Create token' }).click();
+	const token = await page.getByLabel('New token', { exact: true }).inputValue();
+	expect(token).toMatch(/^hd_[\w-]{43}$/);
+	await page.getByRole('button', { name: 'Copy' }).click();
+	await expect(page.getByRole('button', { name: 'Copied' })).toBeVisible();
+	expect(await page.evaluate(() => navigator.clipboard.readText())).toBe(token);
+	await expect(page.getByLabel('Name', { exact: true })).toHaveValue('');
+	await shoot(page, 'account-token');
+
+	const row = page.getByRole('listitem').filter({ hasText: 'Climate chamber 2' });
+	await expect(row).toContainText('not used yet');
+	const ask = () => request.get(note, { headers: { authorization: `Bearer ${token}` } });
+	expect((await ask()).status()).toBe(200);
+	await page.reload();
+	expect(await page.content()).not.toContain(token);
+	await expect(row).toContainText('used just now');
+	await row.getByRole('button', { name: 'Revoke' }).click();
+	await expect(page.getByRole('status')).toHaveText('“Climate chamber 2” is revoked.');
+	await expect(row).toHaveCount(0);
+	expect((await ask()).status()).toBe(401);
+});
+
+test('a token is made and revoked without scripts', async ({ browser }) => {
+	const context = await browser.newContext({ javaScriptEnabled: false });
+	const page = await context.newPage();
+	await page.goto('/sign-in?to=/account');
+	await page.getByLabel('E-mail').fill(emailOf('peer'));
+	await page.getByLabel('Password').fill(demoPassword);
+	await page.getByRole('button', { name: 'Sign in' }).click();
+	await page.getByLabel('Name', { exact: true }).fill('Logger');
+	await page.getByRole('button', { name: 'Create token' }).click();
+	await expect(page.getByLabel('New token', { exact: true })).toHaveValue(/^hd_[\w-]{43}$/);
+	await expect(page.getByRole('button', { name: 'Copy' })).toHaveCount(0);
+	await page.getByRole('listitem').filter({ hasText: 'Logger' }).getByRole('button').click();
+	await expect(page.getByRole('status')).toHaveText('“Logger” is revoked.');
+	await context.close();
+});
+
 test('only an administrator finds the team', async ({ page, browser }) => {
 	await signIn(page, 'engineer');
 	await expect(page.getByRole('link', { name: 'Team' })).toHaveCount(0);

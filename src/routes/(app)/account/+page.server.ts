@@ -1,5 +1,6 @@
 import { redirect } from '@sveltejs/kit';
-import { passwordChange } from '$lib/schemas/account';
+import { newToken, passwordChange, tokenChoice } from '$lib/schemas/account';
+import * as apiTokens from '$lib/server/auth/api-tokens';
 import * as sessions from '$lib/server/auth/sessions';
 import * as signIn from '$lib/server/auth/sign-in';
 import * as auth from '$lib/server/web/auth';
@@ -9,6 +10,7 @@ import type { PageServerLoadEvent, RequestEvent } from './$types';
 
 export const load = forMember(async (actor, { cookies }: PageServerLoadEvent) => ({
 	sessions: await sessions.list(actor, auth.tokenOf(cookies)),
+	tokens: await apiTokens.list(actor),
 }));
 
 export const actions = {
@@ -17,6 +19,15 @@ export const actions = {
 		auth.remember(event.cookies, await signIn.changePassword(actor, change, userAgent));
 		return { action: 'password', done: 'Your password is changed. Other sessions have ended.' };
 	}),
+	createToken: action('createToken', newToken, async (actor, input, event: RequestEvent) => {
+		event.setHeaders({ 'cache-control': 'no-store' });
+		const { token } = await apiTokens.create(actor, input);
+		return { action: 'createToken', made: { name: input.name, token } };
+	}),
+	revokeToken: action('revokeToken', tokenChoice, async (actor, { id }, _event: RequestEvent) => ({
+		action: 'revokeToken',
+		done: `“${await apiTokens.revoke(actor, id)}” is revoked.`,
+	})),
 	signOutEverywhere: forMember(async (actor, { cookies }: RequestEvent) => {
 		await sessions.endAll(actor);
 		auth.forget(cookies);
