@@ -19,6 +19,8 @@ interface Row {
 	at?: (scene: Scene) => string;
 	form?: (scene: Scene) => Record<string, string>;
 	json?: (scene: Scene) => unknown;
+	/** Asked as a script does: with a token, without a cookie and an origin. */
+	script?: true;
 	/** Status for each visitor; `all` is every visitor who has no own entry. */
 	expect: Partial<Record<Visitor, number>> & { all: number };
 }
@@ -49,6 +51,14 @@ export const accessTable: Record<string, Row> = {
 		expect: { stranger: signIn, all: 200 },
 	},
 	'POST /account?/signOutEverywhere': { form: () => ({}), expect: { all: 303 } },
+	'POST /account?/createToken': {
+		form: () => ({ name: 'Bench 4', days: '90' }),
+		expect: { stranger: signIn, all: 200 },
+	},
+	'POST /account?/revokeToken': {
+		form: ({ tokenId }) => ({ id: tokenId }),
+		expect: { stranger: signIn, all: 200 },
+	},
 	'GET /team': { expect: { stranger: signIn, administrator: 200, all: 403 } },
 	'POST /team?/role': {
 		form: ({ personId }) => ({ personId, role: 'reader' }),
@@ -119,5 +129,15 @@ export const accessTable: Record<string, Row> = {
 	'GET /api/notes/[number]/review': {
 		...api(() => '/review'),
 		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'GET /api/v1/notes/[number]': {
+		script: true,
+		at: ({ number }) => `/api/v1/notes/${number}`,
+		expect: { stranger: 401, reader: 404, outsider: 404, all: 200 },
+	},
+	'POST /api/v1/evaluate': {
+		script: true,
+		json: () => ({ cells: [{ id: 'c1', kind: 'calculation', source: 'V = 3 V' }] }),
+		expect: { stranger: 401, all: 200 },
 	},
 };

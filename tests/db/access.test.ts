@@ -1,5 +1,6 @@
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import * as apiTokens from '$lib/server/auth/api-tokens';
 import { db } from '$lib/server/db/client';
 import { team } from '$lib/server/db/schema/people';
 import { closePool } from '$lib/server/evaluation/pool';
@@ -30,18 +31,26 @@ afterAll(async () => {
 });
 
 /** A person of the kind that visits, new where the visit may change who they are. */
-async function arrive(who: Who): Promise<{ visitor: Visitor; actor: Cast[keyof Cast] }> {
+async function arrive(
+	who: Who,
+	script = false,
+): Promise<{ visitor: Visitor; actor: Cast[keyof Cast] }> {
 	// An earlier visit may have changed it.
 	await givePassword(cast.author);
 	if (who === 'stranger') return { visitor: new Visitor(server.port), actor: cast.engineer };
-	if (who === 'author') {
-		return { visitor: new Visitor(server.port, await signIn(cast.author)), actor: cast.author };
-	}
+	if (who === 'author')
+		return { visitor: await visitorOf(cast.author, script), actor: cast.author };
 	const role = who === 'outsider' ? 'approver' : who;
 	const actor = await givePassword(
 		await makeMember(who === 'outsider' ? others.author : cast.author, role),
 	);
-	return { visitor: new Visitor(server.port, await signIn(actor)), actor };
+	return { visitor: await visitorOf(actor, script), actor };
+}
+
+async function visitorOf(actor: Cast[keyof Cast], script: boolean): Promise<Visitor> {
+	if (!script) return new Visitor(server.port, await signIn(actor));
+	const { token } = await apiTokens.create(actor, { name: 'Script', days: 1 });
+	return new Visitor(server.port, undefined, token);
 }
 
 const looked = new Map<string, Promise<Scene>>();
@@ -71,7 +80,7 @@ test('every route and action has a row in the table of who may do what, and no r
 describe.each(Object.keys(accessTable))('%s', (route) => {
 	test.each(visitors)('%s', async (who) => {
 		const row = accessTable[route]!;
-		const { visitor, actor } = await arrive(who);
+		const { visitor, actor } = await arrive(who, row.script);
 		const scene = await sceneFor(route, actor);
 		const answer = await visit(visitor, route, scene);
 		expect(answer.status, answer.body).toBe(row.expect[who] ?? row.expect.all);
@@ -101,6 +110,10 @@ test('a note of another team and one that does not exist give the same answer', 
 		const noData = await visitor.get(`/notes/MN-990${data}`);
 		expect(plain(foreignData, scene.number)).toEqual(plain(noData, 'MN-990'));
 	}
+	const script = (await arrive('outsider', true)).visitor;
+	expect(plain(await script.get(`/api/v1/notes/${scene.number}`), scene.number)).toEqual(
+		plain(await script.get('/api/v1/notes/MN-990'), 'MN-990'),
+	);
 	for (const tail of ['threads', 'review']) {
 		const foreign = await visitor.get(`/api/notes/${scene.number}/${tail}`);
 		const none = await visitor.get(`/api/notes/MN-990/${tail}`);
@@ -131,7 +144,14 @@ test('readers are sent to the newest frozen revision and see nothing that is you
 
 test('every answer carries the headers that keep it from being framed or guessed at', async () => {
 	const { visitor } = await arrive('engineer');
-	for (const path of ['/notes', '/healthz', '/no-such-page', '/api/notes/MN-990/threads', '/']) {
+	for (const path of [
+		'/notes',
+		'/healthz',
+		'/no-such-page',
+		'/api/notes/MN-990/threads',
+		'/api/v1/notes/MN-990',
+		'/',
+	]) {
 		const { headers } = await visitor.get(path);
 		expect(headers['x-content-type-options'], path).toBe('nosniff');
 		expect(headers['referrer-policy'], path).toBe('same-origin');

@@ -19,10 +19,13 @@ interface Sending {
 export class Visitor {
 	readonly #port: number;
 	cookie: string | undefined;
+	/** A script's token. */
+	readonly bearer: string | undefined;
 
-	constructor(port: number, cookie?: string) {
+	constructor(port: number, cookie?: string, bearer?: string) {
 		this.#port = port;
 		this.cookie = cookie;
+		this.bearer = bearer;
 	}
 
 	get(path: string, headers: Record<string, string> = {}): Promise<Answer> {
@@ -58,6 +61,7 @@ export class Visitor {
 	async send(method: string, path: string, { body, headers = {} }: Sending): Promise<Answer> {
 		const answer = await exchange(this.#port, method, path, body, {
 			...(this.cookie !== undefined && { cookie: this.cookie }),
+			...(this.bearer !== undefined && { authorization: `Bearer ${this.bearer}` }),
 			...headers,
 		});
 		const { name } = sessionCookie();

@@ -1,5 +1,6 @@
 import * as threads from '$lib/server/comments/threads';
 import type { Actor } from '$lib/server/auth/access';
+import * as apiTokens from '$lib/server/auth/api-tokens';
 import { check, freeze, propose, seen, writeNote } from './note-life';
 import { testPassword as password, type Cast } from './people';
 
@@ -12,6 +13,8 @@ export interface Scene {
 	/** Somebody in the note's team whose role may be changed. */
 	personId: string;
 	email: string;
+	/** A token of the visitor's. */
+	tokenId: string;
 }
 
 type Stage = 'draft' | 'proposed' | 'checked' | 'frozen';
@@ -26,6 +29,7 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 		digest: '0'.repeat(64),
 		personId: cast.reader.personId,
 		email: visitor.email,
+		tokenId: (await apiTokens.create(visitor, { name: 'Bench', days: 1 })).id,
 	};
 	const body = 'Is this the loaded value?';
 	const about = { cellId: scene.cellId, kind: 'question', blocking: false, body } as const;
