@@ -20,7 +20,9 @@ export function findDividers(question: DividerQuestion): Divider[] | Refusal {
 	const twice = question.doubled ? doubled(single) : [];
 	const best = new Best(orderOf(question.by ?? 'error'), question.most ?? 20);
 	const objections = new Map<string, number>();
+	const byError = (question.by ?? 'error') === 'error';
 	const consider = (upper: Arm, lower: Arm) => {
+		if (byError && best.isFull && !mayBeat(question, upper, lower, best.last)) return;
 		const divider = judge(question, upper, lower);
 		const against = objection(question, divider);
 		if (against === undefined) best.offer(divider);
@@ -64,6 +66,16 @@ function unloaded(loaded: number, load: number | undefined): number {
 	return loaded < load ? 1 / (1 / loaded - 1 / load) : Infinity;
 }
 
+/** Whether a pair may come nearer to the wanted output than another; a quick look that makes nothing. */
+function mayBeat(question: DividerQuestion, upper: Arm, lower: Arm, last?: Divider): boolean {
+	const { inputVoltage, outputVoltage, load } = question;
+	const arm = lower.resistance;
+	const loaded = load === undefined ? arm : (arm * load) / (arm + load);
+	const output = (inputVoltage * loaded) / (upper.resistance + loaded);
+	const bound = Math.abs(last?.error ?? Infinity) + 10 * step;
+	return Math.abs(output - outputVoltage) <= bound * outputVoltage;
+}
+
 /** Errors are compared in steps of this: what differs by less differs by rounding. */
 const step = 1e-12;
 
@@ -84,6 +96,14 @@ class Best {
 		private readonly order: Order,
 		private readonly most: number,
 	) {}
+
+	get isFull(): boolean {
+		return this.list.length >= this.most;
+	}
+
+	get last(): Divider | undefined {
+		return this.list.at(-1);
+	}
 
 	offer(divider: Divider): void {
 		const { list, order, most } = this;
