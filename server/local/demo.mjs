@@ -1,4 +1,4 @@
-import { rmSync, writeFileSync } from 'node:fs';
+import { readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { endCommands } from './commands.mjs';
 import { ensure } from './demonstration-database.mjs';
 import { alone } from './lock.mjs';
@@ -11,7 +11,7 @@ import { endEarlier, serve } from './serving.mjs';
 import { setUp } from './set-up.mjs';
 
 /** @typedef {import('./serving.mjs').Serving} Serving */
-/** @typedef {import('./demonstration-database.mjs').Account} Account */
+/** @typedef {import('./demonstration-database.mjs').Demonstration} Demonstration */
 
 const database = 'halfdigit';
 const addressFile = inData('demo.json');
@@ -61,32 +61,43 @@ async function prepare() {
 			`Port ${port} is taken by another program.\nChoose another one: PORT=${port + 1} npm run demo`,
 		);
 	}
+	const earlierToken = tokenInFile();
 	rmSync(addressFile, { force: true });
 	await setUp(['postgresql']);
-	/** @type {Account[]} */
-	let accounts = [];
+	/** @type {Demonstration} */
+	let demonstration = { accounts: [], token: '' };
 	await step('Database and demonstration', async () => {
-		accounts = await ensure(database, { fresh });
+		demonstration = await ensure(database, { fresh, earlierToken });
 	});
 	await step('Server', async () => {
 		serving = await serve({ database, port, kind: 'demo', log: inData('server.log') });
 	});
-	announce(`http://localhost:${port}`, accounts, performance.now() - from);
+	announce(`http://localhost:${port}`, demonstration, performance.now() - from);
 }
 
 /**
  * @param {string} url
- * @param {Account[]} accounts
+ * @param {Demonstration} demonstration
  * @param {number} tookMs
  */
-function announce(url, accounts, tookMs) {
-	writeFileSync(addressFile, `${JSON.stringify({ url, accounts }, null, '\t')}\n`);
+function announce(url, { accounts, token }, tookMs) {
+	writeFileSync(addressFile, `${JSON.stringify({ url, accounts, token }, null, '\t')}\n`);
 	const rows = accounts.map(({ role, email, password }) =>
 		['', role.padEnd(14), email.padEnd(34), password].join('  '),
 	);
 	process.stdout.write(
 		`\nHalfdigit runs on ${url} (ready after ${seconds(tookMs)}). Sign in as:\n${rows.join('\n')}\nCtrl-C stops it.\n`,
 	);
+}
+
+/** The token of an earlier start that had no time to remove its file. */
+function tokenInFile() {
+	try {
+		const { token } = JSON.parse(readFileSync(addressFile, 'utf8'));
+		return typeof token === 'string' ? token : undefined;
+	} catch {
+		return undefined;
+	}
 }
 
 function chosenPort() {

@@ -1,34 +1,39 @@
 import { must } from './commands.mjs';
 import { settings } from './serving.mjs';
 
-/** @typedef {{ email: string, password: string, role: string }} Account */
+/**
+ * @typedef {{ email: string, password: string, role: string }} Account
+ * @typedef {{ accounts: Account[], token: string }} Demonstration who can sign in, and the engineer's token for scripts
+ */
 
 /**
  * Migrates a database and loads the demonstration into it unless it is there.
  * @param {string} database
- * @returns {Promise<Account[]>} who can sign in
+ * @param {string} [earlierToken] kept where it still counts
+ * @returns {Promise<Demonstration>}
  */
-export async function fill(database) {
-	const env = settings(database, 4173);
+export async function fill(database, earlierToken = '') {
+	const env = { ...settings(database, 4173), EARLIER_TOKEN: earlierToken };
 	await must(process.execPath, ['build/migrate.js'], { env });
 	const output = await must(process.execPath, ['build/demonstration.js'], { env });
 	const last = output.trimEnd().split('\n').at(-1) ?? '';
-	return /** @type {{ accounts: Account[] }} */ (JSON.parse(last)).accounts;
+	return /** @type {Demonstration} */ (JSON.parse(last));
 }
 
 /**
  * The same for a database that may not exist yet: a new one gets its name only when it is whole.
  * @param {string} database
- * @param {{ fresh: boolean }} options `fresh` throws away what is there
+ * @param {{ fresh: boolean, earlierToken?: string }} options `fresh` throws away what is there
  */
-export async function ensure(database, { fresh }) {
+export async function ensure(database, { fresh, earlierToken }) {
 	const databases = await import('./databases.mjs');
 	if (fresh) await databases.dropDatabase(database);
 	const making = `${database}_making`;
 	await databases.dropDatabase(making);
-	if ((await databases.listDatabases(database)).includes(database)) return fill(database);
+	const there = (await databases.listDatabases(database)).includes(database);
+	if (there) return fill(database, earlierToken);
 	await databases.createDatabase(making);
-	const accounts = await fill(making);
+	const demonstration = await fill(making);
 	await databases.renameDatabase(making, database);
-	return accounts;
+	return demonstration;
 }

@@ -2,7 +2,7 @@ import { chromium as browsers, type Browser, type BrowserContext } from '@playwr
 import { chromium } from '../../server/local/debian.mjs';
 
 /** Somebody who can sign in. */
-export interface Account {
+interface Account {
 	email: string;
 	password: string;
 }

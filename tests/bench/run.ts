@@ -11,7 +11,7 @@ import { fill } from '../../server/local/demonstration-database.mjs';
 import { inData } from '../../server/local/place.mjs';
 import { firstFree } from '../../server/local/ports.mjs';
 import { endEarlier, serve, settings } from '../../server/local/serving.mjs';
-import { openBrowser, signIn, type Account } from './browser';
+import { openBrowser, signIn } from './browser';
 import { engineRows } from './engine';
 import { pageRows } from './pages';
 import { table, type Row } from './row';
@@ -41,7 +41,7 @@ async function servedRows(): Promise<Row[]> {
 	const database = `test_${process.pid}_bench`;
 	const port = await firstFree(4273);
 	await createDatabase(database);
-	const accounts = (await fill(database)) as (Account & { role: string })[];
+	const { accounts } = await fill(database);
 	const serving = await serve({ database, port, kind: 'bench', log: inData('bench.log') });
 	const browser = await openBrowser();
 	try {
