@@ -57,12 +57,15 @@ function addDetails(
 ): void {
 	const { detail = [], monteCarlo } = options;
 	const names = detail === 'all' ? Object.keys(quantities) : detail;
-	const bounds = new Bounds(note.inputs, options.normalInterval);
-	for (const name of names) {
+	const wanted = names.flatMap((name) => {
 		const computed = note.find(name);
 		const step = computed && stepOf(computed);
 		const quantity = Object.hasOwn(quantities, name) ? quantities[name] : undefined;
-		if (!step || !quantity) continue;
+		return step && quantity ? [{ name, computed, step, quantity }] : [];
+	});
+	const steps = wanted.map(({ step }) => step);
+	const bounds = new Bounds(steps, note.inputs, options.normalInterval);
+	for (const { name, computed, step, quantity } of wanted) {
 		watch.at?.(quantity.cell, quantity.line);
 		quantities[name] = {
 			...quantity,

@@ -4,6 +4,14 @@ import { leftOut } from './order';
 import { Trouble } from './trouble';
 import { findSymbol, spokenName } from './units/table';
 
+/** Names that were found to be free; whether one is depends on nothing but the name. */
+const freeNames = new Set<string>();
+
+function remember(typed: string): void {
+	if (freeNames.size > 20_000) freeNames.clear();
+	freeNames.add(typed);
+}
+
 /** The lines that define names. Later definitions of a name and names that are not free are reported. */
 export function define(
 	lines: readonly NoteLine[],
@@ -29,7 +37,8 @@ export function define(
 			continue;
 		}
 		definitions.set(defined.name, line);
-		const reserved = whyReserved(defined.typed, names);
+		const reserved = freeNames.has(defined.typed) ? undefined : whyReserved(defined.typed, names);
+		if (!reserved) remember(defined.typed);
 		if (reserved)
 			fail(
 				line,

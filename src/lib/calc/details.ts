@@ -88,7 +88,8 @@ export function trialsOf(
 		...(trials !== undefined && { trials }),
 		...(adaptive !== undefined && { adaptive }),
 	};
-	const results = simulate(model, places, options, onProgress);
+	const outputs = wanted.map(({ step }) => places.get(step)!);
+	const results = simulate(model, outputs, options, onProgress);
 	wanted.forEach(({ computed, step }, i) => {
 		const result = results[i]!;
 		const { type } = computed;

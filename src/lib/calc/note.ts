@@ -14,6 +14,7 @@ import { Meter } from './meter';
 import { whereabouts, type NoteLine, type Watch } from './note-lines';
 import { order } from './order';
 import { run, type Scope } from './run';
+import { expectShowable } from './showable';
 import { Bounds, stepsOf, type Step } from './steps';
 import { Tracer, type Doubt, type Surroundings } from './trace';
 import { isExact, nodesOf, shapeOf } from './traced';
@@ -41,7 +42,6 @@ export class Note {
 	readonly #awaited = new Map<NoteLine, NoteLine>();
 	readonly #functionTokens = new Map<NoteLine, object>();
 	readonly #doubtfulFunctions: DoubtfulFunctions;
-	readonly #bounds: Bounds;
 	#correlations: Correlations = uncorrelated;
 
 	constructor(
@@ -60,7 +60,6 @@ export class Note {
 			(name) => this.#definitions.get(name),
 			(name) => this.#doubt(name) !== undefined,
 		);
-		this.#bounds = new Bounds(this.inputs);
 		this.#evaluateAll();
 	}
 
@@ -275,6 +274,7 @@ export class Note {
 					mend: 'Write exponents as numbers.',
 				},
 			);
+		expectShowable(value, type, body);
 		return { type, value, ...this.#doubtOf(line, body, value) };
 	}
 
@@ -349,7 +349,7 @@ export class Note {
 			const doubts = { uncertainties, dofs, correlations: this.#correlations };
 			return uncertaintyOf(step!.propagated, doubts, 0.95).standardUncertainty;
 		}
-		return (own > 0 ? new Bounds(inputs) : this.#bounds).of(step!)[what];
+		return new Bounds([step!], inputs).of(step!)[what];
 	}
 
 	/** Names of the line that are unknown, wrongly used, or wait; in order of first use. */

@@ -34,14 +34,9 @@ export function stepsOf(
 	});
 }
 
-/** The lines that some numbers need, as trials and bounds compute them. `places` has that of each number asked for. */
-export function modelOf(
-	wanted: readonly Step[],
-	inputs: Inputs,
-	correlations: Correlations = uncorrelated,
-): { model: Model; places: number[]; steps: Step[] } {
+/** The lines that some numbers need, each behind those it uses. */
+export function neededBy(wanted: readonly Step[]): Map<Step, number> {
 	const place = new Map<Step, number>();
-	const steps: Step[] = [];
 	for (const root of wanted) {
 		const open: { step: Step; next: number }[] = [{ step: root, next: 0 }];
 		for (let at = open.at(-1); at; at = open.at(-1)) {
@@ -51,22 +46,30 @@ export function modelOf(
 				continue;
 			}
 			open.pop();
-			if (place.has(at.step)) continue;
-			place.set(at.step, steps.length);
-			steps.push(at.step);
+			if (!place.has(at.step)) place.set(at.step, place.size);
 		}
 	}
+	return place;
+}
+
+/** A note as trials and bounds compute it. `places` has that of each number asked for. */
+export function modelOf(
+	wanted: readonly Step[],
+	inputs: Inputs,
+	correlations: Correlations = uncorrelated,
+): { model: Model; places: Map<Step, number> } {
+	const places = neededBy(wanted);
 	const model: Model = {
-		steps: steps.map(({ tape, args, inputs: own }) => ({
+		steps: [...places.keys()].map(({ tape, args, inputs: own }) => ({
 			tape,
-			args: args.map((arg) => place.get(arg)!),
+			args: args.map((arg) => places.get(arg)!),
 			inputs: own,
 		})),
 		inputs: inputs.all.map((input) => input.distribution),
 		correlations,
 		streams: streams(inputs.all.map((input) => input.label)),
 	};
-	return { model, places: wanted.map((step) => place.get(step)!), steps };
+	return { model, places };
 }
 
 /** Numbers of random streams made from the inputs' labels, no two alike. */
@@ -83,27 +86,24 @@ function streams(labels: readonly string[]): number[] {
 	});
 }
 
-/** Finds worst cases; what is known of a line serves those that use it. */
+/** Worst cases of some numbers. */
 export class Bounds {
-	readonly #enclosures = new WeakMap<Step, Enclosure>();
-	#halfWidths: number[] = [];
+	readonly #enclosures = new Map<Step, Enclosure>();
+	readonly #halfWidths: number[];
+	readonly #model: Model;
+	readonly #places: ReadonlyMap<Step, number>;
 
-	constructor(
-		private readonly inputs: Inputs,
-		private readonly sigmas?: number,
-	) {}
-
-	of(step: Step): WorstCase {
-		for (let i = this.#halfWidths.length; i < this.inputs.all.length; i++)
-			this.#halfWidths.push(halfWidth(this.inputs.all[i]!.distribution, this.sigmas));
-		const { model, places, steps } = modelOf([step], this.inputs);
-		for (const each of steps) this.#enclose(each);
-		return worstCase(model, places[0]!, this.#enclosures.get(step)!, this.#halfWidths);
+	constructor(wanted: readonly Step[], inputs: Inputs, sigmas?: number) {
+		this.#halfWidths = inputs.all.map(({ distribution }) => halfWidth(distribution, sigmas));
+		({ model: this.#model, places: this.#places } = modelOf(wanted, inputs));
+		for (const step of this.#places.keys()) {
+			const args = step.args.map((arg) => this.#enclosures.get(arg)!);
+			this.#enclosures.set(step, enclose(step.tape, args, step.inputs, this.#halfWidths));
+		}
 	}
 
-	#enclose(step: Step): void {
-		if (this.#enclosures.has(step)) return;
-		const args = step.args.map((arg) => this.#enclosures.get(arg)!);
-		this.#enclosures.set(step, enclose(step.tape, args, step.inputs, this.#halfWidths));
+	of(step: Step): WorstCase {
+		const enclosure = this.#enclosures.get(step)!;
+		return worstCase(this.#model, this.#places.get(step)!, enclosure, this.#halfWidths);
 	}
 }

@@ -51,7 +51,7 @@ export class Worked {
 			known?.cell === line.cell &&
 			known.line === line.line &&
 			known.description === line.description &&
-			known.dependsOn.join() === dependsOn.join();
+			known.dependsOn.every((name, i) => name === dependsOn[i]);
 		if (same) return known;
 		const { computed } = remembered;
 		return (shown.quantity = {

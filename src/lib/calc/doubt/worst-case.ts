@@ -11,7 +11,7 @@ export interface WorstCase {
 
 /** Inputs whose corners are all tried before the search goes input by input. */
 const cornersOf = 8;
-const points = 9;
+const points = 7;
 const rounds = 3;
 
 /** `halfWidths` of all inputs by number, those that `enclosure` was made with. */
@@ -67,7 +67,9 @@ function search(
 			const width = halfWidths[input]!;
 			for (let k = 0; k < points; k++)
 				moved = tryAt(input, width * ((2 * k) / (points - 1) - 1)) || moved;
-			// Ever smaller steps about the best point so far.
+			// At an end that is still falling towards the middle nothing is left to find; else ever smaller steps are taken.
+			const end = Math.abs(at[input]!) === width;
+			if (end && !tryAt(input, at[input]! * (1 - 1e-6))) continue;
 			for (let step = width / (points - 1); step > 1e-9 * width; step /= 2)
 				for (const way of [-step, step])
 					moved = tryAt(input, Math.max(-width, Math.min(width, at[input]! + way))) || moved;
