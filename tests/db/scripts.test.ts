@@ -42,7 +42,17 @@ const post = (script: Visitor, body: unknown, headers: Record<string, string> = 
 		body: typeof body === 'string' ? body : JSON.stringify(body),
 		headers: { ...type, ...headers },
 	});
-const read = (answer: Answer) => JSON.parse(answer.body) as Record<string, never>;
+/** An answer, with what some of them hold. */
+const read = (answer: Answer) =>
+	JSON.parse(answer.body) as {
+		message: string;
+		faults?: object[];
+		state: string;
+		seq: number;
+		cells: object[];
+		options: object;
+		results: { quantities: object };
+	};
 const plain = (value: unknown) => JSON.parse(JSON.stringify(value)) as unknown;
 
 const divider: Cell[] = [
@@ -186,7 +196,7 @@ describe('POST /api/v1/evaluate', () => {
 	])('refuses %s and says where', async (_, body, sentence) => {
 		const answer = await post(await freshScript(), body);
 		expect(answer.status, answer.body).toBe(400);
-		const { message, faults } = read(answer) as { message: string; faults?: object[] };
+		const { message, faults } = read(answer);
 		expect(message).toContain(sentence);
 		const place = /^(\S+): /.exec(sentence)?.[1];
 		if (place) expect(faults).toContainEqual({ place, message: expect.any(String) as string });
@@ -194,7 +204,7 @@ describe('POST /api/v1/evaluate', () => {
 
 	test('names twenty faults of a body with many, and counts the others', async () => {
 		const answer = await post(await freshScript(), { cells: Array(30).fill(1) });
-		const { message, faults } = read(answer) as unknown as { message: string; faults: object[] };
+		const { message, faults } = read(answer);
 		expect(faults).toHaveLength(20);
 		expect(message).toMatch(/And 10 more\.$/);
 	});
@@ -280,7 +290,7 @@ describe('GET /api/v1/notes/[number]', () => {
 		await edit(cast.author, id, 1, '\nI_in = 2 mA');
 		const later = read(await get(script, number));
 		expect(later.seq).toBe(seq + 1);
-		expect((later.results as { quantities: object }).quantities).toHaveProperty('I_in');
+		expect(later.results.quantities).toHaveProperty('I_in');
 		await propose(cast.author, number);
 		expect(read(await get(script, number)).state).toBe('in check');
 	});
@@ -288,8 +298,7 @@ describe('GET /api/v1/notes/[number]', () => {
 	test('gives cells and options that can be sent back to be computed', async () => {
 		const { number } = await writeNote(cast.author);
 		const script = await freshScript();
-		const note = read(await get(script, number));
-		const { cells, options, results } = note as unknown as { [name: string]: object };
+		const { cells, options, results } = read(await get(script, number));
 		const answer = await post(script, { cells, options: { ...options, detail: [] } });
 		expect(read(answer)).toEqual(results);
 	});
