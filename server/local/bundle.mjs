@@ -43,6 +43,10 @@ function groups(names) {
 	return [evaluator, others].filter((group) => group.length > 0);
 }
 
+/** A bundled CommonJS package asks for Node.js's own modules with `require`, which a module does not have by itself. */
+const requireOfNode =
+	"import { createRequire } from 'node:module';\nconst require = createRequire(import.meta.url);";
+
 /**
  * Packages stay outside, and so do the built pages; `$lib` comes from the TypeScript settings. Evaluators start often
  * and use a small part of a large package, so that it is bundled into theirs.
@@ -50,6 +54,7 @@ function groups(names) {
  * @returns {esbuild.BuildOptions}
  */
 function options(names) {
+	const whole = names.includes('evaluator');
 	return {
 		absWorkingDir: root,
 		entryPoints: Object.fromEntries(names.map((name) => [name, entries[name]])),
@@ -58,7 +63,8 @@ function options(names) {
 		platform: 'node',
 		format: 'esm',
 		target: 'node20',
-		packages: names.includes('evaluator') ? 'bundle' : 'external',
+		packages: whole ? 'bundle' : 'external',
+		...(whole && { banner: { js: requireOfNode } }),
 		external: ['./web/*'],
 		sourcemap: true,
 		logLevel: 'warning',
