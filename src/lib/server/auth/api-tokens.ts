@@ -32,7 +32,8 @@ export async function create(
 			throw new AppError('conflict', `You have ${most} tokens. Revoke one that is not used first.`);
 		}
 		const { personId, teamId } = actor;
-		const expiresAt = days === null ? null : sql<Date>`now() + make_interval(hours => ${24 * days})`;
+		const expiresAt =
+			days === null ? null : sql<Date>`now() + make_interval(hours => ${24 * days})`;
 		const [made] = await tx
 			.insert(apiToken)
 			.values({ personId, teamId, name, hash: hashOf(token), expiresAt })
