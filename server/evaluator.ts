@@ -1,3 +1,4 @@
+import { Calculator } from '$lib/calc/calculator';
 import { defaultOptions, evaluate } from '$lib/calc/evaluate';
 import {
 	placeBytes,
@@ -8,7 +9,11 @@ import {
 } from '$lib/server/evaluation/exchange';
 import { writeSync } from 'node:fs';
 
-/** A child that computes notes for another process until that goes away. It has no environment and keeps no state. */
+/** What is kept of the notes computed last, so that an edit computes only what depends on it. */
+const calculators = new Map<string, Calculator>();
+const mostCalculators = 4;
+
+/** A child that computes notes for another process until that goes away. It has no environment. */
 function start(): void {
 	if (!process.send) throw new Error('The evaluator runs as a child of another process only.');
 	process.on('message', (task) => {
@@ -26,14 +31,31 @@ function answer(message: Answer): void {
 	process.send?.(message);
 }
 
-function compute({ id, cells, options, skip }: Task): Answer {
+function compute({ id, cells, options, skip, note }: Task): Answer {
 	const index = new Map(cells.map((cell, i) => [cell.id, i]));
 	const buffer = Buffer.alloc(placeBytes);
 	const at = (cell: string, line: number) => {
 		writePlace(buffer, index.get(cell) ?? 0, line);
 		tell(buffer);
 	};
-	return { kind: 'done', id, results: evaluate(cells, options, { at, skip }) };
+	const trials = (drawn: number, total: number) => {
+		answer({ kind: 'progress', id, drawn, total });
+		return true;
+	};
+	const calculator = calculatorOf(note);
+	return { kind: 'done', id, results: calculator.evaluate(cells, options, { at, skip, trials }) };
+}
+
+function calculatorOf(note: string | undefined): Calculator {
+	if (note === undefined) return new Calculator();
+	const calculator = calculators.get(note) ?? new Calculator();
+	calculators.delete(note);
+	calculators.set(note, calculator);
+	for (const oldest of calculators.keys()) {
+		if (calculators.size <= mostCalculators) break;
+		calculators.delete(oldest);
+	}
+	return calculator;
 }
 
 function tell(buffer: Buffer): void {

@@ -53,7 +53,7 @@ const requireOfNode =
  * @param {Entry[]} names
  * @returns {esbuild.BuildOptions}
  */
-function options(names) {
+export function options(names) {
 	const whole = names.includes('evaluator');
 	return {
 		absWorkingDir: root,

@@ -91,6 +91,7 @@ export class Room {
 				for (const connection of this.connections) connection.sendResults(message);
 				this.#storeResults();
 			},
+			noteId,
 		);
 		this.#doc.on('update', (bytes: Uint8Array, origin: unknown) => {
 			this.#version += 1;

@@ -102,7 +102,10 @@ export function run(node: Node, scope: Scope): Value {
 			const value = run(node.value, scope);
 			if (!node.scaled) return value;
 			scope.meter.spend(steps(value), node);
-			return map(value, (x) => toSI(x, node.unit));
+			return finite(
+				map(value, (x) => toSI(x, node.unit)),
+				node,
+			);
 		}
 	}
 }

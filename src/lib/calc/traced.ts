@@ -1,5 +1,4 @@
 import type { Node, TapeBuilder } from './doubt/tape';
-import { Refusal } from './functions/function';
 import { isGrid, type Value } from './values';
 
 /** A value on a tape: plain where it is exact, else a node, or a node for each member of a list. */
@@ -30,10 +29,4 @@ export function mapNodes(tape: TapeBuilder, x: Traced, fn: (node: Node) => Node)
 	const nodes = nodesOf(tape, x).map(fn);
 	const shape = shapeOf(x);
 	return shape ? { shape, nodes } : { node: nodes[0]! };
-}
-
-/** The value of something that must be exact. Throws Refusal. */
-export function plainValue(traced: Traced, what: string): Value {
-	if (isExact(traced)) return traced.exact;
-	throw new Refusal(`${what} is exact, and this is in doubt.`, 'Take its plain value, `value(x)`.');
 }

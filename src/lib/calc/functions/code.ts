@@ -1,8 +1,9 @@
+import { plainValue } from './plain-value';
 import { expectSame, Refusal, refusePoint, scalar, type CalcFunction } from './function';
 import { pure } from '../types';
 import { map } from '../values';
 import { expectBits, wholeBits } from './bits';
-import { mapNodes, nodesOf, plainValue } from '../traced';
+import { mapNodes, nodesOf } from '../traced';
 
 export const code: CalcFunction = {
 	name: 'code',

@@ -1,8 +1,9 @@
+import { plainValue } from './plain-value';
 import { expectNumber, refusePoint, type CalcFunction } from './function';
 import { pure } from '../types';
 import { map } from '../values';
 import { expectBits, wholeBits } from './bits';
-import { mapNodes, plainValue } from '../traced';
+import { mapNodes } from '../traced';
 
 export const lsb: CalcFunction = {
 	name: 'lsb',

@@ -2,7 +2,6 @@ import { rectangular } from '../doubt/distributions/rectangular';
 import { difference } from './stated';
 import { scalar, type CalcFunction } from './function';
 import { lsb } from './lsb';
-import { pure } from '../types';
 
 export const quantisation: CalcFunction = {
 	name: 'quantisation',
@@ -11,7 +10,7 @@ export const quantisation: CalcFunction = {
 	examples: [{ source: 'quantisation(3.3 V, 12)', result: '0 µV ± 460 µV' }],
 	source: 'JCGM 100:2008, F.2.2.1',
 	count: [2, 2],
-	type: (args) => difference(lsb.type(args)) ?? pure,
+	type: (args) => difference(lsb.type(args)),
 	compute: () => 0,
 	states: {
 		centred: false,

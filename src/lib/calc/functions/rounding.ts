@@ -1,6 +1,7 @@
+import { plainValue } from './plain-value';
 import { Trouble } from '../trouble';
 import type { Node, TapeBuilder } from '../doubt/tape';
-import { mapNodes, plainValue, type Traced } from '../traced';
+import { mapNodes, type Traced } from '../traced';
 import { differ, isPure, pure, spoken, type Type } from '../types';
 import { map, type Value } from '../values';
 import { expectNumber, expectPure, Refusal, refusePoint, scalar, type Argument } from './function';

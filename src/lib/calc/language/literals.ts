@@ -3,10 +3,25 @@ import { spokenName } from '../units/table';
 import { divided, multiplied, power, toSI, type Unit } from '../units/unit';
 import type { BinaryOperator, Node, NodeOf, Place } from './nodes';
 
-/** A number in a unit, `5 mV`, or without one. */
+/** Below it numbers lose digits. */
+const smallest = 2 ** -1022;
+
+/** A number in a unit, `5 mV`, or without one. Throws Trouble where it is out of range. */
 export function literal(typed: number, unit: Unit | undefined, place: Place): NodeOf<'number'> {
 	const { from, to } = place;
-	return { kind: 'number', typed, unit, value: unit ? toSI(typed, unit) : typed, from, to };
+	const value = unit ? toSI(typed, unit) : typed;
+	if (!Number.isFinite(value)) throw outOfRange(place, 'This', 'larger');
+	if (value === 0 ? typed !== 0 : Math.abs(value) < smallest)
+		throw outOfRange(place, 'This', 'smaller');
+	return { kind: 'number', typed, unit, value, from, to };
+}
+
+/** The fault of a number that is too large or too small to compute with. */
+export function outOfRange(place: Place, what: string, how: 'larger' | 'smaller'): Trouble {
+	const message = `${what} is ${how} than any number that can be computed with.`;
+	const mend =
+		how === 'larger' ? 'Numbers reach up to about 1.8e308.' : 'Numbers begin at about 2.3e-308.';
+	return new Trouble('overflow', place, message, { mend });
 }
 
 /**

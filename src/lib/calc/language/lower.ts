@@ -6,7 +6,7 @@ import { Trouble } from '../trouble';
 import { findSymbol } from '../units/table';
 import { fromSymbol, power } from '../units/unit';
 import { asTyped, canonical, percent } from './characters';
-import { bareUnit, joinUnits, literal } from './literals';
+import { bareUnit, joinUnits, literal, outOfRange } from './literals';
 import { nearest, unitNames } from './names';
 import type {
 	BinaryOperator,
@@ -142,15 +142,11 @@ export class Lowering {
 			return { kind: 'text', value: asTyped(token.text.slice(1, -1)), ...place(token) };
 		if (typeof value !== 'number' || token.kind !== 'number')
 			throw new Trouble('notAllowed', place(token), `\`${token.text}\` is not a value here.`);
-		if (!Number.isFinite(value))
-			throw new Trouble(
-				'overflow',
-				place(token),
-				`\`${token.text}\` is larger than any number that can be computed with.`,
-				{
-					mend: 'Numbers reach up to about 1.8e308.',
-				},
-			);
+		const typed = `\`${token.text}\``;
+		if (!Number.isFinite(value)) throw outOfRange(place(token), typed, 'larger');
+		// `1e-400` is read as 0.
+		if (value === 0 && /^[^eE]*[1-9]/.test(token.text))
+			throw outOfRange(place(token), typed, 'smaller');
 		return literal(value, undefined, token);
 	}
 

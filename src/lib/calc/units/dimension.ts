@@ -8,7 +8,7 @@ const known = new Map<string, Dimension>();
 
 /** The dimension with these exponents; small rounding left by roots is removed. */
 export function dimension(powers: readonly number[]): Dimension {
-	const exact = powers.map((power) => Math.round(power * 5040) / 5040 + 0);
+	const exact = powers.map(cleaned);
 	const key = exact.join(' ');
 	let found = known.get(key);
 	if (!found) {
@@ -18,6 +18,12 @@ export function dimension(powers: readonly number[]): Dimension {
 		known.set(key, found);
 	}
 	return found;
+}
+
+/** A fraction of small numbers without the rounding that roots leave; any other power stays as it is. */
+function cleaned(power: number): number {
+	const fraction = Math.round(power * 5040) / 5040;
+	return (Math.abs(fraction - power) < 1e-9 ? fraction : power) + 0;
 }
 
 const size = 8;

@@ -17,6 +17,9 @@ export type Outcome =
 	| { kind: 'done'; results: Evaluation }
 	| { kind: 'tooLong' | 'tooLarge' | 'gone'; place: { cell: number; line: number } | undefined };
 
+/** Told how many trials are drawn, and how many there will be. */
+export type OnProgress = (drawn: number, total: number) => void;
+
 const memoryCheckMs = 20;
 const startMs = 15_000;
 
@@ -31,6 +34,8 @@ export class Child {
 	#place: Buffer = Buffer.alloc(0);
 	#settle: ((outcome: Outcome) => void) | undefined;
 	#task: number | undefined;
+	#note: string | undefined;
+	#onProgress: OnProgress | undefined;
 
 	constructor(settings: ChildSettings) {
 		this.#settings = settings;
@@ -59,8 +64,9 @@ export class Child {
 		this.ready = this.#started();
 		this.#process.on('message', (message) => {
 			const answer = message as Answer;
-			if (answer.kind === 'done' && answer.id === this.#task)
-				this.#finish({ kind: 'done', results: answer.results });
+			if (answer.kind === 'ready' || answer.id !== this.#task) return;
+			if (answer.kind === 'done') this.#finish({ kind: 'done', results: answer.results });
+			else this.#onProgress?.(answer.drawn, answer.total);
 		});
 		// A program that forgot to close the pool may still end; the child follows when the channel closes.
 		this.#process.unref();
@@ -72,8 +78,15 @@ export class Child {
 		return this.#alive;
 	}
 
+	/** The note whose evaluation it had last. */
+	get note(): string | undefined {
+		return this.#note;
+	}
+
 	/** Gives the process a task and stops it where it overruns. Never rejects. */
-	run(task: Task, limitMs: number): Promise<Outcome> {
+	run(task: Task, limitMs: number, onProgress?: OnProgress): Promise<Outcome> {
+		this.#note = task.note ?? this.#note;
+		this.#onProgress = onProgress;
 		this.#place = Buffer.alloc(0);
 		this.#task = task.id;
 		const outcome = new Promise<Outcome>((resolve) => (this.#settle = resolve));
@@ -113,6 +126,11 @@ export class Child {
 				resolve(false);
 			});
 		});
+	}
+
+	/** Ends the process and with it what it computes. */
+	cancel(): void {
+		this.#stop('gone');
 	}
 
 	#stop(kind: 'tooLong' | 'tooLarge' | 'gone'): void {

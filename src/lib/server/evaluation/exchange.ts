@@ -7,10 +7,15 @@ export interface Task {
 	cells: readonly Cell[];
 	options: Options;
 	skip: SkippedLine[];
+	/** The note, where its next evaluation is likely to come to the same child. */
+	note?: string;
 }
 
-/** What a child answers: that it can be asked, or the results of a task. */
-export type Answer = { kind: 'ready' } | { kind: 'done'; id: number; results: Evaluation };
+/** What a child answers: that it can be asked, how many trials are drawn, or the results of a task. */
+export type Answer =
+	| { kind: 'ready' }
+	| { kind: 'progress'; id: number; drawn: number; total: number }
+	| { kind: 'done'; id: number; results: Evaluation };
 
 /** File descriptor on which a child says at which line it is, so that the one that stops it can be named. */
 export const placeDescriptor = 4;

@@ -2,6 +2,7 @@ import { defaultOptions } from '$lib/calc/engine';
 import type { Cell } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { build } from 'esbuild';
+import { options } from '../../../../server/local/bundle.mjs';
 import { mkdtemp, readFile, rm } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -15,14 +16,7 @@ const pools: Pool[] = [];
 beforeAll(async () => {
 	folder = await mkdtemp(join(tmpdir(), 'halfdigit-'));
 	entry = join(folder, 'evaluator.mjs');
-	await build({
-		entryPoints: ['server/evaluator.ts'],
-		outfile: entry,
-		bundle: true,
-		platform: 'node',
-		format: 'esm',
-		target: 'node20',
-	});
+	await build({ ...options(['evaluator']), outdir: folder, outExtension: { '.js': '.mjs' } });
 }, 60_000);
 
 afterEach(async () => {
@@ -38,6 +32,7 @@ function open(settings: Partial<PoolSettings> = {}): Pool {
 		heapMegabytes: 192,
 		residentMegabytes: 400,
 		limitsMs: [10_000, 10_000, 10_000],
+		longLimitsMs: [20_000, 20_000],
 		...settings,
 	});
 	pools.push(pool);
@@ -138,6 +133,38 @@ describe('A pool of evaluators', () => {
 			value = quantities.x?.value;
 		}
 		expect(value).toBe(1);
+	}, 60_000);
+
+	it('draws trials, tells how far it is, and stops when it is told to', async () => {
+		const pool = open();
+		const cells = calculation('R1 = tolerance(1 kohm, 1 %)\nI1 = 5 V / R1');
+		const monteCarlo = { quantities: ['I1'], trials: 1_000_000, seed: 1 };
+		const drawn: number[] = [];
+		const onProgress = (count: number) => drawn.push(count);
+		const options = { ...defaultOptions, monteCarlo };
+		const { quantities } = await pool.evaluate(cells, options, { onProgress });
+		expect(quantities.I1?.monteCarlo?.trials).toBe(1_000_000);
+		expect(drawn.length).toBeGreaterThan(3);
+		expect(drawn).toEqual([...drawn].sort((a, b) => a - b));
+
+		const control = new AbortController();
+		const many = { ...defaultOptions, monteCarlo: { ...monteCarlo, trials: 10_000_000 } };
+		const stopped = pool.evaluate(cells, many, {
+			onProgress: () => control.abort(),
+			signal: control.signal,
+		});
+		await expect(stopped).rejects.toThrow('This was stopped.');
+		const next = await pool.evaluate(calculation('x = 1'), defaultOptions);
+		expect(next.quantities.x?.value).toBe(1);
+	}, 60_000);
+
+	it('answers edits of a note like a first evaluation of it', async () => {
+		const pool = open({ size: 2 });
+		for (let edit = 0; edit < 10; edit++) {
+			const cells = calculation(`x = ${edit} V\ny = normal(x, 1 mV) / 2\nz = 3 A`);
+			const edited = await pool.evaluate(cells, defaultOptions, { note: 'n' });
+			expect(edited).toEqual(await pool.evaluate(cells, defaultOptions));
+		}
 	}, 60_000);
 
 	it('gives a formula none of its environment and no way to it', async () => {

@@ -3,7 +3,7 @@ import type { Cell, Evaluation, Options } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { env } from '../env';
 import { log } from '../log';
-import { Child, type ChildSettings, type Outcome } from './child';
+import { Child, type ChildSettings, type OnProgress, type Outcome } from './child';
 import { withoutResults } from './unfinished';
 
 export interface PoolSettings extends ChildSettings {
@@ -11,9 +11,21 @@ export interface PoolSettings extends ChildSettings {
 	size: number;
 	/** Time of the first try, and of each of the tries that leave out the lines which stopped earlier ones. */
 	limitsMs: readonly number[];
+	/** The same where trials or the details of all quantities are asked for. */
+	longLimitsMs: readonly number[];
 }
 
 const mostStartFailures = 3;
+
+/** What an evaluation is for. */
+export interface Circumstances {
+	/** The note, where it is likely to be evaluated again after an edit. */
+	note?: string | undefined;
+	/** Told how many trials are drawn. */
+	onProgress?: OnProgress | undefined;
+	/** Stops it; the evaluation then throws AppError. */
+	signal?: AbortSignal | undefined;
+}
 
 /** Children that compute notes: each answer is in time, whatever a line does, and no line harms the next note. */
 export class Pool {
@@ -21,14 +33,16 @@ export class Pool {
 	readonly #children = new Set<Child>();
 	readonly #idle: Child[] = [];
 	readonly #waiting: { take: (child: Child) => void; fail: (error: Error) => void }[] = [];
-	readonly #queue: (() => void)[] = [];
-	#running = 0;
+	readonly #turns: Turns;
+	/** Long evaluations are made one at a time, so that edits never wait for them. */
+	readonly #longTurns = new Turns(1);
 	#startFailures = 0;
 	#nextTask = 1;
 	#closed = false;
 
 	constructor(settings: PoolSettings) {
 		this.#settings = settings;
+		this.#turns = new Turns(settings.size);
 		for (let i = 0; i <= settings.size; i++) this.#spawn();
 	}
 
@@ -36,13 +50,19 @@ export class Pool {
 	 * Computes a note in a child. Lines that take too long or too much carry a fault, the others their results.
 	 * Throws AppError `unavailable` where no child can be started or the pool is closed.
 	 */
-	async evaluate(cells: readonly Cell[], options: Options): Promise<Evaluation> {
-		await this.#turn();
+	async evaluate(
+		cells: readonly Cell[],
+		options: Options,
+		{ note, onProgress, signal }: Circumstances = {},
+	): Promise<Evaluation> {
+		const isLong = options.monteCarlo !== undefined || options.detail === 'all';
+		const turns = isLong ? this.#longTurns : this.#turns;
+		if (this.#closed) throw closedError();
+		await turns.take();
 		try {
-			return await this.#attempt(cells, options);
+			return await this.#attempt(cells, options, isLong, { note, onProgress, signal });
 		} finally {
-			this.#running -= 1;
-			this.#queue.shift()?.();
+			turns.give();
 		}
 	}
 
@@ -53,15 +73,26 @@ export class Pool {
 		await Promise.all([...this.#children].map((child) => child.close()));
 	}
 
-	async #attempt(cells: readonly Cell[], options: Options): Promise<Evaluation> {
+	async #attempt(
+		cells: readonly Cell[],
+		options: Options,
+		isLong: boolean,
+		{ note, onProgress, signal }: Circumstances,
+	): Promise<Evaluation> {
 		const skip: SkippedLine[] = [];
-		for (const limitMs of this.#settings.limitsMs) {
-			const child = await this.#acquire();
+		const { limitsMs, longLimitsMs } = this.#settings;
+		for (const limitMs of isLong ? longLimitsMs : limitsMs) {
+			const child = await this.#acquire(note);
 			const id = this.#nextTask++;
-			const outcome = await child.run({ id, cells, options, skip }, limitMs);
+			const task = { id, cells, options, skip, ...(note !== undefined && { note }) };
+			const cancel = () => child.cancel();
+			signal?.addEventListener('abort', cancel);
+			const outcome = await child.run(task, limitMs, onProgress);
+			signal?.removeEventListener('abort', cancel);
 			this.#release(child);
 			if (outcome.kind === 'done') return outcome.results;
 			if (this.#closed) throw closedError();
+			if (signal?.aborted) throw new AppError('unavailable', 'This was stopped.');
 			const blamed = blame(outcome, cells);
 			log().warn({ outcome: outcome.kind, ...blamed }, 'an evaluation was stopped');
 			if (blamed) skip.push(blamed);
@@ -71,15 +102,11 @@ export class Pool {
 		return withoutResults(cells, skip);
 	}
 
-	async #turn(): Promise<void> {
+	async #acquire(note: string | undefined): Promise<Child> {
 		if (this.#closed) throw closedError();
-		if (this.#running >= this.#settings.size)
-			await new Promise<void>((resolve) => this.#queue.push(resolve));
-		this.#running += 1;
-	}
-
-	async #acquire(): Promise<Child> {
-		if (this.#closed) throw closedError();
+		const known = note === undefined ? -1 : this.#idle.findIndex((child) => child.note === note);
+		const [same] = known < 0 ? [] : this.#idle.splice(known, 1);
+		if (same?.alive) return same;
 		for (let child = this.#idle.shift(); child; child = this.#idle.shift())
 			if (child.alive) return child;
 		if (this.#children.size === 0) this.#spawn();
@@ -118,6 +145,25 @@ export class Pool {
 	}
 }
 
+/** Lets so many at once. */
+class Turns {
+	readonly #waiting: (() => void)[] = [];
+	#running = 0;
+
+	constructor(private readonly most: number) {}
+
+	async take(): Promise<void> {
+		if (this.#running >= this.most)
+			await new Promise<void>((resolve) => this.#waiting.push(resolve));
+		this.#running += 1;
+	}
+
+	give(): void {
+		this.#running -= 1;
+		this.#waiting.shift()?.();
+	}
+}
+
 /** The line a stopped child was at; undefined where it had not begun, so that no line is to blame. */
 function blame(
 	outcome: Exclude<Outcome, { kind: 'done' }>,
@@ -138,7 +184,11 @@ function closedError(): AppError {
 let shared: Pool | undefined;
 
 /** Computes a note in one of this process's children. Throws AppError `unavailable`. */
-export function evaluateInChild(cells: readonly Cell[], options: Options): Promise<Evaluation> {
+export function evaluateInChild(
+	cells: readonly Cell[],
+	options: Options,
+	circumstances?: Circumstances,
+): Promise<Evaluation> {
 	const { EVALUATOR_ENTRY: entry, EVALUATORS: size } = env();
 	shared ??= new Pool({
 		entry,
@@ -146,8 +196,9 @@ export function evaluateInChild(cells: readonly Cell[], options: Options): Promi
 		heapMegabytes: 192,
 		residentMegabytes: 400,
 		limitsMs: [800, 600, 400],
+		longLimitsMs: [30_000, 5_000],
 	});
-	return shared.evaluate(cells, options);
+	return shared.evaluate(cells, options, circumstances);
 }
 
 /** Ends this process's children. The next evaluation starts new ones. */

@@ -32,6 +32,7 @@ function bench() {
 			},
 		}),
 		(evaluated) => shown.push(evaluated),
+		'note',
 		compute,
 	);
 	const change = (source: string, title = document.title) => {

@@ -15,6 +15,7 @@ export interface Evaluated {
 export class Scheduler {
 	readonly #read: () => { version: number; content: NoteContent };
 	readonly #onResults: (evaluated: Evaluated) => void;
+	readonly #note: string;
 	readonly #compute: typeof evaluateInChild;
 	#running: Promise<void> | undefined;
 	#wanted = false;
@@ -24,8 +25,10 @@ export class Scheduler {
 	constructor(
 		read: () => { version: number; content: NoteContent },
 		onResults: (evaluated: Evaluated) => void,
+		note: string,
 		compute = evaluateInChild,
 	) {
+		this.#note = note;
 		this.#compute = compute;
 		this.#read = read;
 		this.#onResults = onResults;
@@ -79,6 +82,6 @@ export class Scheduler {
 		if (last && JSON.stringify(last.content.cells) === JSON.stringify(content.cells)) {
 			return last.results;
 		}
-		return this.#compute(content.cells, defaultOptions);
+		return this.#compute(content.cells, defaultOptions, { note: this.#note });
 	}
 }
