@@ -1,0 +1,17 @@
+import { spawnSync } from 'node:child_process';
+
+/** Whether a program of the system is there; where it is not, a notice says what is left out and why. */
+export function hasProgram(program: string, debianPackage: string, whatFor: string): boolean {
+	if (spawnSync(program, ['--version']).error === undefined) return true;
+	console.warn(
+		`${whatFor} is left out: there is no program \`${program}\` here. Debian has it in the package ${debianPackage}.`,
+	);
+	return false;
+}
+
+/** What a program prints for an input. Throws where it cannot be run. */
+export function printed(program: string, args: readonly string[], input: string): string {
+	const { error, stdout } = spawnSync(program, args, { input, encoding: 'utf8', timeout: 20_000 });
+	if (error) throw error;
+	return stdout;
+}
