@@ -3,8 +3,8 @@ import { spawnSync } from 'node:child_process';
 /** Whether a program of the system is there; where it is not, a notice says what is left out and why. */
 export function hasProgram(program: string, debianPackage: string, whatFor: string): boolean {
 	if (spawnSync(program, ['--version']).error === undefined) return true;
-	console.warn(
-		`${whatFor} is left out: there is no program \`${program}\` here. Debian has it in the package ${debianPackage}.`,
+	process.stderr.write(
+		`${whatFor} is left out: there is no program \`${program}\` here. Debian has it in the package ${debianPackage}.\n`,
 	);
 	return false;
 }
