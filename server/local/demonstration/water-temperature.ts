@@ -16,7 +16,7 @@ export const waterTemperature: Sheet = {
 			'Resistance after IEC 60751: {{R_cold}} at the cold end, {{R_hot}} at the warm end.',
 		),
 		calculation(
-			'R_0 = 1000 ohm  # at 0 °C',
+			'R_0 = tolerance(1000 ohm, 0.12 %)  # at 0 °C, class B of IEC 60751',
 			'a_pt = 3.9083e-3  # per °C, IEC 60751',
 			'b_pt = -5.775e-7  # per °C squared, IEC 60751',
 			'R_pt(theta) = R_0 * (1 + a_pt * theta + b_pt * theta^2)',
@@ -30,9 +30,9 @@ export const waterTemperature: Sheet = {
 			'A gain of {{gain}} spreads the range over {{V_span}} at the converter, {{s_T: mV/K}} on the average. One step is {{T_step: mK}}.',
 		),
 		calculation(
-			'V_ref = 2.5 V  # reference of converter and sensor',
+			'V_ref = tolerance(2.5 V, 0.1 %)  # reference of converter and sensor',
 			'N_bits = 12  # resolution of the converter',
-			'R_ser = 10 kohm  # series resistor, 0.1 %',
+			'R_ser = tolerance(10 kohm, 0.1 %)  # series resistor',
 			'gain = 8',
 			'V_cold = gain * divider(V_ref, R_ser, R_cold)',
 			'V_hot = gain * divider(V_ref, R_ser, R_hot)',
@@ -48,9 +48,9 @@ export const waterTemperature: Sheet = {
 		calculation(
 			'I_hot = V_ref / (R_ser + R_hot)  # current through the sensor, warm end',
 			'P_heat = I_hot^2 * R_hot',
-			'k_diss = 2.5 mW/K  # dissipation of the probe in still water',
+			'k_diss = tolerance(2.5 mW/K, 20 %)  # dissipation of the probe in still water',
 			'T_heat = P_heat / k_diss  # self-heating',
-			'R_lead = 0.34 ohm  # 4 m of cable, both wires',
+			'R_lead = tolerance(0.34 ohm, 10 %)  # 4 m of cable, both wires',
 			'T_lead = R_lead / (R_hot - R_cold) * T_span  # the same as temperature',
 		),
 		requirement(
