@@ -24,6 +24,8 @@ const { formula } = fc.letrec<{ formula: string }>((tie) => ({
 		fc.tuple(fc.constantFrom('f1', 'f2'), tie('formula')).map(([f, x]) => `${f}(${x})`),
 		fc.tuple(name, tie('formula'), tie('formula')).map(([c, a, b]) => `(${c} > 1 V ? ${a} : ${b})`),
 		name.map((x) => `uncertainty(${x})`),
+		tie('formula').map((x) => `line1(${x})`),
+		fc.constant('mean(volts)'),
 	),
 }));
 const line = fc.oneof(
@@ -84,6 +86,15 @@ function cellsOf(source: string[], requirements: string[]): Cell[] {
 		{ id: 'q', kind: 'requirement', source: requirements.join('\n') },
 		{ id: 't', kind: 'text', source: 'The range is {{V1}} at {{R1: ohm}}.' },
 		{ id: 'b', kind: 'calculation', source: source.slice(half).join('\n') },
+		{
+			id: 'r',
+			kind: 'readings',
+			columns: [
+				{ name: 'codes', unit: '1', values: [1, 2, 3, source.length] },
+				{ name: 'volts', unit: 'V', values: [0.1, 0.22, 0.3, 0.4 + requirements.length] },
+			],
+		},
+		{ id: 'c', kind: 'curve', name: 'line1', x: 'codes', y: 'volts', degree: 1 },
 	];
 }
 

@@ -1,3 +1,4 @@
+import { curveResults } from './curve-results';
 import { budgetRows, trialsOf, worstCaseOf } from './details';
 import { engineVersion } from './engine';
 import { readFigures } from './figures';
@@ -5,7 +6,7 @@ import { Memory } from './memory';
 import { Note } from './note';
 import { readLines, type NoteLine, type Watch } from './note-lines';
 import { judge } from './requirements';
-import type { Cell, Evaluation, Fault, Options, Quantity } from './results';
+import type { Cell, CurveCell, Evaluation, Fault, Options, Quantity } from './results';
 import { Bounds } from './steps';
 import type { Trouble } from './trouble';
 import { stepOf } from './uncertainty';
@@ -37,12 +38,16 @@ export class Calculator {
 		];
 		const quantities = worked.quantities();
 		addDetails(quantities, note, options, watch);
+		const compare =
+			options.detail === 'all' ? (cell: CurveCell) => note.columnsOf(cell) : undefined;
+		const curves = curveResults(note.curves, compare);
 		return {
 			engine: engineVersion,
 			quantities,
 			lines: worked.lines(),
 			requirements,
 			figures: quoted.figures,
+			...(note.curves.size > 0 && { curves }),
 			errors: inSheetOrder(errors, cells),
 		};
 	}

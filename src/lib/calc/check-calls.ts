@@ -19,12 +19,12 @@ export function checkCall(node: NodeOf<'call'>, types: Types, check: Check): Typ
 		type: check(argument, types),
 		...(argument.kind === 'unit' && { unit: argument.unit }),
 	}));
-	const known = functions.get(node.name);
+	const own = types.function(node.name);
+	const known = functions.get(node.name) ?? own?.curve?.fn;
 	if (known) {
 		expectCount(node, known.count, known.signature);
 		return known.type(args);
 	}
-	const own = types.function(node.name);
 	if (!own?.body) return unknown;
 	const { parameters, body } = own;
 	const signature = `${node.typed}(${parameters.map((p) => p.typed).join(', ')})`;

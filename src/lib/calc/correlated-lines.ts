@@ -24,9 +24,15 @@ interface Sources {
 }
 
 /** Puts what lines say of correlations together. A line that cannot be true beside the ones before it is a fault. */
-export function stateCorrelations(lines: readonly NoteLine[], sources: Sources): Correlations {
-	const pairs: Correlation[] = [];
+export function stateCorrelations(
+	lines: readonly NoteLine[],
+	sources: Sources,
+	known: readonly Correlation[],
+): Correlations {
+	const pairs = [...known];
 	let stated = uncorrelated;
+	const before = correlate(pairs);
+	if (!('fault' in before)) stated = before;
 	for (const line of lines) {
 		const { body } = line;
 		if (!isCall(body)) continue;

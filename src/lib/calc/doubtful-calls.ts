@@ -56,6 +56,7 @@ export class DoubtfulFunctions {
 		const seen = new Set([name]);
 		for (const each of seen) {
 			const line = this.definition(each);
+			if (line?.curve && line.curve.deviations.length > 0) return true;
 			if (!line?.body || line.kind !== 'function') continue;
 			if (statesInput(line.body)) return true;
 			for (const reference of line.references) {

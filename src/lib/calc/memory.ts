@@ -1,4 +1,5 @@
 import type { Correlations } from './doubt/correlations';
+import type { Fitted } from './given-cells';
 import type { Input } from './inputs';
 import type { Node } from './language/nodes';
 import type { Quantity, Readout, Requirement, WorkedLine } from './results';
@@ -39,20 +40,37 @@ export interface Shown {
 	requirement?: Requirement;
 }
 
+/** A fitted curve whose deviations are inputs of the note, and the number of the first. */
+export interface NumberedCurve {
+	readonly fitted: Fitted;
+	readonly firstInput: number;
+}
+
 /** What an evaluation leaves for the next one of the same note, so that an edit computes only what depends on it. */
 export class Memory {
 	#lines = new Map<Node, Remembered>();
 	#names = new Map<string, Remembered>();
 	#functions = new Map<Node, { uses: readonly unknown[]; token: object }>();
+	#curves = new Map<string, NumberedCurve>();
 	#correlations: { uses: readonly unknown[]; stated: Correlations } | undefined;
-	#earlier = { lines: this.#lines, names: this.#names, functions: this.#functions };
+	#earlier = this.#now();
 
 	/** Begins an evaluation: what it does not use again is forgotten. */
 	begin(): void {
-		this.#earlier = { lines: this.#lines, names: this.#names, functions: this.#functions };
+		this.#earlier = this.#now();
 		this.#lines = new Map();
 		this.#names = new Map();
 		this.#functions = new Map();
+		this.#curves = new Map();
+	}
+
+	#now() {
+		return {
+			lines: this.#lines,
+			names: this.#names,
+			functions: this.#functions,
+			curves: this.#curves,
+		};
 	}
 
 	/** A line's result, where it was computed from the same. */
@@ -63,8 +81,8 @@ export class Memory {
 		return known;
 	}
 
-	keep(body: Node, name: string | undefined, remembered: Remembered): void {
-		this.#lines.set(body, remembered);
+	keep(body: Node | undefined, name: string | undefined, remembered: Remembered): void {
+		if (body) this.#lines.set(body, remembered);
 		if (name !== undefined) this.#names.set(name, remembered);
 	}
 
@@ -83,6 +101,14 @@ export class Memory {
 		if (!this.#correlations || !alike(this.#correlations.uses, uses))
 			this.#correlations = { uses, stated };
 		return this.#correlations.stated;
+	}
+
+	/** A curve as it was fitted, where it was fitted through the same readings. */
+	curve(key: string, firstInput: number, make: () => NumberedCurve): NumberedCurve {
+		const known = this.#earlier.curves.get(key);
+		const curve = known?.firstInput === firstInput ? known : make();
+		this.#curves.set(key, curve);
+		return curve;
 	}
 
 	/** Stands for a function of the note as long as it and what it uses are the same. */

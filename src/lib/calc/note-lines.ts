@@ -1,5 +1,6 @@
 import { bounds } from './bounds';
 import { sourceOf } from './cells';
+import { givenLines, type Given } from './given-cells';
 import { parseLine, unreadLine, type ParsedLine } from './language/parse-line';
 import type { Cell, Fault } from './results';
 import { Trouble } from './trouble';
@@ -29,6 +30,8 @@ export interface NoteLine extends ParsedLine {
 	line: number;
 	text: string;
 	requirement: boolean;
+	/** What it stands for, where its cell holds no formulas. */
+	given?: Given;
 }
 
 /** Reads calculation and requirement cells into lines. Faults say what was left out because it is too much. */
@@ -66,6 +69,7 @@ export function readLines(
 			return;
 		}
 		readable.add(cell.id);
+		if (cell.kind === 'readings' || cell.kind === 'curve') lines.push(...givenLines(cell, i + 1));
 		rows.forEach((text, row) => {
 			const place = { cell: cell.id, terminal: i + 1, line: row + 1, text };
 			watch.at?.(cell.id, row + 1);

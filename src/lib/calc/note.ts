@@ -3,19 +3,21 @@ import { check } from './check';
 import { isStatement, linesOfStatements, stateCorrelations } from './correlated-lines';
 import { circleTrouble, define, doubleReadings } from './definitions';
 import { uncertaintyOf, type Doubts } from './doubt/budget';
-import { uncorrelated, type Correlations } from './doubt/correlations';
+import { uncorrelated, type Correlation, type Correlations } from './doubt/correlations';
 import { TapeBuilder } from './doubt/tape';
 import { DoubtfulFunctions, readsUncertainty } from './doubtful-calls';
 import { Inputs, type Input } from './inputs';
 import { canonical } from './language/characters';
 import type { Node, Place } from './language/nodes';
-import type { Memory, Computed, Remembered } from './memory';
+import type { Column, CurveCell } from './results';
+import { columnValue, fitCurve, type Given } from './given-cells';
+import type { Memory, Computed, NumberedCurve, Remembered } from './memory';
 import { Meter } from './meter';
 import { whereabouts, type NoteLine, type Watch } from './note-lines';
 import { order } from './order';
 import { run, type Scope } from './run';
 import { expectShowable } from './showable';
-import { Bounds, stepsOf, type Step } from './steps';
+import { Bounds, inputStep, stepsOf, type Step } from './steps';
 import { Tracer, type Doubt, type Surroundings } from './trace';
 import { isExact, nodesOf, shapeOf } from './traced';
 import { Trouble } from './trouble';
@@ -41,6 +43,8 @@ export class Note {
 	/** For each waiting line the one whose error it waits for. `V = A` and `A = V` wait for one another. */
 	readonly #awaited = new Map<NoteLine, NoteLine>();
 	readonly #functionTokens = new Map<NoteLine, object>();
+	readonly curves = new Map<CurveCell, NumberedCurve>();
+	readonly #pairs: Correlation[] = [];
 	readonly #doubtfulFunctions: DoubtfulFunctions;
 	#correlations: Correlations = uncorrelated;
 
@@ -76,14 +80,18 @@ export class Note {
 	/** Lines in an order in which each comes behind those it uses; what the note says of correlations is one of them. */
 	#evaluateAll(): void {
 		const stating = linesOfStatements(this.lines);
-		const names = [...this.#definitions.keys(), ...(stating.length > 0 ? [statements] : [])];
+		const curves = this.lines.filter((line) => line.given?.kind === 'curve');
+		const correlated = stating.length > 0 || curves.length > 0;
+		const names = [...this.#definitions.keys(), ...(correlated ? [statements] : [])];
 		const uses = new Map(
 			[...this.#definitions].map(([name, line]) => {
-				const asks = line.body && stating.length > 0 && readsUncertainty(line.body);
+				const asks = line.body && correlated && readsUncertainty(line.body);
 				return [name, [...this.#usedBy(line), ...(asks ? [statements] : [])]];
 			}),
 		);
-		uses.set(statements, [...new Set(stating.flatMap((line) => this.#usedBy(line)))]);
+		const before = stating.flatMap((line) => this.#usedBy(line));
+		const fitted = curves.flatMap((line) => line.defined?.name ?? []);
+		uses.set(statements, [...new Set([...before, ...fitted])]);
 		const { sorted, circles } = order(names, (name) => uses.get(name) ?? []);
 		for (const [name, circle] of circles) {
 			const trouble = circleTrouble(circle, this.#definitions);
@@ -104,12 +112,17 @@ export class Note {
 		for (const line of lines) this.#evaluate(line);
 		const stated = lines.filter((line) => !this.#broken(line) && line.body);
 		const used = stated.flatMap((line) => [line.body, ...this.#usesOf(line)]);
-		const correlations = stateCorrelations(stated, {
-			computed: (name) => this.computed.get(this.#definitions.get(name)!),
-			coefficient: (node) => Number(run(node, this.#scope)),
-			fail: (line, trouble) => this.fail(line, trouble),
-		});
-		this.#correlations = this.memory.correlations(used, correlations);
+		const correlations = stateCorrelations(
+			stated,
+			{
+				computed: (name) => this.computed.get(this.#definitions.get(name)!),
+				coefficient: (node) => Number(run(node, this.#scope)),
+				fail: (line, trouble) => this.fail(line, trouble),
+			},
+			this.#pairs,
+		);
+		const curves = [...this.curves.values()];
+		this.#correlations = this.memory.correlations([...used, ...curves], correlations);
 	}
 
 	/** The line that defines a name, the first where there are several. */
@@ -196,6 +209,7 @@ export class Note {
 
 	#evaluate(line: NoteLine, onCircle = false): void {
 		if (line.kind === 'blank' || line.kind === 'comment') return;
+		if (line.given) return this.#give(line, line.given);
 		if (line.trouble) {
 			const unit = line.trouble.how.unitName;
 			const meant = unit === undefined ? undefined : this.#definitions.get(unit);
@@ -236,7 +250,65 @@ export class Note {
 		}
 	}
 
-	#keep(line: NoteLine, body: Node, remembered: Remembered): void {
+	/** Takes what a cell without formulas gives: the values of a column, or a curve. */
+	#give(line: NoteLine, given: Given): void {
+		if (line.trouble) this.fail(line, line.trouble);
+		if (this.#broken(line)) return;
+		try {
+			const [waiting] = this.#unresolved(line);
+			if (waiting) throw waiting;
+			if (given.kind === 'curve') return this.#takeCurve(line, given);
+			const firstInput = this.inputs.next;
+			const computed = { ...columnValue(given), inputs: [], firstInput };
+			this.#keep(line, undefined, { uses: [], firstInput, spent: 0, computed });
+		} catch (error) {
+			if (!(error instanceof Trouble)) throw error;
+			this.fail(line, error);
+		}
+	}
+
+	#takeCurve(line: NoteLine, { cell, inverse }: Extract<Given, { kind: 'curve' }>): void {
+		let curve = this.curves.get(cell);
+		if (!curve) {
+			const columns = this.columnsOf(cell);
+			const firstInput = this.inputs.next;
+			curve = this.memory.curve(JSON.stringify([cell, columns]), firstInput, () => ({
+				fitted: fitCurve(cell, columns),
+				firstInput,
+			}));
+			const { inputs, functions } = curve.fitted;
+			this.inputs.add(inputs);
+			// They rest on one scatter: without correlation, but with its degrees of freedom together.
+			for (let i = 1; i < inputs.length; i++)
+				this.#pairs.push({ first: firstInput, second: firstInput + i, coefficient: 0 });
+			if (functions.forwards.deviations.length === 0) {
+				const steps = inputs.map((_, i) => inputStep(firstInput + i, this.inputs));
+				functions.forwards.deviations = steps;
+				functions.backwards.deviations = steps;
+			}
+			this.curves.set(cell, curve);
+		}
+		const { forwards, backwards } = curve.fitted.functions;
+		line.curve = inverse ? backwards : forwards;
+		this.#functionTokens.set(line, line.curve);
+	}
+
+	/** The columns that a fitted curve goes through. */
+	columnsOf(cell: CurveCell): { x: Column; y: Column } {
+		return { x: this.#column(cell, cell.x), y: this.#column(cell, cell.y) };
+	}
+
+	/** The column of readings that a curve names. Throws Trouble. */
+	#column(cell: CurveCell, typed: string): Column {
+		const line = this.#definitions.get(canonical(typed));
+		if (line?.given?.kind === 'column') return line.given.column;
+		const at = { from: 0, to: cell.name.length };
+		throw new Trouble('value', at, `\`${typed}\` is not a column of readings.`, {
+			mend: 'Name two columns of a readings cell.',
+		});
+	}
+
+	#keep(line: NoteLine, body: Node | undefined, remembered: Remembered): void {
 		const { computed } = remembered;
 		// Remembered inputs take the numbers that they had: recall has seen to it that these are the next ones.
 		if (computed.inputs.length > 0 && computed.firstInput === this.inputs.next)

@@ -190,6 +190,41 @@ export interface Requirement {
 	probability: number;
 }
 
+/** A fitted curve. Numbers are in the units of its columns. */
+export interface Curve {
+	cell: string;
+	degree: number;
+	weighted: boolean;
+	points: number;
+	xUnit: string;
+	yUnit: string;
+	/** Of rising powers of x, with their standard uncertainties and covariance. */
+	coefficients: { value: number; standardUncertainty: number; unit: string }[];
+	covariance: number[][];
+	/** null without degrees of freedom. */
+	residualStandardDeviation: number | null;
+	/** null for a constant y. */
+	rSquared: number | null;
+	degreesOfFreedom: number;
+	/** y less the curve, reading by reading. */
+	residuals: number[];
+	range: { lower: number; upper: number };
+	/** Whether it has an inverse on its range. */
+	monotonic: boolean;
+	/** Curves of other degrees through the same readings, where details are asked for. */
+	comparison?: {
+		degrees: {
+			degree: number;
+			residualStandardDeviation: number | null;
+			fStatistic: number | null;
+			pValue: number | null;
+			leaveOneOut: number | null;
+		}[];
+		leastLeaveOneOut: number | null;
+		lastSignificant: number | null;
+	};
+}
+
 /** A `{{name}}` of a text cell; `from` and `to` are offsets in the cell's source. */
 export interface Figure {
 	cell: string;
@@ -237,5 +272,7 @@ export interface Evaluation {
 	lines: WorkedLine[];
 	requirements: Requirement[];
 	figures: Figure[];
+	/** By the name of the curve; absent where the note has none. */
+	curves?: Record<string, Curve>;
 	errors: Fault[];
 }

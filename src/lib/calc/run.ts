@@ -163,7 +163,8 @@ function runArray(node: NodeOf<'array'>, scope: Scope): Grid {
 }
 
 function runCall(node: NodeOf<'call'>, scope: Scope): Value {
-	const known = functions.get(node.name);
+	const own = scope.function(node.name);
+	const known = functions.get(node.name) ?? own?.curve?.fn;
 	if (known?.reads) return readDoubt(node, known.reads, scope);
 	const args = node.args.map((argument) => run(argument, scope));
 	if (known) {
@@ -177,7 +178,6 @@ function runCall(node: NodeOf<'call'>, scope: Scope): Value {
 			`\`${node.typed}\``,
 		);
 	}
-	const own = scope.function(node.name);
 	if (!own?.body) throw new Trouble('waits', node, `Waits for \`${node.typed}\`.`);
 	if (scope.depth >= bounds.calls || scope.levels > bounds.levels)
 		throw new Trouble(

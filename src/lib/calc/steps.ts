@@ -3,7 +3,7 @@ import { halfWidth } from './doubt/distributions/shapes';
 import { enclose, type Enclosure } from './doubt/enclose';
 import type { Model } from './doubt/model';
 import { propagate, type Propagated } from './doubt/propagate';
-import type { Node, Tape, TapeBuilder } from './doubt/tape';
+import { TapeBuilder, type Node, type Tape } from './doubt/tape';
 import { worstCase, type WorstCase } from './doubt/worst-case';
 import type { Inputs } from './inputs';
 
@@ -32,6 +32,13 @@ export function stepsOf(
 		const propagated = propagate(tape, before, numbers, inputs.uncertainties);
 		return { tape, args, inputs: numbers, propagated };
 	});
+}
+
+/** The deviation of an input as a number of its own. */
+export function inputStep(number: number, inputs: Inputs): Step {
+	const builder = new TapeBuilder();
+	const step = stepsOf(builder, [builder.input(0)], [], number, inputs, 1);
+	return step[0]!;
 }
 
 /** The lines that some numbers need, each behind those it uses. */

@@ -1,4 +1,5 @@
 import { bounds } from './bounds';
+import type { CurveFunction } from './curve-function';
 import { boundTypes } from './check-calls';
 import type { Distribution } from './doubt/distributions/distribution';
 import { Refusal, type CalcFunction } from './functions/function';
@@ -8,7 +9,7 @@ import type { NodeOf } from './language/nodes';
 import { Frame as Bound, run, tell } from './run';
 import type { Frame, Tracer } from './trace';
 import { join } from './trace-operators';
-import { isExact, nodesOf, shapeOf, type Traced } from './traced';
+import { isExact, mapNodes, nodesOf, shapeOf, type Traced } from './traced';
 import { Trouble } from './trouble';
 import { isGrid, map, type Grid, type Value } from './values';
 
@@ -31,6 +32,7 @@ export function traceCall(tracer: Tracer, node: NodeOf<'call'>, frame: Frame): T
 function traceOwn(tracer: Tracer, node: NodeOf<'call'>, frame: Frame): Traced {
 	const { scope } = frame;
 	const own = scope.function(node.name);
+	if (own?.curve) return traceCurve(tracer, own.curve, node, frame);
 	if (!own?.body) throw new Trouble('waits', node, `Waits for \`${node.typed}\`.`);
 	if (scope.depth >= bounds.calls || scope.levels > bounds.levels)
 		throw new Trouble(
@@ -60,6 +62,19 @@ function traceOwn(tracer: Tracer, node: NodeOf<'call'>, frame: Frame): Traced {
 			throw new Trouble(error.code, node, error.message, error.how);
 		throw error;
 	}
+}
+
+/** A call of a curve: the deviations of its fit are operands beside the value. */
+function traceCurve(
+	tracer: Tracer,
+	{ external, deviations }: CurveFunction,
+	node: NodeOf<'call'>,
+	frame: Frame,
+): Traced {
+	const [argument] = node.args;
+	const x = tracer.trace(argument!, frame);
+	const parts = deviations.map((step) => tracer.argument(step));
+	return mapNodes(tracer.tape, x, (at) => tracer.tape.call(external, [at, ...parts]));
 }
 
 /** A call that states an input: its centre, and a deviation that is zero at the estimate. */

@@ -38,7 +38,9 @@ export class Worked {
 	}
 
 	lines(): WorkedLine[] {
-		return this.note.lines.filter((line) => !line.requirement).map((line) => this.#line(line));
+		return this.note.lines
+			.filter((line) => !line.requirement && !line.given)
+			.map((line) => this.#line(line));
 	}
 
 	#quantity(line: NoteLine, remembered: Remembered): Quantity {

@@ -12,12 +12,11 @@ export function answered<T>(answer: T | TableRefusal, names: Names = {}): T {
 
 /** What a table's refusal says, with the name that the function's signature gives the value. */
 export function sentence({ message, argument }: TableRefusal, names: Names = {}): string {
-	if (argument === undefined) return `${message}.`;
+	const printed = message.replace(/(?<= )-(?=\d)/g, '\u2212');
+	if (argument === undefined) return `${printed}.`;
 	const name = `\`${names[argument] ?? argument}\``;
-	const named = message.startsWith(`${argument} `)
-		? name + message.slice(argument.length)
-		: message.replace(`members of ${argument} `, `members of ${name} `);
-	return `${named}.`;
+	if (printed.startsWith(`${argument} `)) return `${name}${printed.slice(argument.length)}.`;
+	return `${printed.replace(`members of ${argument} `, `members of ${name} `)}.`;
 }
 
 /** The names of the values in a signature, `lsb(Vref, bits)`, in their order. */

@@ -35,7 +35,7 @@ describe('A function that a table answers', () => {
 	});
 
 	it.each([
-		['pt(900 degC, 100 ohm)', '`T` is outside -200 to 850 °C.'],
+		['pt(900 degC, 100 ohm)', '`T` is outside −200 to 850 °C.'],
 		['pt(20 degC, 0 ohm)', '`R0` must be above zero.'],
 		['ptTemperature(1 ohm, 100 ohm)', '`R` is outside 18.5151 to 390.486 Ω.'],
 		['settling(0 ohm, 1 nF, 12)', '`Rs` must be above zero.'],
@@ -55,10 +55,10 @@ describe('A function that a table answers', () => {
 			'thermocouple("constructor", 1 K)',
 			'There is no table for thermocouples of type constructor.',
 		],
-		['thermocouple("K", 1400 degC)', '`T` is outside -270 to 1372 °C.'],
-		['thermocouple("K", 20 degC, 1400 degC)', '`Tref` is outside -270 to 1372 °C.'],
-		['thermocoupleTemperature("K", 1 V)', 'A thermocouple of type K gives -6.458 to 54.886 mV.'],
-		['thermocoupleTemperature("K", 1 mV, -1 K)', '`Tref` is outside -270 to 1372 °C.'],
+		['thermocouple("K", 1400 degC)', '`T` is outside −270 to 1372 °C.'],
+		['thermocouple("K", 20 degC, 1400 degC)', '`Tref` is outside −270 to 1372 °C.'],
+		['thermocoupleTemperature("K", 1 V)', 'A thermocouple of type K gives −6.458 to 54.886 mV.'],
+		['thermocoupleTemperature("K", 1 mV, -1 K)', '`Tref` is outside −270 to 1372 °C.'],
 		['ntcBeta(1 K, 1 kohm, 298 K, 1e6 K)', 'The resistance is too large for a number.'],
 		[
 			'ntcBetaTemperature(1e-9 ohm, 1 kohm, 298 K, 100 K)',

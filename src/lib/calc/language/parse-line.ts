@@ -1,5 +1,6 @@
 import type * as M from 'mathjs';
 import { bounds } from '../bounds';
+import type { CurveFunction } from '../curve-function';
 import { Trouble } from '../trouble';
 import type { Unit } from '../units/unit';
 import { asTyped, canonical, prepared } from './characters';
@@ -28,6 +29,8 @@ export interface ParsedLine {
 	unitsBehindNumbers: UnitBehindNumber[];
 	description?: string;
 	trouble?: Trouble;
+	/** A function that is no formula but a curve. */
+	curve?: CurveFunction;
 }
 
 /** Characters of remembered lines. A parsed line takes some hundred bytes per character. */
