@@ -16,7 +16,7 @@ export const findDivider: CalcFunction = {
 	source: 'IEC 60063:2015 for the parts; every pair is compared',
 	count: [3, 6],
 	ofEstimate: true,
-	cost: () => 5_000,
+	cost: () => 20_000,
 	type: ([input, output, series, source, current, load]) => {
 		expectUnit(input, 'V', 'The input');
 		expectUnit(output, 'V', 'The output');

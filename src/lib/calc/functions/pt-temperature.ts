@@ -12,7 +12,7 @@ export const ptTemperature = tabled({
 	],
 	source: 'IEC 60751:2022',
 	count: [2, 2],
-	effort: () => 20,
+	effort: () => 5,
 	type: ([resistance, zero]) => {
 		expectUnit(resistance, 'ohm', 'The resistance');
 		expectUnit(zero, 'ohm', 'The resistance at 0 °C');

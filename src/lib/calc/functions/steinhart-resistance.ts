@@ -15,7 +15,7 @@ export const steinhartResistance = tabled({
 	],
 	source: 'Steinhart and Hart, Deep-Sea Research 15 (1968), 497–503, solved for R',
 	count: [4, 4],
-	effort: () => 20,
+	effort: () => 10,
 	type: ([temperature, ...coefficients]) => {
 		expectTemperature(temperature, 'The temperature');
 		expectCoefficients(coefficients);

@@ -145,6 +145,13 @@ describe('A function that a table answers', () => {
 		}
 	});
 
+	it('takes ten thousand readings at once', () => {
+		expect(shown('max(thermocoupleTemperature("K", (1:10000) * 5 uV))')).toBe(
+			shown('thermocoupleTemperature("K", 50 mV)'),
+		);
+		expect(shown('count(pt((1:10000) * 0.01 K + 200 K, 100 ohm))')).toBe('10 000');
+	});
+
 	it('counts what a search costs', () => {
 		const { errors } = compute(
 			'f(n) = n < 1 ? 0 ohm : findDivider(15 V, 3 V, E192)[1] + f(n - 1)\nf(80)',

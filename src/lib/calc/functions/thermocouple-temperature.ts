@@ -18,7 +18,7 @@ export const thermocoupleTemperature = tabled({
 	source: 'NIST Monograph 175 (ITS-90), solved for the temperature',
 	count: [2, 3],
 	listAt: 1,
-	effort: () => 150,
+	effort: () => 20,
 	names: { e: 'V' },
 	type: ([type, voltage, reference]) => {
 		expectText(type, 'The type of a thermocouple', 'K');

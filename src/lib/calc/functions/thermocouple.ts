@@ -18,7 +18,7 @@ export const thermocouple = tabled({
 	source: 'NIST Monograph 175 (ITS-90), as IEC 60584-1 adopts it',
 	count: [2, 3],
 	listAt: 1,
-	effort: () => 15,
+	effort: () => 3,
 	type: ([type, temperature, reference]) => {
 		expectText(type, 'The type of a thermocouple', 'K');
 		expectTemperature(temperature, 'The temperature');
