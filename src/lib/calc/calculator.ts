@@ -2,6 +2,7 @@ import { curveResults } from './curve-results';
 import { budgetRows, trialsOf, worstCaseOf } from './details';
 import { engineVersion } from './engine';
 import { readFigures } from './figures';
+import { addFormulas } from './formulas';
 import { Memory } from './memory';
 import { Note } from './note';
 import { readLines, type NoteLine, type Watch } from './note-lines';
@@ -68,6 +69,7 @@ function addDetails(
 		const quantity = Object.hasOwn(quantities, name) ? quantities[name] : undefined;
 		return step && quantity ? [{ name, computed, step, quantity }] : [];
 	});
+	addFormulas(quantities, names, note);
 	const steps = wanted.map(({ step }) => step);
 	const bounds = new Bounds(steps, note.inputs, options.normalInterval);
 	for (const { name, computed, step, quantity } of wanted) {

@@ -99,7 +99,16 @@ export interface Quantity {
 	worstCase?: WorstCase;
 	/** The greatest contribution first. */
 	budget?: BudgetRow[];
+	formula?: FormulaTex;
 	monteCarlo?: MonteCarlo;
+}
+
+/** A definition as TeX. */
+export interface FormulaTex {
+	/** `name = formula`, names as symbols. */
+	symbols: string;
+	/** The formula with the values of its names put in; absent where it has no names or is very long. */
+	figures?: string;
 }
 
 /** Lowest and highest value over the intervals of the inputs, in the quantity's unit. */
