@@ -7,7 +7,7 @@ import {
 	type ViewUpdate,
 } from '@codemirror/view';
 import { splitLine, type LineParts } from '$lib/components/lines';
-import { typeset } from '$lib/components/symbol';
+import { typeset } from '$lib/calc/symbol';
 
 /** Marks that set the name of a line apart, and the others that stand within it. */
 interface Marks {
