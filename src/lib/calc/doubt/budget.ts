@@ -48,13 +48,14 @@ export const notableChange = 0.01;
 export function uncertaintyOf(line: Propagated, doubts: Doubts, coverage: number): Uncertainty {
 	const { support, gradient } = line;
 	const correlations = doubts.correlations ?? uncorrelated;
+	const alone = correlations.groups.length === 0;
 	let variance = 0;
 	let spread = 0;
 	let groups: Map<object, { variance: number; dof: number }> | undefined;
 	for (let i = 0; i < support.length; i++) {
 		const input = support[i]!;
 		const part = gradient[i]! * doubts.uncertainties[input]!;
-		const group = correlations.groupOf.get(input);
+		const group = alone ? undefined : correlations.groupOf.get(input);
 		if (group) {
 			groups ??= new Map();
 			const known = groups.get(group) ?? { variance: 0, dof: Infinity };
@@ -86,19 +87,33 @@ export function uncertaintyOf(line: Propagated, doubts: Doubts, coverage: number
 /** Contributions of all inputs a quantity depends on, those without effect too, the greatest first. */
 export function budgetOf(line: Propagated, doubts: Doubts): Contribution[] {
 	const { support, gradient } = line;
-	const rows = Array.from(support, (input, i) => {
-		const sensitivity = gradient[i]!;
-		const part = sensitivity * doubts.uncertainties[input]!;
-		return {
-			input,
-			sensitivity,
-			contribution: Math.abs(part),
-			share: part * correlated(line, doubts, i),
+	const n = support.length;
+	const parts = new Float64Array(n);
+	const shares = new Float64Array(n);
+	const order = new Int32Array(n);
+	const alone = (doubts.correlations ?? uncorrelated).groups.length === 0;
+	let variance = 0;
+	for (let i = 0; i < n; i++) {
+		const part = gradient[i]! * doubts.uncertainties[support[i]!]!;
+		parts[i] = Math.abs(part);
+		shares[i] = part * (alone ? part : correlated(line, doubts, i));
+		variance += shares[i]!;
+		// Put in its place among those before it: they are few, and often nearly sorted already.
+		let to = i;
+		for (; to > 0 && parts[order[to - 1]!]! < parts[i]!; to--) order[to] = order[to - 1]!;
+		order[to] = i;
+	}
+	const rows: Contribution[] = new Array<Contribution>(n);
+	for (let k = 0; k < n; k++) {
+		const i = order[k]!;
+		rows[k] = {
+			input: support[i]!,
+			sensitivity: gradient[i]!,
+			contribution: parts[i]!,
+			share: variance > 0 ? shares[i]! / variance : 0,
 		};
-	});
-	const variance = rows.reduce((sum, row) => sum + row.share, 0);
-	for (const row of rows) row.share = variance > 0 ? row.share / variance : 0;
-	return rows.sort((x, y) => y.contribution - x.contribution || x.input - y.input);
+	}
+	return rows;
 }
 
 /**

@@ -34,6 +34,22 @@ export function partials(
 		else if (op === Op.input) byInput[x]! += weight;
 		else if (op >= Op.add && op < Op.select) {
 			const y = b[i]!;
+			if (op === Op.mul) {
+				weights[x]! += weight * nodes[y]!;
+				weights[y]! += weight * nodes[x]!;
+				continue;
+			}
+			if (op === Op.add || op === Op.sub) {
+				weights[x]! += weight;
+				weights[y]! += op === Op.add ? weight : -weight;
+				continue;
+			}
+			if (op === Op.div) {
+				const share = weight / nodes[y]!;
+				weights[x]! += share;
+				weights[y]! -= share * nodes[i]!;
+				continue;
+			}
 			binarySlopes(op, nodes[x]!, nodes[y]!, nodes[i]!, d);
 			weights[x]! += weight * d[0]!;
 			weights[y]! += weight * d[1]!;

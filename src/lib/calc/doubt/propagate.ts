@@ -40,69 +40,111 @@ export function propagate(
 	uncertainties: ArrayLike<number>,
 	secondOrder = true,
 ): Propagated {
-	const values = new Float64Array(args.length);
+	const needed = Math.max(args.length, inputs.length, tape.arguments, tape.inputs);
+	if (values.length < needed)
+		[values, byArgument, byInput] = [0, 1, 2].map(() => new Float64Array(2 * needed)) as Scratch;
 	for (let k = 0; k < args.length; k++) values[k] = args[k]!.value;
 	const nodes = nodesFor(tape);
 	const value = evaluateTape(tape, values, nodes);
 	const support = supportOf(args, inputs);
 	if (support.length === 0) return exact(value);
 
-	const byArgument = new Float64Array(Math.max(args.length, tape.arguments));
-	const byInput = new Float64Array(Math.max(inputs.length, tape.inputs));
 	partials(tape, nodes, byArgument, byInput);
-	let remarks = remarksOf(
-		tape,
-		nodes,
-		args.map((arg) => arg.support.length > 0),
-	);
+	let remarks = tape.special
+		? remarksOf(
+				tape,
+				nodes,
+				args.map((arg) => arg.support.length > 0),
+			)
+		: 0;
 	const gradient = new Float64Array(support.length);
-	const places = args.map((arg) => placesIn(support, arg.support));
 	for (let k = 0; k < args.length; k++) {
-		remarks |= args[k]!.remarks;
+		const arg = args[k]!;
+		remarks |= arg.remarks;
 		const slope = byArgument[k]!;
-		if (slope === 0) continue;
-		const inner = args[k]!.gradient;
-		const place = places[k]!;
-		for (let i = 0; i < inner.length; i++) gradient[place[i]!]! += slope * inner[i]!;
+		if (slope !== 0) addScaled(gradient, support, slope, arg);
 	}
-	const own = placesIn(support, inputs);
-	for (let k = 0; k < inputs.length; k++) gradient[own[k]!]! += byInput[k]!;
+	for (let k = 0; k < inputs.length; k++) gradient[placeOf(support, inputs[k]!, 0)]! += byInput[k]!;
 	const result: Propagated = { value, support, gradient, remarks };
-	if (secondOrder) {
-		const curvature = curvatureOf({
-			tape,
-			args,
-			places,
-			own,
-			support,
-			uncertainties,
-			byArgument,
-		});
-		if (curvature) result.curvature = curvature;
-	}
+	if (!secondOrder) return result;
+	const curvature = curvatureOf({
+		tape,
+		args,
+		places: args.map((arg) => placesIn(support, arg.support)),
+		own: placesIn(support, inputs),
+		support,
+		uncertainties,
+		byArgument,
+	});
+	if (curvature) result.curvature = curvature;
 	return result;
+}
+
+type Scratch = [Float64Array, Float64Array, Float64Array];
+
+/** Values of a line's arguments, and the slopes by them and by its inputs; nothing is kept in them. */
+let [values, byArgument, byInput] = [0, 1, 2].map(() => new Float64Array(32)) as Scratch;
+
+/** Adds a multiple of an argument's gradient to that of the line. */
+function addScaled(
+	into: Float64Array,
+	support: Int32Array,
+	slope: number,
+	{ gradient, support: inner }: Propagated,
+): void {
+	if (inner === support) for (let i = 0; i < inner.length; i++) into[i]! += slope * gradient[i]!;
+	else
+		for (let i = 0, to = 0; i < inner.length; i++) {
+			to = placeOf(support, inner[i]!, to);
+			into[to]! += slope * gradient[i]!;
+		}
 }
 
 /** All inputs that any argument or the line itself depends on, ascending, each once. */
 function supportOf(args: readonly Propagated[], inputs: ArrayLike<number>): Int32Array {
 	let union = args[0]?.support ?? nothing;
 	for (let k = 1; k < args.length; k++) union = merged(union, args[k]!.support);
-	return inputs.length > 0 ? merged(union, Int32Array.from(inputs).sort()) : union;
+	if (inputs.length === 0) return union;
+	const own = Int32Array.from(inputs);
+	return merged(union, own.length > 1 ? own.sort() : own);
 }
 
+/** Union of two ascending lists. The same array where nothing is added, so that later lines need not look for places. */
 function merged(x: Int32Array, y: Int32Array): Int32Array {
-	if (x === y || y.length === 0) return x;
-	if (x.length === 0) return y;
+	if (x === y || includesAll(x, y)) return x;
+	if (includesAll(y, x)) return y;
 	const all = new Int32Array(x.length + y.length);
 	let [i, j, n] = [0, 0, 0];
-	while (i < x.length || j < y.length) {
-		const [left, right] = [x[i] ?? Infinity, y[j] ?? Infinity];
-		all[n++] = Math.min(left, right);
+	while (i < x.length && j < y.length) {
+		const [left, right] = [x[i]!, y[j]!];
+		all[n++] = left < right ? left : right;
 		if (left <= right) i++;
 		if (right <= left) j++;
 	}
-	// Keeping the same array where nothing is added lets later lines skip the search for places.
-	return n === x.length ? x : n === y.length ? y : all.slice(0, n);
+	while (i < x.length) all[n++] = x[i++]!;
+	while (j < y.length) all[n++] = y[j++]!;
+	return all.slice(0, n);
+}
+
+function includesAll(x: Int32Array, y: Int32Array): boolean {
+	if (y.length > x.length) return false;
+	let from = 0;
+	for (let i = 0; i < y.length; i++) {
+		from = placeOf(x, y[i]!, from);
+		if (from >= x.length || x[from] !== y[i]) return false;
+	}
+	return true;
+}
+
+/** First place of an ascending list, from `from` on, whose member is not below a number. */
+function placeOf(list: Int32Array, number: number, from: number): number {
+	let [low, high] = [from, list.length];
+	while (low < high) {
+		const middle = (low + high) >> 1;
+		if (list[middle]! < number) low = middle + 1;
+		else high = middle;
+	}
+	return low;
 }
 
 const identity = Int32Array.from({ length: 512 }, (_, i) => i);
@@ -111,12 +153,6 @@ const identity = Int32Array.from({ length: 512 }, (_, i) => i);
 function placesIn(support: Int32Array, numbers: ArrayLike<number>): Int32Array {
 	if (numbers === support && support.length <= identity.length) return identity;
 	const places = new Int32Array(numbers.length);
-	let from = 0;
-	for (let i = 0; i < numbers.length; i++) {
-		const number = numbers[i]!;
-		if (i > 0 && number < numbers[i - 1]!) from = 0;
-		while (support[from]! < number) from++;
-		places[i] = from;
-	}
+	for (let i = 0; i < numbers.length; i++) places[i] = placeOf(support, numbers[i]!, 0);
 	return places;
 }

@@ -52,30 +52,37 @@ export class TapeBuilder {
 	#c: number[] = [];
 	#numbers: number[] = [];
 	#calls: Tape['calls'] = [];
-	#known = new Map<string, Node>();
+	/** Nodes by what they compute, so that nothing is computed twice. */
+	#known = new Map<number, Node>();
+	#constants = new Map<number, Node>();
 	#arguments = 0;
 	#inputs = 0;
 
 	constant(value: number): Node {
-		return this.#node(`=${Object.is(value, -0) ? '-0' : value}`, Op.constant, 0, 0, 0, value);
+		// A map takes 0 and −0 for the same.
+		const known = Object.is(value, -0) ? undefined : this.#constants.get(value);
+		if (known !== undefined) return known;
+		const node = this.#add(Op.constant, 0, 0, 0, value);
+		if (!Object.is(value, -0)) this.#constants.set(value, node);
+		return node;
 	}
 
 	/** The value of another line: argument `index` of this one. */
 	argument(index: number): Node {
 		this.#arguments = Math.max(this.#arguments, index + 1);
-		return this.#node(`a${index}`, Op.argument, index);
+		return this.#node(Op.argument, index);
 	}
 
 	/** The deviation of the line's own doubtful input `index`, to be added to its estimate. */
 	input(index: number): Node {
 		this.#inputs = Math.max(this.#inputs, index + 1);
-		return this.#node(`i${index}`, Op.input, index);
+		return this.#node(Op.input, index);
 	}
 
 	unary(name: Unary, x: Node): Node {
 		const op = Op[name];
 		if (this.#isConstant(x)) return this.constant(unaryValue(op, this.#numbers[x]!));
-		return this.#node(`${op} ${x}`, op, x);
+		return this.#node(op, x);
 	}
 
 	/** A power with a whole constant exponent becomes `powi` by itself. */
@@ -85,56 +92,68 @@ export class TapeBuilder {
 			return this.constant(binaryValue(op, this.#numbers[x]!, this.#numbers[y]!));
 		if (op === Op.powi && !this.#isConstant(y)) op = Op.pow;
 		if (op === Op.pow && this.#isConstant(y) && Number.isInteger(this.#numbers[y]!)) op = Op.powi;
-		return this.#node(`${op} ${x} ${y}`, op, x, y);
+		return this.#node(op, x, y);
 	}
 
 	/** `yes` where the condition is not zero, else `no`. */
 	select(condition: Node, yes: Node, no: Node): Node {
 		if (this.#isConstant(condition)) return this.#numbers[condition] !== 0 ? yes : no;
 		if (yes === no) return yes;
-		return this.#node(`${Op.select} ${condition} ${yes} ${no}`, Op.select, condition, yes, no);
+		return this.#add(Op.select, condition, yes, no);
 	}
 
 	call(external: External, operands: readonly Node[]): Node {
 		if (operands.every((operand) => this.#isConstant(operand)))
 			return this.constant(external.value(Float64Array.from(operands, (i) => this.#numbers[i]!)));
 		this.#calls.push({ external, operands: Int32Array.from(operands) });
-		return this.#node(undefined, Op.external, this.#calls.length - 1);
+		return this.#add(Op.external, this.#calls.length - 1);
 	}
 
 	/** Keeps what `out` needs; the builder can go on being used for other tapes. */
 	finish(out: Node): Tape {
 		const used = new Uint8Array(out + 1);
 		used[out] = 1;
-		for (let i = out; i >= 0; i--) if (used[i]) for (const j of this.#operands(i)) used[j] = 1;
+		let count = 0;
+		for (let i = out; i >= 0; i--) {
+			if (!used[i]) continue;
+			count++;
+			const operands = arity(this.#ops[i]!);
+			if (operands > 0) used[this.#a[i]!] = 1;
+			if (operands > 1) used[this.#b[i]!] = 1;
+			if (operands > 2) used[this.#c[i]!] = 1;
+			if (this.#ops[i] === Op.external)
+				for (const operand of this.#calls[this.#a[i]!]!.operands) used[operand] = 1;
+		}
 		const place = new Int32Array(out + 1);
-		const kept: Node[] = [];
-		for (let i = 0; i <= out; i++)
-			if (used[i]) {
-				place[i] = kept.length;
-				kept.push(i);
-			}
 		const calls: Tape['calls'] = [];
-		const first = (i: Node): number => {
+		const tape = {
+			ops: new Uint8Array(count),
+			a: new Int32Array(count),
+			b: new Int32Array(count),
+			c: new Int32Array(count),
+			numbers: new Float64Array(count),
+		};
+		let [linear, special] = [true, false];
+		for (let i = 0, k = 0; i <= out; i++) {
+			if (!used[i]) continue;
 			const op = this.#ops[i]!;
-			if (op !== Op.external) return arity(op) > 0 ? place[this.#a[i]!]! : this.#a[i]!;
-			const { external, operands } = this.#calls[this.#a[i]!]!;
-			calls.push({ external, operands: operands.map((operand) => place[operand]!) });
-			return calls.length - 1;
-		};
-		const ops = Uint8Array.from(kept, (i) => this.#ops[i]!);
-		return {
-			ops,
-			a: Int32Array.from(kept, first),
-			b: Int32Array.from(kept, (i) => (arity(this.#ops[i]!) > 1 ? place[this.#b[i]!]! : 0)),
-			c: Int32Array.from(kept, (i) => (arity(this.#ops[i]!) > 2 ? place[this.#c[i]!]! : 0)),
-			numbers: Float64Array.from(kept, (i) => this.#numbers[i]!),
-			calls,
-			arguments: this.#arguments,
-			inputs: this.#inputs,
-			linear: kept.every((i) => this.#isLinear(i)),
-			special: ops.some(isSpecial),
-		};
+			const operands = arity(op);
+			place[i] = k;
+			tape.ops[k] = op;
+			tape.numbers[k] = this.#numbers[i]!;
+			tape.a[k] = operands > 0 ? place[this.#a[i]!]! : this.#a[i]!;
+			if (operands > 1) tape.b[k] = place[this.#b[i]!]!;
+			if (operands > 2) tape.c[k] = place[this.#c[i]!]!;
+			if (op === Op.external) {
+				const call = this.#calls[this.#a[i]!]!;
+				const moved = call.operands.map((operand) => place[operand]!);
+				tape.a[k] = calls.push({ external: call.external, operands: moved }) - 1;
+			}
+			linear &&= this.#isLinear(i);
+			special ||= isSpecial(op);
+			k++;
+		}
+		return { ...tape, calls, arguments: this.#arguments, inputs: this.#inputs, linear, special };
 	}
 
 	#isConstant(node: Node): boolean {
@@ -156,21 +175,23 @@ export class TapeBuilder {
 		}
 	}
 
-	#operands(i: Node): Iterable<number> {
-		const op = this.#ops[i]!;
-		if (op === Op.external) return this.#calls[this.#a[i]!]!.operands;
-		return [this.#a[i]!, this.#b[i]!, this.#c[i]!].slice(0, arity(op));
+	/** A node of at most two operands; the same one where there is one already. */
+	#node(op: number, a: number, b = 0): Node {
+		// 20 bits for each operand: a tape is far shorter.
+		const key = (op * 0x100000 + a) * 0x100000 + b;
+		const known = this.#known.get(key);
+		if (known !== undefined) return known;
+		const node = this.#add(op, a, b);
+		this.#known.set(key, node);
+		return node;
 	}
 
-	#node(key: string | undefined, op: number, a: number, b = 0, c = 0, value = 0): Node {
-		const known = key === undefined ? undefined : this.#known.get(key);
-		if (known !== undefined) return known;
+	#add(op: number, a: number, b = 0, c = 0, value = 0): Node {
 		const node = this.#ops.push(op) - 1;
 		this.#a.push(a);
 		this.#b.push(b);
 		this.#c.push(c);
 		this.#numbers.push(value);
-		if (key !== undefined) this.#known.set(key, node);
 		return node;
 	}
 }
