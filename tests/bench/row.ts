@@ -5,40 +5,50 @@ export interface Row {
 	what: string;
 	value: number;
 	unit: string;
-	/** Largest value that is good enough. */
-	target: number;
+	/** Largest value that is good enough; null where only the ratio counts. */
+	target: number | null;
 	/** The same job done by bare libraries, in the same unit. */
 	peer: number | null;
 	/** value / peer */
 	ratio: number | null;
+	/** Largest ratio that is good enough. */
+	most: number | null;
 	ok: boolean;
 }
 
 /** A row, judged. */
 export function row(
-	figures: Pick<Row, 'id' | 'what' | 'value' | 'unit' | 'target'> & { peer?: number },
+	figures: Pick<Row, 'id' | 'what' | 'value' | 'unit'> & {
+		target?: number;
+		peer?: number;
+		most?: number;
+	},
 ): Row {
-	const { peer, ...rest } = figures;
+	const { peer, target = null, most = null, ...rest } = figures;
 	const value = rounded(rest.value);
+	const ratio = peer === undefined ? null : rounded(rest.value / peer);
 	return {
 		...rest,
+		target,
+		most,
 		value,
 		peer: peer === undefined ? null : rounded(peer),
-		ratio: peer === undefined ? null : rounded(rest.value / peer),
-		ok: value <= rest.target,
+		ratio,
+		ok: value <= (target ?? Infinity) && (most === null || (ratio !== null && ratio <= most)),
 	};
 }
 
 /** The rows as lines of a table, with a head. */
 export function table(rows: readonly Row[]): string {
-	const head = ['id', 'what', 'value', 'target', 'peer', 'ratio', 'ok'];
+	const head = ['id', 'what', 'value', 'target', 'peer', 'ratio', 'most', 'ok'];
 	const cells = rows.map((one) => [
 		one.id,
 		one.what,
 		`${one.value} ${one.unit}`,
-		`${one.target} ${one.unit}`,
+		one.target === null ? '' : `${one.target} ${one.unit}`,
 		one.peer === null ? '' : `${one.peer} ${one.unit}`,
 		one.ratio === null ? '' : String(one.ratio),
+		one.most === null ? '' : String(one.most),
 		one.ok ? 'yes' : 'NO',
 	]);
 	const widths = head.map((title, column) =>

@@ -1,4 +1,4 @@
-import { mkdirSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
 import { listQuery } from '$lib/schemas/notes';
 import type { Actor } from '$lib/server/auth/access';
@@ -27,8 +27,12 @@ if (wants('engine')) rows.push(...engineRows());
 if (wants('page') || wants('sync')) rows.push(...(await servedRows()));
 if (wants('setup')) rows.push(...(await setupRows()));
 
+const file = 'test-results/bench.json';
 mkdirSync('test-results', { recursive: true });
-writeFileSync('test-results/bench.json', `${JSON.stringify(rows, null, '\t')}\n`);
+// Rows of areas that were not measured now stay as they are.
+const earlier = existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as Row[]) : [];
+const kept = earlier.filter(({ id }) => !rows.some((row) => row.id === id));
+writeFileSync(file, `${JSON.stringify([...kept, ...rows], null, '\t')}\n`);
 process.stdout.write(`\n${table(rows)}\n`);
 if (!rows.every((row) => row.ok)) process.exitCode = 1;
 
