@@ -40,9 +40,9 @@ md.renderer.rules.figure = (tokens, index, _options, env) => {
 	const readout = (env?.find as FindReadout)(quoted);
 	if (!readout) return `<span class="no-readout">${escapeHtml(quoted)}</span>`;
 	const unit = readout.unit && `&nbsp;<span class="unit">${escapeHtml(readout.unit)}</span>`;
-	const doubt = readout.doubt ? `&nbsp;<small>± ${escapeHtml(readout.doubt)}</small>` : '';
+	const doubt = readout.doubt ? `&nbsp;<small>±&nbsp;${escapeHtml(readout.doubt)}</small>` : '';
 	const name = escapeHtml(quotedName(quoted));
-	return `<span class="readout" data-quantity="${name}">${escapeHtml(readout.number)}${unit}${doubt}</span>`;
+	return `<span class="readout" data-quantity="${name}">${escapeHtml(readout.number)}${doubt}${unit}</span>`;
 };
 
 /** A longer text is shown as it was typed: parsing a hostile one would hold up everybody who opens the note. */
