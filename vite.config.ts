@@ -4,6 +4,8 @@ import { defineConfig } from 'vitest/config';
 
 export default defineConfig({
 	plugins: [tailwindcss(), sveltekit()],
+	// Small fonts would become data: addresses, which the content security policy refuses.
+	build: { assetsInlineLimit: (file) => (/\.(woff2?|ttf)$/.test(file) ? false : undefined) },
 	server: {
 		proxy: { '/sync': { target: `http://127.0.0.1:${process.env.SYNC_PORT ?? '4174'}`, ws: true } },
 	},

@@ -130,6 +130,16 @@ export const accessTable: Record<string, Row> = {
 		...api(() => '/review'),
 		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
 	},
+	'GET /api/notes/[number]/quantities/[name]': {
+		...api(() => '/quantities/V_out'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /api/notes/[number]/trials': {
+		...api(() => '/trials'),
+		// The quantity is exact, which is said to those only who may know of it.
+		json: () => ({ quantity: 'V_out', adaptive: false }),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 400 },
+	},
 	'GET /api/v1/notes/[number]': {
 		script: true,
 		at: ({ number }) => `/api/v1/notes/${number}`,

@@ -1,5 +1,5 @@
 import { curveResults } from './curve-results';
-import { budgetRows, trialsOf, worstCaseOf } from './details';
+import { budgetRows, short, trialsOf, worstCaseOf } from './details';
 import { engineVersion } from './engine';
 import { readFigures } from './figures';
 import { addFormulas } from './formulas';
@@ -10,7 +10,7 @@ import { judge } from './requirements';
 import type { Cell, CurveCell, Evaluation, Fault, Options, Quantity } from './results';
 import { Bounds } from './steps';
 import type { Trouble } from './trouble';
-import { stepOf } from './uncertainty';
+import { finiteUncertainty, stepOf } from './uncertainty';
 import { Worked } from './worked';
 
 /**
@@ -63,21 +63,25 @@ function addDetails(
 ): void {
 	const { detail = [], monteCarlo } = options;
 	const names = detail === 'all' ? Object.keys(quantities) : detail;
+	addFormulas(quantities, names, note);
 	const wanted = names.flatMap((name) => {
 		const computed = note.find(name);
 		const step = computed && stepOf(computed);
 		const quantity = Object.hasOwn(quantities, name) ? quantities[name] : undefined;
 		return step && quantity ? [{ name, computed, step, quantity }] : [];
 	});
-	addFormulas(quantities, names, note);
 	const steps = wanted.map(({ step }) => step);
 	const bounds = new Bounds(steps, note.inputs, options.normalInterval);
 	for (const { name, computed, step, quantity } of wanted) {
 		watch.at?.(quantity.cell, quantity.line);
+		const found = finiteUncertainty(step, note.doubts, options.coverage);
 		quantities[name] = {
 			...quantity,
 			worstCase: worstCaseOf(step, computed.type, bounds),
 			budget: budgetRows(step, computed.type, note.inputs.all, note.doubts),
+			...(found && {
+				texts: { standardUncertainty: short(found.standardUncertainty, computed.type) },
+			}),
 		};
 	}
 	if (!monteCarlo) return;

@@ -10,7 +10,7 @@ import { modelOf, type Bounds, type Step } from './steps';
 import type { Type } from './types';
 import { difference } from './functions/stated';
 import { readout } from './units/display';
-import { differenceFromSI, fromSI } from './units/unit';
+import { differenceFromSI, divided, fromSI } from './units/unit';
 import { finiteUncertainty, stepOf } from './uncertainty';
 
 /** The uncertainty budget of a number: every input it depends on, the greatest contribution first. */
@@ -40,13 +40,14 @@ export function budgetRows(
 				value: readout(value, inputUnit, !inputType.fixed).text,
 				standardUncertainty: short(uncertainty, inputType),
 				contribution: short(contribution, type),
+				sensitivity: readout(sensitivity, divided(unit, inputUnit), !type.fixed, 4).text,
 			},
 		};
 	});
 }
 
 /** An uncertainty as it is written, to two significant digits. */
-function short(si: number, type: Type): string {
+export function short(si: number, type: Type): string {
 	const plain = difference(type);
 	return readout(si, unitOf(plain), !plain.fixed, 2).text;
 }

@@ -100,6 +100,8 @@ export interface Quantity {
 	/** The greatest contribution first. */
 	budget?: BudgetRow[];
 	formula?: FormulaTex;
+	/** Numbers as they are shown, where details are asked for. */
+	texts?: { standardUncertainty: string };
 	monteCarlo?: MonteCarlo;
 }
 
@@ -137,7 +139,12 @@ export interface BudgetRow {
 	/** Part of the variance. */
 	share: number;
 	/** The numbers as they are shown, each with its unit. */
-	texts: { value: string; standardUncertainty: string; contribution: string };
+	texts: {
+		value: string;
+		standardUncertainty: string;
+		contribution: string;
+		sensitivity: string;
+	};
 }
 
 /** Trials of a quantity, numbers in its unit. */

@@ -74,6 +74,22 @@ describe('formulas as TeX', () => {
 		expect(quantities.a?.formula).toBeUndefined();
 	});
 
+	test('a quantity in doubt has its formula beside its budget, whose numbers are written with their units', () => {
+		const source = 'R_1 = tolerance(1 kohm, 1 %)\nV_1 = 2 mA * R_1';
+		const { quantities } = evaluate([{ id: 'c', kind: 'calculation', source }], {
+			...defaultOptions,
+			detail: ['V_1'],
+		});
+		expect(quantities.V_1?.formula?.symbols).toContain('\\mathrm{mA}');
+		expect(quantities.V_1?.texts?.standardUncertainty).toBe('12\u00a0mV');
+		expect(quantities.V_1?.budget?.[0]?.texts).toEqual({
+			value: '1\u00a0kΩ',
+			standardUncertainty: '5.8\u00a0Ω',
+			contribution: '12\u00a0mV',
+			sensitivity: '2\u00a0mV/Ω',
+		});
+	});
+
 	test('KaTeX sets every example of the handbook, with symbols and with figures', () => {
 		const sources = [...functions.values()].flatMap(({ examples }) =>
 			examples.map(({ source }) => source),

@@ -1,4 +1,5 @@
 import type { Thread, threadKinds } from '$lib/schemas/comments';
+import { call } from './call';
 
 interface NewThread {
 	kind: (typeof threadKinds)[number];
@@ -69,29 +70,4 @@ export class Threads {
 			: [...this.#list, thread];
 		return thread;
 	}
-}
-
-async function call<T>(method: string, address: string, body?: unknown): Promise<T> {
-	let response: Response;
-	try {
-		response = await fetch(address, {
-			method,
-			...(body !== undefined && {
-				headers: { 'content-type': 'application/json' },
-				body: JSON.stringify(body),
-			}),
-		});
-	} catch (error) {
-		throw new Error('The server cannot be reached. Try again when the connection is back.', {
-			cause: error,
-		});
-	}
-	const answer = (await response.json().catch(() => undefined)) as unknown;
-	if (response.ok) return answer as T;
-	throw new Error(messageOf(answer) ?? `The server refused this (${response.status}).`);
-}
-
-function messageOf(answer: unknown): string | undefined {
-	if (typeof answer !== 'object' || answer === null || !('message' in answer)) return undefined;
-	return typeof answer.message === 'string' ? answer.message : undefined;
 }

@@ -29,6 +29,7 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 	choices: Choices<Props>;
 	/** Where it stands while it is drawn. */
 	#place: { dom: HTMLElement; view: EditorView } | undefined;
+	#sizes: ResizeObserver | undefined;
 
 	constructor(choices: Choices<Props>) {
 		super();
@@ -56,8 +57,11 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 	override updateDOM(dom: HTMLElement, view: EditorView): boolean {
 		const before = mounted.get(dom);
 		if (before?.key !== this.choices.key) return false;
+		const held = dom.contains(document.activeElement);
 		this.destroy(dom);
 		this.#fill(dom, view);
+		// What is shown anew under the hands of a person at the keyboard stays in their hands.
+		if (held) dom.querySelector<HTMLElement>('button, a')?.focus();
 		this.choices.onchange?.(dom);
 		return true;
 	}
@@ -66,6 +70,7 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 		const before = mounted.get(dom);
 		if (!before) return;
 		if (this.#place?.dom === dom) this.#place = undefined;
+		this.#sizes?.disconnect();
 		mounted.delete(dom);
 		void unmount(before.instance);
 		dom.replaceChildren();
@@ -80,5 +85,9 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 		const instance = mount(component, { target: dom, props: props(view) });
 		mounted.set(dom, { instance, key });
 		this.#place = { dom, view };
+		if (!this.choices.block) return;
+		// The editor must know how high its blocks are, also when they grow.
+		this.#sizes = new ResizeObserver(() => view.requestMeasure());
+		this.#sizes.observe(dom);
 	}
 }

@@ -1,8 +1,11 @@
 import type { Range, Text } from '@codemirror/state';
 import { Decoration, type DecorationSet, type EditorView } from '@codemirror/view';
+import type { Component } from 'svelte';
 import type { Fault, Readout as Shown, Requirement, WorkedLine } from '$lib/calc/results';
 import FaultNote from '$lib/components/FaultNote.svelte';
-import Readout from '$lib/components/Readout.svelte';
+import LineValue from '$lib/components/LineValue.svelte';
+import type { Opener } from '$lib/components/opener';
+import type { OpenLine } from '$lib/client/open-line.svelte';
 import Verdict from '$lib/components/Verdict.svelte';
 import { fadeOnce } from './fade';
 import { MountedWidget } from './mounted-widget';
@@ -11,10 +14,14 @@ import { MountedWidget } from './mounted-widget';
 export type Result =
 	| { kind: 'readout'; at: number; widget: ReadoutWidget }
 	| { kind: 'verdict'; at: number; widget: VerdictWidget }
+	| { kind: 'detail'; at: number; widget: DetailWidget }
 	| { kind: 'fault'; at: number; to: number; fault: Fault };
 
 export type ReadoutWidget = ReturnType<typeof readout>;
 export type VerdictWidget = ReturnType<typeof verdict>;
+export type DetailWidget = ReturnType<typeof detail>;
+/** What stands behind a line. */
+export type Behind = Component<{ line: OpenLine }>;
 type Mend = (view: EditorView, fault: Fault) => void;
 
 /** Decorations of all results; lines without a readout or verdict are marked as silent. */
@@ -26,6 +33,10 @@ export function decorate(doc: Text, list: readonly Result[], mend: Mend): Decora
 		const line = doc.lineAt(result.at);
 		if (result.kind === 'fault') {
 			ranges.push(...faultRanges(result, line.from, line.to, mend));
+		} else if (result.kind === 'detail') {
+			ranges.push(
+				Decoration.widget({ widget: result.widget, block: true, side: 2 }).range(line.to),
+			);
 		} else if (!spoken.has(line.number)) {
 			spoken.add(line.number);
 			ranges.push(Decoration.widget({ widget: result.widget, side: 1 }).range(line.to));
@@ -40,14 +51,32 @@ export function decorate(doc: Text, list: readonly Result[], mend: Mend): Decora
 const silent = Decoration.line({ class: 'line-silent' });
 const underline = Decoration.mark({ class: 'fault-mark' });
 
-export function readout({ name, line }: WorkedLine, shown: Shown) {
+export function readout(
+	{ name, line }: WorkedLine,
+	shown: Shown,
+	remarks: readonly string[] | undefined,
+	opener: Opener | undefined,
+) {
 	return new MountedWidget({
-		component: Readout,
-		props: () => ({ readout: shown, quantity: name }),
+		component: LineValue,
+		props: () => ({ readout: shown, quantity: name, remarks, opener }),
 		key: name ?? `line ${line}`,
-		text: JSON.stringify(shown),
+		text: JSON.stringify([shown, remarks]),
 		className: 'line-readout',
+		ownEvents: true,
 		onchange: fadeOnce,
+	});
+}
+
+/** What stands behind the open line, under it. The component follows the results by itself. */
+export function detail(name: string, component: Behind, line: OpenLine) {
+	return new MountedWidget({
+		component,
+		props: () => ({ line }),
+		key: `detail of ${name}`,
+		text: name,
+		block: true,
+		ownEvents: true,
 	});
 }
 

@@ -8,10 +8,15 @@ import {
 import { EditorView, type DecorationSet } from '@codemirror/view';
 import type { Evaluation, Fault } from '$lib/calc/results';
 import { splitLine } from '$lib/components/lines';
+import type { OpenLine } from '$lib/client/open-line.svelte';
+import { remarksOf } from '$lib/components/remarks';
 import {
 	decorate,
+	detail,
 	readout,
 	verdict,
+	type Behind,
+	type DetailWidget,
 	type ReadoutWidget,
 	type Result,
 	type VerdictWidget,
@@ -19,9 +24,20 @@ import {
 
 const arrived = StateEffect.define<Result[]>();
 
+/** The line that is open, and what stands under it as soon as that is loaded. */
+interface Open {
+	line: OpenLine;
+	Behind: Behind | undefined;
+}
+
 /** Shows the results of a cell in its editor. */
-export function showResults(view: EditorView, cell: string, evaluation: Evaluation): void {
-	const list = placed(view.state.doc, cell, evaluation);
+export function showResults(
+	view: EditorView,
+	cell: string,
+	evaluation: Evaluation,
+	open: Open,
+): void {
+	const list = placed(view.state.doc, cell, evaluation, open);
 	const before = view.state.field(field).list;
 	const next = list.map(keepingWidget(before));
 	// An update of an editor lays the page out; most edits change figures, not where they stand.
@@ -32,13 +48,16 @@ export function showResults(view: EditorView, cell: string, evaluation: Evaluati
 function keepingWidget(before: readonly Result[]): (result: Result) => Result {
 	const readouts = new Map<string, ReadoutWidget>();
 	const verdicts = new Map<string, VerdictWidget>();
+	const details = new Map<string, DetailWidget>();
 	for (const result of before) {
 		if (result.kind === 'readout') readouts.set(result.widget.choices.key, result.widget);
 		if (result.kind === 'verdict') verdicts.set(result.widget.choices.key, result.widget);
+		if (result.kind === 'detail') details.set(result.widget.choices.key, result.widget);
 	}
 	return (result) => {
 		if (result.kind === 'readout') return { ...result, widget: kept(readouts, result.widget) };
 		if (result.kind === 'verdict') return { ...result, widget: kept(verdicts, result.widget) };
+		if (result.kind === 'detail') return { ...result, widget: kept(details, result.widget) };
 		return result;
 	};
 }
@@ -104,13 +123,21 @@ function moved(result: Result, changes: ChangeDesc): Result {
 		: { ...result, at };
 }
 
-function placed(doc: Text, cell: string, evaluation: Evaluation): Result[] {
+function placed(
+	doc: Text,
+	cell: string,
+	evaluation: Evaluation,
+	{ line: opener, Behind }: Open,
+): Result[] {
 	const list: Result[] = [];
 	for (const line of evaluation.lines) {
 		if (line.cell !== cell || !line.readout) continue;
 		const at = startOf(doc, line.line, line.name);
 		if (at !== undefined) {
-			list.push({ kind: 'readout', at, widget: readout(line, line.readout) });
+			const remarks = remarksOf(evaluation, line.name);
+			list.push({ kind: 'readout', at, widget: readout(line, line.readout, remarks, opener) });
+			if (Behind && line.name !== undefined && line.name === opener.opened)
+				list.push({ kind: 'detail', at, widget: detail(line.name, Behind, opener) });
 		}
 	}
 	for (const requirement of evaluation.requirements) {

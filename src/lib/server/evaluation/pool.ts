@@ -60,6 +60,7 @@ export class Pool {
 		if (this.#closed) throw closedError();
 		await turns.take();
 		try {
+			if (signal?.aborted) throw stoppedError();
 			return await this.#attempt(cells, options, isLong, { note, onProgress, signal });
 		} finally {
 			turns.give();
@@ -92,7 +93,7 @@ export class Pool {
 			this.#release(child);
 			if (outcome.kind === 'done') return outcome.results;
 			if (this.#closed) throw closedError();
-			if (signal?.aborted) throw new AppError('unavailable', 'This was stopped.');
+			if (signal?.aborted) throw stoppedError();
 			const blamed = blame(outcome, cells);
 			log().warn({ outcome: outcome.kind, ...blamed }, 'an evaluation was stopped');
 			if (blamed) skip.push(blamed);
@@ -175,6 +176,10 @@ function blame(
 	// A child that ended by itself ran out of its heap.
 	const code = outcome.kind === 'tooLong' ? 'tooLong' : 'tooLarge';
 	return { cell: cell.id, line: place.line, code };
+}
+
+function stoppedError(): AppError {
+	return new AppError('unavailable', 'This was stopped.');
 }
 
 function closedError(): AppError {

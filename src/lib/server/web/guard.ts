@@ -67,14 +67,18 @@ export function forMember<E extends Known, T>(
 	};
 }
 
-/** An API route's method for the signed-in person: what it returns is sent as JSON, AppErrors as `{ message }`. */
+/**
+ * An API route's method for the signed-in person: what it returns is sent as JSON unless it is a response already,
+ * AppErrors as `{ message }`.
+ */
 export function api<E extends Known>(
 	deed: (actor: Actor, event: E) => Promise<unknown>,
 	status = 200,
 ): (event: E) => Promise<Response> {
 	return async (event) => {
 		try {
-			return json(await deed(actorOf(event), event), { status });
+			const answer = await deed(actorOf(event), event);
+			return answer instanceof Response ? answer : json(answer, { status });
 		} catch (thrown) {
 			const failure = expected(thrown);
 			if (!failure) throw thrown;

@@ -1,10 +1,12 @@
 import { createContext, tick } from 'svelte';
 import type { Evaluation } from '$lib/calc/results';
+import { OpenLine } from '$lib/client/open-line.svelte';
 import { Threads } from '$lib/client/threads.svelte';
 import { WorkingCopy } from '$lib/client/working-copy.svelte';
 import type { CellKind, NoteContent } from '$lib/note/document';
 import type { Thread } from '$lib/schemas/comments';
 import { CellDrag } from './drag.svelte';
+import type LineDetailType from './detail/LineDetail.svelte';
 import { MarginPlaces } from './margin-places';
 
 interface Start {
@@ -25,6 +27,10 @@ export class Sheet {
 	readonly threads: Threads;
 	readonly drag: CellDrag;
 	readonly margin = new MarginPlaces();
+	/** The worked line that is open. */
+	readonly line: OpenLine;
+	/** Loaded when a line is opened first. */
+	LineDetail = $state.raw<typeof LineDetailType>();
 	/** Cell whose thread form is open. */
 	composing = $state<string>();
 	readonly #doors = new Map<string, (edge: Edge) => void>();
@@ -40,6 +46,7 @@ export class Sheet {
 		});
 		this.drag = new CellDrag(this.copy);
 		this.threads = new Threads(note.number, threads);
+		this.line = new OpenLine(note.number);
 	}
 
 	/** Announces how a cell takes the focus; call what it returns when the cell goes. */

@@ -1,0 +1,24 @@
+import type { MonteCarlo, Quantity } from '$lib/calc/results';
+import { z } from 'zod';
+
+/** What stands behind a worked line. */
+export interface QuantityDetail {
+	/** Sequence number of the note's last change that counts in it. */
+	seq: number;
+	/** With its budget and worst case where it is in doubt. */
+	quantity: Quantity;
+	/** HTML; null where the formula cannot be set. */
+	formula: { symbols: string; figures: string | null } | null;
+}
+
+export const trialsRequest = z.strictObject({
+	quantity: z.string().min(1).max(100),
+	/** Whether trials end once the results are stable. */
+	adaptive: z.boolean(),
+});
+
+/** A line of the answer while trials are drawn: how far they are, and at the end what they gave or why nothing. */
+export type TrialsLine =
+	| { drawn: number; total: number }
+	| { quantity: Quantity & { monteCarlo: MonteCarlo } }
+	| { message: string };
