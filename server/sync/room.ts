@@ -14,6 +14,7 @@ import * as updates from '$lib/server/notes/updates';
 import * as Y from 'yjs';
 import type { Connection } from './connection';
 import { Follower } from './follower';
+import { HeldUpdates } from './held-updates';
 import type { Incoming } from './incoming';
 import { Journal, type Entry } from './journal';
 import * as outgoing from './outgoing';
@@ -44,6 +45,7 @@ export class Room {
 	readonly #store: ResultStore;
 	readonly #follower: Follower;
 	readonly #events: Events;
+	readonly #held = new HeldUpdates((message, origin) => this.#broadcast(message, origin));
 	/** Counts the document's states, whoever made them. */
 	#version = 0;
 
@@ -88,6 +90,7 @@ export class Room {
 			() => ({ version: this.#version, content: toContent(this.#doc) }),
 			({ results }) => {
 				const message = encodeJson('results', results);
+				this.#held.release();
 				for (const connection of this.connections) connection.sendResults(message);
 				this.#storeResults();
 			},
@@ -95,7 +98,7 @@ export class Room {
 		);
 		this.#doc.on('update', (bytes: Uint8Array, origin: unknown) => {
 			this.#version += 1;
-			this.#broadcast(outgoing.update(bytes), origin);
+			this.#held.add(outgoing.update(bytes), origin);
 			this.#scheduler.request();
 		});
 	}
@@ -185,6 +188,7 @@ export class Room {
 
 	/** Gives the document up. */
 	destroy(): void {
+		this.#held.release();
 		this.#journal.stop();
 		this.#scheduler.stop();
 		this.#store.stop();
