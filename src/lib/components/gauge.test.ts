@@ -42,8 +42,49 @@ describe('the scale of a limit gauge', () => {
 		);
 	});
 
+	test('a guard band lies before its limit, and the doubt on both sides of the value', () => {
+		const scale = gaugeScale({
+			value: 2.41,
+			lower: null,
+			upper: 2.45,
+			expandedUncertainty: 0.004,
+			guardBand: { lower: null, upper: 0.005 },
+		});
+		const [from, to] = scale.doubt!;
+		expect(from).toBeLessThan(scale.value);
+		expect(to).toBeGreaterThan(scale.value);
+		expect(scale.guard.lower).toBeNull();
+		expect(scale.guard.upper).toBeLessThan(scale.upper!);
+		expect((to - from) / (scale.upper! - scale.guard.upper!)).toBeCloseTo(8 / 5, 9);
+	});
+
+	test('a value at its limit shows its doubt, however small that is beside the limit', () => {
+		const { doubt } = gaugeScale({ value: 5, lower: 5, upper: null, expandedUncertainty: 0.001 });
+		expect(doubt![1] - doubt![0]).toBeGreaterThan(0.1);
+	});
+
+	test('doubt and guard bands stay in the picture', () => {
+		const size = fc.double({ min: 0, max: 1e12, noNaN: true });
+		fc.assert(
+			fc.property(figure, figure, size, size, (value, lower, expandedUncertainty, width) => {
+				const scale = gaugeScale({
+					value,
+					lower,
+					upper: null,
+					expandedUncertainty,
+					guardBand: { lower: width, upper: null },
+				});
+				for (const at of [...(scale.doubt ?? []), scale.guard.lower ?? 0.5]) {
+					expect(at).toBeGreaterThanOrEqual(0);
+					expect(at).toBeLessThanOrEqual(1);
+				}
+			}),
+		);
+	});
+
 	test('no limit, no span and no value break the scale', () => {
-		for (const at of Object.values(gaugeScale({ value: 0, lower: 0, upper: 0 }))) {
+		const { value, lower, upper } = gaugeScale({ value: 0, lower: 0, upper: 0 });
+		for (const at of [value, lower, upper]) {
 			expect(at === null || Number.isFinite(at)).toBe(true);
 		}
 		expect(gaugeScale({ value: 0, lower: null, upper: 0 }).value).toBeGreaterThan(0);

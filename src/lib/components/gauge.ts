@@ -5,6 +5,10 @@ export interface GaugeScale {
 	value: number;
 	lower: number | null;
 	upper: number | null;
+	/** Ends of the value's expanded uncertainty, inside the picture; null while it is exact. */
+	doubt: [number, number] | null;
+	/** Where the guard band of each limit ends; null without one. */
+	guard: { lower: number | null; upper: number | null };
 	/** The value lies outside the drawn range and stands at its edge. */
 	beyond: 'left' | 'right' | null;
 }
@@ -14,32 +18,48 @@ const leastShare = 0.16;
 /** Share of the width left free beyond a limit. */
 const rest = 0.24;
 
-/** A linear scale on which limits and value can be told apart: it starts from zero where that shows enough. */
-export function gaugeScale({
-	value,
-	lower,
-	upper,
-}: Pick<Requirement, 'value' | 'lower' | 'upper'>): GaugeScale {
-	const [left, right] = drawnRange(value, lower, upper);
+type Drawn = Pick<Requirement, 'value' | 'lower' | 'upper' | 'expandedUncertainty' | 'guardBand'>;
+
+/** A linear scale on which limits, doubt and value can be told apart: it starts from zero where that shows enough. */
+export function gaugeScale(requirement: Drawn): GaugeScale {
+	const { value, lower, upper, expandedUncertainty: doubt = 0, guardBand } = requirement;
+	const [left, right] = drawnRange(requirement);
 	const share = (x: number) => (x - left) / (right - left);
+	const inside = (x: number) => Math.min(1, Math.max(0, share(x)));
 	const at = share(value);
+	const guard = (limit: number | null, width: number | null | undefined, sign: 1 | -1) =>
+		limit === null || !width ? null : inside(limit + sign * width);
 	return {
 		value: Math.min(0.97, Math.max(0.03, at)),
 		lower: lower === null ? null : share(lower),
 		upper: upper === null ? null : share(upper),
+		doubt: doubt > 0 ? [inside(value - doubt), inside(value + doubt)] : null,
+		guard: {
+			lower: guard(lower, guardBand?.lower, 1),
+			upper: guard(upper, guardBand?.upper, -1),
+		},
 		beyond: at < 0.03 ? 'left' : at > 0.97 ? 'right' : null,
 	};
 }
 
-function drawnRange(value: number, lower: number | null, upper: number | null): [number, number] {
+function drawnRange({
+	value,
+	lower,
+	upper,
+	expandedUncertainty: doubt = 0,
+	guardBand,
+}: Drawn): [number, number] {
 	if (lower !== null && upper !== null) {
 		const span = upper - lower || Math.abs(upper) || 1;
 		return [lower - 0.3 * span, upper + 0.3 * span];
 	}
 	const limit = upper ?? lower ?? 0;
 	const distance = Math.abs(value - limit);
-	const whole = Math.max(Math.abs(limit), distance) || 1;
-	const width = distance > 0 ? Math.min(whole / (1 - rest), distance / leastShare) : whole;
+	const guarded = guardBand?.upper ?? guardBand?.lower ?? 0;
+	// What is smaller than the doubt need not be told apart.
+	const apart = Math.max(distance, 1.5 * doubt, 1.5 * guarded);
+	const whole = Math.max(Math.abs(limit), apart) || 1;
+	const width = apart > 0 ? Math.min(whole / (1 - rest), apart / leastShare) : whole;
 	return upper !== null
 		? [limit - (1 - rest) * width, limit + rest * width]
 		: [limit - rest * width, limit + (1 - rest) * width];

@@ -9,7 +9,8 @@ export function look(): Extension {
 			'&': { color: 'inherit' },
 			'&.cm-focused': { outline: 'none' },
 			'.cm-scroller': { fontFamily: 'inherit', lineHeight: 'inherit', overflow: 'visible' },
-			'.cm-content': { padding: '0', caretColor: 'var(--ink)' },
+			// What is wider than the sheet scrolls inside itself.
+			'.cm-content': { padding: '0', minWidth: '0', caretColor: 'var(--ink)' },
 			'.cm-line': { padding: '0' },
 			'&.cm-focused .cm-matchingBracket': {
 				backgroundColor: 'var(--petrol-soft)',
