@@ -23,39 +23,39 @@ interface Sources {
 	fail(line: NoteLine, trouble: Trouble): void;
 }
 
-/** Puts what lines say of correlations together. A line that cannot be true beside the ones before it is a fault. */
+/** Puts what lines say of correlations together. A line that cannot be true beside the others is a fault. */
 export function stateCorrelations(
 	lines: readonly NoteLine[],
 	sources: Sources,
 	known: readonly Correlation[],
 ): Correlations {
-	const pairs = [...known];
-	let stated = uncorrelated;
-	const before = correlate(pairs);
-	if (!('fault' in before)) stated = before;
-	for (const line of lines) {
-		const { body } = line;
-		if (!isCall(body)) continue;
-		try {
-			const [x, y, r] = body.args;
-			const pair = {
-				first: inputOf(x!, sources),
-				second: inputOf(y!, sources),
-				coefficient: sources.coefficient(r!),
-			};
-			const joined = correlate([...pairs, pair]);
-			if ('fault' in joined) {
-				const at = joined.fault === 'coefficient' ? r! : body;
-				throw new Trouble('value', at, `${joined.message}.`);
-			}
-			pairs.push(pair);
-			stated = joined;
-		} catch (error) {
-			if (!(error instanceof Trouble)) throw error;
-			sources.fail(line, error);
-		}
+	const stated = lines.flatMap((line) => pairOf(line, sources) ?? []);
+	for (;;) {
+		const correlations = correlate([...known, ...stated.map(({ pair }) => pair)]);
+		if (!('fault' in correlations)) return correlations;
+		const [wrong] = stated.splice(correlations.index - known.length, 1);
+		if (!wrong) return uncorrelated;
+		const at = correlations.fault === 'coefficient' ? wrong.body.args[2]! : wrong.body;
+		sources.fail(wrong.line, new Trouble('value', at, `${correlations.message}.`));
 	}
-	return stated;
+}
+
+/** What one line states; undefined, with its fault told, where that is not possible. */
+function pairOf(
+	line: NoteLine,
+	sources: Sources,
+): { line: NoteLine; body: NodeOf<'call'>; pair: Correlation } | undefined {
+	const { body } = line;
+	if (!isCall(body)) return undefined;
+	const [x, y, r] = body.args;
+	try {
+		const [first, second] = [inputOf(x!, sources), inputOf(y!, sources)];
+		return { line, body, pair: { first, second, coefficient: sources.coefficient(r!) } };
+	} catch (error) {
+		if (!(error instanceof Trouble)) throw error;
+		sources.fail(line, error);
+		return undefined;
+	}
 }
 
 /** The number of the input that a name stands for. Throws Trouble. */

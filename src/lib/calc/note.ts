@@ -174,7 +174,13 @@ export class Note {
 
 	faultsOf(line: NoteLine): Trouble[] {
 		const remark = this.remarks.get(line);
-		return [...(this.troubles.get(line) ?? []), ...(remark ? [remark] : [])];
+		const troubles = this.troubles.get(line) ?? [];
+		// What keeps a curve from being fitted is told once, not for its inverse again.
+		const inverse = line.given?.kind === 'curve' && line.given.inverse;
+		const told = inverse
+			? troubles.filter(({ code }) => code === 'duplicate' || code === 'reserved')
+			: troubles;
+		return [...told, ...(remark ? [remark] : [])];
 	}
 
 	fail(line: NoteLine, trouble: Trouble): void {

@@ -130,8 +130,12 @@ function statedBy(
 	const centreType = node.args[0] && tracer.typeOf(node.args[0], frame);
 	for (const position of widths) {
 		const argument = node.args[position]!;
-		if (centreType && isRelative(centreType, tracer.typeOf(argument, frame)))
-			values[position] = map(values[position]!, (share) => share * Math.abs(Number(values[0])));
+		if (!centreType || !isRelative(centreType, tracer.typeOf(argument, frame))) continue;
+		if (Number(values[0]) === 0)
+			throw new Trouble('value', argument, 'A share of zero is nothing.', {
+				mend: 'Give it in the unit of the value.',
+			});
+		values[position] = map(values[position]!, (share) => share * Math.abs(Number(values[0])));
 	}
 	if (
 		widths.length > 0 &&
