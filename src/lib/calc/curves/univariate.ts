@@ -28,23 +28,16 @@ export function mean(values: readonly number[]): number | Refusal {
 export function standardDeviation(values: readonly number[]): number | Refusal {
 	const fault = refuseColumn(values, 2);
 	if (fault) return fault;
-	const { deviations, unit } = deviationsOf(values);
-	const square = over(dot(deviations, deviations), wide(values.length - 1));
+	const { square, unit } = spreadOf(values);
 	return narrow(squareRoot(square)) * unit;
 }
 
-/**
- * Correlation of each reading with the next, which is about zero for independent ones: Σ dᵢ dᵢ₊₁ ÷ Σ dᵢ², d being
- * deviations from the mean.
- */
-export function lagOneCorrelation(values: readonly number[]): number | Refusal {
+/** Variance of the readings, with n − 1. */
+export function variance(values: readonly number[]): number | Refusal {
 	const fault = refuseColumn(values, 2);
 	if (fault) return fault;
-	const { deviations } = deviationsOf(values);
-	const squares = dot(deviations, deviations);
-	if (!(squares.hi > 0)) return refuse('nothingFound', 'All readings are equal');
-	const next: Column = { hi: deviations.hi.slice(1), lo: deviations.lo.slice(1) };
-	return narrow(over(dot(next, deviations), squares));
+	const { square, unit } = spreadOf(values);
+	return narrow(square) * unit * unit;
 }
 
 function refuseColumn(values: readonly number[], needed: number): Refusal | undefined {
@@ -63,6 +56,12 @@ function total(values: readonly number[]): Wide {
 
 function wideMean(values: readonly number[]): Wide {
 	return over(total(values), wide(values.length));
+}
+
+/** Variance in squares of a power of two. */
+function spreadOf(values: readonly number[]): { square: Wide; unit: number } {
+	const { deviations, unit } = deviationsOf(values);
+	return { square: over(dot(deviations, deviations), wide(values.length - 1)), unit };
 }
 
 /** Deviations from the mean, divided by a power of two so that their squares stay in range. */

@@ -1,3 +1,5 @@
+import * as readings from '../curves/univariate';
+import { answered } from './answered';
 import { expectSame, type CalcFunction } from './function';
 import { gathered } from './gathered';
 import { allNodes, meanOf } from './traced-lists';
@@ -9,9 +11,6 @@ export const mean: CalcFunction = {
 	examples: [{ source: 'mean(1 V, 2 V, 6 V)', result: '3 V' }],
 	count: [1, Infinity],
 	type: (args) => expectSame(args, 'Averages'),
-	compute: (args) => {
-		const all = gathered(args);
-		return all.reduce((a, b) => a + b / all.length, 0);
-	},
+	compute: (args) => answered(readings.mean(Array.from(gathered(args)))),
 	trace: (tape, args) => ({ node: meanOf(tape, allNodes(tape, args)) }),
 };

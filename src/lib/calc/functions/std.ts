@@ -1,7 +1,7 @@
 import { expectSame, type CalcFunction } from './function';
 import { ofDimension } from '../types';
 import { gathered } from './gathered';
-import { sampleVariance } from './sample-variance';
+import { sampleDeviation } from './sample-variance';
 import { allNodes, varianceOf } from './traced-lists';
 
 export const std: CalcFunction = {
@@ -14,7 +14,7 @@ export const std: CalcFunction = {
 		const type = expectSame(args, 'Takes the spread of');
 		return type.point && type.dimension ? ofDimension(type.dimension) : type;
 	},
-	compute: (args) => Math.sqrt(sampleVariance(gathered(args))),
+	compute: (args) => sampleDeviation(gathered(args)),
 	trace: (tape, args) => ({
 		node: tape.unary('sqrt', varianceOf(tape, allNodes(tape, args))),
 	}),

@@ -1,3 +1,5 @@
+import * as readings from '../curves/univariate';
+import { isRefusal } from '../tables/refusal';
 import { expectSame, refusePoint, type CalcFunction } from './function';
 import { gathered } from './gathered';
 import { folded } from './traced-lists';
@@ -13,6 +15,11 @@ export const sum: CalcFunction = {
 		if (args[0]) refusePoint({ ...args[0], type }, 'Adds');
 		return type;
 	},
-	compute: (args) => gathered(args).reduce((a, b) => a + b, 0),
+	compute: (args) => {
+		const all = Array.from(gathered(args));
+		const total = readings.sum(all);
+		// What is beyond all numbers is refused as every other result of that kind.
+		return isRefusal(total) ? all.reduce((a, b) => a + b, 0) : total;
+	},
 	trace: (tape, args) => folded(tape, args, 'add'),
 };

@@ -1,3 +1,5 @@
+import * as univariate from '../../curves/univariate';
+import { isRefusal } from '../../tables/refusal';
 import type { Distribution, ParameterFault } from './distribution';
 
 /** Readings of one quantity (Type A): their mean, s/√n and n − 1 (JCGM 100:2008, 4.2). */
@@ -15,17 +17,18 @@ export function repeated(values: ArrayLike<number>): Readings | ParameterFault {
 			parameter: 1,
 			message: 'The spread of readings needs two of them at least',
 		};
-	let mean = 0;
-	for (let i = 0; i < n; i++) {
-		const value = values[i]!;
-		if (!Number.isFinite(value))
-			return { fault: 'notFinite', parameter: i + 1, message: 'A reading must be a finite number' };
-		mean += (value - mean) / (i + 1);
-	}
-	let squares = 0;
-	for (let i = 0; i < n; i++) squares += (values[i]! - mean) ** 2;
-	const u = Math.sqrt(squares / (n - 1) / n);
-	if (!(u > 0))
+	const all = Array.from(values);
+	const infinite = all.findIndex((value) => !Number.isFinite(value));
+	if (infinite >= 0)
+		return {
+			fault: 'notFinite',
+			parameter: infinite + 1,
+			message: 'A reading must be a finite number',
+		};
+	const mean = univariate.mean(all);
+	const deviation = univariate.standardDeviation(all);
+	const u = isRefusal(deviation) ? 0 : deviation / Math.sqrt(n);
+	if (isRefusal(mean) || !(u > 0))
 		return {
 			fault: 'noSpread',
 			parameter: 1,
