@@ -5,8 +5,7 @@ import { rectangular } from '$lib/calc/doubt/distributions/rectangular';
 import { tolerance } from '$lib/calc/doubt/intervals';
 import { simulate, type TrialResult } from '$lib/calc/doubt/monte-carlo';
 import { validate } from '$lib/calc/doubt/validation';
-import gumS1 from '../data/gum-s1.json';
-import { check, titleOf } from './published';
+import { caseOf, check, titleOf } from './published';
 import { Sheet, type Formula } from './sheet';
 
 const trials = 400_000;
@@ -98,12 +97,12 @@ describe(titleOf('s1-9.3'), () => {
 
 	it('agrees with the exact moments by trials', () => {
 		const { mean, standardUncertainty, symmetric, shortest } = run(sheet, 'dm');
-		const exact = gumS1.cases.find((each) => each.id === id)!.exact!;
+		const exact = caseOf(id).exact!;
 		expect(Math.abs(mean - 1.234)).toBeLessThan((5 * exact.u_mg) / Math.sqrt(trials));
 		expect(Math.abs(standardUncertainty - exact.u_mg)).toBeLessThan(5e-4);
 		// Print and recomputation differ by 0.001 in place and agree in length; the ends are those of a long run.
-		expect(Math.abs(symmetric[0] - exact.our_MC_symmetric_95[0]!)).toBeLessThan(slack(exact.u_mg));
-		expect(Math.abs(symmetric[1] - exact.our_MC_symmetric_95[1]!)).toBeLessThan(slack(exact.u_mg));
+		expect(Math.abs(symmetric[0] - exact.our_MC_symmetric_95[0])).toBeLessThan(slack(exact.u_mg));
+		expect(Math.abs(symmetric[1] - exact.our_MC_symmetric_95[1])).toBeLessThan(slack(exact.u_mg));
 		expect(Math.abs(shortest[1] - shortest[0] - 0.29907)).toBeLessThan(0.002);
 	});
 });
@@ -131,13 +130,11 @@ describe.each([
 		expect(needsTrials(sheet.propagated('loss'), sheet.doubts)).toBe(x1 < 0.05);
 
 		const result = run(sheet, 'loss');
-		const { exact_symmetric_95_1e6: exact, exact_shortest_95_1e6: short } = gumS1.cases.find(
-			(each) => each.id === id,
-		)!;
+		const { exact_symmetric_95_1e6: exact, exact_shortest_95_1e6: short } = caseOf(id);
 		expect(Math.abs(result.mean - x1 * x1 - 5e-5)).toBeLessThan((5 * u) / Math.sqrt(trials));
-		expect(Math.abs(result.symmetric[0] - exact![0]! * 1e-6)).toBeLessThan(slack(u));
-		expect(Math.abs(result.symmetric[1] - exact![1]! * 1e-6)).toBeLessThan(slack(u));
-		const length = (short![1]! - short![0]!) * 1e-6;
+		expect(Math.abs(result.symmetric[0] - exact![0] * 1e-6)).toBeLessThan(slack(u));
+		expect(Math.abs(result.symmetric[1] - exact![1] * 1e-6)).toBeLessThan(slack(u));
+		const length = (short![1] - short![0]) * 1e-6;
 		expect(Math.abs(result.shortest[1] - result.shortest[0] - length)).toBeLessThan(slack(u));
 	});
 });

@@ -1,8 +1,7 @@
 import { readBands, writeBands } from '$lib/calc/tables/colour-bands';
 import { isRefusal } from '$lib/calc/tables/refusal';
 import { toleranceOf } from '$lib/calc/tables/tolerance-letters';
-import { readValueCode, writeValueCode } from '$lib/calc/tables/value-codes';
-import { readFileSync } from 'node:fs';
+import iec60062 from '$lib/proof/data/iec60062.json';
 import { expect, it } from 'vitest';
 
 // IEC 60062:2016; the data say which rows were seen in print and which are from memory.
@@ -17,40 +16,16 @@ interface Codes {
 	}[];
 	symmetric_percent?: Record<string, number>;
 	asymmetric_percent?: Record<string, [number, number]>;
-	resistors?: { code: string; ohm: number }[];
-	capacitors?: { code: string; farad: number }[];
 	examples?: { bands: string[]; ohm: number; tolerance_percent: number; tempco_ppm?: number }[];
 }
 
-const file = new URL('../data/iec60062.json', import.meta.url);
-const { cases } = JSON.parse(readFileSync(file, 'utf8')) as { cases: Codes[] };
+const cases = iec60062.cases as unknown as Codes[];
 
 function table<Key extends keyof Codes>(key: Key): NonNullable<Codes[Key]> {
 	const found = cases.find((one) => one[key] !== undefined)?.[key];
 	if (found === undefined) throw new Error(`No ${key}`);
 	return found;
 }
-
-it.each(table('resistors'))('$code is $ohm ohm', ({ code, ohm }) => {
-	expect(readValueCode(code)).toEqual({ kind: 'resistance', value: ohm });
-});
-
-it.each(table('capacitors'))('$code is $farad F', ({ code, farad }) => {
-	expect(readValueCode(code)).toEqual({ kind: 'capacitance', value: farad });
-});
-
-it('writes codes that read back, the printed ones unless the standard has two for a value', () => {
-	for (const { code, ohm } of table('resistors')) {
-		const written = writeValueCode(ohm, 'resistance');
-		// 0R1 and R10 are the same value.
-		expect(written).toBe(code === '0R1' ? 'R10' : code);
-	}
-	for (const { code, farad } of table('capacitors')) {
-		const written = writeValueCode(farad, 'capacitance');
-		// n33 and 330p, u33 and 330n are the same values.
-		expect(written).toBe({ n33: '330p', u33: '330n' }[code] ?? code);
-	}
-});
 
 it('knows every tolerance letter', () => {
 	const symmetric = Object.entries(table('symmetric_percent'));
