@@ -66,6 +66,29 @@ test('a returned note stays returned until it is proposed again', async () => {
 	expect((await candidates.get(cast.author, number)).candidate.ordinal).toBe(2);
 });
 
+test('a candidate keeps budget, bounds and trials of what its requirements speak of, the same each time', async () => {
+	const cells = [
+		{
+			kind: 'calculation' as const,
+			source: 'R1 = tolerance(1 kohm, 1 %)\nI1 = 5 V / R1\nP1 = R1 * I1^2',
+		},
+		{ kind: 'requirement' as const, source: 'I1 <= 5.2 mA' },
+	];
+	const { number } = await writeNote(cast.author, 'In doubt', cells);
+	const results = async () => (await candidates.get(cast.author, number)).candidate.results;
+	await propose(cast.author, number);
+	const first = await results();
+	expect(first.quantities.I1?.budget).toMatchObject([{ input: 'R1', share: 1 }]);
+	expect(first.quantities.I1?.worstCase?.exact).toBe(true);
+	expect(first.quantities.I1?.monteCarlo).toMatchObject({ trials: 1_000_000, validated: false });
+	expect(first.quantities.P1?.monteCarlo).toBeUndefined();
+	const reason = 'Once more.';
+	const signed = { ...(await seen(cast.engineer, number)), reason };
+	await candidates.sendBack(cast.engineer, number, signed);
+	await propose(cast.author, number);
+	expect(await results()).toEqual(first);
+});
+
 test('authors may not check, nor may who prepared it', async () => {
 	const { id, number } = await writeNote(cast.author);
 	await edit(cast.engineer, id, 1, ' ');

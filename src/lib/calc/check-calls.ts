@@ -47,7 +47,7 @@ function checkOwn(
 	types: Types,
 	check: Check,
 ): Type {
-	const key = `${node.name}(${args.map(({ type }) => `${type.kind} ${type.dimension?.key ?? '?'} ${type.point ? 'p' : ''} ${type.unit?.text ?? ''} ${JSON.stringify(type.text) ?? ''}`).join(';')})`;
+	const key = `${node.name}(${args.map(({ type }) => `${type.kind} ${type.dimension?.key ?? '?'} ${type.point ? 'p' : ''} ${type.unit?.text ?? ''} ${type.text === undefined ? '' : JSON.stringify(type.text)}`).join(';')})`;
 	const earlier = types.calls.get(key);
 	if (earlier === pending) types.budget.pending += 1;
 	if (earlier) return earlier;

@@ -1,5 +1,6 @@
 import { budgetOf, type Doubts } from './doubt/budget';
-import { simulate } from './doubt/monte-carlo';
+import type { Model } from './doubt/model';
+import { simulate, type TrialOptions, type TrialResult } from './doubt/monte-carlo';
 import { validate } from './doubt/validation';
 import type { Input } from './inputs';
 import type { Computed } from './memory';
@@ -64,6 +65,28 @@ export function worstCaseOf(step: Step, type: Type, bounds: Bounds): WorstCase {
 	};
 }
 
+/** Values that are kept at once; more quantities, or more trials, are taken in turns. */
+const mostValues = 4_000_000;
+
+/** The trials of all outputs, of a few at a time so that memory stays bounded. They are the same trials. */
+function inGroups(
+	model: Model,
+	outputs: readonly number[],
+	options: TrialOptions,
+	onProgress?: (drawn: number, total: number) => boolean,
+): TrialResult[] {
+	const most = Math.max(1, Math.floor(mostValues / (options.trials ?? 1_000_000)));
+	const results: TrialResult[] = [];
+	const groups = Math.ceil(outputs.length / most);
+	for (let i = 0; i < groups; i++) {
+		const group = outputs.slice(i * most, (i + 1) * most);
+		const told = (drawn: number, total: number) =>
+			onProgress?.(i * total + drawn, groups * total) ?? true;
+		results.push(...simulate(model, group, options, told));
+	}
+	return results;
+}
+
 /** Trials of some quantities of a note by name; those that are exact or unknown are left out. */
 export function trialsOf(
 	note: Note,
@@ -90,7 +113,7 @@ export function trialsOf(
 		...(adaptive !== undefined && { adaptive }),
 	};
 	const outputs = wanted.map(({ step }) => places.get(step)!);
-	const results = simulate(model, outputs, options, onProgress);
+	const results = inGroups(model, outputs, options, onProgress);
 	wanted.forEach(({ computed, step }, i) => {
 		const result = results[i]!;
 		const { type } = computed;

@@ -199,6 +199,7 @@ function verdictOf(
 			expandedUncertainty: differenceFromSI(doubt.expandedUncertainty, unit),
 		}),
 		...(guarded && { guardBand }),
+		dependsOn: line.references.map(({ typed }) => typed),
 		probability,
 	};
 }

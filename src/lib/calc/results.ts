@@ -202,6 +202,8 @@ export interface Requirement {
 	expandedUncertainty?: number;
 	/** Guard band w at each limit, in `unit`: U of the distance to it; absent while that is exact. */
 	guardBand?: { lower: number | null; upper: number | null };
+	/** Names that it uses, in order of first use. */
+	dependsOn: string[];
 	/** Probability that the requirement is fulfilled (JCGM 106:2012, 7). */
 	probability: number;
 }

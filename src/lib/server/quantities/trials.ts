@@ -3,6 +3,7 @@ import type { MonteCarlo, Quantity } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { demand, type Actor } from '../auth/access';
 import { evaluateInChild } from '../evaluation/pool';
+import { seedOf } from '../evaluation/seed';
 import * as store from '../evaluation/store';
 import * as notes from '../notes/notes';
 import { find } from './quantities';
@@ -70,9 +71,4 @@ function drawn(quantities: Record<string, Quantity>, name: string): Drawn {
 	const { monteCarlo, ...quantity } = find(quantities, name);
 	if (!monteCarlo) throw new AppError('unavailable', 'No trials could be drawn.');
 	return { ...quantity, monteCarlo };
-}
-
-/** A note's own seed, so that whoever draws its trials gets the same. */
-function seedOf(noteId: string): number {
-	return parseInt(noteId.slice(0, 8), 16);
 }

@@ -16,6 +16,7 @@ import * as updates from '../notes/updates';
 import * as blockers from './blockers';
 import { seal } from './digest';
 import { freeze } from './freeze';
+import { frozenResults } from './frozen-results';
 import { statusOf } from './review';
 import * as rules from './rules';
 import { sign } from './sign';
@@ -54,16 +55,17 @@ export async function propose(actor: Actor, number: string, password: string): P
 	demand(actor, 'write');
 	const note = await notes.get(actor, number);
 	await signIn.confirm(actor, password);
-	const { seq, content, results, pending } = await current(note.id);
+	const { seq, content, results: shown, pending } = await current(note.id);
 	if (pending) {
 		throw new AppError('blocked', 'Edits are still arriving. Wait until the page says Saved.');
 	}
-	const faults = blockers.faults(content, results);
+	const faults = blockers.faults(content, shown);
 	if (faults.length > 0) {
 		throw new AppError('blocked', 'A line with an error cannot be proposed.', {
 			details: { blockers: faults },
 		});
 	}
+	const results = await frozenResults(note.id, content, shown);
 	await db().transaction(async (tx) => {
 		await lock(tx, note.id);
 		const standing = await standings.read(tx, note.id);

@@ -1,0 +1,26 @@
+import { defaultOptions } from '$lib/calc/engine';
+import type { Evaluation } from '$lib/calc/results';
+import type { NoteContent } from '$lib/note/document';
+import { evaluateInChild } from '../evaluation/pool';
+import { seedOf } from '../evaluation/seed';
+
+/** Quantities whose trials are drawn at most; those of the first requirements come first. */
+const most = 20;
+
+/**
+ * Results as a candidate keeps them: beside those of the sheet, budgets, bounds and trials (JCGM 101:2008) of the
+ * quantities in doubt that requirements speak of.
+ */
+export async function frozenResults(
+	noteId: string,
+	content: NoteContent,
+	results: Evaluation,
+): Promise<Evaluation> {
+	const named = results.requirements.flatMap(({ dependsOn }) => dependsOn);
+	const judged = [...new Set(named)].filter(
+		(name) => results.quantities[name]?.standardUncertainty !== undefined,
+	);
+	if (judged.length === 0) return results;
+	const monteCarlo = { quantities: judged.slice(0, most), seed: seedOf(noteId) };
+	return evaluateInChild(content.cells, { ...defaultOptions, detail: judged, monteCarlo });
+}
