@@ -33,6 +33,8 @@ export class Sheet {
 	LineDetail = $state.raw<typeof LineDetailType>();
 	/** Cell whose thread form is open. */
 	composing = $state<string>();
+	/** Cell below which a divider is searched for; null on an empty sheet. */
+	finding = $state<string | null>();
 	readonly #doors = new Map<string, (edge: Edge) => void>();
 
 	constructor({ note, person, content, evaluation, threads }: Start) {
