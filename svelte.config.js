@@ -8,7 +8,7 @@ export default {
 		adapter: adapter({ out: 'build/web', precompress: true }),
 		// Svelte writes measured positions (gauges, cursors) as style attributes, so only scripts are strict.
 		csp: {
-			mode: 'nonce',
+			mode: 'auto',
 			directives: {
 				'default-src': ['self'],
 				'script-src': ['self'],

@@ -52,7 +52,13 @@ function openSync(server: Server): { rooms: Rooms; gate: Gate } {
 async function webHandler(): Promise<RequestListener> {
 	const address = new URL('./web/handler.js', import.meta.url).href;
 	const { handler } = (await import(address)) as { handler: RequestListener };
-	return handler;
+	return (request, response) => {
+		// Of files and of pages made at build time; other pages say more and put their own in place of these.
+		response.setHeader('x-content-type-options', 'nosniff');
+		response.setHeader('referrer-policy', 'same-origin');
+		response.setHeader('content-security-policy', "frame-ancestors 'none'");
+		handler(request, response);
+	};
 }
 
 const noPages: RequestListener = (_, response) => {

@@ -38,6 +38,7 @@ const signIn = 303;
 export const accessTable: Record<string, Row> = {
 	'GET /': { expect: { all: 303 } },
 	'GET /healthz': { expect: { all: 200 } },
+	'GET /handbook/proof': { expect: { all: 200 } },
 	'GET /sign-in': { expect: { stranger: 200, all: 303 } },
 	'POST /sign-in': {
 		form: ({ email }) => ({ email, password, to: '/notes' }),

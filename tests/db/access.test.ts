@@ -147,6 +147,7 @@ test('every answer carries the headers that keep it from being framed or guessed
 	for (const path of [
 		'/notes',
 		'/healthz',
+		'/handbook/proof',
 		'/no-such-page',
 		'/api/notes/MN-990/threads',
 		'/api/v1/notes/MN-990',
