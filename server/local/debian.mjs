@@ -47,6 +47,34 @@ export async function installPackages(missing) {
 	return `installed ${missing.join(', ')}`;
 }
 
+/**
+ * Programs that tests compare the engine with, and where Debian puts them. Without one its comparison is left out, with
+ * a notice.
+ */
+const peers = {
+	units: '/usr/bin/units',
+	ngspice: '/usr/bin/ngspice',
+	'python3-uncertainties': '/usr/lib/python3/dist-packages/uncertainties',
+};
+
+/**
+ * Installs the programs to compare with where that is ours to do and possible.
+ * @returns {Promise<string>} a remark
+ */
+export async function installPeers() {
+	const missing = Object.entries(peers).flatMap(([name, path]) => (existsSync(path) ? [] : [name]));
+	if (missing.length === 0) return 'all here';
+	const left = `left out: ${missing.join(', ')}`;
+	if (!existsSync('/usr/bin/apt-get') || process.getuid?.() !== 0) return left;
+	try {
+		await apt('update');
+		await install(missing);
+	} catch (error) {
+		return `${left}; ${error instanceof Error ? error.message.split('\n')[0] : 'not to be had'}`;
+	}
+	return `installed ${missing.join(', ')}`;
+}
+
 const clusterSettings = '/etc/postgresql-common/createcluster.conf';
 
 /**

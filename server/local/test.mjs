@@ -2,6 +2,7 @@ import { mkdirSync, rmSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { checks } from './checks.mjs';
 import { endCommands } from './commands.mjs';
+import { installPeers } from './debian.mjs';
 import { alone } from './lock.mjs';
 import { root } from './place.mjs';
 import { release } from './postgres.mjs';
@@ -44,7 +45,10 @@ for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
 mkdirSync(results, { recursive: true });
 rmSync(lastLine, { force: true });
 try {
-	await alone('demo', () => setUp(['postgresql', 'chromium']));
+	await alone('demo', async () => {
+		await setUp(['postgresql', 'chromium']);
+		await step('Programs to compare with', installPeers);
+	});
 	for (const check of checks) await runCheck(check);
 } catch (error) {
 	if (!ending) {

@@ -15,3 +15,15 @@ export function printed(program: string, args: readonly string[], input: string)
 	if (error) throw error;
 	return stdout;
 }
+
+/** Debian's interpreter, whose packages are Debian's; another one on the path has packages of its own or none. */
+export const python = '/usr/bin/python3';
+
+/** Whether Debian's Python has a module; where it has not, a notice says what is left out and why. */
+export function hasPythonModule(module: string, debianPackage: string, whatFor: string): boolean {
+	if (spawnSync(python, ['-c', `import ${module}`]).status === 0) return true;
+	process.stderr.write(
+		`${whatFor} is left out: Python has no module \`${module}\` here. Debian has it in the package ${debianPackage}.\n`,
+	);
+	return false;
+}

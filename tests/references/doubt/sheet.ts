@@ -100,8 +100,8 @@ export class Sheet {
 	/** Contribution of an input, in the unit of the line. */
 	contribution(name: string, input: string): number {
 		const number = this.#steps[this.place(input)]!.inputs[0]!;
-		return budgetOf(this.propagated(name), this.doubts).find((row) => row.input === number)!
-			.contribution;
+		const { inputs, contributions } = budgetOf(this.propagated(name), this.doubts);
+		return contributions[inputs.indexOf(number)]!;
 	}
 
 	enclosure(name: string): Enclosure {
