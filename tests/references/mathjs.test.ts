@@ -6,7 +6,7 @@ import { compute } from '../support/notes';
 import { kinds, typedFormulas } from '../support/typed-formulas';
 
 // The whole of mathjs, with its own units and arithmetic, none of which the engine computes with.
-const math = create(all);
+const math = create(all!);
 
 /** What mathjs gives for a formula as a number in a unit, '1' for none; undefined where it has no such value. */
 function theirs(source: string, unit: string): number | undefined {

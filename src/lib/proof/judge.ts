@@ -68,7 +68,6 @@ function toRecomputation(computed: number, figure: Figure): Judgement {
 
 function reference(figure: Figure, recomputed: boolean): number {
 	const wanted = recomputed ? (figure.recomputed ?? figure.published) : figure.published;
-	if (wanted === null)
-		throw new Error(`${figure.quantity} has nothing to be held against`);
+	if (wanted === null) throw new Error(`${figure.quantity} has nothing to be held against`);
 	return Number(wanted);
 }

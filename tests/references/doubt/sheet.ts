@@ -13,7 +13,7 @@ import { worstCase, type WorstCase } from '$lib/calc/doubt/worst-case';
 export type Formula = number | string | [Unary, Formula] | [Binary, Formula, Formula];
 
 /** Narrows what makes a distribution, for inputs that are known to be right. */
-export function sure<Made extends object>(made: Made | ParameterFault): Made {
+function sure<Made extends object>(made: Made | ParameterFault): Made {
 	if ('fault' in made) throw new Error(made.message);
 	return made;
 }
