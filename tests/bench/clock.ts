@@ -11,8 +11,8 @@ export function medianMs(work: () => void, rounds = 60): number {
 	return quantile(sample, 0.5);
 }
 
-/** Throws unless two ways of computing a figure agree to nine digits. */
-export function agree(ours: number | null | undefined, theirs: number): void {
-	if (typeof ours !== 'number' || !(Math.abs(ours / theirs - 1) < 1e-9))
+/** Throws unless two ways of computing a figure agree. */
+export function agree(ours: number | null | undefined, theirs: number, within = 1e-9): void {
+	if (typeof ours !== 'number' || !(Math.abs(ours / theirs - 1) < within))
 		throw new Error(`two evaluations disagree: ${String(ours)} and ${theirs}`);
 }

@@ -1,4 +1,4 @@
-"""The divider channel of divider-channel.ts in NumPy, with the same results: mean, deviation, both intervals, bins."""
+"""The divider channel of trials.ts in NumPy, with the same results: mean, deviation, both intervals, bins."""
 
 import json
 import sys

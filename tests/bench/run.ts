@@ -18,12 +18,13 @@ import { table, type Row } from './row';
 import { setupRows } from './setup';
 import { sixtyLines } from './sixty-lines';
 import { syncRows } from './sync';
+import { trialRows } from './trials';
 
 /** Areas named on the command line; all of them when none is named. */
 const wanted = process.argv.slice(2);
 const rows: Row[] = [];
 
-if (wants('engine')) rows.push(...engineRows());
+if (wants('engine')) rows.push(...engineRows(), ...(await trialRows()));
 if (wants('page') || wants('sync')) rows.push(...(await servedRows()));
 if (wants('setup')) rows.push(...(await setupRows()));
 

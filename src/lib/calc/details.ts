@@ -22,7 +22,10 @@ export function budgetRows(
 	doubts: Doubts,
 ): BudgetRow[] {
 	const unit = unitOf(type);
-	return budgetOf(step.propagated, doubts).map(({ input, sensitivity, contribution, share }) => {
+	const budget = budgetOf(step.propagated, doubts);
+	return Array.from(budget.inputs, (input, i) => {
+		const sensitivity = budget.sensitivities[i]!;
+		const contribution = budget.contributions[i]!;
 		const { label, value, type: inputType, distribution } = inputs[input]!;
 		const inputUnit = unitOf(inputType);
 		const perUnit = differenceFromSI(1, inputUnit);
@@ -36,7 +39,7 @@ export function budgetRows(
 			distribution: kind,
 			sensitivity: differenceFromSI(sensitivity, unit) / perUnit,
 			contribution: differenceFromSI(contribution, unit),
-			share,
+			share: budget.shares[i]!,
 			texts: {
 				value: readout(value, inputUnit, !inputType.fixed).text,
 				standardUncertainty: short(uncertainty, inputType),

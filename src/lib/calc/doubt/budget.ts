@@ -10,14 +10,14 @@ export interface Doubts {
 	correlations?: Correlations;
 }
 
-/** One input's part in a quantity's uncertainty. */
-export interface Contribution {
-	input: number;
-	sensitivity: number;
+/** The parts that inputs have in a quantity's uncertainty, in columns, the greatest contribution first. */
+export interface Budget {
+	inputs: number[];
+	sensitivities: number[];
 	/** |sensitivity| × standard uncertainty, in the quantity's unit. */
-	contribution: number;
-	/** Part of the variance; shares add up to 1, and one may be negative where inputs are correlated. */
-	share: number;
+	contributions: number[];
+	/** Parts of the variance; they add up to 1, and one may be negative where inputs are correlated. */
+	shares: number[];
 }
 
 export interface Uncertainty {
@@ -84,36 +84,46 @@ export function uncertaintyOf(line: Propagated, doubts: Doubts, coverage: number
 	};
 }
 
-/** Contributions of all inputs a quantity depends on, those without effect too, the greatest first. */
-export function budgetOf(line: Propagated, doubts: Doubts): Contribution[] {
+/** Scratch for putting a budget in its order. */
+let [order, keys] = [new Int32Array(64), new Float64Array(64)];
+
+/** Contributions of all inputs a quantity depends on, those without effect too. */
+export function budgetOf(line: Propagated, doubts: Doubts): Budget {
 	const { support, gradient } = line;
 	const n = support.length;
-	const parts = new Float64Array(n);
-	const shares = new Float64Array(n);
-	const order = new Int32Array(n);
 	const alone = (doubts.correlations ?? uncorrelated).groups.length === 0;
+	if (order.length < n) [order, keys] = [new Int32Array(2 * n), new Float64Array(2 * n)];
 	let variance = 0;
 	for (let i = 0; i < n; i++) {
-		const part = gradient[i]! * doubts.uncertainties[support[i]!]!;
-		parts[i] = Math.abs(part);
-		shares[i] = part * (alone ? part : correlated(line, doubts, i));
-		variance += shares[i]!;
-		// Put in its place among those before it: they are few, and often nearly sorted already.
+		const part = Math.abs(gradient[i]! * doubts.uncertainties[support[i]!]!);
+		// Put in its place among those before it: they are few.
 		let to = i;
-		for (; to > 0 && parts[order[to - 1]!]! < parts[i]!; to--) order[to] = order[to - 1]!;
+		for (; to > 0 && keys[to - 1]! < part; to--) {
+			keys[to] = keys[to - 1]!;
+			order[to] = order[to - 1]!;
+		}
+		keys[to] = part;
 		order[to] = i;
 	}
-	const rows: Contribution[] = new Array<Contribution>(n);
+	// Plain lists: typed arrays of this size cost more to make than to fill.
+	const inputs: number[] = [];
+	const sensitivities: number[] = [];
+	const contributions: number[] = [];
+	const shares: number[] = [];
 	for (let k = 0; k < n; k++) {
 		const i = order[k]!;
-		rows[k] = {
-			input: support[i]!,
-			sensitivity: gradient[i]!,
-			contribution: parts[i]!,
-			share: variance > 0 ? shares[i]! / variance : 0,
-		};
+		const contribution = keys[k]!;
+		const sensitivity = gradient[i]!;
+		const share =
+			contribution * (alone ? contribution : Math.sign(sensitivity) * correlated(line, doubts, i));
+		variance += share;
+		inputs.push(support[i]!);
+		sensitivities.push(sensitivity);
+		contributions.push(contribution);
+		shares.push(share);
 	}
-	return rows;
+	for (let k = 0; k < n; k++) shares[k] = variance > 0 ? shares[k]! / variance : 0;
+	return { inputs, sensitivities, contributions, shares };
 }
 
 /**

@@ -57,7 +57,7 @@ export function propagate(
 				args.map((arg) => arg.support.length > 0),
 			)
 		: 0;
-	const gradient = new Float64Array(support.length);
+	const gradient = zeros(support.length);
 	for (let k = 0; k < args.length; k++) {
 		const arg = args[k]!;
 		remarks |= arg.remarks;
@@ -78,6 +78,18 @@ export function propagate(
 	});
 	if (curvature) result.curvature = curvature;
 	return result;
+}
+
+/** What is left of the block that gradients are cut from: one of their size costs more to make alone than to fill. */
+let block = new Float64Array(0);
+const blockLength = 4_096;
+
+function zeros(length: number): Float64Array {
+	if (length > blockLength / 8) return new Float64Array(length);
+	if (block.length < length) block = new Float64Array(blockLength);
+	const cut = block.subarray(0, length);
+	block = block.subarray(length);
+	return cut;
 }
 
 type Scratch = [Float64Array, Float64Array, Float64Array];
