@@ -15,6 +15,7 @@ export class OpenLine {
 	#opened = $state<string>();
 	#detail = $state.raw<QuantityDetail>();
 	#failure = $state<string>();
+	#valueless = $state(false);
 	#quantity: Quantity | undefined;
 	#evaluation = $state.raw<Evaluation>();
 	#timer: ReturnType<typeof setTimeout> | undefined;
@@ -34,6 +35,10 @@ export class OpenLine {
 	/** What is known; the last answer until a newer one is there. */
 	get detail(): QuantityDetail | undefined {
 		return this.#detail;
+	}
+	/** Its line has no value at the moment, so that what is known is of before. */
+	get valueless(): boolean {
+		return this.#valueless;
 	}
 	/** Why nothing newer is known, a sentence. */
 	get failure(): string | undefined {
@@ -70,12 +75,14 @@ export class OpenLine {
 		if (this.#opened === undefined) return;
 		this.#see();
 		clearTimeout(this.#timer);
-		this.#timer = setTimeout(() => void this.#ask(), settledMs);
+		if (!this.#valueless) this.#timer = setTimeout(() => void this.#ask(), settledMs);
 	}
 
 	#see(): void {
 		const quantity = this.quantityOf(this.#opened ?? '');
-		if (this.#quantity && quantity && !sameFigures(this.#quantity, quantity)) this.trials.forget();
+		this.#valueless = quantity === undefined;
+		if (!quantity) return;
+		if (this.#quantity && !sameFigures(this.#quantity, quantity)) this.trials.forget();
 		this.#quantity = quantity;
 	}
 

@@ -131,13 +131,15 @@ function placed(
 ): Result[] {
 	const list: Result[] = [];
 	for (const line of evaluation.lines) {
-		if (line.cell !== cell || !line.readout) continue;
+		if (line.cell !== cell) continue;
 		const at = startOf(doc, line.line, line.name);
-		if (at !== undefined) {
+		if (at === undefined) continue;
+		// It stays open while its line has no value, as while somebody types further up.
+		if (Behind && line.name !== undefined && line.name === opener.opened)
+			list.push({ kind: 'detail', at, widget: detail(line.name, Behind, opener) });
+		if (line.readout) {
 			const remarks = remarksOf(evaluation, line.name);
 			list.push({ kind: 'readout', at, widget: readout(line, line.readout, remarks, opener) });
-			if (Behind && line.name !== undefined && line.name === opener.opened)
-				list.push({ kind: 'detail', at, widget: detail(line.name, Behind, opener) });
 		}
 	}
 	for (const requirement of evaluation.requirements) {
