@@ -1,5 +1,11 @@
 import { Calculator } from '$lib/calc/calculator';
+import { helpWithTrials } from '$lib/calc/details';
+import type { SharedDraw } from '$lib/calc/doubt/shared-trials';
 import { defaultOptions, evaluate } from '$lib/calc/evaluate';
+import { Memory } from '$lib/calc/memory';
+import { Note } from '$lib/calc/note';
+import { readLines } from '$lib/calc/note-lines';
+import type { Cell } from '$lib/calc/results';
 import {
 	placeBytes,
 	placeDescriptor,
@@ -8,6 +14,8 @@ import {
 	type Task,
 } from '$lib/server/evaluation/exchange';
 import { writeSync } from 'node:fs';
+import { availableParallelism } from 'node:os';
+import { isMainThread, parentPort, Worker } from 'node:worker_threads';
 
 /** What is kept of the notes computed last, so that an edit computes only what depends on it. */
 const calculators = new Map<string, Calculator>();
@@ -42,8 +50,10 @@ function compute({ id, cells, options, skip, note }: Task): Answer {
 		answer({ kind: 'progress', id, drawn, total });
 		return true;
 	};
-	const calculator = calculatorOf(note);
-	return { kind: 'done', id, results: calculator.evaluate(cells, options, { at, skip, trials }) };
+	const crew = (names: readonly string[], draw: SharedDraw) =>
+		helper().postMessage({ cells, names, draw });
+	const watch = { at, skip, trials, ...(availableParallelism() > 1 && { crew }) };
+	return { kind: 'done', id, results: calculatorOf(note).evaluate(cells, options, watch) };
 }
 
 function calculatorOf(note: string | undefined): Calculator {
@@ -69,7 +79,7 @@ function tell(buffer: Buffer): void {
 /** Runs the engine's paths once, so that the first note does not wait for the compiler. */
 function warmUp(): void {
 	const source =
-		'R1 = 470 kohm\nR2 = preferred(R1 * 0.08, E96)\nk = R2 / (R1 + R2)\nV1 = 32 V * k\nx = 3 V + 2 A';
+		'R1 = tolerance(470 kohm, 1 %)\nR2 = preferred(R1 * 0.08, E96)\nk = R2 / (R1 + R2)\nV1 = 32 V * k\nx = 3 V + 2 A';
 	evaluate(
 		[
 			{ id: 'a', kind: 'calculation', source },
@@ -80,4 +90,32 @@ function warmUp(): void {
 	);
 }
 
-start();
+/** A second thread for drawing trials; it starts with the first ones and stays. */
+let thread: Worker | undefined;
+
+function helper(): Worker {
+	if (thread) return thread;
+	const started = new Worker(new URL(import.meta.url), {
+		resourceLimits: { maxOldGenerationSizeMb: 128 },
+	});
+	started.unref();
+	started.on('error', () => (thread = undefined));
+	thread = started;
+	return started;
+}
+
+/** What the second thread is asked: to compute the note itself and to draw trials of it beside the first one. */
+interface Help {
+	cells: readonly Cell[];
+	names: readonly string[];
+	draw: SharedDraw;
+}
+
+function help(): void {
+	parentPort?.on('message', ({ cells, names, draw }: Help) => {
+		helpWithTrials(new Note(readLines(cells, {}).lines, {}, new Memory()), names, draw);
+	});
+}
+
+if (isMainThread) start();
+else help();

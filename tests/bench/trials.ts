@@ -5,7 +5,7 @@ import type { Options, SourceCell } from '$lib/calc/results';
 import type { Answer, Task } from '$lib/server/evaluation/exchange';
 import { agree, medianMs } from './clock';
 import { python } from './python';
-import { row, type Row } from './row';
+import { quantile, row, type Row } from './row';
 
 /** A divider before a converter with twelve inputs in doubt, the model of `monte-carlo.py`. */
 const channel: SourceCell[] = [
@@ -44,21 +44,22 @@ export async function trialRows(): Promise<Row[]> {
 	const peer = python('monte-carlo.py', String(trials));
 	// Two sets of a million trials agree in their standard uncertainty to 1 in 1000.
 	if (peer) agree(found.standardUncertainty, peer.standardUncertainty, 5e-3);
+	const alone = medianMs(() => void evaluate(channel, options), 7);
 	return [
 		row({
 			id: 'engine.trials-1e6',
 			what: 'a million trials of a channel with 12 inputs, one core; peer: NumPy, one core',
-			value: medianMs(() => void evaluate(channel, options), 7),
+			value: alone,
 			unit: 'ms',
 			...(peer && { peer: peer.ms }),
 			most: 1,
 		}),
-		...(await memoryRows()),
+		...(await childRows(alone)),
 	];
 }
 
-/** Resident memory of an evaluator child after a million trials, and after a thousand edits (Linux). */
-async function memoryRows(): Promise<Row[]> {
+/** An evaluator child: trials with its second thread, and its memory after them and after a thousand edits (Linux). */
+async function childRows(alone: number): Promise<Row[]> {
 	const child = fork('build/evaluator.js', [], {
 		env: {},
 		execArgv: ['--max-old-space-size=192'],
@@ -85,7 +86,12 @@ async function memoryRows(): Promise<Row[]> {
 		return (Number(pages) * 4096) / 1e6;
 	};
 	try {
-		await ask({ cells: channel, options });
+		const times: number[] = [];
+		for (let round = 0; round < 8; round++) {
+			const start = performance.now();
+			await ask({ cells: channel, options });
+			times.push(performance.now() - start);
+		}
 		const afterTrials = await memory();
 		const edits = async (count: number) => {
 			for (let n = 0; n < count; n++) await ask({ cells: edit(n), options: defaultOptions });
@@ -94,6 +100,15 @@ async function memoryRows(): Promise<Row[]> {
 		const before = await edits(500);
 		const after = await edits(1_000);
 		return [
+			row({
+				id: 'engine.trials-two-threads',
+				what: 'the same trials in an evaluator, which draws them with two threads; peer: one thread',
+				// The first round starts the second thread.
+				value: quantile(times.slice(1), 0.5),
+				unit: 'ms',
+				peer: alone,
+				most: 0.65,
+			}),
 			row({
 				id: 'engine.memory-trials',
 				what: 'memory of an evaluator after a million trials',

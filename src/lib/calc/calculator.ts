@@ -85,7 +85,7 @@ function addDetails(
 		};
 	}
 	if (!monteCarlo) return;
-	const trials = trialsOf(note, options, monteCarlo, watch.trials);
+	const trials = trialsOf(note, options, monteCarlo, watch);
 	for (const name of monteCarlo.quantities) {
 		const computed = note.find(name);
 		const quantity = Object.hasOwn(quantities, name) ? quantities[name] : undefined;

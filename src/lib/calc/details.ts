@@ -1,10 +1,11 @@
 import { budgetOf, type Doubts } from './doubt/budget';
-import type { Model } from './doubt/model';
-import { simulate, type TrialOptions, type TrialResult } from './doubt/monte-carlo';
+import { simulate, summarise, type TrialOptions, type TrialResult } from './doubt/monte-carlo';
+import { awaitOthers, sharedDraw, takePart, type SharedDraw } from './doubt/shared-trials';
 import { validate } from './doubt/validation';
 import type { Input } from './inputs';
 import type { Computed } from './memory';
 import type { Note } from './note';
+import type { Watch } from './note-lines';
 import type { BudgetRow, MonteCarlo, MonteCarloOptions, Options, WorstCase } from './results';
 import { unitOf } from './show';
 import { modelOf, type Bounds, type Step } from './steps';
@@ -73,21 +74,60 @@ const mostValues = 4_000_000;
 
 /** The trials of all outputs, of a few at a time so that memory stays bounded. They are the same trials. */
 function inGroups(
-	model: Model,
-	outputs: readonly number[],
+	wanted: readonly Wanted[],
+	{ model, places }: ReturnType<typeof modelOf>,
 	options: TrialOptions,
-	onProgress?: (drawn: number, total: number) => boolean,
+	{ trials: told, crew }: Watch,
 ): TrialResult[] {
-	const most = Math.max(1, Math.floor(mostValues / (options.trials ?? 1_000_000)));
+	const count = options.trials ?? 1_000_000;
+	const most = Math.max(1, Math.floor(mostValues / count));
+	const groups = Math.ceil(wanted.length / most);
 	const results: TrialResult[] = [];
-	const groups = Math.ceil(outputs.length / most);
 	for (let i = 0; i < groups; i++) {
-		const group = outputs.slice(i * most, (i + 1) * most);
-		const told = (drawn: number, total: number) =>
-			onProgress?.(i * total + drawn, groups * total) ?? true;
-		results.push(...simulate(model, group, options, told));
+		const group = wanted.slice(i * most, (i + 1) * most);
+		const outputs = group.map(({ step }) => places.get(step)!);
+		const onProgress = (drawn: number, total: number) =>
+			told?.(i * total + drawn, groups * total) ?? true;
+		if (!crew || options.adaptive) {
+			results.push(...simulate(model, outputs, options, onProgress));
+			continue;
+		}
+		const draw = sharedDraw(outputs.length, count, options.seed);
+		crew(
+			group.map(({ name }) => name),
+			draw,
+		);
+		takePart(model, outputs, draw, onProgress);
+		awaitOthers(draw);
+		results.push(...draw.values.map((values) => summarise(values, options)));
 	}
 	return results;
+}
+
+/** Draws trials of quantities beside another thread that computes the same note. */
+export function helpWithTrials(note: Note, names: readonly string[], draw: SharedDraw): void {
+	const steps = wantedOf(note, names).map(({ step }) => step);
+	const { model, places } = modelOf(steps, note.inputs, note.correlations);
+	takePart(
+		model,
+		steps.map((step) => places.get(step)!),
+		draw,
+	);
+}
+
+interface Wanted {
+	name: string;
+	computed: Computed;
+	step: Step;
+}
+
+/** The quantities in doubt among some names. */
+function wantedOf(note: Note, names: readonly string[]): Wanted[] {
+	return names.flatMap((name) => {
+		const computed = note.find(name);
+		const step = computed && stepOf(computed);
+		return step ? [{ name, computed, step }] : [];
+	});
 }
 
 /** Trials of some quantities of a note by name; those that are exact or unknown are left out. */
@@ -95,28 +135,20 @@ export function trialsOf(
 	note: Note,
 	{ coverage }: Options,
 	{ quantities, trials, adaptive, seed }: MonteCarloOptions,
-	onProgress?: (drawn: number, total: number) => boolean,
+	watch: Watch = {},
 ): Map<Computed, MonteCarlo> {
-	const wanted = quantities.flatMap((name) => {
-		const computed = note.find(name);
-		const step = computed && stepOf(computed);
-		return step ? [{ computed, step }] : [];
-	});
+	const wanted = wantedOf(note, quantities);
 	const found = new Map<Computed, MonteCarlo>();
 	if (wanted.length === 0) return found;
-	const { model, places } = modelOf(
-		wanted.map(({ step }) => step),
-		note.inputs,
-		note.correlations,
-	);
+	const steps = wanted.map(({ step }) => step);
 	const options = {
 		seed,
 		coverage,
 		...(trials !== undefined && { trials }),
 		...(adaptive !== undefined && { adaptive }),
 	};
-	const outputs = wanted.map(({ step }) => places.get(step)!);
-	const results = inGroups(model, outputs, options, onProgress);
+	const model = modelOf(steps, note.inputs, note.correlations);
+	const results = inGroups(wanted, model, options, watch);
 	wanted.forEach(({ computed, step }, i) => {
 		const result = results[i]!;
 		const { type } = computed;

@@ -2,6 +2,7 @@ import { bounds } from './bounds';
 import { sourceOf } from './cells';
 import { givenLines, type Given } from './given-cells';
 import { parseLine, unreadLine, type ParsedLine } from './language/parse-line';
+import type { SharedDraw } from './doubt/shared-trials';
 import type { Cell, Fault } from './results';
 import { Trouble } from './trouble';
 
@@ -12,6 +13,8 @@ export interface Watch {
 	skip?: readonly SkippedLine[];
 	/** Told how many trials are drawn; answers false to stop them. */
 	trials?: (drawn: number, total: number) => boolean;
+	/** Has other threads take part in drawing trials of quantities; they begin when they can. */
+	crew?: (names: readonly string[], draw: SharedDraw) => void;
 }
 
 /** A line that an earlier try could not finish. */

@@ -5,7 +5,8 @@ import { normal } from './distributions/normal';
 import { rectangular } from './distributions/rectangular';
 import { student } from './distributions/student';
 import type { Model } from './model';
-import { drawStretches, simulate, Simulation, summarise } from './monte-carlo';
+import { simulate, Simulation, summarise } from './monte-carlo';
+import { awaitOthers, sharedDraw, takePart } from './shared-trials';
 import { sorted } from './sort';
 import { TapeBuilder } from './tape';
 
@@ -58,13 +59,14 @@ describe('Trials', () => {
 	});
 
 	it('are the same put together from the parts of several workers', () => {
-		const parts = [
-			[0, 4],
-			[4, 5],
-			[5, 12],
-		].map(([from, to]) => drawStretches(two, [2], 9, from!, to!)[0]!);
-		const values = Float64Array.from(parts.flatMap((part) => [...part]));
-		expect(summarise(values, {})).toEqual(simulate(two, [2], { seed: 9, trials: 12_000 })[0]);
+		const draw = sharedDraw(1, 12_345, 9);
+		// Another thread has taken the first four stretches and draws them later.
+		Atomics.store(draw.counter, 0, 4);
+		takePart(two, [2], draw);
+		Atomics.store(draw.counter, 0, 0);
+		takePart(two, [2], draw);
+		awaitOthers(draw);
+		expect(summarise(draw.values[0]!, {})).toEqual(whole);
 	});
 
 	it('tell their progress and stop when asked to', () => {
@@ -111,7 +113,9 @@ describe('Correlated inputs', () => {
 		['rectangular', [rectangular(1), rectangular(2)], (6 / Math.PI) * Math.asin(0.35), 0.01],
 	])('of %s shape come out correlated', (name, made, expected, error) => {
 		const r = name === 'rectangular' ? 0.7 : expected;
-		const [x, y] = drawStretches(model(made, r), [0, 1], 3, 0, 100);
+		const draw = sharedDraw(2, 100_000, 3);
+		takePart(model(made, r), [0, 1], draw);
+		const [x, y] = draw.values;
 		expect(Math.abs(correlation(x!, y!) - expected)).toBeLessThan(error);
 	});
 });

@@ -109,24 +109,6 @@ export function simulate(
 	return simulation.results();
 }
 
-/**
- * Draws part of the trials of a model, stretches `from` to `to` (not included), as one of several workers. Put together
- * in their order, the parts are the same trials as those of one `Simulation` with this seed.
- */
-export function drawStretches(
-	model: Model,
-	outputs: readonly number[],
-	seed: number,
-	from: number,
-	to: number,
-): Float64Array[] {
-	const trials = new Trials(model, compile(model, outputs), seed);
-	const parts = outputs.map(() => new Float64Array((to - from) * stretchLength));
-	for (let stretch = from; stretch < to; stretch++)
-		trials.draw(stretch, stretchLength, parts, (stretch - from) * stretchLength);
-	return parts;
-}
-
 /** Mean, standard deviation, intervals and histogram of the values of trials. */
 export function summarise(
 	values: Float64Array,

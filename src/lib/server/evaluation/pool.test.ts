@@ -1,4 +1,4 @@
-import { defaultOptions } from '$lib/calc/engine';
+import { defaultOptions, evaluate } from '$lib/calc/evaluate';
 import type { Cell } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { build } from 'esbuild';
@@ -156,6 +156,16 @@ describe('A pool of evaluators', () => {
 		await expect(stopped).rejects.toThrow('This was stopped.');
 		const next = await pool.evaluate(calculation('x = 1'), defaultOptions);
 		expect(next.quantities.x?.value).toBe(1);
+	}, 60_000);
+
+	it('draws the same trials whether one thread draws them or two', async () => {
+		const cells = calculation('R1 = tolerance(1 kohm, 1 %)\nI1 = normal(5 V, 1 mV) / R1');
+		const monteCarlo = { quantities: ['I1', 'R1'], trials: 500_500, seed: 3 };
+		const options = { ...defaultOptions, monteCarlo };
+		const pool = open();
+		// The second time its second thread is there from the beginning.
+		for (let time = 0; time < 2; time++)
+			expect(await pool.evaluate(cells, options)).toEqual(evaluate(cells, options));
 	}, 60_000);
 
 	it('answers edits of a note like a first evaluation of it', async () => {
