@@ -29,7 +29,7 @@ test.describe('The page of proofs, without script', () => {
 
 	test('stays within its width', async ({ page }) => {
 		await page.goto('/handbook/proof');
-		for (const width of [1400, 1024, 390]) {
+		for (const width of [1400, 1190, 1024, 890, 390, 320]) {
 			await page.setViewportSize({ width, height: 800 });
 			expect(
 				await page.evaluate(() => document.documentElement.scrollWidth),
