@@ -3,7 +3,8 @@ import type { Quantity, Readout } from './results';
 import type { Type } from './types';
 import { none } from './units/dimension';
 import { coherentUnit } from './units/coherent';
-import { compose, doubtfulReadout, formatNumber, readout } from './units/display';
+import { compose, doubtfulReadout, readout } from './units/display';
+import { formatNumber } from './units/number-text';
 import { fromSI, type Unit } from './units/unit';
 import { isGrid, type Value } from './values';
 

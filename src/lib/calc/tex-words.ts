@@ -1,7 +1,7 @@
 import type { Readout } from './results';
 import { typeset } from './symbol';
 import { level, type Piece } from './tex-pieces';
-import { formatNumber } from './units/display';
+import { formatNumber } from './units/number-text';
 import type { Unit } from './units/unit';
 
 const special: Readonly<Record<string, string>> = {

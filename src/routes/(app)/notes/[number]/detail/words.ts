@@ -1,4 +1,4 @@
-import { formatNumber } from '$lib/calc/units/display';
+import { formatNumber } from '$lib/calc/units/number-text';
 
 const distributions: Readonly<Record<string, string>> = {
 	normal: 'normal',

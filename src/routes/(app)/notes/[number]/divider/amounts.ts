@@ -1,6 +1,4 @@
-import { readout } from '$lib/calc/units/display';
-import { findSymbol } from '$lib/calc/units/table';
-import { product } from '$lib/calc/units/unit';
+import { formatNumber } from '$lib/calc/units/number-text';
 
 type UnitName = 'V' | 'ohm' | 'A' | 'W';
 
@@ -39,11 +37,22 @@ export function shareOf(text: string): number | undefined {
 	return match ? Number(`${match[1]}e-2`) : undefined;
 }
 
+const steps: readonly [string, number][] = [
+	['M', 6],
+	['k', 3],
+	['', 0],
+	['m', -3],
+	['µ', -6],
+	['n', -9],
+	['p', -12],
+];
+
 /** An amount as it is shown, with the prefix that fits. */
 export function shown(value: number, unit: UnitName, digits = 4): string {
-	const symbol = findSymbol(unit);
-	if (!symbol) throw new Error(`no unit ${unit}`);
-	return readout(value, product([{ symbol, power: 1 }]), true, digits).text;
+	const size = Number(Math.abs(value).toPrecision(digits));
+	const [prefix, power] = steps.find(([, least]) => size >= Number(`1e${least}`)) ?? ['', 0];
+	const number = formatNumber(value / Number(`1e${power}`), digits);
+	return `${number}\u00a0${prefix}${unit === 'ohm' ? 'Ω' : unit}`;
 }
 
 /** An amount as it is typed into a formula. */

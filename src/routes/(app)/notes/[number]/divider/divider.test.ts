@@ -33,6 +33,8 @@ describe('amounts', () => {
 
 	test('amounts are shown with a prefix, and typed as a formula takes them', () => {
 		expect(shown(38300, 'ohm')).toBe('38.3\u00a0kΩ');
+		expect(shown(0.0000695, 'A', 3)).toBe('69.5\u00a0µA');
+		expect(shown(999.96, 'ohm', 3)).toBe('1\u00a0kΩ');
 		expect(typed(38300, 'ohm')).toBe('38.3 kohm');
 		expect(typed(0.25, 'V')).toBe('250 mV');
 		expect(signedPercent(-0.0005)).toBe('\u22120.050\u00a0%');
