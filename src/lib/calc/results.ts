@@ -44,7 +44,7 @@ export interface Options {
 	decisionRule: 'simple' | 'guarded';
 	/** Standard uncertainties that a normal input's interval reaches to either side in the worst case, 3 by default. */
 	normalInterval?: number;
-	/** Quantities whose budget and worst case are wanted; none where absent. */
+	/** Quantities whose budget, worst case and formula are wanted; none where absent. */
 	detail?: 'all' | string[];
 	monteCarlo?: MonteCarloOptions;
 }

@@ -63,6 +63,12 @@ describe('the scale of a limit gauge', () => {
 		expect(doubt![1] - doubt![0]).toBeGreaterThan(0.1);
 	});
 
+	test('a value of zero in doubt stands inside the picture', () => {
+		const scale = gaugeScale({ value: 0, lower: null, upper: 5, expandedUncertainty: 3.4 });
+		expect(scale.beyond).toBeNull();
+		expect(scale.doubt![0]).toBeGreaterThan(0);
+	});
+
 	test('doubt and guard bands stay in the picture', () => {
 		const size = fc.double({ min: 0, max: 1e12, noNaN: true });
 		fc.assert(

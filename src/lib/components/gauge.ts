@@ -60,7 +60,15 @@ function drawnRange({
 	const apart = Math.max(distance, 1.5 * doubt, 1.5 * guarded);
 	const whole = Math.max(Math.abs(limit), apart) || 1;
 	const width = apart > 0 ? Math.min(whole / (1 - rest), apart / leastShare) : whole;
+	// All of the doubt is drawn, and the value not at the very edge.
+	const around = 1.2 * doubt;
 	return upper !== null
-		? [limit - (1 - rest) * width, limit + rest * width]
-		: [limit - rest * width, limit + (1 - rest) * width];
+		? [
+				Math.min(limit - (1 - rest) * width, around > 0 ? value - around : Infinity),
+				limit + rest * width,
+			]
+		: [
+				limit - rest * width,
+				Math.max(limit + (1 - rest) * width, around > 0 ? value + around : -Infinity),
+			];
 }
