@@ -20,6 +20,8 @@ import { isMainThread, parentPort, Worker } from 'node:worker_threads';
 /** What is kept of the notes computed last, so that an edit computes only what depends on it. */
 const calculators = new Map<string, Calculator>();
 const mostCalculators = 4;
+/** Bytes of this process above which nothing is kept. */
+const mostResident = 220e6;
 
 /** A child that computes notes for another process until that goes away. It has no environment. */
 function start(): void {
@@ -57,6 +59,7 @@ function compute({ id, cells, options, skip, note }: Task): Answer {
 }
 
 function calculatorOf(note: string | undefined): Calculator {
+	if (process.memoryUsage.rss() > mostResident) calculators.clear();
 	if (note === undefined) return new Calculator();
 	const calculator = calculators.get(note) ?? new Calculator();
 	calculators.delete(note);

@@ -22,6 +22,8 @@ export const bounds = {
 	lineSteps: 250_000,
 	/** Operations of a note. */
 	noteSteps: 1_000_000,
+	/** Second derivatives of a note: of each line the square of the number of inputs it depends on. */
+	curvatures: 800_000,
 	/** Members of a matrix that are handed out with the results. */
 	listedMembers: 10_000,
 } as const;

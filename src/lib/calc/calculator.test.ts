@@ -140,6 +140,25 @@ describe('Computing a note again after an edit', () => {
 		const turned = calculator.evaluate(cells('-3 V'), defaultOptions);
 		expect(changed(after, turned)).toEqual(['V1', 'I1', 'requirement 1']);
 	});
+
+	test('gives the same where a note has more second derivatives than are computed', () => {
+		const inputs = Array.from({ length: 40 }, (_, i) => `R${i} = tolerance(${i + 1} kohm, 1 %)`);
+		const stages = Array.from(
+			{ length: 700 },
+			(_, i) =>
+				`V${i} = ${i === 0 ? '5 V' : `V${i - 1}`} * R${i % 40} / (R${i % 40} + R${(7 * i + 1) % 40})`,
+		);
+		const cells = (first: string): Cell[] => [
+			{ id: 'a', kind: 'calculation', source: [...inputs, ...stages, first].join('\n') },
+		];
+		const calculator = new Calculator();
+		for (const first of ['x1 = 1', 'x1 = sqrt(R0)', 'x1 = R0 * R1']) {
+			const results = calculator.evaluate(cells(first), defaultOptions);
+			expect(results).toEqual(evaluate(cells(first), defaultOptions));
+			expect(results.quantities.V10?.remarks).toBeUndefined();
+			expect(results.quantities.V699?.remarks?.[0]).toMatch(/^Second-order terms are not known/);
+		}
+	});
 });
 
 /** Quantities and requirements that are not the same objects. */

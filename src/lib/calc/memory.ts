@@ -25,6 +25,9 @@ export interface Remembered {
 	readonly firstInput: number;
 	/** Operations that computing took. */
 	readonly spent: number;
+	/** Second derivatives that belong to it, and whether the note had so many left. */
+	readonly curvatures: number;
+	readonly secondOrder: boolean;
 	readonly computed: Computed;
 	/** What was last shown of it, kept while that stays the same. */
 	shown?: Shown;

@@ -47,6 +47,9 @@ export class Note {
 	readonly #pairs: Correlation[] = [];
 	readonly #doubtfulFunctions: DoubtfulFunctions;
 	#correlations: Correlations = uncorrelated;
+	#curvaturesLeft: number = bounds.curvatures;
+	/** Of the line that was computed last. */
+	#lastSecondOrder = { curvatures: 0, secondOrder: true };
 
 	constructor(
 		readonly lines: readonly NoteLine[],
@@ -227,8 +230,10 @@ export class Note {
 		if (!line.body || this.#broken(line)) return;
 		const uses = this.#usesOf(line);
 		const known = this.memory.recall(line.body, uses, this.inputs.next);
-		if (known && this.#meter.affords(known.spent)) {
+		const affords = known && this.#curvaturesLeft >= known.curvatures;
+		if (known && this.#meter.affords(known.spent) && affords === known.secondOrder) {
 			this.#meter.charge(known.spent);
+			this.#curvaturesLeft -= known.curvatures;
 			this.#keep(line, line.body, known);
 			return;
 		}
@@ -242,7 +247,13 @@ export class Note {
 				this.#functionTokens.set(line, token);
 			}
 			if (computed)
-				this.#keep(line, line.body, { uses, firstInput, spent: this.#meter.spent, computed });
+				this.#keep(line, line.body, {
+					uses,
+					firstInput,
+					spent: this.#meter.spent,
+					...this.#lastSecondOrder,
+					computed,
+				});
 		} catch (error) {
 			if (error instanceof Trouble) this.fail(line, error);
 			else if (error instanceof RangeError)
@@ -266,7 +277,8 @@ export class Note {
 			if (given.kind === 'curve') return this.#takeCurve(line, given);
 			const firstInput = this.inputs.next;
 			const computed = { ...columnValue(given), inputs: [], firstInput };
-			this.#keep(line, undefined, { uses: [], firstInput, spent: 0, computed });
+			const nothing = { spent: 0, curvatures: 0, secondOrder: true };
+			this.#keep(line, undefined, { uses: [], firstInput, ...nothing, computed });
 		} catch (error) {
 			if (!(error instanceof Trouble)) throw error;
 			this.fail(line, error);
@@ -364,6 +376,7 @@ export class Note {
 	): Pick<Computed, 'doubt' | 'inputs' | 'firstInput'> {
 		const firstInput = this.inputs.next;
 		const exact = { inputs: [], firstInput };
+		this.#lastSecondOrder = { curvatures: 0, secondOrder: this.#curvaturesLeft >= 0 };
 		// Of a requirement the sides are followed, when it is judged.
 		if (typeof value === 'string' || line.requirement) return exact;
 		const tracer = this.#tracer(line);
@@ -373,16 +386,21 @@ export class Note {
 		const { tape, args } = tracer;
 		const inputs = labelled(tracer.inputs);
 		this.inputs.add(inputs);
-		const steps = stepsOf(
-			tape,
-			nodesOf(tape, traced),
-			args,
-			firstInput,
-			this.inputs,
-			inputs.length,
-		);
+		const nodes = nodesOf(tape, traced);
+		const secondOrder = this.#chargeSecondOrder(args, inputs.length, nodes.length);
+		const steps = stepsOf(tape, nodes, args, firstInput, this.inputs, inputs.length, secondOrder);
 		const shape = shapeOf(traced);
 		return { doubt: { steps, ...(shape && { shape }) }, inputs, firstInput };
+	}
+
+	/** Whether the second derivatives of a line's numbers are still within those of a note. */
+	#chargeSecondOrder(args: readonly Step[], inputs: number, numbers: number): boolean {
+		const most = args.reduce((n, { propagated }) => Math.max(n, propagated.support.length), 0);
+		const curvatures = numbers * (most + inputs) ** 2;
+		const secondOrder = this.#curvaturesLeft >= curvatures;
+		this.#lastSecondOrder = { curvatures, secondOrder };
+		this.#curvaturesLeft -= curvatures;
+		return secondOrder;
 	}
 
 	#tracer(line: NoteLine): Tracer {

@@ -24,12 +24,13 @@ export function stepsOf(
 	firstInput: number,
 	inputs: Inputs,
 	count: number,
+	secondOrder = true,
 ): Step[] {
 	const numbers = Array.from({ length: count }, (_, i) => firstInput + i);
 	const before = args.map((arg) => arg.propagated);
 	return nodes.map((node) => {
 		const tape = builder.finish(node);
-		const propagated = propagate(tape, before, numbers, inputs.uncertainties);
+		const propagated = propagate(tape, before, numbers, inputs.uncertainties, secondOrder);
 		return { tape, args, inputs: numbers, propagated };
 	});
 }

@@ -58,6 +58,8 @@ function sentences({ propagated }: Step, finite: boolean, needed: boolean): stri
 	const found: string[] = [];
 	if (!finite)
 		found.push('First order gives no uncertainty here: the value has no finite slope. Run trials.');
+	else if (needed && !propagated.curvature)
+		found.push('Second-order terms are not known of so many inputs or lines. Run trials.');
 	else if (needed)
 		found.push('Second-order terms change the standard uncertainty by more than 1 %. Run trials.');
 	if (remarks & Remark.step)

@@ -1,4 +1,4 @@
-import { curvatureLimit, flat } from './curvature';
+import { flat } from './curvature';
 import { uncorrelated, type Correlations } from './correlations';
 import type { Propagated } from './propagate';
 import { coverageFactor } from './student';
@@ -157,9 +157,8 @@ export function secondOrderOf(line: Propagated, doubts: Doubts): SecondOrder | u
 
 /** Whether a first-order result must be doubted: its second-order terms matter, or are too many to know. */
 export function needsTrials(line: Propagated, doubts: Doubts): boolean {
-	if (line.support.length > curvatureLimit && !line.curvature) return true;
 	const second = secondOrderOf(line, doubts);
-	return second !== undefined && !(Math.abs(second.change) <= notableChange);
+	return !second || !(Math.abs(second.change) <= notableChange);
 }
 
 /** Sum over j of r_ij c_j u_j for input i of the line. */

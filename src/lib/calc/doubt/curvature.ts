@@ -3,7 +3,7 @@ import { slopeSeries } from './series';
 import type { Tape } from './tape';
 
 /** Inputs of one line beyond which second order is not computed: its cost grows with their square. */
-export const curvatureLimit = 48;
+const curvatureLimit = 48;
 
 /** Curvature of a value that is linear in all its inputs. */
 export const flat = new Float64Array(0);
