@@ -37,7 +37,7 @@ test.describe('The page of proofs, without script', () => {
 			).toBeLessThanOrEqual(width);
 		}
 		await page.setViewportSize({ width: 1400, height: 900 });
-		await shoot(page, 'proof');
+		await shoot(page, 'proof', { whole: false });
 	});
 });
 

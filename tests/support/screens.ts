@@ -2,8 +2,15 @@ import type { Page } from '@playwright/test';
 
 const widths = [1400, 1024, 390] as const;
 
-/** Saves pictures of the page as it is now, light and dark at three widths, for people to look at. */
-export async function shoot(page: Page, name: string): Promise<void> {
+/**
+ * Saves pictures of the page as it is now, light and dark at three widths, for people to look at; with `whole` of all of
+ * it, else of what a window shows.
+ */
+export async function shoot(
+	page: Page,
+	name: string,
+	{ whole = true }: { whole?: boolean } = {},
+): Promise<void> {
 	const before = page.viewportSize();
 	for (const width of widths) {
 		await page.setViewportSize({ width, height: width < 600 ? 844 : 900 });
@@ -11,7 +18,7 @@ export async function shoot(page: Page, name: string): Promise<void> {
 			await page.emulateMedia({ colorScheme });
 			await page.screenshot({
 				path: `test-results/screens/${name}-${width}-${colorScheme}.png`,
-				fullPage: true,
+				fullPage: whole,
 				animations: 'disabled',
 			});
 		}

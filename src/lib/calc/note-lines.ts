@@ -1,7 +1,7 @@
 import { bounds } from './bounds';
 import { sourceOf } from './cells';
 import { givenLines, type Given } from './given-cells';
-import { parseLine, unreadLine, type ParsedLine } from './language/parse-line';
+import { isRemembered, parseLine, unreadLine, type ParsedLine } from './language/parse-line';
 import type { SharedDraw } from './doubt/shared-trials';
 import type { Cell, Fault } from './results';
 import { Trouble } from './trouble';
@@ -75,7 +75,7 @@ export function readLines(
 		if (cell.kind === 'readings' || cell.kind === 'curve') lines.push(...givenLines(cell, i + 1));
 		rows.forEach((text, row) => {
 			const place = { cell: cell.id, terminal: i + 1, line: row + 1, text };
-			watch.at?.(cell.id, row + 1);
+			if (!isRemembered(text)) watch.at?.(cell.id, row + 1);
 			const skipped = watch.skip?.find(({ cell: id, line }) => id === cell.id && line === row + 1);
 			const parsed = skipped ? unreadLine(text, unfinished(skipped, text)) : parseLine(text);
 			lines.push({ ...parsed, ...place, requirement: cell.kind === 'requirement' });

@@ -38,6 +38,11 @@ const most = 300_000;
 const cache = new Map<string, ParsedLine>();
 let remembered = 0;
 
+/** Whether a line needs no parsing, as it was parsed before. */
+export function isRemembered(text: string): boolean {
+	return cache.has(text);
+}
+
 /** Parses a line; never throws. Lines are remembered by their text, so that a keystroke parses one line. */
 export function parseLine(text: string): ParsedLine {
 	const known = cache.get(text);
