@@ -124,7 +124,8 @@ function budgets200(): Row[] {
 function budgetsOf(model: Model, doubts: Doubts): void {
 	const lines: Propagated[] = [];
 	for (const { tape, args, inputs } of model.steps) {
-		const given = Array.prototype.map.call(args, (arg: number) => lines[arg]!) as Propagated[];
+		const given: Propagated[] = [];
+		for (let k = 0; k < args.length; k++) given.push(lines[args[k]!]!);
 		const line = propagate(tape, given, inputs, doubts.uncertainties, false);
 		lines.push(line);
 		uncertaintyOf(line, doubts, 0.95);

@@ -22,14 +22,21 @@ export function tProbability(t: number, dof: number): number {
 }
 
 const factors = new Map<string, number>();
+/** The last factor of the normal distribution, which most quantities have. */
+let normal = { coverage: NaN, factor: NaN };
 
 /** k such that a share `coverage` of the t distribution lies within ±k (JCGM 100:2008, tables G.1 and G.2). */
 export function coverageFactor(coverage: number, dof: number): number {
+	if (dof >= many) {
+		if (normal.coverage !== coverage)
+			normal = { coverage, factor: -normalQuantile((1 - coverage) / 2) };
+		return normal.factor;
+	}
 	const key = `${coverage} ${dof}`;
 	let factor = factors.get(key);
 	if (factor === undefined) {
 		const above = (1 - coverage) / 2;
-		factor = dof >= many ? -normalQuantile(above) : -studentQuantile(above, dof);
+		factor = -studentQuantile(above, dof);
 		if (factors.size > 2_000) factors.clear();
 		factors.set(key, factor);
 	}
