@@ -40,15 +40,15 @@ export class Calculator {
 		const quantities = worked.quantities();
 		addDetails(quantities, note, options, watch);
 		const compare =
-			options.detail === 'all' ? (cell: CurveCell) => note.columnsOf(cell) : undefined;
-		const curves = curveResults(note.curves, compare);
+			options.detail === 'all' ? (cell: CurveCell) => note.curves.columnsOf(cell) : undefined;
+		const curves = curveResults(note.curves.fitted, compare);
 		return {
 			engine: engineVersion,
 			quantities,
 			lines: worked.lines(),
 			requirements,
 			figures: quoted.figures,
-			...(note.curves.size > 0 && { curves }),
+			...(note.curves.fitted.size > 0 && { curves }),
 			errors: inSheetOrder(errors, cells),
 		};
 	}

@@ -42,3 +42,13 @@ export class Inputs {
 		return first;
 	}
 }
+
+/** Inputs of one line get numbers where it states several. */
+export function labelled(inputs: readonly Input[]): Input[] {
+	const counts = new Map<string, number>();
+	return inputs.map((input) => {
+		const count = (counts.get(input.label) ?? 0) + 1;
+		counts.set(input.label, count);
+		return count === 1 ? input : { ...input, label: `${input.label} (${count})` };
+	});
+}

@@ -2,28 +2,30 @@ import { bounds } from './bounds';
 import { check } from './check';
 import { isStatement, linesOfStatements, stateCorrelations } from './correlated-lines';
 import { circleTrouble, define, doubleReadings } from './definitions';
-import { uncertaintyOf, type Doubts } from './doubt/budget';
-import { uncorrelated, type Correlation, type Correlations } from './doubt/correlations';
+import type { Doubts } from './doubt/budget';
+import { uncorrelated, type Correlations } from './doubt/correlations';
 import { TapeBuilder } from './doubt/tape';
 import { DoubtfulFunctions, readsUncertainty } from './doubtful-calls';
-import { Inputs, type Input } from './inputs';
+import { Inputs, labelled } from './inputs';
 import { canonical } from './language/characters';
-import type { Node, Place } from './language/nodes';
-import type { Column, CurveCell } from './results';
-import { columnValue, fitCurve, type Given } from './given-cells';
-import type { Memory, Computed, NumberedCurve, Remembered } from './memory';
+import type { Node, Place, Reference } from './language/nodes';
+import { columnValue, type Given } from './given-cells';
+import type { Memory, Computed, Remembered } from './memory';
 import { Meter } from './meter';
+import { misusedNames } from './misused-names';
+import { NoteCurves } from './note-curves';
 import { whereabouts, type NoteLine, type Watch } from './note-lines';
 import { order } from './order';
+import { readDoubt } from './read-doubt';
 import { run, type Scope } from './run';
 import { expectShowable } from './showable';
-import { Bounds, inputStep, stepsOf, type Step } from './steps';
+import { stepsOf, type Step } from './steps';
 import { Tracer, type Doubt, type Surroundings } from './trace';
 import { isExact, nodesOf, shapeOf } from './traced';
 import { Trouble } from './trouble';
 import type { Types } from './type-scope';
 import type { Type } from './types';
-import { Suggestions, unknownName } from './unknown-names';
+import { Suggestions } from './unknown-names';
 import type { Value } from './values';
 
 /** Stands among the names for all that the note says of correlations. */
@@ -43,8 +45,7 @@ export class Note {
 	/** For each waiting line the one whose error it waits for. `V = A` and `A = V` wait for one another. */
 	readonly #awaited = new Map<NoteLine, NoteLine>();
 	readonly #functionTokens = new Map<NoteLine, object>();
-	readonly curves = new Map<CurveCell, NumberedCurve>();
-	readonly #pairs: Correlation[] = [];
+	readonly curves: NoteCurves;
 	readonly #doubtfulFunctions: DoubtfulFunctions;
 	#correlations: Correlations = uncorrelated;
 	#curvaturesLeft: number = bounds.curvatures;
@@ -67,6 +68,7 @@ export class Note {
 			(name) => this.#definitions.get(name),
 			(name) => this.#doubt(name) !== undefined,
 		);
+		this.curves = new NoteCurves((name) => this.#definitions.get(name), this.inputs, memory);
 		this.#evaluateAll();
 	}
 
@@ -122,9 +124,9 @@ export class Note {
 				coefficient: (node) => Number(run(node, this.#scope)),
 				fail: (line, trouble) => this.fail(line, trouble),
 			},
-			this.#pairs,
+			this.curves.pairs,
 		);
-		const curves = [...this.curves.values()];
+		const curves = [...this.curves.fitted.values()];
 		this.#correlations = this.memory.correlations([...used, ...curves], correlations);
 	}
 
@@ -272,9 +274,12 @@ export class Note {
 		if (line.trouble) this.fail(line, line.trouble);
 		if (this.#broken(line)) return;
 		try {
-			const [waiting] = this.#unresolved(line);
+			const [waiting] = misusedNames(line, { ...this.#names, suggestions: this.suggestions });
 			if (waiting) throw waiting;
-			if (given.kind === 'curve') return this.#takeCurve(line, given);
+			if (given.kind === 'curve') {
+				this.#functionTokens.set(line, this.curves.take(line, given));
+				return;
+			}
 			const firstInput = this.inputs.next;
 			const computed = { ...columnValue(given), inputs: [], firstInput };
 			const nothing = { spent: 0, curvatures: 0, secondOrder: true };
@@ -283,47 +288,6 @@ export class Note {
 			if (!(error instanceof Trouble)) throw error;
 			this.fail(line, error);
 		}
-	}
-
-	#takeCurve(line: NoteLine, { cell, inverse }: Extract<Given, { kind: 'curve' }>): void {
-		let curve = this.curves.get(cell);
-		if (!curve) {
-			const columns = this.columnsOf(cell);
-			const firstInput = this.inputs.next;
-			curve = this.memory.curve(JSON.stringify([cell, columns]), firstInput, () => ({
-				fitted: fitCurve(cell, columns),
-				firstInput,
-			}));
-			const { inputs, functions } = curve.fitted;
-			this.inputs.add(inputs);
-			// They rest on one scatter: without correlation, but with its degrees of freedom together.
-			for (let i = 1; i < inputs.length; i++)
-				this.#pairs.push({ first: firstInput, second: firstInput + i, coefficient: 0 });
-			if (functions.forwards.deviations.length === 0) {
-				const steps = inputs.map((_, i) => inputStep(firstInput + i, this.inputs));
-				functions.forwards.deviations = steps;
-				functions.backwards.deviations = steps;
-			}
-			this.curves.set(cell, curve);
-		}
-		const { forwards, backwards } = curve.fitted.functions;
-		line.curve = inverse ? backwards : forwards;
-		this.#functionTokens.set(line, line.curve);
-	}
-
-	/** The columns that a fitted curve goes through. */
-	columnsOf(cell: CurveCell): { x: Column; y: Column } {
-		return { x: this.#column(cell, cell.x), y: this.#column(cell, cell.y) };
-	}
-
-	/** The column of readings that a curve names. Throws Trouble. */
-	#column(cell: CurveCell, typed: string): Column {
-		const line = this.#definitions.get(canonical(typed));
-		if (line?.given?.kind === 'column') return line.given.column;
-		const at = { from: 0, to: cell.name.length };
-		throw new Trouble('value', at, `\`${typed}\` is not a column of readings.`, {
-			mend: 'Name two columns of a readings cell.',
-		});
 	}
 
 	#keep(line: NoteLine, body: Node | undefined, remembered: Remembered): void {
@@ -340,7 +304,7 @@ export class Note {
 
 	/** Value and doubt of a line; undefined for a function, which has none before it is called. */
 	#compute(line: NoteLine, body: Node): Computed | undefined {
-		const unknowns = this.#unresolved(line);
+		const unknowns = misusedNames(line, { ...this.#names, suggestions: this.suggestions });
 		const type = check(body, this.#types);
 		const [first] = unknowns;
 		if (first) {
@@ -427,57 +391,11 @@ export class Note {
 		return uses;
 	}
 
-	/** The uncertainty or a bound of an expression of a line, in SI units. */
-	#read(what: 'uncertainty' | 'lower' | 'upper', node: Node): number {
-		const value = Number(run(node, this.#scope));
-		const tracer = new Tracer(this.#surroundings, new TapeBuilder(), () => '');
-		const traced = tracer.trace(node);
-		if (isExact(traced)) return what === 'uncertainty' ? 0 : value;
-		if (shapeOf(traced))
-			throw new Trouble('value', node, 'One number is expected here, not a list.');
-		// Inputs stated within the brackets are no inputs of the note.
-		const inputs = this.inputs.with(tracer.inputs);
-		const nodes = nodesOf(tracer.tape, traced);
-		const own = tracer.inputs.length;
-		const [step] = stepsOf(tracer.tape, nodes, tracer.args, this.inputs.next, inputs, own);
-		if (what === 'uncertainty') {
-			const { uncertainties, dofs } = inputs;
-			const doubts = { uncertainties, dofs, correlations: this.#correlations };
-			return uncertaintyOf(step!.propagated, doubts, 0.95).standardUncertainty;
-		}
-		return new Bounds([step!], inputs).of(step!)[what];
-	}
-
-	/** Names of the line that are unknown, wrongly used, or wait; in order of first use. */
-	#unresolved(line: NoteLine): Trouble[] {
-		const found: Trouble[] = [];
-		for (const reference of line.references) {
-			const used = this.#definitions.get(reference.name);
-			if (!used) found.push(unknownName(reference, line, this.suggestions));
-			else if (this.#broken(used)) found.push(this.waiting(reference.typed, used, reference));
-			else if (reference.called && used.kind !== 'function')
-				found.push(
-					new Trouble(
-						'syntax',
-						reference,
-						`\`${reference.typed}\` is a quantity, not a function.`,
-						{
-							mend: `Write \`${reference.typed} * (…)\` for a product.`,
-							replacement: `${reference.typed} *`,
-						},
-					),
-				);
-			else if (!reference.called && used.kind === 'function')
-				found.push(
-					new Trouble(
-						'syntax',
-						reference,
-						`\`${reference.typed}\` is a function and needs its values in brackets.`,
-					),
-				);
-		}
-		return found.sort((a, b) => rank(a) - rank(b));
-	}
+	readonly #names = {
+		definition: (name: string) => this.#definitions.get(name),
+		waiting: (reference: Reference, used: NoteLine) =>
+			this.#broken(used) ? this.waiting(reference.typed, used, reference) : undefined,
+	};
 
 	readonly #types: Types = {
 		of: (name) => this.computed.get(this.#definitions.get(name)!)?.type,
@@ -490,7 +408,7 @@ export class Note {
 	readonly #scope: Scope = {
 		of: (name) => this.computed.get(this.#definitions.get(name)!)?.value,
 		function: (name) => this.#function(name),
-		read: (what, node) => this.#read(what, node),
+		read: (what, node) => readDoubt(what, node, this.#surroundings, this),
 		meter: this.#meter,
 		depth: 0,
 		levels: 0,
@@ -518,19 +436,4 @@ export class Note {
 			throw error;
 		}
 	}
-}
-
-/** Inputs of one line get numbers where it states several. */
-function labelled(inputs: readonly Input[]): Input[] {
-	const counts = new Map<string, number>();
-	return inputs.map((input) => {
-		const count = (counts.get(input.label) ?? 0) + 1;
-		counts.set(input.label, count);
-		return count === 1 ? input : { ...input, label: `${input.label} (${count})` };
-	});
-}
-
-/** What to tell first: what is wrong here before what waits for something else. */
-function rank(trouble: Trouble): number {
-	return trouble.code === 'waits' ? 1 : 0;
 }
