@@ -35,11 +35,17 @@ describe('the scale of a limit gauge', () => {
 				expect(at).toBeLessThan(1);
 				expect(scale.value).toBeGreaterThanOrEqual(0);
 				expect(scale.value).toBeLessThanOrEqual(1);
-				if (Math.abs(value - limit) > 1e-6 * Math.abs(limit)) {
+				if (Math.abs(value - limit) > Math.max(1e-6 * Math.abs(limit), 1e-290)) {
 					expect(Math.sign(scale.value - at)).toBe(Math.sign(value - limit));
 				}
 			}),
 		);
+	});
+
+	test('the least number that there is makes no mark without a place', () => {
+		const scale = gaugeScale({ value: 0, lower: -5e-324, upper: null });
+		expect(scale.lower).toBeGreaterThan(0);
+		expect(scale.lower).toBeLessThan(1);
 	});
 
 	test('a guard band lies before its limit, and the doubt on both sides of the value', () => {

@@ -57,8 +57,8 @@ function drawnRange({
 	const distance = Math.abs(value - limit);
 	const guarded = guardBand?.upper ?? guardBand?.lower ?? 0;
 	// What is smaller than the doubt need not be told apart.
-	const apart = Math.max(distance, 1.5 * doubt, 1.5 * guarded);
-	const whole = Math.max(Math.abs(limit), apart) || 1;
+	const apart = drawable(Math.max(distance, 1.5 * doubt, 1.5 * guarded));
+	const whole = drawable(Math.max(Math.abs(limit), apart)) || 1;
 	const width = apart > 0 ? Math.min(whole / (1 - rest), apart / leastShare) : whole;
 	// All of the doubt is drawn, and the value not at the very edge.
 	const around = 1.2 * doubt;
@@ -71,4 +71,9 @@ function drawnRange({
 				limit - rest * width,
 				Math.max(limit + (1 - rest) * width, around > 0 ? value + around : -Infinity),
 			];
+}
+
+/** A length that a share of can still be computed; 0 for one near the least number that there is. */
+function drawable(length: number): number {
+	return length < 1e-290 ? 0 : length;
 }

@@ -1,10 +1,13 @@
 import { WidgetType, type EditorView } from '@codemirror/view';
 import { mount, unmount, type Component } from 'svelte';
+import { changingProps } from './changing-props.svelte';
 
 /** What became of a DOM node: the component in it and what it stands for. */
 interface Mounted {
 	instance: Record<string, unknown>;
+	component: unknown;
 	key: string;
+	change: (props: Record<string, unknown>) => void;
 }
 
 const mounted = new WeakMap<HTMLElement, Mounted>();
@@ -56,12 +59,10 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 
 	override updateDOM(dom: HTMLElement, view: EditorView): boolean {
 		const before = mounted.get(dom);
-		if (before?.key !== this.choices.key) return false;
-		const held = dom.contains(document.activeElement);
-		this.destroy(dom);
-		this.#fill(dom, view);
-		// What is shown anew under the hands of a person at the keyboard stays in their hands.
-		if (held) dom.querySelector<HTMLElement>('button, a')?.focus();
+		const { component, key } = this.choices;
+		if (before?.key !== key || before.component !== component) return false;
+		before.change(this.choices.props(view));
+		this.#place = { dom, view };
 		this.choices.onchange?.(dom);
 		return true;
 	}
@@ -82,8 +83,10 @@ export class MountedWidget<Props extends Record<string, unknown>> extends Widget
 
 	#fill(dom: HTMLElement, view: EditorView): void {
 		const { component, props, key } = this.choices;
-		const instance = mount(component, { target: dom, props: props(view) });
-		mounted.set(dom, { instance, key });
+		const changing = changingProps(props(view));
+		const instance = mount(component, { target: dom, props: changing.props });
+		const change = (next: Record<string, unknown>) => changing.change(next as Props);
+		mounted.set(dom, { instance, component, key, change });
 		this.#place = { dom, view };
 		if (!this.choices.block) return;
 		// The editor must know how high its blocks are, also when they grow.
