@@ -48,7 +48,7 @@ export const note = pgTable(
 	(t) => [unique('note_number').on(t.teamId, t.number)],
 );
 
-/** The working copy: raw update bytes as received, append-only. */
+/** The working copy: raw update bytes as received, append-only. Old rows are folded, see `fold_updates`. */
 export const noteUpdate = pgTable(
 	'note_update',
 	{
@@ -63,11 +63,65 @@ export const noteUpdate = pgTable(
 			.references(() => person.id),
 		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
 		bytes: bytea('bytes').notNull(),
+		/** Cells that came, went or changed their text with it. */
+		cells: text('cells').array().notNull().default([]),
+		/** How many edits were folded into the row. */
+		edits: integer('edits').notNull().default(1),
+		/** Of a folded row: the first sequence number and time of its stretch. Rows of one stretch have the same number. */
+		firstSeq: bigint('first_seq', { mode: 'number' }),
+		firstAt: timestamp('first_at', { withTimezone: true }),
 	},
 	(t) => [
 		primaryKey({ columns: [t.noteId, t.seq] }),
 		unique('note_update_once').on(t.noteId, t.clientEditId),
 	],
+);
+
+/** Whole states of a document at a sequence number, to load from. All they hold is in the updates too. */
+export const noteSnapshot = pgTable(
+	'note_snapshot',
+	{
+		noteId: uuid('note_id')
+			.notNull()
+			.references(() => note.id),
+		seq: bigint('seq', { mode: 'number' }).notNull(),
+		state: bytea('state').notNull(),
+		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
+	},
+	(t) => [primaryKey({ columns: [t.noteId, t.seq] })],
+);
+
+/** Whose a Yjs client id in a note is. */
+export const noteClient = pgTable(
+	'note_client',
+	{
+		noteId: uuid('note_id')
+			.notNull()
+			.references(() => note.id),
+		clientId: bigint('client_id', { mode: 'number' }).notNull(),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+	},
+	(t) => [primaryKey({ columns: [t.noteId, t.clientId] })],
+);
+
+/** Who wrote last in each cell. */
+export const cellAuthor = pgTable(
+	'cell_author',
+	{
+		noteId: uuid('note_id')
+			.notNull()
+			.references(() => note.id),
+		cellId: text('cell_id').notNull(),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+		/** Sequence number of the update. */
+		seq: bigint('seq', { mode: 'number' }).notNull(),
+		at: timestamp('at', { withTimezone: true }).notNull(),
+	},
+	(t) => [primaryKey({ columns: [t.noteId, t.cellId] })],
 );
 
 /** Last stored results of a note's working copy. */
