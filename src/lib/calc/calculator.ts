@@ -9,7 +9,7 @@ import { readLines, type NoteLine, type Watch } from './note-lines';
 import { judge } from './requirements';
 import type { Cell, CurveCell, Evaluation, Fault, Options, Quantity } from './results';
 import { Bounds } from './steps';
-import type { Trouble } from './trouble';
+import { mendOf, type Trouble } from './trouble';
 import { finiteUncertainty, stepOf } from './uncertainty';
 import { Worked } from './worked';
 
@@ -104,8 +104,7 @@ function fault(line: NoteLine, { code, at, message, how }: Trouble): Fault {
 		to: Math.max(from, Math.min(at.to, length)),
 		code,
 		message,
-		...(how.mend !== undefined && { mend: how.mend }),
-		...(how.replacement !== undefined && { replacement: how.replacement }),
+		...mendOf(how),
 	};
 }
 

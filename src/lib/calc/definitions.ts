@@ -45,6 +45,7 @@ export function define(
 				new Trouble('reserved', defined, reserved.message, {
 					mend: `Call the quantity \`${reserved.suggestion}\`, say.`,
 					replacement: reserved.suggestion,
+					rename: { from: defined.typed, to: reserved.suggestion },
 				}),
 			);
 		for (const [i, parameter] of line.parameters.entries()) {
@@ -95,6 +96,7 @@ export function doubleReadings(
 					`\`${text}\` can be read as ${readings} (${whereabouts(definition)}). It counts as the unit.`,
 					{
 						mend: `Call the quantity \`${suggestion}\`, say.`,
+						rename: { from: definition.defined.typed, to: suggestion },
 					},
 				),
 			);

@@ -4,7 +4,7 @@ import { builtInNames } from './language/names';
 import type { Note } from './note';
 import type { Cell, Fault, Figure, SourceCell } from './results';
 import type { Worked } from './worked';
-import { Trouble } from './trouble';
+import { mendOf, Trouble } from './trouble';
 import { spoken } from './types';
 import { same } from './units/dimension';
 
@@ -102,7 +102,6 @@ function fault(cell: SourceCell, start: number, { at, code, message, how }: Trou
 		to: column + at.to,
 		code,
 		message,
-		...(how.mend !== undefined && { mend: how.mend }),
-		...(how.replacement !== undefined && { replacement: how.replacement }),
+		...mendOf(how, column),
 	};
 }

@@ -281,6 +281,10 @@ export interface Fault {
 	mend?: string;
 	/** Text that replaces `from`–`to` to mend it, where one click can. */
 	replacement?: string;
+	/** Columns that the replacement takes the place of, where they are not `from`–`to`. */
+	replaces?: { from: number; to: number };
+	/** Quantity that wants another name wherever it is used, and that name. */
+	rename?: { from: string; to: string };
 }
 
 /** Everything the sheet, the API, freezing and print show of a note. Numbers are unrounded. */

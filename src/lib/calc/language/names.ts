@@ -4,7 +4,8 @@ import { constants } from '../functions/constants';
 import { series } from '../functions/series';
 import { canonical } from './characters';
 
-const words = new Set([
+/** Words that stand for operators and values. */
+export const words: ReadonlySet<string> = new Set([
 	'to',
 	'in',
 	'mod',

@@ -29,6 +29,8 @@ export function syntaxTrouble(error: unknown, line: string, tokens: Token[]): Tr
 		if (!found || found.text !== ',')
 			return new Trouble('syntax', { from, to }, `This \`${open.token.text}\` is not closed.`, {
 				mend: `Add \`${open.closing}\`.`,
+				replacement: open.closing,
+				replaces: { from: last.to, to: last.to },
 			});
 	}
 	if (!found || message.startsWith('Unexpected end'))
@@ -50,6 +52,7 @@ export function syntaxTrouble(error: unknown, line: string, tokens: Token[]): Tr
 	if (found.text === ',')
 		return new Trouble('syntax', place, '`,` separates the values of a function.', {
 			mend: 'Write the decimal mark as a point.',
+			...(betweenDigits(found, line) && { replacement: '.' }),
 		});
 	if (found.text === ')' || found.text === ']') {
 		const previous = tokens[tokens.indexOf(found) - 1];
@@ -61,6 +64,7 @@ export function syntaxTrouble(error: unknown, line: string, tokens: Token[]): Tr
 			);
 		return new Trouble('syntax', place, `This \`${found.text}\` closes no bracket.`, {
 			mend: 'Remove it.',
+			replacement: '',
 		});
 	}
 	if (message.startsWith('Digit expected'))
@@ -87,4 +91,8 @@ function before(tokens: Token[]): { from: number; to: number } {
 	const equals = tokens.findIndex((token) => token.text === '=');
 	const last = tokens[Math.max(0, equals - 1)];
 	return { from: tokens[0]?.from ?? 0, to: last?.to ?? 1 };
+}
+
+function betweenDigits({ from, to }: Token, line: string): boolean {
+	return /\d$/.test(line.slice(0, from)) && /^\d/.test(line.slice(to));
 }

@@ -13,6 +13,10 @@ const number = /0[xbo][0-9a-fA-F.]+|(?:\d+\.?(?![*/^])\d*|\d+|\.\d+)(?:[eE][+-]?
 const quoted = /"([^"\\\p{Cc}\p{Cf}\p{Cs}]*)"/uy;
 const sign = /\.[*/^]|[<>=!]=|[-+*/^()[\],:;<>=!?]/y;
 
+/** The raised digits, by what is written for them. */
+const raised = '⁰¹²³⁴⁵⁶⁷⁸⁹⁻';
+const written: Readonly<Record<string, string>> = { '≤': '<=', '≥': '>=', '{': '(', '}': ')' };
+
 const refused: readonly [test: RegExp, message: string, mend?: string][] = [
 	[
 		/^"[^"]*$/,
@@ -106,12 +110,18 @@ function refusal(line: string, from: number): Trouble {
 	if (!rule)
 		return new Trouble('syntax', place, `\`${asTyped(character)}\` has no meaning in a formula.`);
 	const [, message, mend] = rule;
+	const powers = new RegExp(`^[${raised}]+`).exec(rest)?.[0];
+	const replacement = powers ? `^${lowered(powers)}` : written[character];
 	return new Trouble(
 		/quot|Braces|point|bits|operator/.test(message) ? 'notAllowed' : 'syntax',
-		place,
+		powers ? { from, to: from + powers.length } : place,
 		message,
-		mend === undefined ? {} : { mend },
+		{ ...(mend !== undefined && { mend }), ...(replacement !== undefined && { replacement }) },
 	);
+}
+
+function lowered(powers: string): string {
+	return Array.from(powers, (digit) => '0123456789-'[raised.indexOf(digit)]).join('');
 }
 
 /** mathjs descends once per bracket, sign, power and choice; the bound keeps it from running out of stack. */

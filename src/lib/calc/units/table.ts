@@ -220,6 +220,11 @@ export function findSymbol(typed: string): UnitSymbol | undefined {
 	return name === undefined ? undefined : table.get(name);
 }
 
+/** Every unit symbol. */
+export function unitSymbols(): Iterable<UnitSymbol> {
+	return table.values();
+}
+
 /** Symbols as they are typed, for suggestions. */
 export function symbolTexts(): Iterable<string> {
 	return table.keys();
