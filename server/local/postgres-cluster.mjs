@@ -43,15 +43,25 @@ export function remember(cluster) {
 }
 
 /**
- * Makes the cluster beside its place and moves it there when it is whole, so that a start that was killed
- * half-way leaves only a folder that the next one throws away.
+ * The clone's own cluster, made anew.
  * @param {number} port
  * @returns {Cluster}
  */
 export function makeCluster(port) {
+	return createCluster(chooseFolder('postgres'), port, remember);
+}
+
+/**
+ * Makes a cluster beside its place and moves it there when it is whole, so that a start that was killed
+ * half-way leaves only a folder that the next one throws away.
+ * @param {string} folder
+ * @param {number} port
+ * @param {(cluster: Cluster) => void} [keep] called before the cluster is at its place
+ * @returns {Cluster}
+ */
+export function createCluster(folder, port, keep) {
 	const programs = findPrograms();
 	if (!programs) throw new Problem('PostgreSQL is missing.\nMend: apt-get install postgresql');
-	const folder = chooseFolder();
 	sweep(folder);
 	const making = `${folder}.making.${process.pid}`;
 	mkdirSync(making, { mode: 0o700 });
@@ -70,7 +80,7 @@ export function makeCluster(port) {
 	runProgram(join(programs, 'postgres'), ['--single', '-D', files, 'postgres'], {
 		input: `CREATE ROLE halfdigit LOGIN CREATEDB PASSWORD '${cluster.password}'\n`,
 	});
-	remember(cluster);
+	keep?.(cluster);
 	renameSync(files, folder);
 	rmSync(making, { recursive: true, force: true });
 	return cluster;
@@ -102,9 +112,12 @@ full_page_writes = on
 synchronous_commit = on
 `;
 
-/** `.data/postgres`, or a folder of the database user where it may not walk down to the clone. */
-function chooseFolder() {
-	const usual = inData('postgres');
+/**
+ * A folder of that name in `.data`, or one of the database user where it may not walk down to the clone.
+ * @param {string} name
+ */
+export function chooseFolder(name) {
+	const usual = inData(name);
 	const user = databaseUser();
 	if (!user) return usual;
 	chmodSync(dataFolder, 0o755);
@@ -116,7 +129,8 @@ function chooseFolder() {
 			`The system user "postgres" may not enter ${root}.\nMend: clone into a folder that others may enter, for example under /srv.`,
 		);
 	}
-	return join(home, `halfdigit-${createHash('sha256').update(root).digest('hex').slice(0, 12)}`);
+	const digest = createHash('sha256').update(root).digest('hex').slice(0, 12);
+	return join(home, name === 'postgres' ? `halfdigit-${digest}` : `halfdigit-${digest}-${name}`);
 }
 
 /** @param {string} path */

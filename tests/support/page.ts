@@ -21,6 +21,8 @@ interface Visit {
 	cookie: string;
 	epoch?: string;
 	person?: { id: string; name: string };
+	/** The kind of socket the page uses, where a test wants to see or disturb what goes over it. */
+	Socket?: typeof WebSocket;
 }
 
 /** A page that has a note open: the same working copy as in a browser, over a socket of Node's. */
@@ -36,9 +38,9 @@ export async function openPage(
 /** A page that only begins to connect. */
 export async function connectPage(
 	server: Pick<SyncServer, 'url'>,
-	{ noteId, cookie, epoch, person = { id: '', name: '' } }: Visit,
+	{ noteId, cookie, epoch, person = { id: '', name: '' }, Socket = WebSocket }: Visit,
 ): Promise<WorkingCopy> {
-	class PageSocket extends WebSocket {
+	class PageSocket extends Socket {
 		constructor(url: string, protocols: string[]) {
 			super(url, protocols, { headers: { cookie, origin: env().ORIGIN } });
 		}

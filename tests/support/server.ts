@@ -10,16 +10,23 @@ export interface SyncServer {
 	/** ws://host:port/sync */
 	url: string;
 	port: number;
+	pid: number;
 	/** Ends it with a signal and waits until it is gone. Returns its exit code, null where the signal ended it. */
 	stop(signal?: NodeJS.Signals): Promise<number | null>;
 }
 
 export const syncUrl = (port: number) => `ws://127.0.0.1:${port}/sync`;
 
-/** Starts the built entry on a free port, with the settings of this process, and waits until it listens. */
-export async function startSyncServer(settings: Record<string, string> = {}): Promise<SyncServer> {
-	const port = await freePort();
-	const child = spawn(process.execPath, [`${build}/main.js`], {
+/**
+ * Starts the built entry with the settings of this process, on a free port unless `PORT` is among the settings given,
+ * and waits until it listens. `words` only show in the process list.
+ */
+export async function startSyncServer(
+	settings: Record<string, string> = {},
+	words: string[] = [],
+): Promise<SyncServer> {
+	const port = settings.PORT ? Number(settings.PORT) : await freePort();
+	const child = spawn(process.execPath, [`${build}/main.js`, ...words], {
 		env: { ...process.env, ...ownSettings(port), ...settings },
 		stdio: ['ignore', 'pipe', 'pipe'],
 	});
@@ -28,6 +35,7 @@ export async function startSyncServer(settings: Record<string, string> = {}): Pr
 	return {
 		url: syncUrl(port),
 		port,
+		pid: child.pid ?? 0,
 		stop: async (signal = 'SIGTERM') => {
 			child.kill(signal);
 			await gone;
@@ -62,9 +70,12 @@ function ownSettings(port: number): Record<string, string> {
 function listening(child: ChildProcess): Promise<void> {
 	let output = '';
 	return new Promise((resolve, reject) => {
+		let listens = false;
 		const read = (chunk: Buffer) => {
+			if (listens) return;
 			output += chunk.toString();
-			if (output.includes('"msg":"listening"')) resolve();
+			listens = output.includes('"msg":"listening"');
+			if (listens) resolve();
 		};
 		child.stdout?.on('data', read);
 		child.stderr?.on('data', read);
@@ -72,7 +83,8 @@ function listening(child: ChildProcess): Promise<void> {
 	});
 }
 
-async function freePort(): Promise<number> {
+/** A port of the loopback address on which nothing listens. */
+export async function freePort(): Promise<number> {
 	const probe = createServer().listen(0, '127.0.0.1');
 	await once(probe, 'listening');
 	const { port } = probe.address() as AddressInfo;
