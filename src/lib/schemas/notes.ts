@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { typed } from './text';
 
 /** Where a note stands. Derived from candidates and sign-offs, never stored. */
-export type NoteState = 'draft' | 'in check' | 'checked' | 'returned' | 'frozen';
+export type NoteState = 'draft' | 'in check' | 'checked' | 'returned' | 'frozen' | 'withdrawn';
 
 /** A row of the list of notes. */
 export interface NoteRow {
@@ -24,7 +24,7 @@ export interface NoteRow {
 export const listQuery = z.object({
 	q: typed.trim().max(200).catch(''),
 	state: z
-		.enum(['all', 'draft', 'in check', 'checked', 'returned', 'frozen', 'not met'])
+		.enum(['all', 'draft', 'in check', 'checked', 'returned', 'frozen', 'withdrawn', 'not met'])
 		.catch('all'),
 	sort: z
 		.enum(['number', 'title', 'state', 'revision', 'requirements', 'changed'])

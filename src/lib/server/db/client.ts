@@ -5,10 +5,11 @@ import { log } from '../log';
 import * as listing from './schema/listing';
 import * as notes from './schema/notes';
 import * as people from './schema/people';
+import * as record from './schema/record';
 import * as review from './schema/review';
 import * as tokens from './schema/tokens';
 
-export const schema = { ...people, ...tokens, ...notes, ...review, ...listing };
+export const schema = { ...people, ...tokens, ...notes, ...review, ...record, ...listing };
 
 export type Database = NodePgDatabase<typeof schema>;
 /** What a function needs that may run inside a caller's transaction. */

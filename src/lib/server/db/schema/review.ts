@@ -1,8 +1,11 @@
 import type { Evaluation } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
+import type { ProposalDetails, SignatureDetails } from '$lib/schemas/review';
+import { sql } from 'drizzle-orm';
 import {
 	bigint,
 	bigserial,
+	boolean,
 	index,
 	integer,
 	jsonb,
@@ -10,6 +13,7 @@ import {
 	text,
 	timestamp,
 	unique,
+	uniqueIndex,
 	uuid,
 } from 'drizzle-orm/pg-core';
 import { note } from './notes';
@@ -32,6 +36,8 @@ export const candidate = pgTable(
 		engine: text('engine').notNull(),
 		/** People who wrote in the working copy since the last frozen revision. */
 		authors: jsonb('authors').$type<{ id: string; name: string }[]>().notNull(),
+		/** What was asked when it was proposed. */
+		details: jsonb('details').$type<ProposalDetails>(),
 		/** SHA-256 of the canonical JSON of the snapshot, hexadecimal; sign-offs bind to it. */
 		digest: text('digest').notNull(),
 		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
@@ -58,9 +64,19 @@ export const signOff = pgTable(
 		method: text('method', { enum: ['password'] }).notNull(),
 		/** Digest of the candidate that was signed. */
 		digest: text('digest').notNull(),
+		/** Waivers and cautions that the signature covers. */
+		details: jsonb('details').$type<SignatureDetails>().notNull().default({}),
+		/** Index of its entry in the signed record. */
+		entry: bigint('entry', { mode: 'number' }),
 		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
 	},
-	(t) => [unique('sign_off_once').on(t.candidateId, t.meaning)],
+	(t) => [
+		// Several people may check; everything else is signed once.
+		uniqueIndex('sign_off_one')
+			.on(t.candidateId, t.meaning)
+			.where(sql`${t.meaning} <> 'checked'`),
+		unique('sign_off_person').on(t.candidateId, t.meaning, t.personId),
+	],
 );
 
 /** A frozen candidate. Rows never change (trigger). */
@@ -81,12 +97,55 @@ export const revision = pgTable(
 		/** SHA-256 of `canonical` as UTF-8, hexadecimal. */
 		digest: text('digest').notNull(),
 		frozenAt: timestamp('frozen_at', { withTimezone: true }).notNull(),
+		/** Index of its entry in the signed record. */
+		entry: bigint('entry', { mode: 'number' }),
 	},
 	(t) => [
 		unique('revision_letter').on(t.noteId, t.letter),
 		index('revision_note').on(t.noteId, t.frozenAt),
 	],
 );
+
+/** A frozen revision taken back by an approver. Rows never change (trigger). */
+export const withdrawal = pgTable('withdrawal', {
+	revisionId: uuid('revision_id')
+		.primaryKey()
+		.references(() => revision.id),
+	personId: text('person_id')
+		.notNull()
+		.references(() => person.id),
+	/** Name as printed at the time. */
+	personName: text('person_name').notNull(),
+	role: text('role').notNull(),
+	reason: text('reason').notNull(),
+	method: text('method', { enum: ['password'] }).notNull(),
+	/** Digest of the revision that was withdrawn. */
+	digest: text('digest').notNull(),
+	/** Index of its entry in the signed record. */
+	entry: bigint('entry', { mode: 'number' }).notNull(),
+	at: timestamp('at', { withTimezone: true }).notNull(),
+});
+
+/** What a team asks of a sign-off. A team without a row has the usual policy, which the defaults are. */
+export const signOffPolicy = pgTable('sign_off_policy', {
+	teamId: uuid('team_id')
+		.primaryKey()
+		.references(() => team.id),
+	/** People who must check a candidate. */
+	checkers: integer('checkers').notNull().default(1),
+	authorsMayCheck: boolean('authors_may_check').notNull().default(false),
+	/** Whether whoever prepared or wrote it may approve it. */
+	authorsMayApprove: boolean('authors_may_approve').notNull().default(false),
+	checkersMayApprove: boolean('checkers_may_approve').notNull().default(false),
+	/** Whether an undecided requirement blocks freezing as one that is not met does. */
+	undecidedBlocks: boolean('undecided_blocks').notNull().default(false),
+	/** Whether each open comment blocks freezing, not only those that say so. */
+	commentsBlock: boolean('comments_block').notNull().default(false),
+	/** Whether the approver may waive requirements. */
+	waivers: boolean('waivers').notNull().default(false),
+	/** Minutes after signing in during which the password alone signs; later the e-mail address is asked too. */
+	identifyAfterMinutes: integer('identify_after_minutes').notNull().default(480),
+});
 
 /** Who did what, when and why. Rows never change (trigger). */
 export const auditEvent = pgTable(
