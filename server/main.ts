@@ -8,12 +8,9 @@ import { closeCode } from '$lib/protocol/closing';
 import { createServer, type RequestListener, type Server } from 'node:http';
 import { inspect } from 'node:util';
 import { checkNodeOptions, readRoles } from './roles';
-import { onSignal, within } from './shutdown';
+import { onSignal } from './shutdown';
 import { Rooms } from './sync/rooms';
 import { Gate } from './sync/upgrade';
-
-const flushMs = 2500;
-const closeMs = 2000;
 
 async function start(): Promise<void> {
 	checkNodeOptions(process.env.NODE_OPTIONS);
@@ -24,17 +21,30 @@ async function start(): Promise<void> {
 	await listening(server, PORT, HOST);
 	log().info({ host: HOST, port: PORT, roles: [...roles] }, 'listening');
 
-	onSignal(async () => {
+	let answered: (() => Promise<void>) | undefined;
+	const stop = () => {
 		sync?.gate.shut();
-		if (sync) await within(flushMs, sync.rooms.flush());
-		sync?.rooms.close(closeCode.restarting);
-		await within(closeMs, closed(server));
-		// The pages' part is a bundle of its own, with its own pools; it hears of the end by this event.
-		process.emit('sveltekit:shutdown' as 'exit', 0);
-		await sync?.rooms.stop();
-		await closePool();
-		await closeDb();
-	});
+		// Whoever comes from now on finds nobody listening, and a proxy in front asks the next process.
+		answered = stopListening(server);
+		return Promise.resolve();
+	};
+	// The pages' part is a bundle of its own, with its own pools; it hears of the end by this event.
+	const tellPages = () => Promise.resolve(process.emit('sveltekit:shutdown' as 'exit', 0));
+	onSignal([
+		{ name: 'let nobody in', limitMs: 100, run: stop },
+		// What was taken is stored and acknowledged before the pages are asked to come back.
+		{ name: 'store what was taken', limitMs: 2500, run: async () => sync?.rooms.drain() },
+		{
+			name: 'close the sockets',
+			limitMs: 500,
+			run: async () => sync?.rooms.close(closeCode.restarting),
+		},
+		{ name: 'answer what was asked', limitMs: 1500, run: async () => answered?.() },
+		{ name: 'tell the pages', limitMs: 100, run: tellPages },
+		{ name: 'stop following the log', limitMs: 500, run: async () => sync?.rooms.stop() },
+		{ name: 'stop the evaluators', limitMs: 1000, run: closePool },
+		{ name: 'leave the database', limitMs: 1000, run: closeDb },
+	]);
 }
 
 function openSync(server: Server): { rooms: Rooms; gate: Gate } {
@@ -75,12 +85,14 @@ function listening(server: Server, port: number, host: string): Promise<void> {
 	});
 }
 
-function closed(server: Server): Promise<void> {
-	return new Promise((resolve) => {
-		server.close(() => resolve());
+/** Stops listening; what it returns waits for the requests under way, some of them no longer than 750 ms. */
+function stopListening(server: Server): () => Promise<void> {
+	const stopped = new Promise<void>((resolve) => server.close(() => resolve()));
+	return () => {
 		server.closeIdleConnections();
-		setTimeout(() => server.closeAllConnections(), closeMs / 2).unref();
-	});
+		setTimeout(() => server.closeAllConnections(), 750).unref();
+		return stopped;
+	};
 }
 
 start().catch((error: unknown) => {

@@ -1,40 +1,49 @@
 import { log } from '$lib/server/log';
 
-const limitMs = 7000;
+/** Something to be done before the process ends. It is left behind after `limitMs`, and the next one begins. */
+export interface Step {
+	name: string;
+	limitMs: number;
+	run: () => Promise<unknown>;
+}
 
 /**
- * Runs the steps in order at the first SIGTERM or SIGINT and then ends the process, whether a step fails
- * or takes too long. Later signals change nothing.
+ * Runs the steps in order at the first SIGTERM or SIGINT and then ends the process: with 0, or with 1 where
+ * one of them failed. Later signals change nothing.
  */
-export function onSignal(steps: () => Promise<void>): void {
+export function onSignal(steps: readonly Step[]): void {
 	let ending: Promise<void> | undefined;
 	const end = (signal: NodeJS.Signals) => {
-		ending ??= run(signal, steps);
+		log().info({ signal }, 'shutting down');
+		ending ??= runSteps(steps).then((good) => process.exit(good ? 0 : 1));
 	};
 	process.on('SIGTERM', end);
 	process.on('SIGINT', end);
 }
 
-async function run(signal: NodeJS.Signals, steps: () => Promise<void>): Promise<void> {
-	log().info({ signal }, 'shutting down');
-	const watchdog = setTimeout(() => {
-		log().error('the shutdown took too long');
-		process.exit(1);
-	}, limitMs);
-	try {
-		await steps();
-	} catch (error) {
-		log().error({ err: error }, 'the shutdown failed');
-		process.exitCode = 1;
+/** Takes no longer than the limits of the steps together. Resolves to false where one of them failed. */
+export async function runSteps(steps: readonly Step[]): Promise<boolean> {
+	let good = true;
+	for (const { name, limitMs, run } of steps) {
+		try {
+			if (!(await within(limitMs, run()))) {
+				log().warn({ step: name, limitMs }, 'a step of the shutdown was cut short');
+			}
+		} catch (error) {
+			log().error({ err: error, step: name }, 'a step of the shutdown failed');
+			good = false;
+		}
 	}
-	clearTimeout(watchdog);
-	process.exit();
+	return good;
 }
 
-/** The promise's end or the time's, whichever comes first. */
-export async function within(ms: number, work: Promise<unknown>): Promise<void> {
+/** Whether the work ends in time. */
+async function within(ms: number, work: Promise<unknown>): Promise<boolean> {
 	let timer: NodeJS.Timeout | undefined;
-	const time = new Promise<void>((resolve) => (timer = setTimeout(resolve, ms)));
-	await Promise.race([work, time]);
-	clearTimeout(timer);
+	const time = new Promise<false>((resolve) => (timer = setTimeout(() => resolve(false), ms)));
+	try {
+		return await Promise.race([work.then(() => true as const), time]);
+	} finally {
+		clearTimeout(timer);
+	}
 }

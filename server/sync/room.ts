@@ -1,4 +1,5 @@
-import { toContent } from '$lib/note/document';
+import { cellsOf, toContent } from '$lib/note/document';
+import { clientsIn, touchedBy } from '$lib/note/touched';
 import { closeCode } from '$lib/protocol/closing';
 import {
 	encodeJson,
@@ -10,8 +11,10 @@ import {
 import { announce } from '$lib/server/db/notify';
 import { Scheduler } from '$lib/server/evaluation/scheduler';
 import { log } from '$lib/server/log';
+import * as authorship from '$lib/server/notes/authorship';
 import * as updates from '$lib/server/notes/updates';
 import * as Y from 'yjs';
+import { CellAuthors } from './cell-authors';
 import type { Connection } from './connection';
 import { Follower } from './follower';
 import { HeldUpdates } from './held-updates';
@@ -44,18 +47,21 @@ export class Room {
 	readonly #scheduler: Scheduler;
 	readonly #store: ResultStore;
 	readonly #follower: Follower;
+	readonly #authors: CellAuthors;
 	readonly #events: Events;
 	readonly #held = new HeldUpdates((message, origin) => this.#broadcast(message, origin));
 	/** Counts the document's states, whoever made them. */
 	#version = 0;
+	#draining = false;
 
 	/** Loads a note. Throws where that fails: there is no room then, and no document. */
 	static async load(noteId: string, events: Events): Promise<Room> {
-		const [loaded, stored] = await Promise.all([
+		const [loaded, stored, authors] = await Promise.all([
 			updates.loadDocument(noteId),
 			ResultStore.read(noteId),
+			authorship.read(noteId),
 		]);
-		const room = new Room(noteId, loaded, events);
+		const room = new Room(noteId, { ...loaded, authors }, events);
 		if (stored && stored.seq === loaded.seq && !loaded.pending) {
 			room.#scheduler.adopt({ version: 0, content: stored.content, results: stored.results });
 		} else {
@@ -66,7 +72,7 @@ export class Room {
 
 	private constructor(
 		noteId: string,
-		loaded: { doc: Y.Doc; seq: number; epoch: string },
+		loaded: updates.Loaded & { authors: Awaited<ReturnType<typeof authorship.read>> },
 		events: Events,
 	) {
 		this.noteId = noteId;
@@ -75,6 +81,9 @@ export class Room {
 		this.#events = events;
 		this.#proof = new Proof(this.#doc);
 		this.#store = new ResultStore(noteId);
+		this.#authors = new CellAuthors(noteId, loaded.authors, (message) =>
+			this.#broadcast(message, undefined),
+		);
 		this.#follower = new Follower(noteId, loaded.seq, {
 			apply: (rows) => this.#applyRows(rows),
 			onCaughtUp: () => this.#storeResults(),
@@ -111,6 +120,7 @@ export class Room {
 		this.connections.add(connection);
 		this.greet(connection);
 		connection.send(this.#people.all());
+		connection.send(this.#authors.of(cellsOf(this.#doc).keys()));
 		const results = this.#scheduler.last?.results;
 		if (results) connection.sendResults(encodeJson('results', results));
 	}
@@ -149,6 +159,7 @@ export class Room {
 			case 'update':
 				return refuse(connection, '', 'An edit without an id cannot be stored.');
 			case 'edit':
+				if (this.#draining) return true;
 				if (connection.mayWrite) return this.#edit(connection, incoming.id, incoming.update);
 				return refuse(connection, incoming.id, 'Your role does not allow you to change this note.');
 		}
@@ -178,6 +189,12 @@ export class Room {
 		for (const connection of this.connections) connection.close(code);
 	}
 
+	/** Takes no more edits, which their pages keep and send to the next process, and flushes. */
+	async drain(): Promise<void> {
+		this.#draining = true;
+		await this.flush();
+	}
+
 	/** Settles when all edits are acknowledged and the results stored. */
 	async flush(): Promise<void> {
 		await this.#journal.idle();
@@ -192,6 +209,7 @@ export class Room {
 		this.#journal.stop();
 		this.#scheduler.stop();
 		this.#store.stop();
+		this.#authors.stop();
 		this.#doc.destroy();
 	}
 
@@ -202,12 +220,15 @@ export class Room {
 		}
 		if (!this.#proof.passes(update)) return false;
 		// What it completes may be another page's: then the sender lacks that, and gets everything too.
-		Y.applyUpdate(this.#doc, update, updates.isPending(this.#doc) ? 'pending' : connection);
+		const origin = updates.isPending(this.#doc) ? 'pending' : connection;
+		const cells = touchedBy(this.#doc, () => Y.applyUpdate(this.#doc, update, origin));
 		// The very bytes that came: an update that waits for another makes no Yjs event and is stored all the same.
 		this.#journal.add({
 			id,
 			personId: connection.actor.personId,
 			bytes: update,
+			clients: clientsIn(update),
+			cells,
 			sender: connection,
 		});
 		this.#askForMissing(connection);
@@ -235,14 +256,16 @@ export class Room {
 			connection.send(encodeJson('saved', saved));
 		}
 		this.#follower.stored(appended);
+		this.#authors.hear(entries.flatMap(({ cells }) => cells));
 		this.#storeResults();
 		if (appended.first !== undefined) void announce(this.noteId, seq);
 	}
 
-	#applyRows(rows: readonly { seq: number; bytes: Uint8Array }[]): void {
+	#applyRows(rows: Awaited<ReturnType<typeof updates.rowsSince>>): void {
 		const broken = rows.find((row) => !this.#proof.passes(row.bytes));
 		if (broken) throw new Error(`row ${broken.seq} cannot be read`);
 		updates.applyRows(this.#doc, rows, 'database');
+		this.#authors.hear(rows.flatMap(({ cells }) => cells));
 	}
 
 	/** Stores the newest results if the document they belong to is exactly what is stored at a sequence number. */

@@ -46,9 +46,9 @@ export class Rooms {
 		return this.#connections().filter(({ actor }) => actor.personId === personId).length;
 	}
 
-	/** Settles when every room is stored. */
-	async flush(): Promise<void> {
-		await Promise.all([...this.#open].map((room) => room.flush()));
+	/** Takes no more edits, and settles when everything that was taken is stored and acknowledged. */
+	async drain(): Promise<void> {
+		await Promise.all([...this.#open].map((room) => room.drain()));
 	}
 
 	/** Closes every socket. */
