@@ -1,11 +1,9 @@
 import { log } from '$lib/server/log';
 import * as updates from '$lib/server/notes/updates';
 
-type Row = Awaited<ReturnType<typeof updates.rowsSince>>[number];
-
 interface Events {
 	/** Brings rows of the log into the document, in order. Throws where that fails. */
-	apply: (rows: readonly Row[]) => void;
+	apply: (rows: readonly updates.Row[]) => void;
 	/** Everything that was heard of is in the document. */
 	onCaughtUp: () => void;
 }

@@ -261,7 +261,7 @@ export class Room {
 		if (appended.first !== undefined) void announce(this.noteId, seq);
 	}
 
-	#applyRows(rows: Awaited<ReturnType<typeof updates.rowsSince>>): void {
+	#applyRows(rows: readonly updates.Row[]): void {
 		const broken = rows.find((row) => !this.#proof.passes(row.bytes));
 		if (broken) throw new Error(`row ${broken.seq} cannot be read`);
 		updates.applyRows(this.#doc, rows, 'database');

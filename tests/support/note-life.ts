@@ -4,7 +4,6 @@ import * as notes from '$lib/server/notes/notes';
 import * as updates from '$lib/server/notes/updates';
 import * as candidates from '$lib/server/revisions/candidates';
 import { placedCells } from '$lib/note/document';
-import * as Y from 'yjs';
 import { testPassword as password, type Cast } from './people';
 
 const sound: Omit<NoteCell, 'id'>[] = [
@@ -40,11 +39,9 @@ export async function freeze(cast: Cast, number: string): Promise<string> {
 
 /** Adds text at the end of a cell, as an edit of the person. */
 export async function edit(person: Actor, noteId: string, cell: number, text: string) {
-	const { doc } = await updates.loadDocument(noteId);
-	const before = Y.encodeStateVector(doc);
-	const source = placedCells(doc)[cell]?.text;
-	if (!source) throw new Error(`there is no cell ${cell}`);
-	source.insert(source.length, text);
-	const bytes = Y.encodeStateAsUpdate(doc, before);
-	await updates.append(noteId, [{ id: crypto.randomUUID(), personId: person.personId, bytes }]);
+	await updates.change(noteId, person.personId, (doc) => {
+		const source = placedCells(doc)[cell]?.text;
+		if (!source) throw new Error(`there is no cell ${cell}`);
+		source.insert(source.length, text);
+	});
 }

@@ -1,9 +1,9 @@
 import { afterAll, beforeAll, expect, test } from 'vitest';
-import * as Y from 'yjs';
 import { sql } from 'drizzle-orm';
 import { db } from '$lib/server/db/client';
+import { titleOf } from '$lib/note/document';
 import { notify } from '$lib/server/db/notify';
-import { append, loadDocument } from '$lib/server/notes/updates';
+import { change } from '$lib/server/notes/updates';
 import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
 import { runEntry, startSyncServer, type SyncServer } from '../support/server';
 import { startSyncBench, type SyncBench } from '../support/sync';
@@ -44,11 +44,7 @@ test('pages on two processes that are typed in at once end with the same content
 test('an edit of which no hint was heard is found within the poll', async () => {
 	const noteId = await bench.makeNote();
 	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
-	const { doc } = await loadDocument(noteId);
-	const before = Y.encodeStateVector(doc);
-	doc.getText('title').insert(0, 'Unheard ');
-	const bytes = Y.encodeStateAsUpdate(doc, before);
-	await append(noteId, [{ id: 'unheard', personId: bench.engineer.personId, bytes }]);
+	await change(noteId, bench.engineer.personId, (doc) => titleOf(doc).insert(0, 'Unheard '));
 	await eventually(() => page.title === 'Unheard Divider');
 	page.destroy();
 });

@@ -55,6 +55,8 @@ test('an append that is repeated, alone or among new edits, adds no row and no g
 		id,
 		personId: bench.engineer.personId,
 		bytes: Y.encodeStateAsUpdate(new Y.Doc()),
+		clients: [],
+		cells: [],
 	});
 	await append(noteId, [edit('a'), edit('b')]);
 	expect(await append(noteId, [edit('a'), edit('b')])).toMatchObject({ seq: 3, first: undefined });
@@ -76,7 +78,7 @@ test('appends to one note from many sides get sequence numbers without gap or do
 	const personId = bench.engineer.personId;
 	await Promise.all(
 		Array.from({ length: 20 }, (_, index) =>
-			append(noteId, [{ id: `edit-${index}`, personId, bytes }]),
+			append(noteId, [{ id: `edit-${index}`, personId, bytes, clients: [], cells: [] }]),
 		),
 	);
 	expect((await rowsOf(noteId)).map((row) => row.seq)).toEqual(

@@ -45,7 +45,7 @@ interface PlacedCell extends NoteCell {
 export function placedCells(doc: Y.Doc): PlacedCell[] {
 	const placed: PlacedCell[] = [];
 	for (const [id, entry] of cellsOf(doc)) {
-		if (!cellId.test(id) || !(entry instanceof Y.Map)) continue;
+		if (!isCellId(id) || !(entry instanceof Y.Map)) continue;
 		const kind = entry.get('kind') as CellKind;
 		const order = entry.get('order');
 		const text = entry.get('source');
@@ -55,9 +55,14 @@ export function placedCells(doc: Y.Doc): PlacedCell[] {
 	return placed.sort((a, b) => compare(a.order, b.order) || compare(a.id, b.id));
 }
 
-const cellId = /^[a-z0-9]{1,40}$/;
+/** Whether a key of `cells` can be a cell's id. */
+export function isCellId(id: string): boolean {
+	// A name that every object has would be found where no cell is.
+	return /^[a-z0-9]{1,40}$/.test(id) && id !== 'constructor';
+}
 
-function isOrderKey(order: unknown): order is string {
+/** Whether a value can say where a cell stands. */
+export function isOrderKey(order: unknown): order is string {
 	if (typeof order !== 'string' || order.length === 0 || order.length > maxOrderLength)
 		return false;
 	try {

@@ -6,7 +6,8 @@ import * as encoding from 'lib0/encoding';
  * Every message starts with its type as a variable-length unsigned integer.
  *
  * A client sends: sync step 1 (0,0), awareness (1), `edit`.
- * A server sends: sync step 2 and updates (0,1 and 0,2), awareness (1), `hello`, `saved`, `refused`, `results`, `news`.
+ * A server sends: sync step 2 and updates (0,1 and 0,2), awareness (1), `hello`, `saved`, `refused`, `results`, `news`,
+ * `authors`.
  * An edit carries an id chosen by the client. It is acknowledged by that id after the commit, never before; a client
  * sends what was not acknowledged again, under the same id, after it has reconnected.
  */
@@ -19,6 +20,7 @@ export const messageType = {
 	refused: 112,
 	results: 113,
 	news: 114,
+	authors: 120,
 } as const;
 
 /** First message on a socket. `epoch` names the document's life: a copy of another epoch must not be merged. */
@@ -47,6 +49,12 @@ export interface News {
 	about: 'comments' | 'review';
 }
 
+/** Who wrote last in cells: all cells at first, then those where it changed. */
+export interface Authors {
+	/** By cell id; `at` is the ISO 8601 time of the commit. */
+	cells: Record<string, { personId: string; name: string; at: string }>;
+}
+
 export function encodeEdit(id: string, update: Uint8Array): Uint8Array {
 	const encoder = encoding.createEncoder();
 	encoding.writeVarUint(encoder, messageType.edit);
@@ -60,7 +68,7 @@ export function decodeEdit(decoder: decoding.Decoder): { id: string; update: Uin
 	return { id: decoding.readVarString(decoder), update: decoding.readVarUint8Array(decoder) };
 }
 
-type JsonType = 'hello' | 'saved' | 'refused' | 'results' | 'news';
+type JsonType = 'hello' | 'saved' | 'refused' | 'results' | 'news' | 'authors';
 
 /** A server message whose body is JSON. */
 export function encodeJson(type: JsonType, body: unknown): Uint8Array {

@@ -1,16 +1,25 @@
 import { AppError } from '$lib/errors';
-import { seedContent, type NoteCell } from '$lib/note/document';
+import { cellsOf, seedContent, type NoteCell } from '$lib/note/document';
+import { clientsIn, touchedBy } from '$lib/note/touched';
 import { and, asc, eq, gt, inArray } from 'drizzle-orm';
 import * as Y from 'yjs';
 import { db, type Connection } from '../db/client';
-import { note, noteUpdate } from '../db/schema/notes';
+import { note, noteClient, noteUpdate } from '../db/schema/notes';
 import { person } from '../db/schema/people';
+import * as authorship from './authorship';
+import * as clients from './clients';
 
 /** A change of a note's working copy: raw update bytes, under the id its client chose. */
 export interface Edit {
 	id: string;
 	personId: string;
 	bytes: Uint8Array;
+	/** Yjs client ids that the bytes hold content of. */
+	clients: readonly number[];
+	/** Cells that came, went or changed their text with it. */
+	cells: readonly string[];
+	/** Others whose earlier edits counted only with this one, and the cells those changed. */
+	completed?: readonly { personId: string; cells: readonly string[] }[];
 }
 
 /** Where the log stands after an append; `first` is the sequence number of the first new row, if there was one. */
@@ -22,12 +31,13 @@ export interface Appended {
 
 /**
  * Stores edits in one transaction, in order, and returns after its commit. An edit whose id the note
- * already has is not stored again, so an append that may or may not have been committed can be repeated.
+ * already has is not stored again, so an append that may or may not have been committed can be repeated. Throws
+ * AppError `conflict` where edits carry client ids of somebody else (`details.ids`), and stores nothing then.
  */
 export async function append(noteId: string, edits: readonly Edit[]): Promise<Appended> {
 	return db().transaction(async (tx) => {
 		const [head] = await tx
-			.select({ seq: note.seq, at: note.changedAt })
+			.select({ seq: note.seq, epoch: note.epoch, at: note.changedAt })
 			.from(note)
 			.where(eq(note.id, noteId))
 			.for('update');
@@ -49,33 +59,42 @@ export async function append(noteId: string, edits: readonly Edit[]): Promise<Ap
 		const last = fresh.at(-1);
 		if (!last) return { seq: head.seq, first: undefined, at: head.at };
 
+		await clients.claim(tx, { noteId, epoch: head.epoch }, fresh);
 		const at = new Date();
+		const first = head.seq + 1;
 		const seq = head.seq + fresh.length;
 		await tx.insert(noteUpdate).values(
 			fresh.map((edit, index) => ({
 				noteId,
-				seq: head.seq + 1 + index,
+				seq: first + index,
 				clientEditId: edit.id,
 				personId: edit.personId,
 				at,
 				bytes: edit.bytes,
+				cells: [...edit.cells],
 			})),
 		);
+		await authorship.record(tx, noteId, { edits: fresh, first, at });
 		await tx
 			.update(note)
 			.set({ seq, changedAt: at, changedBy: last.personId })
 			.where(eq(note.id, noteId));
-		return { seq, first: head.seq + 1, at };
+		return { seq, first, at };
 	});
 }
 
+/** A stored update. */
+export interface Row {
+	seq: number;
+	bytes: Uint8Array;
+	/** Cells that it changed. */
+	cells: string[];
+}
+
 /** Rows after a sequence number, oldest first. */
-export async function rowsSince(
-	noteId: string,
-	seq: number,
-): Promise<{ seq: number; bytes: Uint8Array }[]> {
+export async function rowsSince(noteId: string, seq: number): Promise<Row[]> {
 	return db()
-		.select({ seq: noteUpdate.seq, bytes: noteUpdate.bytes })
+		.select({ seq: noteUpdate.seq, bytes: noteUpdate.bytes, cells: noteUpdate.cells })
 		.from(noteUpdate)
 		.where(and(eq(noteUpdate.noteId, noteId), gt(noteUpdate.seq, seq)))
 		.orderBy(asc(noteUpdate.seq));
@@ -97,14 +116,23 @@ export function isPending(doc: Y.Doc): boolean {
 	return doc.store.pendingStructs !== null || doc.store.pendingDs !== null;
 }
 
+/** A working copy as it is stored. */
+export interface Loaded {
+	doc: Y.Doc;
+	seq: number;
+	epoch: string;
+	/** Whether it holds updates that wait for others. */
+	pending: boolean;
+	/** Whose each Yjs client id in it is. */
+	clients: Map<number, string>;
+}
+
 /**
  * The working copy at the newest sequence number. Any failure throws: an empty document is never
  * returned in place of one that could not be read.
  */
-export async function loadDocument(
-	noteId: string,
-): Promise<{ doc: Y.Doc; seq: number; epoch: string; pending: boolean }> {
-	const { head, rows } = await db().transaction(
+export async function loadDocument(noteId: string): Promise<Loaded> {
+	const { head, rows, owners } = await db().transaction(
 		async (tx) => {
 			const [head] = await tx
 				.select({ seq: note.seq, epoch: note.epoch })
@@ -116,7 +144,7 @@ export async function loadDocument(
 				.from(noteUpdate)
 				.where(eq(noteUpdate.noteId, noteId))
 				.orderBy(asc(noteUpdate.seq));
-			return { head, rows };
+			return { head, rows, owners: await clients.read(tx, noteId) };
 		},
 		{ isolationLevel: 'repeatable read', accessMode: 'read only' },
 	);
@@ -127,7 +155,22 @@ export async function loadDocument(
 	}
 	const doc = new Y.Doc();
 	applyRows(doc, rows, 'database');
-	return { doc, seq: head.seq, epoch: head.epoch, pending: isPending(doc) };
+	return { doc, seq: head.seq, epoch: head.epoch, pending: isPending(doc), clients: owners };
+}
+
+/** Changes a note's working copy as a person who has no page open. */
+export async function change(
+	noteId: string,
+	personId: string,
+	make: (doc: Y.Doc) => void,
+): Promise<void> {
+	const { doc } = await loadDocument(noteId);
+	const before = Y.encodeStateVector(doc);
+	const cells = touchedBy(doc, () => doc.transact(() => make(doc)));
+	const bytes = Y.encodeStateAsUpdate(doc, before);
+	doc.destroy();
+	const id = crypto.randomUUID();
+	await append(noteId, [{ id, personId, bytes, clients: clientsIn(bytes), cells }]);
 }
 
 /** Newest sequence number and epoch of each of the notes that exist. */
@@ -150,13 +193,25 @@ export async function seed(
 ): Promise<void> {
 	const doc = new Y.Doc();
 	seedContent(doc, content);
+	const edit: Edit = {
+		id: 'seed',
+		personId,
+		bytes: Y.encodeStateAsUpdate(doc),
+		clients: [doc.clientID],
+		cells: [...cellsOf(doc).keys()],
+	};
+	const at = new Date();
 	await connection.insert(noteUpdate).values({
 		noteId,
 		seq: 1,
-		clientEditId: 'seed',
+		clientEditId: edit.id,
 		personId,
-		bytes: Y.encodeStateAsUpdate(doc),
+		at,
+		bytes: edit.bytes,
+		cells: [...edit.cells],
 	});
+	await connection.insert(noteClient).values({ noteId, clientId: doc.clientID, personId });
+	await authorship.record(connection, noteId, { edits: [edit], first: 1, at });
 	await connection.update(note).set({ seq: 1 }).where(eq(note.id, noteId));
 	doc.destroy();
 }
