@@ -82,7 +82,7 @@ test('a fault stands under its line, and one click mends it', async ({ page }) =
 	const fault = page.locator('[data-fault=reserved], [data-fault=ambiguous]').first();
 	await expect(fault).toContainText('unit');
 	const mend = fault.getByRole('button');
-	const replacement = ((await mend.textContent()) ?? '').replace('Put', '').trim();
+	const replacement = ((await mend.textContent()) ?? '').replace('Rename to', '').trim();
 	await mend.click();
 	await expect(figure(page, replacement)).toHaveText(/3\s*V/);
 	await expect(page.locator('[data-fault=unknownName]')).toContainText('V_x');

@@ -40,10 +40,10 @@ describe('splitting a line', () => {
 		},
 	);
 
-	test('a number sign inside a quoted text starts no comment', () => {
+	test('a number sign starts a comment also inside a quoted text, as the engine reads it', () => {
 		expect(cut('R = rkm("4#7") # real')).toMatchObject({
-			formula: 'rkm("4#7")',
-			comment: '# real',
+			formula: 'rkm("4',
+			comment: '#7") # real',
 		});
 	});
 
@@ -59,15 +59,27 @@ describe('splitting a line', () => {
 });
 
 describe('cutting a formula into colours', () => {
-	test('calls, numbers and comments are found, units and names stay plain', () => {
-		const coloured = tokenize('preferred(R2exact, 470 kohm) # why').filter(
-			(token) => token.kind !== 'plain',
-		);
-		expect(coloured).toEqual([
-			{ kind: 'call', text: 'preferred' },
-			{ kind: 'number', text: '470' },
-			{ kind: 'comment', text: '# why' },
+	const pieces = (text: string) =>
+		tokenize(text).flatMap((token) => (token.kind === 'plain' ? [] : [[token.kind, token.text]]));
+
+	test('calls, names, numbers with their units and comments are found', () => {
+		expect(pieces('preferred(R2exact, 470 kohm) # why')).toEqual([
+			['call', 'preferred'],
+			['name', 'R2exact'],
+			['number', '470'],
+			['unit', 'kohm'],
+			['comment', '# why'],
 		]);
+	});
+
+	test.each([
+		['0.1 %', 'unit'],
+		['20 °C', 'unit'],
+		['4.7kΩ', 'unit'],
+		['2 * kohm', 'name'],
+		['x * 2 + R', 'name'],
+	])('the last word of %j is a %s', (text, kind) => {
+		expect(tokenize(text).at(-1)?.kind).toBe(kind);
 	});
 
 	test.each(['Vmax * R2 / (R1 + R2)', '1.5e-3 A', '"a # b" # c', '', '{{x}}', "'open"])(

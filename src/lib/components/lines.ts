@@ -37,43 +37,43 @@ export function splitLine(text: string): LineParts {
 	};
 }
 
-/** Column of the `#` that starts a comment; one inside a quoted text does not. */
+/** Column of the `#` that starts a comment, also inside a quoted text, as the engine reads it. */
 function findComment(text: string): number {
-	let quote = '';
-	for (let i = 0; i < text.length; i++) {
-		const char = text[i] as string;
-		if (quote) {
-			if (char === '\\') i++;
-			else if (char === quote) quote = '';
-		} else if (char === '"' || char === "'") quote = char;
-		else if (char === '#') return i;
-	}
-	return text.length;
+	const at = text.indexOf('#');
+	return at < 0 ? text.length : at;
 }
 
 export interface Token {
-	kind: 'plain' | 'call' | 'number' | 'string' | 'comment';
+	kind: 'plain' | 'name' | 'call' | 'number' | 'unit' | 'string' | 'comment';
 	text: string;
 }
 
 const parts =
-	/(?<comment>#.*$)|(?<string>"(?:[^"\\]|\\.)*"?)|(?<call>[\p{L}_][\p{L}\p{N}_]*(?=\())|(?<word>[\p{L}_][\p{L}\p{N}_]*)|(?<number>(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)/gu;
+	/(?<comment>#.*$)|(?<string>"[^"#]*"?)|(?<call>[\p{L}_][\p{L}\p{N}_]*(?=\())|(?<word>[\p{L}_°%][\p{L}\p{N}_]*)|(?<number>(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)/gu;
 
-/** Cuts a formula into pieces of one colour; their texts joined are the formula. */
+/** Cuts a formula into pieces; their texts joined are the formula. A word right behind a number is its unit. */
 export function tokenize(text: string): Token[] {
 	const tokens: Token[] = [];
 	let at = 0;
-	const plain = (to: number) => {
-		if (to > at) tokens.push({ kind: 'plain', text: text.slice(at, to) });
-	};
 	for (const match of text.matchAll(parts)) {
-		const { comment, string, call, number } = match.groups ?? {};
-		const kind = comment ? 'comment' : string ? 'string' : call ? 'call' : number ? 'number' : null;
-		if (!kind) continue;
-		plain(match.index);
-		tokens.push({ kind, text: match[0] });
+		if (match.index > at) tokens.push({ kind: 'plain', text: text.slice(at, match.index) });
+		tokens.push({ kind: kindOf(match.groups ?? {}, tokens), text: match[0] });
 		at = match.index + match[0].length;
 	}
-	plain(text.length);
+	if (at < text.length) tokens.push({ kind: 'plain', text: text.slice(at) });
 	return tokens;
+}
+
+function kindOf(
+	found: Record<string, string | undefined>,
+	before: readonly Token[],
+): Token['kind'] {
+	const { comment, string, number, word } = found;
+	if (comment !== undefined) return 'comment';
+	if (string !== undefined) return 'string';
+	if (number !== undefined) return 'number';
+	if (word === undefined) return 'call';
+	const last = before.at(-1);
+	const neighbour = last?.kind === 'plain' && last.text.trim() === '' ? before.at(-2) : last;
+	return neighbour?.kind === 'number' ? 'unit' : 'name';
 }

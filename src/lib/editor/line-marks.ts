@@ -1,4 +1,4 @@
-import type { EditorState, Extension, Range } from '@codemirror/state';
+import type { Extension, Range } from '@codemirror/state';
 import {
 	Decoration,
 	EditorView,
@@ -24,13 +24,13 @@ export function lineMarks(kind: 'calculation' | 'requirement'): Extension {
 		marks: Marks;
 
 		constructor(view: EditorView) {
-			this.marks = marksOf(view.state, view.hasFocus, kind);
+			this.marks = marksOf(view, kind);
 		}
 
 		update(update: ViewUpdate): void {
-			if (update.docChanged || update.selectionSet || update.focusChanged) {
-				this.marks = marksOf(update.state, update.view.hasFocus, kind);
-			}
+			const { docChanged, selectionSet, focusChanged, viewportChanged } = update;
+			if (docChanged || selectionSet || focusChanged || viewportChanged)
+				this.marks = marksOf(update.view, kind);
 		}
 	}
 	return ViewPlugin.fromClass(LineMarks, {
@@ -40,11 +40,13 @@ export function lineMarks(kind: 'calculation' | 'requirement'): Extension {
 	});
 }
 
-function marksOf(state: EditorState, focused: boolean, kind: string): Marks {
+/** Marks of the lines that are drawn. */
+function marksOf({ state, hasFocus: focused, viewport }: EditorView, kind: string): Marks {
 	const names: Range<Decoration>[] = [];
 	const parts: Range<Decoration>[] = [];
 	const { doc, selection } = state;
-	for (let number = 1; number <= doc.lines; number++) {
+	const last = doc.lineAt(viewport.to).number;
+	for (let { number } = doc.lineAt(viewport.from); number <= last; number++) {
 		const line = doc.line(number);
 		const pieces = splitLine(line.text);
 		const active =

@@ -1,16 +1,18 @@
 import { closeBrackets, closeBracketsKeymap } from '@codemirror/autocomplete';
 import { defaultKeymap, insertNewline, insertNewlineKeepIndent } from '@codemirror/commands';
 import { bracketMatching } from '@codemirror/language';
-import { EditorState, type Extension } from '@codemirror/state';
+import { Compartment, EditorState, type Extension } from '@codemirror/state';
 import { EditorView, keymap, placeholder, type KeyBinding } from '@codemirror/view';
 import { yCollab } from 'y-codemirror.next';
 import type { Awareness } from 'y-protocols/awareness';
 import type * as Y from 'yjs';
 import type { CellKind } from '$lib/note/document';
-import { formulaColours } from './formula-colours';
+import { formulaLanguage } from './formula-language';
+import { hits } from './hits';
 import { keys, type Neighbours } from './keys';
 import { lineMarks } from './line-marks';
 import { look } from './look';
+import { noteContext, type NoteContext } from './note-context';
 import { results } from './results';
 import { singleLine } from './single-line';
 
@@ -25,13 +27,26 @@ interface Choices {
 	hint: string;
 	readOnly: boolean;
 	neighbours: Neighbours;
+	/** The note around the cell; a title has none. */
+	note?: NoteContext;
 	onfocus: (focused: boolean) => void;
 }
 
 /** Opens an editor on a shared text. Call `destroy` on what it gives. */
 export function openEditor(choices: Choices): EditorView {
-	const { parent, text, awareness, undoManager, kind, readOnly } = choices;
-	return new EditorView({
+	const { parent, text, awareness, undoManager, kind, readOnly, note } = choices;
+	const later = new Compartment();
+	let wanted = kind !== 'title' && note !== undefined;
+	// A page opens with many editors, of which a person uses one: what helps with writing comes when it is wanted.
+	const arrive = () => {
+		if (!wanted || kind === 'title') return;
+		wanted = false;
+		void import('./writing').then(
+			({ writing }) => view.dispatch({ effects: later.reconfigure(writing(kind)) }),
+			() => (wanted = true),
+		);
+	};
+	const view = new EditorView({
 		parent,
 		doc: text.toJSON(),
 		extensions: [
@@ -49,13 +64,20 @@ export function openEditor(choices: Choices): EditorView {
 				autocapitalize: kind === 'text' || kind === 'title' ? 'sentences' : 'off',
 				autocorrect: 'off',
 			}),
+			later.of([]),
+			...(note ? [noteContext.of(note)] : []),
 			EditorView.domEventHandlers({
-				focus: () => choices.onfocus(true),
+				mouseover: arrive,
+				focus: () => {
+					arrive();
+					choices.onfocus(true);
+				},
 				blur: () => choices.onfocus(false),
 			}),
 			ofKind(kind),
 		],
 	});
+	return view;
 }
 
 /** A formula goes on no second line, so nothing is indented for it. */
@@ -65,6 +87,13 @@ function enter(kind: Choices['kind']): KeyBinding {
 
 function ofKind(kind: Choices['kind']): Extension {
 	if (kind === 'title') return singleLine();
-	if (kind === 'text') return [];
-	return [lineMarks(kind), formulaColours(), closeBrackets(), bracketMatching(), results()];
+	if (kind === 'text') return hits();
+	return [
+		lineMarks(kind),
+		formulaLanguage(),
+		closeBrackets(),
+		bracketMatching(),
+		results(),
+		hits(),
+	];
 }

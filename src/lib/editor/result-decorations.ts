@@ -15,7 +15,14 @@ export type Result =
 	| { kind: 'readout'; at: number; widget: ReadoutWidget }
 	| { kind: 'verdict'; at: number; widget: VerdictWidget }
 	| { kind: 'detail'; at: number; widget: DetailWidget }
-	| { kind: 'fault'; at: number; to: number; fault: Fault };
+	| {
+			kind: 'fault';
+			at: number;
+			to: number;
+			fault: Fault;
+			/** What its replacement takes the place of. */
+			mendAt: { from: number; to: number };
+	  };
 
 export type ReadoutWidget = ReturnType<typeof readout>;
 export type VerdictWidget = ReturnType<typeof verdict>;

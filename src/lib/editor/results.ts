@@ -9,6 +9,7 @@ import { EditorView, type DecorationSet } from '@codemirror/view';
 import type { Evaluation, Fault } from '$lib/calc/results';
 import { splitLine } from '$lib/components/lines';
 import type { OpenLine } from '$lib/client/open-line.svelte';
+import { noteContext } from './note-context';
 import { remarksOf } from '$lib/components/remarks';
 import {
 	decorate,
@@ -107,20 +108,42 @@ function mend(view: EditorView, fault: Fault): void {
 	const place = view.state
 		.field(field)
 		.list.find((result) => result.kind === 'fault' && result.fault === fault);
-	if (place?.kind !== 'fault' || fault.replacement === undefined || view.state.readOnly) return;
+	if (place?.kind !== 'fault' || view.state.readOnly) return;
+	const note = view.state.facet(noteContext);
+	if (fault.rename && note) return note.rename(fault.rename.from, fault.rename.to);
+	if (fault.replacement === undefined) return;
+	const { from, to } = place.mendAt;
 	view.dispatch({
-		changes: { from: place.at, to: place.to, insert: fault.replacement },
-		selection: { anchor: place.at + fault.replacement.length },
+		changes: { from, to, insert: fault.replacement },
+		selection: { anchor: from + fault.replacement.length },
 		userEvent: 'input.mend',
 	});
 	view.focus();
 }
 
+/** Mends the first fault of the cursor's line that can be; gives whether there was one. */
+export function mendHere(view: EditorView): boolean {
+	const results = view.state.field(field, false)?.list ?? [];
+	const line = view.state.doc.lineAt(view.state.selection.main.head);
+	for (const result of results) {
+		if (result.kind !== 'fault' || !isMendable(result.fault)) continue;
+		if (result.at < line.from || result.at > line.to) continue;
+		mend(view, result.fault);
+		return true;
+	}
+	return false;
+}
+
+function isMendable({ replacement, rename }: Fault): boolean {
+	return replacement !== undefined || rename !== undefined;
+}
+
 function moved(result: Result, changes: ChangeDesc): Result {
 	const at = changes.mapPos(result.at, 1);
-	return result.kind === 'fault'
-		? { ...result, at, to: Math.max(at, changes.mapPos(result.to, -1)) }
-		: { ...result, at };
+	if (result.kind !== 'fault') return { ...result, at };
+	const from = changes.mapPos(result.mendAt.from, 1);
+	const mendAt = { from, to: Math.max(from, changes.mapPos(result.mendAt.to, -1)) };
+	return { ...result, at, to: Math.max(at, changes.mapPos(result.to, -1)), mendAt };
 }
 
 function placed(
@@ -154,8 +177,12 @@ function placed(
 		const start = startOf(doc, fault.line);
 		if (start === undefined) continue;
 		const end = doc.lineAt(start).to;
-		const at = Math.min(start + fault.from, end);
-		list.push({ kind: 'fault', at, to: Math.min(Math.max(start + fault.to, at), end), fault });
+		const within = ({ from, to }: { from: number; to: number }) => {
+			const first = Math.min(start + from, end);
+			return { from: first, to: Math.min(Math.max(start + to, first), end) };
+		};
+		const { from: at, to } = within(fault);
+		list.push({ kind: 'fault', at, to, fault, mendAt: within(fault.replaces ?? fault) });
 	}
 	return list;
 }
