@@ -49,7 +49,14 @@ function named(typed: string, kind: 'definition' | 'function') {
 	const parsed = parseLine(`${typed} = 0`);
 	const { defined } = parsed;
 	const whole = { from: 0, to: typed.length };
-	const base = { height: 0, parameters: [], references: [], unitsBehindNumbers: [], kind };
+	const base = {
+		height: 0,
+		quick: false,
+		parameters: [],
+		references: [],
+		unitsBehindNumbers: [],
+		kind,
+	};
 	if (parsed.kind === 'definition' && defined && defined.typed === typed)
 		return { ...base, defined };
 	return {

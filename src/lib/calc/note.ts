@@ -239,7 +239,7 @@ export class Note {
 			this.#keep(line, line.body, known);
 			return;
 		}
-		this.watch.at?.(line.cell, line.line);
+		if (!line.quick) this.watch.at?.(line.cell, line.line);
 		this.#startLine();
 		const firstInput = this.inputs.next;
 		try {

@@ -85,6 +85,13 @@ export function heightOf(node: Node): number {
 	return height;
 }
 
+const arithmetic = new Set<Node['kind']>(['number', 'unit', 'name', 'unary', 'binary', 'convert']);
+
+/** Whether an expression is nothing but numbers, names and operators: what it costs is bounded by its length. */
+export function isArithmetic(node: Node): boolean {
+	return arithmetic.has(node.kind) && partsOf(node).every(isArithmetic);
+}
+
 /** Whether an expression uses a name. */
 export function hasNames(node: Node): boolean {
 	return node.kind === 'name' || partsOf(node).some(hasNames);

@@ -6,7 +6,14 @@ import type { Unit } from '../units/unit';
 import { asTyped, canonical, prepared } from './characters';
 import { Lowering } from './lower';
 import { mathjs } from './mathjs';
-import { heightOf, type Node, type Place, type Reference, type UnitBehindNumber } from './nodes';
+import {
+	heightOf,
+	isArithmetic,
+	type Node,
+	type Place,
+	type Reference,
+	type UnitBehindNumber,
+} from './nodes';
 import { syntaxTrouble } from './syntax-errors';
 import { tokenize, type Token } from './tokens';
 
@@ -24,6 +31,8 @@ export interface ParsedLine {
 	body?: Node;
 	/** Levels of the formula's tree. */
 	height: number;
+	/** Whether it takes no time worth watching. */
+	quick: boolean;
 	references: Reference[];
 	/** `5 C`: places of a number with the unit symbol behind it. */
 	unitsBehindNumbers: UnitBehindNumber[];
@@ -63,7 +72,7 @@ export function unreadLine(text: string, trouble: Trouble): ParsedLine {
 	return { ...empty, kind: start.kind, ...start.defined, trouble };
 }
 
-const empty = { height: 0, parameters: [], references: [], unitsBehindNumbers: [] };
+const empty = { height: 0, quick: true, parameters: [], references: [], unitsBehindNumbers: [] };
 
 const head = /^(\s*)([\p{L}_$\u00b0\u00b5%][\p{L}\d_$\u00b0\u00b5%]*)\s*(\([^()]*\))?\s*=(?!=)/u;
 
@@ -133,7 +142,13 @@ function readFormula(line: string, kind: ParsedLine['kind']): Partial<ParsedLine
 
 function finished(lowering: Lowering, body: Node): Partial<ParsedLine> {
 	const { references, unitsBehindNumbers } = lowering;
-	return { body, references, unitsBehindNumbers, height: heightOf(body) };
+	return {
+		body,
+		references,
+		unitsBehindNumbers,
+		height: heightOf(body),
+		quick: isArithmetic(body),
+	};
 }
 
 function treeOf(line: string, tokens: Token[]): M.MathNode {
