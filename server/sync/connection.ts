@@ -2,9 +2,13 @@ import { closeCode, closeSentence } from '$lib/protocol/closing';
 import type { Actor } from '$lib/server/auth/access';
 import { log } from '$lib/server/log';
 import type { RawData, WebSocket } from 'ws';
-import { decode, type Incoming } from './incoming';
+import { Answer } from './answer';
+import { decode, PresenceTooBig, type Incoming } from './incoming';
 import { Allowance, maxUnread } from './limits';
 import type { Room } from './room';
+
+/** Time in which a page must take note of a closing. */
+const closingMs = 5000;
 
 /** One page's socket in a room. Reads and judges what comes in, and sends what the room says. */
 export class Connection {
@@ -13,6 +17,10 @@ export class Connection {
 	readonly session: string;
 	/** What the room last asked this page for; it is not asked for the same twice. */
 	askedFor: string | undefined;
+	/** Why an edit of this page was refused; what it made after that needs it, and is refused with it. */
+	refusedFor: string | undefined;
+	/** What the page asked for. */
+	readonly answer = new Answer((message) => this.send(message));
 
 	#mayWrite: boolean;
 	readonly #socket: WebSocket;
@@ -53,7 +61,7 @@ export class Connection {
 	send(message: Uint8Array): void {
 		if (this.#socket.readyState !== this.#socket.OPEN) return;
 		if (this.#socket.bufferedAmount > maxUnread.all) {
-			this.#socket.terminate();
+			this.close(closeCode.tooSlow);
 			return;
 		}
 		this.#socket.send(message, () => this.#sendHeldResults());
@@ -66,7 +74,10 @@ export class Connection {
 	}
 
 	close(code: number): void {
+		if (this.#socket.readyState !== this.#socket.OPEN) return;
 		this.#socket.close(code, closeSentence(code));
+		// A page that reads nothing does not read this either.
+		setTimeout(() => this.#socket.terminate(), closingMs).unref();
 	}
 
 	/** Ends a socket whose other side is gone; otherwise sends something, so that the page knows we are not. */
@@ -96,18 +107,18 @@ export class Connection {
 			this.close(closeCode.tooMany);
 			return;
 		}
-		const incoming = isBinary ? this.#decode(message) : undefined;
-		if (!incoming || !this.#room.receive(this, incoming)) {
-			this.close(closeCode.malformed);
-		}
+		const incoming = isBinary ? this.#decode(message) : closeCode.malformed;
+		if (typeof incoming === 'number') this.close(incoming);
+		else if (!this.#room.receive(this, incoming)) this.close(closeCode.malformed);
 	}
 
-	#decode(message: Uint8Array): Incoming | undefined {
+	/** The message, or the close code that says why there is none. */
+	#decode(message: Uint8Array): Incoming | number {
 		try {
 			return decode(message);
 		} catch (error) {
 			log().info({ err: error, personId: this.actor.personId }, 'a message could not be read');
-			return undefined;
+			return error instanceof PresenceTooBig ? closeCode.presenceTooBig : closeCode.malformed;
 		}
 	}
 }

@@ -1,7 +1,9 @@
 import { decodeEdit, messageType } from '$lib/protocol/messages';
+import { decodeMore } from '$lib/protocol/parts';
 import * as decoding from 'lib0/decoding';
 import { messageYjsSyncStep1, messageYjsSyncStep2, messageYjsUpdate } from 'y-protocols/sync';
 import { decodeStateVector } from 'yjs';
+import { maxPresence } from './limits';
 
 /** What one page says about one client of a document; null: gone. */
 export interface Said {
@@ -16,10 +18,14 @@ export type Incoming =
 	| { kind: 'nothing' }
 	| { kind: 'update' }
 	| { kind: 'edit'; id: string; update: Uint8Array }
-	| { kind: 'presence'; said: Said[] };
+	| { kind: 'presence'; said: Said[] }
+	/** A part of a long answer has come. */
+	| { kind: 'more'; answer: number; index: number };
+
+/** Presence that is longer than it may be. */
+export class PresenceTooBig extends Error {}
 
 const editId = /^[\w-]{1,64}$/;
-const maxSaid = 200;
 
 /** Reads a whole message before anything acts on it. Throws where it is truncated, too long or of no known kind. */
 export function decode(message: Uint8Array): Incoming {
@@ -37,6 +43,8 @@ function read(decoder: decoding.Decoder): Incoming {
 			return readSync(decoder);
 		case messageType.awareness:
 			return { kind: 'presence', said: readPresence(decoding.readVarUint8Array(decoder)) };
+		case messageType.more:
+			return { kind: 'more', ...decodeMore(decoder) };
 		case messageType.edit: {
 			const edit = decodeEdit(decoder);
 			if (!editId.test(edit.id)) throw new Error('an edit without a proper id');
@@ -66,9 +74,10 @@ function isNothing(update: Uint8Array): boolean {
 }
 
 function readPresence(bytes: Uint8Array): Said[] {
+	if (bytes.length > maxPresence.bytes) throw new PresenceTooBig('presence of too many bytes');
 	const decoder = decoding.createDecoder(Uint8Array.from(bytes));
 	const count = decoding.readVarUint(decoder);
-	if (count > maxSaid) throw new Error('presence of too many clients');
+	if (count > maxPresence.clients) throw new PresenceTooBig('presence of too many clients');
 	const said = Array.from({ length: count }, () => ({
 		clientId: decoding.readVarUint(decoder),
 		clock: decoding.readVarUint(decoder),

@@ -11,7 +11,7 @@ export interface Entry<Sender> extends updates.Edit {
 interface Events<Sender> {
 	onSaved(entries: readonly Entry<Sender>[], appended: updates.Appended): void;
 	/** The database will never take these edits; the document in memory is not what is stored. */
-	onFailed(error: unknown): void;
+	onFailed(error: unknown, entries: readonly Entry<Sender>[]): void;
 }
 
 const maxBatch = { edits: 500, bytes: 4 * 1024 * 1024 };
@@ -82,7 +82,7 @@ export class Journal<Sender> {
 				log().warn({ err: error, noteId: this.#noteId }, 'edits could not be stored');
 				if (isFinal(error)) {
 					this.#stopped = true;
-					this.#events.onFailed(error);
+					this.#events.onFailed(error, batch);
 					break;
 				}
 				await this.#pause(pauseMs * (0.5 + Math.random()));

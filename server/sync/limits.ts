@@ -2,10 +2,19 @@
 export const maxUnsaved = { edits: 5000, bytes: 8 * 1024 * 1024 };
 
 /** Bytes a slow page may leave unread: results are held back at the first, the socket is ended at the second. */
-export const maxUnread = { results: 1024 * 1024, all: 32 * 1024 * 1024 };
+export const maxUnread = { results: 1024 * 1024, all: 8 * 1024 * 1024 };
 
-/** Sockets one person may have open in a process. */
-export const maxSockets = 64;
+/** Bytes of a document, written down whole. */
+export const maxDocumentBytes = 24 * 1024 * 1024;
+
+/** Bytes of a note's updates that wait for others. */
+export const maxPendingBytes = 2 * 1024 * 1024;
+
+/** Sockets open in a process: of one person, and of one note. */
+export const maxSockets = { ofPerson: 64, ofNote: 300 };
+
+/** What a page may say of itself: bytes, and clients in one message. */
+export const maxPresence = { bytes: 4096, clients: 16 };
 
 /** Messages a page may send: so many at once, and so many a second in the long run. */
 const messages = { burst: 1000, perSecond: 200 };

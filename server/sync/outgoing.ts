@@ -1,11 +1,14 @@
 import { messageType } from '$lib/protocol/messages';
 import * as encoding from 'lib0/encoding';
-import { writeSyncStep1, writeSyncStep2, writeUpdate } from 'y-protocols/sync';
+import { messageYjsSyncStep2, writeSyncStep1, writeUpdate } from 'y-protocols/sync';
 import type * as Y from 'yjs';
 
-/** What a page lacks of a document, by its state vector. */
-export function answer(doc: Y.Doc, stateVector: Uint8Array): Uint8Array {
-	return write(messageType.sync, (encoder) => writeSyncStep2(encoder, doc, stateVector));
+/** All that a page lacked. */
+export function whole(bytes: Uint8Array): Uint8Array {
+	return write(messageType.sync, (encoder) => {
+		encoding.writeVarUint(encoder, messageYjsSyncStep2);
+		encoding.writeVarUint8Array(encoder, bytes);
+	});
 }
 
 /** Asks a page for what the document lacks. */

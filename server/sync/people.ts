@@ -33,6 +33,11 @@ export class People {
 		return outgoing.presence([{ clientId, clock, state }]);
 	}
 
+	/** Who speaks for a client id. */
+	personOf(clientId: number): string | undefined {
+		return this.#seen.get(clientId)?.connection.actor.personId;
+	}
+
 	/** Everybody, for one who has just come. */
 	all(): Uint8Array {
 		return outgoing.presence(

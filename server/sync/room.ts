@@ -1,4 +1,6 @@
+import { AppError } from '$lib/errors';
 import { cellsOf, toContent } from '$lib/note/document';
+import { countStrange } from '$lib/note/shape';
 import { clientsIn, touchedBy } from '$lib/note/touched';
 import { closeCode } from '$lib/protocol/closing';
 import {
@@ -22,7 +24,7 @@ import type { Incoming } from './incoming';
 import { Journal, type Entry } from './journal';
 import * as outgoing from './outgoing';
 import { People } from './people';
-import { Proof } from './proof';
+import { Proof, type Finding } from './proof';
 import { ResultStore } from './result-store';
 
 interface Events {
@@ -43,6 +45,8 @@ export class Room {
 	readonly #doc: Y.Doc;
 	readonly #proof: Proof;
 	readonly #people = new People();
+	/** Whose each Yjs client id in the document is. */
+	readonly #owners: Map<number, string>;
 	readonly #journal: Journal<Connection>;
 	readonly #scheduler: Scheduler;
 	readonly #store: ResultStore;
@@ -78,6 +82,7 @@ export class Room {
 		this.noteId = noteId;
 		this.#doc = loaded.doc;
 		this.#epoch = loaded.epoch;
+		this.#owners = loaded.clients;
 		this.#events = events;
 		this.#proof = new Proof(this.#doc);
 		this.#store = new ResultStore(noteId);
@@ -90,10 +95,7 @@ export class Room {
 		});
 		this.#journal = new Journal(noteId, {
 			onSaved: (entries, appended) => this.#onSaved(entries, appended),
-			onFailed: (error) => {
-				log().error({ err: error, noteId }, 'a room was given up');
-				this.#events.onBroken(this);
-			},
+			onFailed: (error, entries) => this.#onFailed(error, entries),
 		});
 		this.#scheduler = new Scheduler(
 			() => ({ version: this.#version, content: toContent(this.#doc) }),
@@ -131,6 +133,7 @@ export class Room {
 			epoch: this.#epoch,
 			mayWrite: connection.mayWrite,
 			personId: connection.actor.personId,
+			leftOut: countStrange(this.#doc),
 		};
 		connection.send(encodeJson('hello', hello));
 	}
@@ -146,8 +149,12 @@ export class Room {
 	receive(connection: Connection, incoming: Incoming): boolean {
 		switch (incoming.kind) {
 			case 'question':
-				connection.send(outgoing.answer(this.#doc, incoming.stateVector));
+				if (connection.answer.isUnderWay) return true;
+				connection.answer.start(Y.encodeStateAsUpdate(this.#doc, incoming.stateVector));
 				this.#askForMissing(connection);
+				return true;
+			case 'more':
+				connection.answer.onRead(incoming);
 				return true;
 			case 'presence': {
 				const message = this.#people.take(connection, incoming.said);
@@ -207,6 +214,7 @@ export class Room {
 	destroy(): void {
 		this.#held.release();
 		this.#journal.stop();
+		this.#proof.stop();
 		this.#scheduler.stop();
 		this.#store.stop();
 		this.#authors.stop();
@@ -218,7 +226,17 @@ export class Room {
 			connection.close(closeCode.unavailable);
 			return true;
 		}
-		if (!this.#proof.passes(update)) return false;
+		const finding = this.#judge(connection, update);
+		if (finding.kind === 'broken') return false;
+		if (finding.kind === 'refused') {
+			connection.refusedFor = finding.reason;
+			return refuse(connection, id, finding.reason);
+		}
+		if (finding.kind !== 'good') {
+			connection.close(closeCode[finding.kind]);
+			return true;
+		}
+		for (const client of finding.clients) this.#owners.set(client, connection.actor.personId);
 		// What it completes may be another page's: then the sender lacks that, and gets everything too.
 		const origin = updates.isPending(this.#doc) ? 'pending' : connection;
 		const cells = touchedBy(this.#doc, () => Y.applyUpdate(this.#doc, update, origin));
@@ -227,12 +245,39 @@ export class Room {
 			id,
 			personId: connection.actor.personId,
 			bytes: update,
-			clients: clientsIn(update),
+			clients: finding.clients,
 			cells,
 			sender: connection,
 		});
 		this.#askForMissing(connection);
 		return true;
+	}
+
+	#judge(connection: Connection, update: Uint8Array): Finding {
+		const { refusedFor, actor } = connection;
+		if (refusedFor) return { kind: 'refused', reason: refusedFor };
+		// Before anything of a page is stored, what it says of itself tells whose its client id is.
+		return this.#proof.judge(
+			update,
+			actor.personId,
+			(id) => this.#owners.get(id) ?? this.#people.personOf(id),
+		);
+	}
+
+	/** The document in memory is not what is stored, and cannot be: the pages come back to one that is loaded anew. */
+	#onFailed(error: unknown, entries: readonly Entry<Connection>[]): void {
+		log().error({ err: error, noteId: this.noteId }, 'a room was given up');
+		const wrong =
+			error instanceof AppError && error.code === 'conflict' ? error.details : undefined;
+		for (const { id, sender } of entries) {
+			if (!Array.isArray(wrong?.ids) || !wrong.ids.includes(id)) continue;
+			refuse(
+				sender,
+				id,
+				'This change is not taken. It was written under the name of somebody else’s page.',
+			);
+		}
+		this.#events.onBroken(this);
 	}
 
 	/** Asks a page for what pending updates wait for; once only for the same, as it may not have it either. */
@@ -264,6 +309,11 @@ export class Room {
 	#applyRows(rows: readonly updates.Row[]): void {
 		const broken = rows.find((row) => !this.#proof.passes(row.bytes));
 		if (broken) throw new Error(`row ${broken.seq} cannot be read`);
+		for (const { bytes, personId } of rows) {
+			for (const client of clientsIn(bytes)) {
+				if (!this.#owners.has(client)) this.#owners.set(client, personId);
+			}
+		}
 		updates.applyRows(this.#doc, rows, 'database');
 		this.#authors.hear(rows.flatMap(({ cells }) => cells));
 	}

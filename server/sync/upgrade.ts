@@ -55,11 +55,21 @@ export class Gate {
 		void this.#admit(request, noteId).then((admission) => {
 			socket.off('error', onError);
 			this.#server.handleUpgrade(request, socket, head, (webSocket) => {
-				if (typeof admission !== 'number') new Connection(webSocket, admission.room, admission);
-				else webSocket.close(admission, closeSentence(admission));
+				// Counted now, as many may have asked at once.
+				const entry = this.#counted(admission);
+				if (typeof entry === 'number') webSocket.close(entry, closeSentence(entry));
+				else new Connection(webSocket, entry.room, entry);
 			});
 		});
 	};
+
+	#counted(admission: Admission | number): Admission | number {
+		if (typeof admission === 'number') return admission;
+		const { room, actor } = admission;
+		if (room.connections.size >= maxSockets.ofNote) return closeCode.noteCrowded;
+		if (this.#rooms.countOf(actor.personId) >= maxSockets.ofPerson) return closeCode.tooManyPages;
+		return admission;
+	}
 
 	/** Who comes in, or the close code that says why not. */
 	async #admit(request: IncomingMessage, noteId: string): Promise<Admission | number> {
@@ -67,7 +77,6 @@ export class Gate {
 			const token = tokenIn(request.headers.cookie);
 			const actor = token && (await sessions.findActor(token));
 			if (!actor) return closeCode.signedOut;
-			if (this.#rooms.countOf(actor.personId) >= maxSockets) return closeCode.tooMany;
 			const { mayWrite } = await notes.access(actor, noteId);
 			const room = await this.#rooms.open(noteId);
 			return this.#shut ? closeCode.restarting : { room, actor, session: hashOf(token), mayWrite };

@@ -3,9 +3,10 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { WebSocket } from 'ws';
 import * as Y from 'yjs';
 import { closeCode, maxMessageBytes } from '$lib/protocol/closing';
-import { encodeEdit } from '$lib/protocol/messages';
+import { encodeEdit, messageType, type Refused } from '$lib/protocol/messages';
+import { clientsIn } from '$lib/note/touched';
 import { db } from '$lib/server/db/client';
-import { loadDocument } from '$lib/server/notes/updates';
+import { append, loadDocument } from '$lib/server/notes/updates';
 import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
 import { RawSocket } from '../support/raw-socket';
 import { startSyncServer } from '../support/server';
@@ -42,7 +43,6 @@ describe('a message that cannot be read closes its own connection only', () => {
 		['an edit whose update is cut off', encodeEdit('edit-3', someEdit().slice(0, -3))],
 		['a state vector that is cut off', Uint8Array.of(0, 0, 2, 5, 1)],
 		['presence that is no JSON', Uint8Array.of(1, 5, 1, 7, 1, 1, 123)],
-		['presence of a million clients', Uint8Array.of(1, 3, 192, 132, 61)],
 	];
 
 	test.each(cases)('%s', async (_, bytes) => {
@@ -72,6 +72,15 @@ describe('a message that cannot be read closes its own connection only', () => {
 		expect(await socket.end()).toBe(closeCode.tooBig);
 	});
 
+	test.each([
+		['a million clients', Uint8Array.of(1, 3, 192, 132, 61)],
+		['more bytes than it may', Uint8Array.of(1, 0x88, 0x27, ...new Uint8Array(5000))],
+	])('presence of %s', async (_, bytes) => {
+		const socket = await enter(await bench.makeNote()).greeted();
+		socket.send(bytes);
+		expect(await socket.end()).toBe(closeCode.presenceTooBig);
+	});
+
 	test('far too many messages', async () => {
 		const socket = await enter(await bench.makeNote()).greeted();
 		for (let index = 0; index < 3000; index += 1) socket.send(Uint8Array.of(1, 1, 0));
@@ -92,40 +101,49 @@ test('a handshake that is none of ours leaves the server running', async () => {
 	page.destroy();
 });
 
-test('unknown content in the document counts for nothing', async () => {
+/** What no page of ours would put into a note. */
+function strangeContent(): Uint8Array {
+	const doc = new Y.Doc();
+	doc.getMap('strange').set('key', 'value');
+	doc.getMap('cells').set('__proto__', new Y.Map([['kind', 'text']]));
+	doc.getMap('cells').set('half', new Y.Map([['kind', 'calculation']]));
+	return Y.encodeStateAsUpdate(doc);
+}
+
+test('unknown content is refused by name and reaches nobody, and neither does what the page does after it', async () => {
 	const noteId = await bench.makeNote();
 	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
 	const socket = await enter(noteId).greeted();
-	const doc = new Y.Doc();
-	doc.getMap('strange').set('key', 'value');
-	const cells = doc.getMap('cells');
-	cells.set('__proto__', new Y.Map([['kind', 'text']]));
-	cells.set('plain', 'a string');
-	cells.set('half', new Y.Map([['kind', 'calculation']]));
-	cells.set(
-		'odd',
-		new Y.Map<unknown>([
-			['kind', 'x'],
-			['order', 'a0'],
-			['source', new Y.Text()],
-		]),
-	);
-	cells.set(
-		'key',
-		new Y.Map<unknown>([
-			['kind', 'text'],
-			['order', '??'],
-			['source', new Y.Text()],
-		]),
-	);
-	await socket.save('strange', Y.encodeStateAsUpdate(doc));
+	socket.send(encodeEdit('strange', strangeContent()));
+	socket.send(encodeEdit('later', someEdit()));
+	await eventually(() => socket.bodies<Refused>(messageType.refused).length === 2);
+	const [strange, later] = socket.bodies<Refused>(messageType.refused);
+	expect(strange!.id).toBe('strange');
+	expect(strange!.reason).toContain('what no note has');
+	expect(later).toMatchObject({ id: 'later', reason: strange!.reason });
+	type(page, page.cells[0]!.id, 'R = 1 ohm\n');
+	await saved(page);
+	expect([...page.doc.share.keys()].sort()).toEqual(['cells', 'title']);
+	expect((await loadDocument(noteId)).seq).toBe(2);
+	expect(await storedContent(noteId)).toEqual(contentOf(page));
+	await socket.close();
+	page.destroy();
+});
+
+test('unknown content that is stored already counts for nothing, and the page says so', async () => {
+	const noteId = await bench.makeNote();
+	const bytes = strangeContent();
+	const clients = clientsIn(bytes);
+	const personId = bench.engineer.personId;
+	await append(noteId, [{ id: 'strange', personId, bytes, clients, cells: [] }]);
+	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	expect(page.notice).toContain('of no known kind');
 	type(page, page.cells[0]!.id, 'R = 1 ohm\n');
 	await saved(page);
 	expect(contentOf(page).cells.map(({ source }) => source)).toEqual(['U = 5 V\nR = 1 ohm\n']);
 	expect(page.addCell('text', page.cells[0]!.id, 'more')).toBeDefined();
 	await saved(page);
 	expect(await storedContent(noteId)).toEqual(contentOf(page));
-	await socket.close();
 	page.destroy();
 });
 

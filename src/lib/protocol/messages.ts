@@ -5,9 +5,9 @@ import * as encoding from 'lib0/encoding';
  * Message types on a note's socket. 0 and 1 are those of y-protocols (sync, awareness); the rest are ours.
  * Every message starts with its type as a variable-length unsigned integer.
  *
- * A client sends: sync step 1 (0,0), awareness (1), `edit`.
+ * A client sends: sync step 1 (0,0), awareness (1), `edit`, `more`.
  * A server sends: sync step 2 and updates (0,1 and 0,2), awareness (1), `hello`, `saved`, `refused`, `results`, `news`,
- * `authors`.
+ * `authors`, `part` (of a long step 2, see `parts.ts`).
  * An edit carries an id chosen by the client. It is acknowledged by that id after the commit, never before; a client
  * sends what was not acknowledged again, under the same id, after it has reconnected.
  */
@@ -15,11 +15,13 @@ export const messageType = {
 	sync: 0,
 	awareness: 1,
 	edit: 100,
+	more: 101,
 	hello: 110,
 	saved: 111,
 	refused: 112,
 	results: 113,
 	news: 114,
+	part: 115,
 	authors: 120,
 } as const;
 
@@ -28,6 +30,8 @@ export interface Hello {
 	epoch: string;
 	mayWrite: boolean;
 	personId: string;
+	/** Things in the document that no note holds; they count for nothing. */
+	leftOut?: number;
 }
 
 /** Edits that are committed, by client edit id, and the note's sequence number after them. */

@@ -8,6 +8,7 @@ import { note, noteClient, noteUpdate } from '../db/schema/notes';
 import { person } from '../db/schema/people';
 import * as authorship from './authorship';
 import * as clients from './clients';
+import { documentOf, readState } from './stored-log';
 
 /** A change of a note's working copy: raw update bytes, under the id its client chose. */
 export interface Edit {
@@ -86,6 +87,7 @@ export async function append(noteId: string, edits: readonly Edit[]): Promise<Ap
 /** A stored update. */
 export interface Row {
 	seq: number;
+	personId: string;
 	bytes: Uint8Array;
 	/** Cells that it changed. */
 	cells: string[];
@@ -94,7 +96,12 @@ export interface Row {
 /** Rows after a sequence number, oldest first. */
 export async function rowsSince(noteId: string, seq: number): Promise<Row[]> {
 	return db()
-		.select({ seq: noteUpdate.seq, bytes: noteUpdate.bytes, cells: noteUpdate.cells })
+		.select({
+			seq: noteUpdate.seq,
+			personId: noteUpdate.personId,
+			bytes: noteUpdate.bytes,
+			cells: noteUpdate.cells,
+		})
 		.from(noteUpdate)
 		.where(and(eq(noteUpdate.noteId, noteId), gt(noteUpdate.seq, seq)))
 		.orderBy(asc(noteUpdate.seq));
@@ -125,6 +132,8 @@ export interface Loaded {
 	pending: boolean;
 	/** Whose each Yjs client id in it is. */
 	clients: Map<number, string>;
+	/** Sequence number of the snapshot it was loaded from, 0 without one. */
+	snapshotSeq: number;
 }
 
 /**
@@ -132,30 +141,27 @@ export interface Loaded {
  * returned in place of one that could not be read.
  */
 export async function loadDocument(noteId: string): Promise<Loaded> {
-	const { head, rows, owners } = await db().transaction(
+	const { head, state, owners } = await db().transaction(
 		async (tx) => {
 			const [head] = await tx
 				.select({ seq: note.seq, epoch: note.epoch })
 				.from(note)
 				.where(eq(note.id, noteId));
 			if (!head) throw new AppError('notFound', 'This note does not exist.');
-			const rows = await tx
-				.select({ seq: noteUpdate.seq, bytes: noteUpdate.bytes })
-				.from(noteUpdate)
-				.where(eq(noteUpdate.noteId, noteId))
-				.orderBy(asc(noteUpdate.seq));
-			return { head, rows, owners: await clients.read(tx, noteId) };
+			const state = await readState(tx, noteId, head.seq);
+			return { head, state, owners: await clients.read(tx, noteId) };
 		},
 		{ isolationLevel: 'repeatable read', accessMode: 'read only' },
 	);
-	if ((rows.at(-1)?.seq ?? 0) !== head.seq || rows.length !== head.seq) {
-		throw new AppError('unavailable', 'The note could not be read completely.', {
-			details: { noteId, seq: head.seq, rows: rows.length },
-		});
-	}
-	const doc = new Y.Doc();
-	applyRows(doc, rows, 'database');
-	return { doc, seq: head.seq, epoch: head.epoch, pending: isPending(doc), clients: owners };
+	const doc = documentOf(state);
+	return {
+		doc,
+		seq: head.seq,
+		epoch: head.epoch,
+		pending: isPending(doc),
+		clients: owners,
+		snapshotSeq: state.snapshot?.seq ?? 0,
+	};
 }
 
 /** Changes a note's working copy as a person who has no page open. */
