@@ -1,5 +1,6 @@
 import type { Actor } from '$lib/server/auth/access';
 import * as notes from '$lib/server/notes/notes';
+import pg from 'pg';
 import { createDatabase } from './database';
 import { eventually, openPage } from './page';
 import { makeMember, makeTeam, signIn } from './people';
@@ -13,6 +14,8 @@ export interface SyncBench {
 	cookie: string;
 	/** Makes a note of the engineer's with one calculation cell, and returns its id. */
 	makeNote(source?: string): Promise<string>;
+	/** Runs a statement as the owner of the tables, who may do what the application must not. */
+	asOwner(statement: string): Promise<void>;
 	/** Waits until the server's evaluators have started. */
 	computes(): Promise<void>;
 	close(): Promise<void>;
@@ -33,6 +36,12 @@ export async function startSyncBench(): Promise<SyncBench> {
 		engineer,
 		cookie,
 		makeNote,
+		asOwner: async (statement) => {
+			const client = new pg.Client({ connectionString: database.ownerUrl });
+			await client.connect();
+			await client.query(statement);
+			await client.end();
+		},
 		computes: async () => {
 			const page = await openPage(server, { noteId: await makeNote(), cookie });
 			await eventually(() => page.evaluation.quantities.U, 60_000);

@@ -1,11 +1,9 @@
-import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { WebSocket } from 'ws';
 import * as Y from 'yjs';
 import { closeCode, maxMessageBytes } from '$lib/protocol/closing';
 import { encodeEdit, messageType, type Refused } from '$lib/protocol/messages';
 import { clientsIn } from '$lib/note/touched';
-import { db } from '$lib/server/db/client';
 import { append, loadDocument } from '$lib/server/notes/updates';
 import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
 import { RawSocket } from '../support/raw-socket';
@@ -150,10 +148,10 @@ test('unknown content that is stored already counts for nothing, and the page sa
 test('a note that cannot be loaded opens for nobody and stays as it is stored', async () => {
 	const noteId = await bench.makeNote('U = 5 V\nI = 1 A\n');
 	const before = await storedContent(noteId);
-	await db().execute(sql`alter table note_update rename to note_update_away`);
+	await bench.asOwner('alter table note_update rename to note_update_away');
 	const sockets = Array.from({ length: 10 }, () => enter(noteId));
 	const codes = await Promise.all(sockets.map((socket) => socket.end()));
-	await db().execute(sql`alter table note_update_away rename to note_update`);
+	await bench.asOwner('alter table note_update_away rename to note_update');
 	expect(new Set(codes)).toEqual(new Set([closeCode.unavailable]));
 	expect(sockets.flatMap((socket) => socket.received)).toEqual([]);
 
@@ -166,10 +164,10 @@ test('a note that cannot be loaded opens for nobody and stays as it is stored', 
 test('a page opened while a note cannot be loaded gets it as soon as it can', async () => {
 	const noteId = await bench.makeNote();
 	const server = await startSyncServer();
-	await db().execute(sql`alter table note_update rename to note_update_away`);
+	await bench.asOwner('alter table note_update rename to note_update_away');
 	const early = new RawSocket(server, noteId, { cookie: bench.cookie });
 	expect(await early.end()).toBe(closeCode.unavailable);
-	await db().execute(sql`alter table note_update_away rename to note_update`);
+	await bench.asOwner('alter table note_update_away rename to note_update');
 	const page = await openPage(server, { noteId, cookie: bench.cookie });
 	expect(contentOf(page).cells).toHaveLength(1);
 	page.destroy();
