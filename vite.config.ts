@@ -48,6 +48,15 @@ export default defineConfig({
 					globalSetup: 'tests/support/postgres.ts',
 				},
 			},
+			{
+				extends: true,
+				test: {
+					name: 'faults',
+					include: ['tests/faults/**/*.test.ts'],
+					hookTimeout: 120_000,
+					setupFiles: 'tests/faults/install-clocks.ts',
+				},
+			},
 		],
 	},
 });

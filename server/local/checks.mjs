@@ -16,6 +16,7 @@ export const checks = [
 	vitest('Unit tests', 'unit'),
 	vitest('Database tests', 'db'),
 	vitest('Sync tests', 'sync'),
+	vitest('Fault tests', 'faults', 'fault-tests'),
 	suite('Browser tests', 'browser', counts.ofPlaywright, ['playwright', 'test']),
 ];
 
@@ -37,12 +38,13 @@ function single(title, ...command) {
 /**
  * @param {string} title
  * @param {string} project
+ * @param {string} [name] of the report in `test-results/`
  */
-function vitest(title, project) {
+function vitest(title, project, name = project) {
 	const reporters = ['--reporter=default', '--reporter=json'];
-	return suite(title, project, counts.ofVitest, [
+	return suite(title, name, counts.ofVitest, [
 		...['vitest', 'run', '--project', project, ...reporters],
-		...['--outputFile.json', `test-results/${project}.json`],
+		...['--outputFile.json', `test-results/${name}.json`],
 	]);
 }
 

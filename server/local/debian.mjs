@@ -57,12 +57,30 @@ const peers = {
 	'python3-uncertainties': '/usr/lib/python3/dist-packages/uncertainties',
 };
 
+/** Shows what processes ask of the kernel. Without it the order of writing and answering is seen less closely. */
+const tracer = { strace: '/usr/bin/strace' };
+
 /**
  * Installs the programs to compare with where that is ours to do and possible.
  * @returns {Promise<string>} a remark
  */
-export async function installPeers() {
-	const missing = Object.entries(peers).flatMap(([name, path]) => (existsSync(path) ? [] : [name]));
+export function installPeers() {
+	return installOptional(peers);
+}
+
+/**
+ * The same for the program that fault runs trace with.
+ * @returns {Promise<string>} a remark
+ */
+export function installTracer() {
+	return installOptional(tracer);
+}
+
+/** @param {Record<string, string>} programs */
+async function installOptional(programs) {
+	const missing = Object.entries(programs).flatMap(([name, path]) =>
+		existsSync(path) ? [] : [name],
+	);
 	if (missing.length === 0) return 'all here';
 	const left = `left out: ${missing.join(', ')}`;
 	if (!existsSync('/usr/bin/apt-get') || process.getuid?.() !== 0) return left;

@@ -1,0 +1,48 @@
+import { spawn } from 'node:child_process';
+import { once } from 'node:events';
+import { parseArgs } from 'node:util';
+import { installTracer } from './debian.mjs';
+import { alone } from './lock.mjs';
+import { root } from './place.mjs';
+import { release } from './postgres.mjs';
+import { Problem, report } from './problem.mjs';
+import { step } from './progress.mjs';
+import { setUp } from './set-up.mjs';
+
+/** `npm run faults [-- --seed N --only id,id]`: sets up as the tests do, then breaks what can break, in the long form. */
+try {
+	const { seed = '', only = '' } = read();
+	await alone('demo', async () => {
+		await setUp(['postgresql']);
+		await step('Program to trace with', installTracer);
+	});
+	const words = ['run', '--project', 'faults', '--reporter', 'verbose'];
+	const child = spawn('node_modules/.bin/vitest', words, {
+		cwd: root,
+		env: { ...process.env, FAULTS_FORM: 'full', FAULTS_SEED: seed, FAULTS_ONLY: only },
+		stdio: 'inherit',
+	});
+	for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM'])) {
+		process.on(signal, () => child.kill(signal));
+	}
+	const [code] = await once(child, 'exit');
+	process.exitCode = /** @type {number | null} */ (code) ?? 1;
+} catch (error) {
+	report(error);
+	process.exitCode = 1;
+}
+await release();
+
+function read() {
+	try {
+		const options = /** @type {const} */ ({ seed: { type: 'string' }, only: { type: 'string' } });
+		const { values } = parseArgs({ options });
+		if (values.seed !== undefined && !/^\d{1,10}$/.test(values.seed))
+			throw new Error('--seed takes a number.');
+		return values;
+	} catch (error) {
+		throw new Problem(
+			`${error instanceof Error ? error.message : String(error)}\nUse: npm run faults -- --seed 7 --only disk-full,nemesis`,
+		);
+	}
+}

@@ -1,0 +1,96 @@
+import type { Fault } from '../fault';
+import { evaluatorsOf } from '../processes';
+import type { Stage } from '../stage';
+import { pause } from '../until';
+
+/** Edits a second and writer; everybody writes as fast as acknowledgements come. */
+const fast = 150;
+/** Edits to be acknowledged between two kills. */
+const between = { short: 150, full: 1100 };
+const killsInRun = { short: 2, full: 6 };
+const many = { notes: 4, writers: 12 };
+
+/** Kills at an instant that is drawn, starts again, and waits until everybody can write. */
+async function killing(stage: Stage, once: () => Promise<void>): Promise<void> {
+	stage.type(fast);
+	const form = stage.isFull ? 'full' : 'short';
+	for (let kill = 0; kill < killsInRun[form]; kill++) {
+		await stage.acknowledges(between[form]);
+		await pause(stage.random.below(50));
+		await once();
+		stage.injected += 1;
+		await stage.recovers();
+	}
+}
+
+export const serverKilled: Fault = {
+	id: 'server-killed',
+	fault: 'kill -9 of a sync process',
+	...many,
+	runs: 7,
+	run: (stage) =>
+		killing(stage, async () => {
+			const post = stage.random.pick(stage.site.posts);
+			await stage.site.kill(post);
+			await stage.site.start(post);
+		}),
+};
+
+export const postgresKilled: Fault = {
+	id: 'postgres-killed',
+	fault: 'kill -9 of PostgreSQL, its first process or all',
+	...many,
+	runs: 6,
+	run: (stage) =>
+		killing(stage, async () => {
+			await stage.site.cluster.kill(stage.random.chance(0.5));
+			await stage.site.cluster.start();
+		}),
+};
+
+export const bothKilled: Fault = {
+	id: 'both-killed',
+	fault: 'kill -9 of every sync process and of PostgreSQL at once',
+	...many,
+	runs: 5,
+	run: (stage) =>
+		killing(stage, async () => {
+			const { cluster, posts } = stage.site;
+			await Promise.all([cluster.kill(true), ...posts.map((post) => stage.site.kill(post))]);
+			await cluster.start();
+			await Promise.all(posts.map((post) => stage.site.start(post)));
+		}),
+};
+
+export const postgresRestarted: Fault = {
+	id: 'postgres-restarted',
+	fault: 'PostgreSQL stopped in good order and started again',
+	run: async (stage) => {
+		stage.type(20);
+		for (let n = 0; n < (stage.isFull ? 8 : 1); n++) {
+			await stage.acknowledges(50);
+			await stage.site.cluster.stop();
+			stage.injected += 1;
+			await stage.site.cluster.start();
+			await stage.recovers();
+		}
+	},
+};
+
+export const evaluatorKilled: Fault = {
+	id: 'evaluator-killed',
+	fault: 'kill -9 of every evaluator',
+	run: async (stage) => {
+		stage.type(20);
+		for (let n = 0; n < (stage.isFull ? 30 : 3); n++) {
+			await stage.acknowledges(30);
+			for (const { server } of stage.site.posts) {
+				for (const pid of evaluatorsOf(server?.pid ?? 0)) {
+					process.kill(pid, 'SIGKILL');
+					stage.injected += 1;
+				}
+			}
+			await stage.recovers();
+		}
+	},
+};
