@@ -47,6 +47,7 @@ export async function connectPage(
 	}
 	return new WorkingCopy({
 		noteId,
+		number: '',
 		epoch: epoch ?? (await loadDocument(noteId)).epoch,
 		person,
 		content: { title: '', cells: [] },

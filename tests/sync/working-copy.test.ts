@@ -133,6 +133,7 @@ test('before the document is complete the page shows what it was loaded with, an
 	const content = { title: 'Loaded', cells: [{ id: 'c1', kind: 'text' as const, source: 'x' }] };
 	const early = new WorkingCopy({
 		noteId: '',
+		number: '',
 		epoch: '',
 		person: { id: '', name: '' },
 		content,

@@ -4,18 +4,21 @@ import {
 	decodeJson,
 	encodeEdit,
 	messageType,
+	type Authors,
 	type Hello,
 	type News,
 	type Refused,
 	type Saved,
 } from '$lib/protocol/messages';
+import { decodePart, encodeMore, PartsInbox, type Part } from '$lib/protocol/parts';
 import * as decoding from 'lib0/decoding';
 import * as encoding from 'lib0/encoding';
 import { encodeAwarenessUpdate, type Awareness } from 'y-protocols/awareness';
 import { messageYjsSyncStep1, messageYjsSyncStep2 } from 'y-protocols/sync';
 import { WebsocketProvider } from 'y-websocket';
 import * as Y from 'yjs';
-import { Outbox } from './outbox';
+import type { UnsavedEdit } from './outbox';
+import type { UnsavedEdits } from './unsaved-edits';
 
 /** How a page stands to the server. `closed` is final until the page is loaded again. */
 export type ConnectionState = 'connecting' | 'online' | 'offline' | 'closed';
@@ -24,10 +27,11 @@ interface Events {
 	/** Something of `connection`, `count`, `synced` or `mayWrite` changed. */
 	onChange: () => void;
 	onSaved: (saved: Saved) => void;
-	/** An edit will never be stored. */
+	/** An edit will never be stored, and with it none that was made after it. */
 	onRefused: (reason: string) => void;
 	onResults: (results: Evaluation) => void;
 	onNews: (news: News) => void;
+	onAuthors: (authors: Authors) => void;
 }
 
 interface Options {
@@ -37,9 +41,13 @@ interface Options {
 	epoch: string;
 	doc: Y.Doc;
 	awareness: Awareness;
+	unsaved: UnsavedEdits;
 	events: Events;
 	WebSocket?: typeof WebSocket;
 }
+
+const leftOutSentence =
+	'This note holds content that is of no known kind. It is kept, and left out of the sheet, its figures and revisions.';
 
 /**
  * A note's socket on the page's side. Local changes go out as edits with ids and stay in the outbox until the
@@ -52,15 +60,19 @@ export class NoteSocket {
 	mayWrite = false;
 	/** Why the connection is lost or closed, a sentence. */
 	notice: string | undefined;
+	/** The code it was closed with for good. */
+	closedWith: number | undefined;
 
 	readonly #options: Options;
 	readonly #provider: WebsocketProvider;
-	readonly #outbox = new Outbox();
+	readonly #unsaved: UnsavedEdits;
+	readonly #parts = new PartsInbox();
 	#greeted = false;
 	#flushing = false;
 
 	constructor(options: Options) {
 		this.#options = options;
+		this.#unsaved = options.unsaved;
 		const { doc, awareness } = options;
 		const provider = new WebsocketProvider(options.url, options.noteId, doc, {
 			awareness,
@@ -77,14 +89,19 @@ export class NoteSocket {
 		awareness.on('update', this.#onPresence);
 		this.#handleMessages();
 		provider.on('status', ({ status }) => status === 'connected' && this.#announce());
-		provider.on('connection-close', () => this.#onLost());
+		provider.on('connection-close', (event) => this.#onLost(event?.code));
 		provider.on('closed', ({ code }) => this.#close(code));
 		provider.connect();
 	}
 
-	/** Edits that are not acknowledged. */
-	get count(): number {
-		return this.#outbox.count;
+	/** Takes edits of an earlier page into the document and sends them. */
+	adopt(edits: readonly UnsavedEdit[]): void {
+		if (this.connection === 'closed') return;
+		for (const edit of edits) {
+			Y.applyUpdate(this.#options.doc, edit.update, this);
+			this.#unsaved.outbox.restore(edit);
+		}
+		this.#flush();
 	}
 
 	/** Gives a connection that may be dead up and makes a new one at once. */
@@ -107,22 +124,25 @@ export class NoteSocket {
 			messageHandlers[messageType[type]] = (_, decoder) => handle(decodeJson<T>(decoder));
 		};
 		messageHandlers[messageType.sync] = (_, decoder) => this.#onSync(decoder);
+		messageHandlers[messageType.part] = (_, decoder) => this.#onPart(decodePart(decoder));
 		on<Hello>('hello', (hello) => this.#onHello(hello));
 		on<Evaluation>('results', events.onResults);
 		on<News>('news', events.onNews);
 		on<Saved>('saved', (saved) => {
-			this.#outbox.settle(saved.ids);
+			this.#unsaved.outbox.settle(saved.ids);
 			events.onSaved(saved);
 			this.#flush();
 		});
-		on<Refused>('refused', ({ id, reason }) => {
-			this.#outbox.settle([id]);
+		on<Refused>('refused', ({ reason }) => {
+			// What was made after it needs it, and would wait for it in the note for ever.
+			this.#close(undefined, 'A change was refused, so this page is no longer what is stored.');
+			this.#provider.disconnect();
 			events.onRefused(reason);
-			this.#flush();
 		});
+		on<Authors>('authors', events.onAuthors);
 	}
 
-	#onHello({ epoch, mayWrite }: Hello): void {
+	#onHello({ epoch, mayWrite, leftOut }: Hello): void {
 		if (epoch !== this.#options.epoch) {
 			this.#close(closeCode.otherEpoch);
 			this.#provider.disconnect();
@@ -130,7 +150,7 @@ export class NoteSocket {
 		}
 		this.#greeted = true;
 		this.connection = 'online';
-		this.notice = undefined;
+		this.notice = leftOut ? leftOutSentence : undefined;
 		this.mayWrite = mayWrite;
 		this.#flush();
 	}
@@ -141,22 +161,46 @@ export class NoteSocket {
 		const step = decoding.readVarUint(decoder);
 		const bytes = decoding.readVarUint8Array(decoder);
 		if (step === messageYjsSyncStep1) {
-			// The server lacks what something depends on; the answer is stored and acknowledged like any edit.
-			this.#outbox.add(Y.encodeStateAsUpdate(doc, bytes));
-			this.#flush();
+			this.#giveOwn(bytes);
 			return;
 		}
-		Y.applyUpdate(doc, bytes, this);
-		if (step === messageYjsSyncStep2) {
-			this.#provider.synced = true;
-			this.synced = true;
-			this.#options.events.onChange();
-		}
+		if (step === messageYjsSyncStep2) this.#onWhole(bytes);
+		else Y.applyUpdate(doc, bytes, this);
+	}
+
+	/** A long answer comes in parts, and the next one when the server hears that this one has come. */
+	#onPart(part: Part): void {
+		if (!this.#greeted) return;
+		this.#send(encodeMore(part));
+		const whole = this.#parts.take(part);
+		if (whole) this.#onWhole(whole);
+	}
+
+	/** Everything that the page lacked. */
+	#onWhole(bytes: Uint8Array): void {
+		Y.applyUpdate(this.#options.doc, bytes, this);
+		this.#provider.synced = true;
+		this.synced = true;
+		this.#options.events.onChange();
+	}
+
+	/**
+	 * The server lacks what something depends on. It gets what this page has made, stored and acknowledged like any
+	 * edit; what others made is theirs to send.
+	 */
+	#giveOwn(stateVector: Uint8Array): void {
+		const { doc } = this.#options;
+		const lacking = Y.decodeStateVector(stateVector).get(doc.clientID) ?? 0;
+		const known = Y.decodeStateVector(Y.encodeStateVector(doc));
+		if ((known.get(doc.clientID) ?? 0) <= lacking) return;
+		known.set(doc.clientID, lacking);
+		this.#unsaved.add(Y.encodeStateAsUpdate(doc, Y.encodeStateVector(known)));
+		this.#flush();
 	}
 
 	readonly #onUpdate = (update: Uint8Array, origin: unknown) => {
 		if (origin === this) return;
-		this.#outbox.add(update);
+		this.#unsaved.add(update);
 		this.#options.events.onChange();
 		if (this.#flushing) return;
 		// Changes made in one go, as an undo over several cells, travel as one edit.
@@ -169,7 +213,7 @@ export class NoteSocket {
 
 	#flush(): void {
 		if (this.connection === 'online') {
-			for (const { id, update } of this.#outbox.take()) {
+			for (const { id, update } of this.#unsaved.outbox.take()) {
 				const message = encodeEdit(id, update);
 				if (message.length > maxMessageBytes) {
 					this.#close(closeCode.tooBig);
@@ -206,12 +250,13 @@ export class NoteSocket {
 		if (this.#provider.wsconnected && ws?.readyState === ws?.OPEN) ws?.send(message);
 	}
 
-	#onLost(): void {
-		this.#outbox.reset();
+	#onLost(code = 0): void {
+		this.#unsaved.outbox.reset();
+		this.#parts.clear();
 		this.#greeted = false;
 		if (this.connection !== 'closed') {
 			this.connection = 'offline';
-			this.notice = closeSentence(0);
+			this.notice = closeSentence(code);
 		}
 		// Pages that lost the same server do not come back in the same moment.
 		const pauseMs = Math.min(2 ** (this.#provider.wsUnsuccessfulReconnects + 1) * 100, 5000);
@@ -219,9 +264,10 @@ export class NoteSocket {
 		this.#options.events.onChange();
 	}
 
-	#close(code: number): void {
+	#close(code: number | undefined, notice = closeSentence(code ?? 0)): void {
 		this.connection = 'closed';
-		this.notice = closeSentence(code);
+		this.closedWith = code;
+		this.notice = notice;
 		this.#options.events.onChange();
 	}
 }

@@ -1,27 +1,21 @@
 import type { Evaluation } from '$lib/calc/results';
 import * as document from '$lib/note/document';
 import { replaceText } from '$lib/note/replace-text';
-import type { News } from '$lib/protocol/messages';
+import type { Authors, News } from '$lib/protocol/messages';
 import { Awareness } from 'y-protocols/awareness';
 import * as Y from 'yjs';
 import { CellList, type LiveCell } from './cell-list.svelte';
 import { NoteSocket, type ConnectionState } from './note-socket';
 import { othersIn, type Other } from './others';
+import { SavingModel, type Saving } from './saving.svelte';
 import { undoManagerOf } from './undo';
+import { UnsavedStore, type PutAside } from './unsaved-store';
 import { watchWindow } from './window-watch';
-
-/** Whether what was typed here is stored. `count`: edits that are not, as far as this page knows. */
-export interface Saving {
-	state: 'saved' | 'saving' | 'offline' | 'refused';
-	count: number;
-	/** When the server last stored an edit of this page, ISO 8601. */
-	at?: string;
-	/** Why an edit will not be stored. */
-	reason?: string;
-}
 
 interface Options {
 	noteId: string;
+	/** MN-014 */
+	number: string;
 	epoch: string;
 	person: { id: string; name: string };
 	content: document.NoteContent;
@@ -39,6 +33,7 @@ export class WorkingCopy {
 	readonly undoManager: Y.UndoManager;
 	readonly #person: Options['person'];
 	readonly #cells: CellList;
+	readonly #saving: SavingModel;
 	readonly #socket: NoteSocket | undefined;
 	#newsHandlers: readonly ((about: News['about']) => void)[] = [];
 	#awareness: Awareness | undefined;
@@ -47,14 +42,13 @@ export class WorkingCopy {
 	#evaluation = $state.raw<Evaluation>() as Evaluation;
 	#connection = $state<ConnectionState>('connecting');
 	#notice = $state<string>();
+	#closedWith = $state<number>();
 	#ready = $state(false);
 	#mayWrite = $state(false);
-	#saving = $state.raw<Saving>({ state: 'saved', count: 0 });
 	#people = $state.raw<readonly Other[]>([]);
+	#authors = $state.raw<Authors['cells']>({});
 	#canUndo = $state(false);
 	#canRedo = $state(false);
-	#savedAt: string | undefined;
-	#refusedFor: string | undefined;
 
 	constructor(options: Options) {
 		const { content, evaluation, person } = options;
@@ -67,6 +61,10 @@ export class WorkingCopy {
 			this.undoManager.on(event, () => this.#onStack());
 		}
 		const server = options.server ?? serverOfPage();
+		this.#saving = new SavingModel(this.doc, server && storeOf(options), () => ({
+			title: this.#title,
+			cells: this.#cells.list,
+		}));
 		if (server) this.#socket = this.#connect(options, server);
 	}
 
@@ -91,8 +89,16 @@ export class WorkingCopy {
 	get notice(): string | undefined {
 		return this.#notice;
 	}
+	/** The code with which the connection was closed for good. */
+	get closedWith(): number | undefined {
+		return this.#closedWith;
+	}
 	get saving(): Saving {
-		return this.#saving;
+		return this.#saving.now;
+	}
+	/** Changes that cannot be merged any more, as text for their writer. */
+	get asides(): readonly PutAside[] {
+		return this.#saving.asides;
 	}
 	/** Whether the document has been complete once; before that nothing can be edited. */
 	get ready(): boolean {
@@ -101,6 +107,10 @@ export class WorkingCopy {
 	get mayWrite(): boolean {
 		return this.#mayWrite;
 	}
+	/** Whether something is not stored, so that leaving the page wants a thought. */
+	get isUnsaved(): boolean {
+		return this.#saving.isUnsaved;
+	}
 	/** Whether edits make sense now. Without a connection they do: they are sent when it returns. */
 	get editable(): boolean {
 		return this.#ready && this.#mayWrite && this.#connection !== 'closed';
@@ -108,6 +118,10 @@ export class WorkingCopy {
 	/** Others who have the note open, by name. */
 	get people(): readonly Other[] {
 		return this.#people;
+	}
+	/** Who wrote last in a cell, as far as it is stored. */
+	authorOf(cellId: string): Authors['cells'][string] | undefined {
+		return this.#authors[cellId];
 	}
 	get canUndo(): boolean {
 		return this.#canUndo;
@@ -153,6 +167,16 @@ export class WorkingCopy {
 		this.#act(() => document.removeCell(this.doc, id));
 	}
 
+	/** Changes the document as one undo step; gives what the change gives, undefined where nothing may be written. */
+	change<T>(work: (doc: Y.Doc) => T): T | undefined {
+		return this.#act(() => work(this.doc));
+	}
+
+	/** Its writer has no more need of a text that was put aside. */
+	discard(aside: PutAside): void {
+		void this.#saving.edits.discard(aside);
+	}
+
 	/** Tells the others which cell this person is at. */
 	setPlace(cellId: string | null): void {
 		if (this.#socket) this.awareness.setLocalStateField('cellId', cellId);
@@ -168,6 +192,7 @@ export class WorkingCopy {
 
 	destroy(): void {
 		this.#stopWatching?.();
+		this.#saving.edits.close();
 		this.#socket?.destroy();
 		this.undoManager.destroy();
 		this.#awareness?.destroy();
@@ -191,7 +216,8 @@ export class WorkingCopy {
 			this.#people = othersIn(this.awareness.getStates(), this.#person.id);
 		});
 		this.#stopWatching = watchWindow({
-			onLeaving: (event) => socket.count > 0 && event.preventDefault(),
+			onLeaving: (event) => this.isUnsaved && event.preventDefault(),
+			onHidden: () => void this.#saving.edits.write(),
 			// What is connected may be dead.
 			onNetwork: () => socket.reconnect(),
 		});
@@ -201,45 +227,45 @@ export class WorkingCopy {
 			epoch,
 			doc: this.doc,
 			awareness: this.awareness,
+			unsaved: this.#saving.edits,
 			events: {
 				onChange: () => this.#onSocket(socket),
-				onSaved: ({ at }) => (this.#savedAt = at),
-				onRefused: (reason) => (this.#refusedFor = reason),
+				onSaved: ({ at }) => this.#saving.saved(at),
+				onRefused: (reason) => this.#saving.refuse(reason),
 				onResults: (results) => (this.#evaluation = results),
 				onNews: ({ about }) => this.#newsHandlers.forEach((handle) => handle(about)),
+				onAuthors: ({ cells }) => (this.#authors = { ...this.#authors, ...cells }),
 			},
 		});
 		return socket;
 	}
 
-	#onSocket({ connection, notice, synced, mayWrite, count }: NoteSocket): void {
+	#onSocket(socket: NoteSocket): void {
+		const { connection, notice, closedWith, synced, mayWrite } = socket;
 		this.#connection = connection;
 		this.#notice = notice;
 		this.#mayWrite = mayWrite;
-		this.#saving = {
-			state: this.#savingState(connection, count),
-			count,
-			...(this.#savedAt && { at: this.#savedAt }),
-			...(this.#refusedFor && { reason: this.#refusedFor }),
-		};
+		this.#closedWith = closedWith;
+		this.#saving.follow(socket);
 		if (!synced || this.#ready) return;
 		this.#ready = true;
+		void this.#saving.merge(socket);
 		const title = document.titleOf(this.doc);
 		title.observe(() => (this.#title = title.toJSON()));
 		this.#title = title.toJSON();
 		this.#cells.follow();
 	}
 
-	#savingState(connection: ConnectionState, count: number): Saving['state'] {
-		if (this.#refusedFor) return 'refused';
-		if (connection === 'offline' || connection === 'closed') return 'offline';
-		return count > 0 ? 'saving' : 'saved';
-	}
-
 	#onStack(): void {
 		this.#canUndo = this.undoManager.canUndo();
 		this.#canRedo = this.undoManager.canRedo();
 	}
+}
+
+/** A browser that keeps nothing says so when it is asked; programs other than browsers have nothing to keep it in. */
+function storeOf({ noteId, epoch, number, person }: Options): UnsavedStore | undefined {
+	if (typeof indexedDB === 'undefined' && typeof window === 'undefined') return undefined;
+	return new UnsavedStore({ personId: person.id, noteId, epoch, number });
 }
 
 function serverOfPage(): { url: string } | undefined {

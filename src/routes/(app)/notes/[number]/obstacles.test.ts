@@ -4,7 +4,7 @@ import type { Thread } from '$lib/schemas/comments';
 import { obstaclesOf } from './obstacles';
 
 const cells = ['a', 'b'].map((id) => ({ id, kind: 'calculation' as const, source: '' }));
-const saved = { state: 'saved' as const, count: 0 };
+const saved = { state: 'saved' as const, count: 0, kept: 0 };
 const evaluation = (part: Partial<Evaluation>): Evaluation => ({
 	engine: '0',
 	quantities: {},
@@ -54,6 +54,8 @@ test('a requirement that is not met and an open blocking thread stop freezing on
 });
 
 test('edits on their way stop proposing, a clean saved sheet has no obstacle', () => {
-	expect(obstaclesOf(cells, evaluation({}), [], { state: 'saving', count: 2 })).toHaveLength(1);
+	expect(
+		obstaclesOf(cells, evaluation({}), [], { state: 'saving', count: 2, kept: 2 }),
+	).toHaveLength(1);
 	expect(obstaclesOf(cells, evaluation({}), [], saved)).toEqual([]);
 });

@@ -1,5 +1,5 @@
 import type { Evaluation } from '$lib/calc/results';
-import type { Saving } from '$lib/client/working-copy.svelte';
+import type { Saving } from '$lib/client/saving.svelte';
 import type { NoteCell } from '$lib/note/document';
 import type { Thread } from '$lib/schemas/comments';
 

@@ -6,33 +6,37 @@ const clock = (at: string) => at.slice(11, 16);
 
 test('an acknowledged edit is said to be saved, with its time', () => {
 	const at = '2026-10-14T10:42:31Z';
-	expect(savingWords({ state: 'saved', count: 0, at }, open, clock)).toBe('Saved 10:42');
-	expect(savingWords({ state: 'saved', count: 0 }, open, clock)).toBe('Saved');
+	expect(savingWords({ state: 'saved', count: 0, kept: 0, at }, open, clock)).toBe('Saved 10:42');
+	expect(savingWords({ state: 'saved', count: 0, kept: 0 }, open, clock)).toBe('Saved');
 });
 
 test('nothing is called saved before the note is complete', () => {
-	expect(savingWords({ state: 'saved', count: 0 }, { ready: false, mayWrite: false }, clock)).toBe(
-		'Opening…',
-	);
+	expect(
+		savingWords({ state: 'saved', count: 0, kept: 0 }, { ready: false, mayWrite: false }, clock),
+	).toBe('Opening…');
 });
 
 test('edits that wait for the connection are counted', () => {
-	expect(savingWords({ state: 'offline', count: 1 }, open, clock)).toBe(
+	expect(savingWords({ state: 'offline', count: 1, kept: 1 }, open, clock)).toBe(
 		'Not saved: 1 change kept on this page',
 	);
-	expect(savingWords({ state: 'offline', count: 3 }, open, clock)).toBe(
+	expect(savingWords({ state: 'offline', count: 3, kept: 3 }, open, clock)).toBe(
 		'Not saved: 3 changes kept on this page',
 	);
 });
 
 test('a refused edit says why', () => {
-	expect(savingWords({ state: 'refused', count: 0, reason: 'Too large.' }, open, clock)).toBe(
-		'Refused: Too large.',
-	);
+	expect(
+		savingWords({ state: 'refused', count: 0, kept: 0, reason: 'Too large.' }, open, clock),
+	).toBe('Refused: Too large.');
 });
 
 test('who may not write is told so instead of being told that something is saved', () => {
 	const reading = { ready: true, mayWrite: false };
-	expect(savingWords({ state: 'saved', count: 0 }, reading, clock)).toBe('To read and comment');
-	expect(savingWords({ state: 'offline', count: 0 }, reading, clock)).toBe('Not connected');
+	expect(savingWords({ state: 'saved', count: 0, kept: 0 }, reading, clock)).toBe(
+		'To read and comment',
+	);
+	expect(savingWords({ state: 'offline', count: 0, kept: 0 }, reading, clock)).toBe(
+		'Not connected',
+	);
 });

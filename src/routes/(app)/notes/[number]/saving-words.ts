@@ -1,4 +1,4 @@
-import type { Saving } from '$lib/client/working-copy.svelte';
+import type { Saving } from '$lib/client/saving.svelte';
 
 const changes = (count: number) => `${count} ${count === 1 ? 'change' : 'changes'}`;
 

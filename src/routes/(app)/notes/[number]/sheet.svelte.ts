@@ -41,6 +41,7 @@ export class Sheet {
 		this.number = note.number;
 		this.copy = new WorkingCopy({
 			noteId: note.id,
+			number: note.number,
 			epoch: note.epoch,
 			person: { id: person.id, name: person.name },
 			content,
