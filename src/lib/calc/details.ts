@@ -23,11 +23,12 @@ export function budgetRows(
 	doubts: Doubts,
 ): BudgetRow[] {
 	const unit = unitOf(type);
+	const { support, gradient } = step.propagated;
 	const budget = budgetOf(step.propagated, doubts);
-	return Array.from(budget.inputs, (input, i) => {
-		const sensitivity = budget.sensitivities[i]!;
+	return budget.places.map((place, i) => {
+		const sensitivity = gradient[place]!;
 		const contribution = budget.contributions[i]!;
-		const { label, value, type: inputType, distribution } = inputs[input]!;
+		const { label, value, type: inputType, distribution } = inputs[support[place]!]!;
 		const inputUnit = unitOf(inputType);
 		const perUnit = differenceFromSI(1, inputUnit);
 		const { uncertainty, dof, kind } = distribution;

@@ -100,8 +100,9 @@ export class Sheet {
 	/** Contribution of an input, in the unit of the line. */
 	contribution(name: string, input: string): number {
 		const number = this.#steps[this.place(input)]!.inputs[0]!;
-		const { inputs, contributions } = budgetOf(this.propagated(name), this.doubts);
-		return contributions[inputs.indexOf(number)]!;
+		const line = this.propagated(name);
+		const { places, contributions } = budgetOf(line, this.doubts);
+		return contributions[places.findIndex((place) => line.support[place] === number)]!;
 	}
 
 	enclosure(name: string): Enclosure {

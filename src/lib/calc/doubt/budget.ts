@@ -12,8 +12,8 @@ export interface Doubts {
 
 /** The parts that inputs have in a quantity's uncertainty, in columns, the greatest contribution first. */
 export interface Budget {
-	inputs: number[];
-	sensitivities: number[];
+	/** Places of the inputs in the quantity's support, and of their sensitivities in its gradient. */
+	places: number[];
 	/** |sensitivity| × standard uncertainty, in the quantity's unit. */
 	contributions: number[];
 	/** Parts of the variance; they add up to 1, and one may be negative where inputs are correlated. */
@@ -84,46 +84,61 @@ export function uncertaintyOf(line: Propagated, doubts: Doubts, coverage: number
 	};
 }
 
-/** Scratch for putting a budget in its order. */
-let [order, keys] = [new Int32Array(64), new Float64Array(64)];
+/** Scratch for putting a budget in its order. It begins with that of the budget before, as lines that follow each other are alike. */
+let [order, keys] = [Int32Array.from({ length: 64 }, (_, i) => i), new Float64Array(64)];
+let ordered = 0;
+
+/** Columns are copies of these: a list of its final size and kind costs least to make. */
+let [noNumbers, noPlaces] = [new Array<number>(64).fill(0.5), new Array<number>(64).fill(0)];
+
+/** Makes room for budgets of `n` inputs, and begins a new order where the one before had another size. */
+function prepare(n: number): void {
+	if (order.length < n) {
+		[order, keys] = [new Int32Array(2 * n), new Float64Array(2 * n)];
+		[noNumbers, noPlaces] = [new Array<number>(2 * n).fill(0.5), new Array<number>(2 * n).fill(0)];
+		ordered = 0;
+	}
+	if (ordered === n) return;
+	for (let i = 0; i < n; i++) order[i] = i;
+	ordered = n;
+}
 
 /** Contributions of all inputs a quantity depends on, those without effect too. */
 export function budgetOf(line: Propagated, doubts: Doubts): Budget {
 	const { support, gradient } = line;
 	const n = support.length;
 	const alone = (doubts.correlations ?? uncorrelated).groups.length === 0;
-	if (order.length < n) [order, keys] = [new Int32Array(2 * n), new Float64Array(2 * n)];
-	let variance = 0;
-	for (let i = 0; i < n; i++) {
+	prepare(n);
+	for (let k = 0; k < n; k++) {
+		const i = order[k]!;
 		const part = Math.abs(gradient[i]! * doubts.uncertainties[support[i]!]!);
-		// Put in its place among those before it: they are few.
-		let to = i;
-		for (; to > 0 && keys[to - 1]! < part; to--) {
-			keys[to] = keys[to - 1]!;
+		// Put in its place among those before it: they are few. Of equal ones the first input stands first.
+		let to = k;
+		for (; to > 0; to--) {
+			const before = keys[to - 1]!;
+			if (!(before < part || (before === part && order[to - 1]! > i))) break;
+			keys[to] = before;
 			order[to] = order[to - 1]!;
 		}
 		keys[to] = part;
 		order[to] = i;
 	}
-	// Plain lists: typed arrays of this size cost more to make than to fill.
-	const inputs: number[] = [];
-	const sensitivities: number[] = [];
-	const contributions: number[] = [];
-	const shares: number[] = [];
+	let variance = 0;
+	const places = noPlaces.slice(0, n);
+	const contributions = noNumbers.slice(0, n);
+	const shares = noNumbers.slice(0, n);
 	for (let k = 0; k < n; k++) {
 		const i = order[k]!;
 		const contribution = keys[k]!;
-		const sensitivity = gradient[i]!;
 		const share =
-			contribution * (alone ? contribution : Math.sign(sensitivity) * correlated(line, doubts, i));
+			contribution * (alone ? contribution : Math.sign(gradient[i]!) * correlated(line, doubts, i));
 		variance += share;
-		inputs.push(support[i]!);
-		sensitivities.push(sensitivity);
-		contributions.push(contribution);
-		shares.push(share);
+		places[k] = i;
+		contributions[k] = contribution;
+		shares[k] = share;
 	}
 	for (let k = 0; k < n; k++) shares[k] = variance > 0 ? shares[k]! / variance : 0;
-	return { inputs, sensitivities, contributions, shares };
+	return { places, contributions, shares };
 }
 
 /**
