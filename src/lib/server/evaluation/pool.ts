@@ -82,7 +82,9 @@ export class Pool {
 	): Promise<Evaluation> {
 		const skip: SkippedLine[] = [];
 		const { limitsMs, longLimitsMs } = this.#settings;
-		for (const limitMs of isLong ? longLimitsMs : limitsMs) {
+		const left = [...(isLong ? longLimitsMs : limitsMs)];
+		let isForgiven = false;
+		for (let limitMs = left.shift(); limitMs !== undefined; limitMs = left.shift()) {
 			const child = await this.#acquire(note);
 			const id = this.#nextTask++;
 			const task = { id, cells, options, skip, ...(note !== undefined && { note }) };
@@ -94,6 +96,12 @@ export class Pool {
 			if (outcome.kind === 'done') return outcome.results;
 			if (this.#closed) throw closedError();
 			if (signal?.aborted) throw stoppedError();
+			// It may have been killed for no fault of the note's; only the second time a line is to blame.
+			if (outcome.kind === 'gone' && !isForgiven) {
+				isForgiven = true;
+				left.unshift(limitMs);
+				continue;
+			}
 			const blamed = blame(outcome, cells);
 			log().warn({ outcome: outcome.kind, ...blamed }, 'an evaluation was stopped');
 			if (blamed) skip.push(blamed);

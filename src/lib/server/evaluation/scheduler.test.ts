@@ -1,4 +1,4 @@
-import { expect, test } from 'vitest';
+import { expect, test, vi } from 'vitest';
 import { sourceOf } from '$lib/calc/cells';
 import type { Cell, Evaluation } from '$lib/calc/results';
 import { Scheduler, type Evaluated } from './scheduler';
@@ -90,4 +90,18 @@ test('after an evaluation that failed the next change is evaluated', async () =>
 	running[1]!.answer();
 	await scheduler.idle();
 	expect(shown.map(({ version }) => version)).toEqual([2]);
+});
+
+test('an evaluation that failed is tried again although nothing changes, until it succeeds', async () => {
+	const { scheduler, running, shown, change } = bench();
+	change('1');
+	await turn();
+	for (let failure = 0; failure < 2; failure++) {
+		running[failure]!.answer(new Error('no evaluator'));
+		await vi.waitFor(() => expect(running).toHaveLength(failure + 2));
+	}
+	running[2]!.answer();
+	await scheduler.idle();
+	expect(shown.map(({ version }) => version)).toEqual([1]);
+	expect(running).toHaveLength(3);
 });

@@ -11,6 +11,8 @@ export interface Evaluated {
 	results: Evaluation;
 }
 
+const pauseMs = { first: 200, longest: 5000 };
+
 /** Keeps a document's results up to date: one evaluation in flight, the newest state next, none in between. */
 export class Scheduler {
 	readonly #read: () => { version: number; content: NoteContent };
@@ -21,6 +23,8 @@ export class Scheduler {
 	#wanted = false;
 	#stopped = false;
 	#last: Evaluated | undefined;
+	#again: NodeJS.Timeout | undefined;
+	#pauseMs = pauseMs.first;
 
 	constructor(
 		read: () => { version: number; content: NoteContent },
@@ -57,6 +61,7 @@ export class Scheduler {
 
 	stop(): void {
 		this.#stopped = true;
+		clearTimeout(this.#again);
 	}
 
 	async #run(): Promise<void> {
@@ -68,12 +73,23 @@ export class Scheduler {
 			try {
 				const results = await this.#evaluate(content);
 				this.#last = { version, content, results };
+				this.#pauseMs = pauseMs.first;
+				clearTimeout(this.#again);
 				this.#onResults(this.#last);
 			} catch (error) {
 				log().error({ err: error }, 'an evaluation failed');
+				this.#tryAgain();
 			}
 		}
 		this.#running = undefined;
+	}
+
+	/** Pages would show old figures until somebody types, so it is tried again, with growing pauses. */
+	#tryAgain(): void {
+		if (this.#stopped) return;
+		clearTimeout(this.#again);
+		this.#again = setTimeout(() => this.request(), this.#pauseMs).unref();
+		this.#pauseMs = Math.min(this.#pauseMs * 2, pauseMs.longest);
 	}
 
 	async #evaluate(content: NoteContent): Promise<Evaluation> {
