@@ -26,6 +26,7 @@ import * as outgoing from './outgoing';
 import { People } from './people';
 import { Proof, type Finding } from './proof';
 import { ResultStore } from './result-store';
+import { Upkeep } from './upkeep';
 
 interface Events {
 	onEmpty: (room: Room) => void;
@@ -52,6 +53,7 @@ export class Room {
 	readonly #store: ResultStore;
 	readonly #follower: Follower;
 	readonly #authors: CellAuthors;
+	readonly #upkeep: Upkeep;
 	readonly #events: Events;
 	readonly #held = new HeldUpdates((message, origin) => this.#broadcast(message, origin));
 	/** Counts the document's states, whoever made them. */
@@ -71,6 +73,7 @@ export class Room {
 		} else {
 			room.#scheduler.request();
 		}
+		room.#storeResults();
 		return room;
 	}
 
@@ -86,6 +89,7 @@ export class Room {
 		this.#events = events;
 		this.#proof = new Proof(this.#doc);
 		this.#store = new ResultStore(noteId);
+		this.#upkeep = new Upkeep(noteId, loaded.snapshotSeq);
 		this.#authors = new CellAuthors(noteId, loaded.authors, (message) =>
 			this.#broadcast(message, undefined),
 		);
@@ -218,6 +222,7 @@ export class Room {
 		this.#scheduler.stop();
 		this.#store.stop();
 		this.#authors.stop();
+		this.#upkeep.stop();
 		this.#doc.destroy();
 	}
 
@@ -318,11 +323,13 @@ export class Room {
 		this.#authors.hear(rows.flatMap(({ cells }) => cells));
 	}
 
-	/** Stores the newest results if the document they belong to is exactly what is stored at a sequence number. */
+	/** Stores the newest results, and a snapshot where one is due, if the document they belong to is exactly what is stored at a sequence number. */
 	#storeResults(): void {
-		const last = this.#scheduler.last;
 		const settled = this.#journal.isEmpty && !this.#follower.isBehind;
-		if (!last || last.version !== this.#version || !settled || updates.isPending(this.#doc)) return;
+		if (!settled || updates.isPending(this.#doc)) return;
+		this.#upkeep.offer(this.#follower.seq, () => Y.encodeStateAsUpdate(this.#doc));
+		const last = this.#scheduler.last;
+		if (!last || last.version !== this.#version) return;
 		this.#store.keep({ seq: this.#follower.seq, content: last.content, results: last.results });
 	}
 

@@ -59,7 +59,7 @@ function sortKeys(from: List, sort: ListQuery['sort']): SQL[] {
 			return [sql`lower(${from.title})`];
 		case 'state':
 			return [
-				sql`array_position(array['draft', 'returned', 'in check', 'checked', 'frozen'], ${from.state})`,
+				sql`array_position(array['draft', 'returned', 'in check', 'checked', 'frozen', 'withdrawn'], ${from.state})`,
 			];
 		case 'revision':
 			return [sql`${from.revisions}`];
