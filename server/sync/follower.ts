@@ -33,6 +33,8 @@ export class Follower {
 
 	/** Hears that the log has grown to `seq`, and reads what is missing. */
 	hear(seq: number): void {
+		// Anybody who may use the database can send a hint; what is no number would be heard of for ever.
+		if (!Number.isSafeInteger(seq)) return;
 		this.#heardOf = Math.max(this.#heardOf, seq);
 		if (this.isBehind) this.#reading ??= this.#read();
 	}

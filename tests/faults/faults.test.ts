@@ -44,6 +44,16 @@ test.each(chosen.map((fault) => [fault.fault, fault] as const))(
 
 const wants = (id: string) => form.only.length === 0 || form.only.includes(id);
 
+if (form.isFull && form.only.length === 0)
+	test('there were at least 100 kills and 100,000 acknowledged edits', () => {
+		const rows = told.map(({ row }) => row).filter(({ id }) => id.endsWith('-killed'));
+		const kills = rows.filter(({ id }) => id !== 'evaluator-killed');
+		const sum = (key: 'injected' | 'acknowledged') =>
+			kills.reduce((total, row) => total + row[key], 0);
+		expect(sum('injected')).toBeGreaterThanOrEqual(100);
+		expect(sum('acknowledged')).toBeGreaterThanOrEqual(100_000);
+	});
+
 if (wants('flush'))
 	test('the log is flushed to disk before an acknowledgement leaves the process', async () => {
 		const { edits, early, reason } = await watchFlushes(site, form.isFull, form.seed);

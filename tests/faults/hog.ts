@@ -11,16 +11,22 @@ export class Hog {
 		const hog = new Hog();
 		const admin = await cluster.connect();
 		try {
-			// Somebody who was about to come in may be there a moment later.
-			let quiet = 0;
+			// Somebody who is about to come in has a place already, although he is not to be seen yet.
+			const { rows } = await admin.query<{ places: number }>(
+				`select current_setting('max_connections')::int
+				- current_setting('superuser_reserved_connections')::int as places`,
+			);
 			await until(async () => {
 				await hog.#takeFree(cluster);
 				const { rowCount } = await admin.query(
+					`select from pg_stat_activity where application_name = 'hog'`,
+				);
+				if (rowCount === rows[0]?.places) return true;
+				await admin.query(
 					`select pg_terminate_backend(pid) from pg_stat_activity
 					where usename = 'halfdigit' and application_name <> 'hog'`,
 				);
-				quiet = rowCount === 0 ? quiet + 1 : 0;
-				return quiet >= 5;
+				return false;
 			}, 30_000);
 		} finally {
 			await admin.end();

@@ -84,13 +84,24 @@ export const evaluatorKilled: Fault = {
 		stage.type(20);
 		for (let n = 0; n < (stage.isFull ? 30 : 3); n++) {
 			await stage.acknowledges(30);
-			for (const { server } of stage.site.posts) {
-				for (const pid of evaluatorsOf(server?.pid ?? 0)) {
-					process.kill(pid, 'SIGKILL');
-					stage.injected += 1;
-				}
-			}
+			killEvaluators(stage);
 			await stage.recovers();
+		}
+		// With nobody typing afterwards the figures must come by themselves.
+		await stage.rest();
+		for (const writer of stage.writers) writer.writeLine();
+		for (let n = 0; n < 4; n++) {
+			killEvaluators(stage);
+			await pause(20);
 		}
 	},
 };
+
+function killEvaluators(stage: Stage): void {
+	for (const { server } of stage.site.posts) {
+		for (const pid of evaluatorsOf(server?.pid ?? 0)) {
+			process.kill(pid, 'SIGKILL');
+			stage.injected += 1;
+		}
+	}
+}
