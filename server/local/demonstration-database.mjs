@@ -1,5 +1,7 @@
+import { renameSync, rmSync } from 'node:fs';
 import { must } from './commands.mjs';
-import { settings } from './serving.mjs';
+import { migrationSettings } from './migration-settings.mjs';
+import { checkpointFolder, settings } from './serving.mjs';
 
 /**
  * @typedef {{ email: string, password: string, role: string }} Account
@@ -14,7 +16,7 @@ import { settings } from './serving.mjs';
  */
 export async function fill(database, earlierToken = '') {
 	const env = { ...settings(database, 4173), EARLIER_TOKEN: earlierToken };
-	await must(process.execPath, ['build/migrate.js'], { env });
+	await must(process.execPath, ['build/migrate.js'], { env: migrationSettings(database) });
 	const output = await must(process.execPath, ['build/demonstration.js'], { env });
 	const last = output.trimEnd().split('\n').at(-1) ?? '';
 	return /** @type {Demonstration} */ (JSON.parse(last));
@@ -33,7 +35,11 @@ export async function ensure(database, { fresh, earlierToken }) {
 	const there = (await databases.listDatabases(database)).includes(database);
 	if (there) return fill(database, earlierToken);
 	await databases.createDatabase(making);
+	// Checkpoints of a database that is gone would call the new one's record cut short.
+	for (const name of [making, database])
+		rmSync(checkpointFolder(name), { recursive: true, force: true });
 	const demonstration = await fill(making);
 	await databases.renameDatabase(making, database);
+	renameSync(checkpointFolder(making), checkpointFolder(database));
 	return demonstration;
 }

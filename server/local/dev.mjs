@@ -4,6 +4,7 @@ import { collect, must } from './commands.mjs';
 import { createDatabase, listDatabases } from './databases.mjs';
 import { root } from './place.mjs';
 import { isFree } from './ports.mjs';
+import { migrationSettings } from './migration-settings.mjs';
 import { release, start } from './postgres.mjs';
 import { Problem, report } from './problem.mjs';
 import { step } from './progress.mjs';
@@ -47,7 +48,7 @@ try {
 	await step('Database and demonstration', async () => {
 		await collect('npx', ['svelte-kit', 'sync']);
 		if (!(await listDatabases(database)).includes(database)) await createDatabase(database);
-		await must('npx', ['tsx', 'server/local/migrate.ts'], { env });
+		await must('npx', ['tsx', 'server/local/migrate.ts'], { env: migrationSettings(database) });
 		await must('npx', ['tsx', 'server/local/demonstration.ts'], { env });
 	});
 	run(['vite', 'dev', '--port', String(pagesPort), '--strictPort'], env);

@@ -18,9 +18,11 @@ import { databaseUser, findPrograms, runProgram } from './postgres-programs.mjs'
 import { Problem } from './problem.mjs';
 
 /**
- * What `.data/postgres.json` remembers. The application's role owns its databases and is no superuser.
+ * What `.data/postgres.json` remembers. The role `halfdigit` owns the databases and migrates them, `halfdigit_app` is the
+ * application's own, with fewer rights; neither is a superuser.
  * `owner` is the process that started the server and stops it when it ends itself.
- * @typedef {{ folder: string, port: number, password: string, superuserPassword: string, owner?: number }} Cluster
+ * @typedef {{ folder: string, port: number, password: string, superuserPassword: string,
+ *   applicationPassword?: string, owner?: number }} Cluster
  */
 
 const memory = join(dataFolder, 'postgres.json');
@@ -139,6 +141,7 @@ function own(path) {
 	if (user) chownSync(path, user.uid, user.gid);
 }
 
-function secret() {
+/** A password nobody types. */
+export function secret() {
 	return randomBytes(24).toString('hex');
 }

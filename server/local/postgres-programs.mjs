@@ -41,13 +41,13 @@ export function databaseUser() {
  * Runs one of PostgreSQL's programs as the database user and returns what it printed.
  * @param {string} program
  * @param {string[]} words
- * @param {{ input?: string }} [options]
+ * @param {{ input?: string, env?: Record<string, string> }} [options]
  */
 export function runProgram(program, words, options = {}) {
 	const done = spawnSync(program, words, {
 		...databaseUser(),
 		cwd: '/',
-		env: { PATH: '/usr/bin:/bin', LANG: 'C.UTF-8' },
+		env: { PATH: '/usr/bin:/bin', LANG: 'C.UTF-8', ...options.env },
 		encoding: 'utf8',
 		input: options.input ?? '',
 	});

@@ -1,3 +1,4 @@
+import { rmSync } from 'node:fs';
 import { build } from './build.mjs';
 import { createDatabase, dropDatabase } from './databases.mjs';
 import { fill } from './demonstration-database.mjs';
@@ -5,7 +6,7 @@ import { alone } from './lock.mjs';
 import { inData } from './place.mjs';
 import { start } from './postgres.mjs';
 import { report } from './problem.mjs';
-import { endEarlier, serve } from './serving.mjs';
+import { checkpointFolder, endEarlier, serve } from './serving.mjs';
 
 /** Serves the production entry with the demonstration in a database of its own until it is told to end. */
 const port = Number(process.argv[2]);
@@ -20,6 +21,7 @@ async function finish() {
 	ending = true;
 	await serving?.stop();
 	await dropDatabase(database);
+	rmSync(checkpointFolder(database), { recursive: true, force: true });
 	process.exit();
 }
 

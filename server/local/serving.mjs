@@ -1,9 +1,9 @@
 import { spawn } from 'node:child_process';
 import { closeSync, openSync, readFileSync, readdirSync } from 'node:fs';
 import { setTimeout as wait } from 'node:timers/promises';
-import { authSecret } from './secret.mjs';
-import { root } from './place.mjs';
-import { databaseUrl } from './postgres.mjs';
+import { authSecret, signingKeyFile } from './secret.mjs';
+import { inData, root } from './place.mjs';
+import { applicationUrl } from './postgres.mjs';
 import { Problem } from './problem.mjs';
 import { end, folderOf, wordsOf } from './processes.mjs';
 
@@ -21,13 +21,23 @@ export function settings(database, port) {
 		PATH,
 		HOME,
 		NODE_ENV: 'production',
-		DATABASE_URL: databaseUrl(database),
+		DATABASE_URL: applicationUrl(database),
 		ORIGIN: `http://localhost:${port}`,
 		PORT: String(port),
 		AUTH_SECRET: authSecret(),
+		SIGNING_KEY_FILE: signingKeyFile(),
+		CHECKPOINT_FOLDER: checkpointFolder(database),
 		...(EVALUATORS && { EVALUATORS }),
 		...(LOG_LEVEL && { LOG_LEVEL }),
 	};
+}
+
+/**
+ * Where the checkpoints of a database's record are kept.
+ * @param {string} database
+ */
+export function checkpointFolder(database) {
+	return inData('checkpoints', database);
 }
 
 /**

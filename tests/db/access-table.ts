@@ -65,6 +65,16 @@ export const accessTable: Record<string, Row> = {
 		form: ({ personId }) => ({ personId, role: 'reader' }),
 		expect: { stranger: signIn, administrator: 200, all: 403 },
 	},
+	'GET /team/policy': { expect: { stranger: signIn, all: 200 } },
+	'POST /team/policy': {
+		form: () => ({ checkers: '1', identifyAfterMinutes: '480' }),
+		expect: { stranger: signIn, administrator: 200, all: 403 },
+	},
+	'GET /team/audit': { expect: { stranger: signIn, administrator: 200, all: 403 } },
+	'GET /team/audit/export': {
+		at: () => '/team/audit/export?as=jsonl',
+		expect: { stranger: signIn, administrator: 200, all: 403 },
+	},
 	'GET /notes': { expect: { stranger: signIn, all: 200 } },
 	'POST /notes?/create': {
 		form: () => ({ title: 'A new one' }),
@@ -76,7 +86,7 @@ export const accessTable: Record<string, Row> = {
 	},
 	'POST /notes/[number]?/propose': {
 		...page('?/propose'),
-		form: () => ({ password }),
+		form: () => ({ password, purpose: 'Release of the board' }),
 		// A refused form shows its page again, and this one is none of a reader's.
 		expect: { reader: 404, administrator: 403, outsider: 404, all: 303 },
 	},
@@ -107,6 +117,38 @@ export const accessTable: Record<string, Row> = {
 		stage: 'frozen',
 		...page('/revisions/A'),
 		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
+	'POST /notes/[number]/revisions/[letter]?/withdraw': {
+		stage: 'frozen',
+		...page('/revisions/A?/withdraw'),
+		form: (scene) => ({
+			password,
+			digest: scene.revisionDigest,
+			reason: 'The part is wrong.',
+		}),
+		expect: { stranger: signIn, approver: 303, outsider: 404, all: 403 },
+	},
+	'GET /notes/[number]/revisions/[letter]/file': {
+		stage: 'frozen',
+		...page('/revisions/A/file'),
+		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
+	'GET /notes/[number]/revisions/[letter]/again': {
+		stage: 'frozen',
+		...page('/revisions/A/again'),
+		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
+	'GET /verify': { expect: { all: 200 } },
+	'POST /verify': {
+		form: () => ({ digest: '0'.repeat(64) }),
+		expect: { all: 200 },
+	},
+	'GET /verify/keys': { expect: { all: 200 } },
+	'GET /verify/checkpoint': { stage: 'frozen', expect: { all: 200 } },
+	'GET /verify/proof': {
+		stage: 'frozen',
+		at: () => '/verify/proof?index=0&size=2',
+		expect: { all: 200 },
 	},
 	'GET /api/notes/[number]/threads': {
 		...api(() => '/threads'),

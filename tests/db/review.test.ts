@@ -9,7 +9,7 @@ import { closePool } from '$lib/server/evaluation/pool';
 import * as candidates from '$lib/server/revisions/candidates';
 import * as review from '$lib/server/revisions/review';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { check, edit, freeze, propose, seen, writeNote } from '../support/note-life';
+import { check, edit, freeze, propose, proposal, seen, writeNote } from '../support/note-life';
 import { makeCast, testPassword, type Cast } from '../support/people';
 
 let database: TestDatabase;
@@ -134,7 +134,7 @@ test('who prepared, wrote or checked it may not approve it, and the check comes 
 test('a wrong password signs nothing, at each sign-off', async () => {
 	const { number } = await writeNote(cast.author);
 	const wrong = 'not the password';
-	expect(await failure(candidates.propose(cast.author, number, wrong))).toMatch(
+	expect(await failure(candidates.propose(cast.author, number, proposal({ password: wrong })))).toMatch(
 		/^forbidden: The password/,
 	);
 	expect((await review.status(cast.author, number)).candidate).toBeNull();

@@ -23,9 +23,11 @@ async function comment(page: Page, terminal: number, body: string, kind: string)
 	await page.getByRole('button', { name: 'Comment', exact: true }).click();
 }
 
-async function propose(page: Page) {
+async function propose(page: Page, changes?: string) {
 	await page.getByRole('button', { name: 'Propose for check' }).click();
 	const dialog = page.getByRole('dialog');
+	await dialog.getByLabel('What revision A is for').fill('Release of the panel board');
+	if (changes !== undefined) await dialog.getByLabel(/^What changed since/).fill(changes);
 	await dialog.getByLabel('Your password').fill(demoPassword);
 	await dialog.getByRole('button', { name: 'Propose for check' }).click();
 	await expect(page).toHaveURL(/\/candidate$/);
@@ -121,7 +123,7 @@ test('three people draft, comment, return, mend, check, approve and freeze a not
 	await sheetSays(engineer, /^Saved/);
 
 	// Proposed again, checked by the peer, approved by the approver: it is frozen as A.
-	await propose(engineer);
+	await propose(engineer, 'The lower arm is 27 kΩ now.');
 	await approver.goto(`${note}/candidate`);
 	await expect(approver.getByRole('button', { name: 'Approve and freeze' })).toHaveCount(0);
 	await peer.goto(`${note}/candidate`);

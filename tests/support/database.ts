@@ -3,12 +3,21 @@ import { readdirSync, readFileSync } from 'node:fs';
 import * as databases from '../../server/local/databases.mjs';
 import { alone } from '../../server/local/lock.mjs';
 import { applyMigrations } from '../../server/local/migrations';
-import { databaseUrl, start } from '../../server/local/postgres.mjs';
+import {
+	applicationRole,
+	applicationUrl,
+	databaseUrl,
+	start,
+} from '../../server/local/postgres.mjs';
 import { isAlive } from '../../server/local/processes.mjs';
+import { signingKeyFile } from '../../server/local/secret.mjs';
 
 export interface TestDatabase {
 	name: string;
+	/** For the application's role. */
 	url: string;
+	/** For the role that owns the tables, which may do what the application must not. */
+	ownerUrl: string;
 	/** Closes this process's pool and removes the database. */
 	drop(): Promise<void>;
 }
@@ -22,11 +31,12 @@ export async function createDatabase(): Promise<TestDatabase> {
 	const template = await ensureTemplate();
 	const name = `test_${process.pid}_${randomBytes(6).toString('hex')}`;
 	await databases.createDatabase(name, template);
-	const url = databaseUrl(name);
+	const url = applicationUrl(name);
 	Object.assign(process.env, testSettings(url));
 	return {
 		name,
 		url,
+		ownerUrl: databaseUrl(name),
 		drop: async () => {
 			const { closeDb } = await import('$lib/server/db/client');
 			await closeDb();
@@ -47,6 +57,7 @@ function testSettings(url: string): Record<string, string> {
 		DATABASE_URL: url,
 		ORIGIN: 'http://localhost:4173',
 		AUTH_SECRET: 'a secret of the tests, never used to serve',
+		SIGNING_KEY_FILE: signingKeyFile(),
 		EVALUATORS: '1',
 		EVALUATOR_ENTRY: 'build/evaluator.js',
 		LOG_LEVEL: process.env.LOG_LEVEL ?? 'silent',
@@ -61,14 +72,14 @@ async function ensureTemplate(): Promise<string> {
 		const making = `${name}_making`;
 		await databases.dropDatabase(making);
 		await databases.createDatabase(making);
-		await applyMigrations(databaseUrl(making));
+		await applyMigrations(databaseUrl(making), applicationRole);
 		await databases.renameDatabase(making, name);
 	});
 	return name;
 }
 
 function digestOfMigrations(): string {
-	const hash = createHash('sha256');
+	const hash = createHash('sha256').update(readFileSync('server/local/migrations.ts'));
 	for (const file of readdirSync('drizzle').filter((name) => name.endsWith('.sql'))) {
 		hash.update(file).update(readFileSync(`drizzle/${file}`));
 	}

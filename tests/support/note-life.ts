@@ -3,6 +3,7 @@ import type { Actor } from '$lib/server/auth/access';
 import * as notes from '$lib/server/notes/notes';
 import * as updates from '$lib/server/notes/updates';
 import * as candidates from '$lib/server/revisions/candidates';
+import type { Proposal } from '$lib/server/revisions/proposal';
 import { placedCells } from '$lib/note/document';
 import { testPassword as password, type Cast } from './people';
 
@@ -18,7 +19,20 @@ export async function writeNote(author: Actor, title = 'Divider', cells = sound)
 }
 
 export async function propose(author: Actor, number: string): Promise<void> {
-	await candidates.propose(author, number, password);
+	await candidates.propose(author, number, proposal());
+}
+
+/** What a proposal says where a test does not care. */
+export function proposal(said: Partial<Proposal> = {}): Proposal {
+	return {
+		password,
+		purpose: 'Release of the board',
+		changes: 'The load is in it now.',
+		checkers: [],
+		approver: '',
+		due: '',
+		...said,
+	};
 }
 
 /** What a person signs who looks at the newest candidate. */

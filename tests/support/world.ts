@@ -1,6 +1,7 @@
 import * as threads from '$lib/server/comments/threads';
 import type { Actor } from '$lib/server/auth/access';
 import * as apiTokens from '$lib/server/auth/api-tokens';
+import * as revisions from '$lib/server/revisions/revisions';
 import { check, freeze, propose, seen, writeNote } from './note-life';
 import { testPassword as password, type Cast } from './people';
 
@@ -10,6 +11,8 @@ export interface Scene {
 	cellId: string;
 	threadId: string;
 	digest: string;
+	/** Of revision A, where it is frozen. */
+	revisionDigest: string;
 	/** Somebody in the note's team whose role may be changed. */
 	personId: string;
 	email: string;
@@ -27,6 +30,7 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 		cellId: 'abcdefghjkmn',
 		threadId: '',
 		digest: '0'.repeat(64),
+		revisionDigest: '0'.repeat(64),
 		personId: cast.reader.personId,
 		email: visitor.email,
 		tokenId: (await apiTokens.create(visitor, { name: 'Bench', days: 1 })).id,
@@ -38,6 +42,9 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 	if (upTo === 'frozen') await freeze(cast, number);
 	else await propose(cast.author, number);
 	if (upTo === 'checked') await check(cast, number);
+	if (upTo === 'frozen') {
+		scene.revisionDigest = (await revisions.get(cast.author, number, 'A')).revision.digest;
+	}
 	scene.digest = (await seen(cast.author, number)).digest;
 	return scene;
 }

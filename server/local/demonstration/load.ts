@@ -6,11 +6,15 @@ import { team } from '$lib/server/db/schema/people';
 import { current } from '$lib/server/evaluation/store';
 import * as notes from '$lib/server/notes/notes';
 import * as candidates from '$lib/server/revisions/candidates';
+import type { Proposal } from '$lib/server/revisions/proposal';
+import * as revisions from '$lib/server/revisions/revisions';
+import { withdraw } from '$lib/server/revisions/withdraw';
 import * as teams from '$lib/server/teams/teams';
 import { eq } from 'drizzle-orm';
 import { batteryVoltage, widened } from './battery-voltage';
 import { chargeCurrent } from './charge-current';
 import { rewrite } from './edit';
+import { floodSiren } from './flood-siren';
 import { levelTransmitter } from './level-transmitter';
 import { accounts, firm } from './people';
 import type { Sheet } from './sheet';
@@ -29,6 +33,7 @@ export async function load(): Promise<void> {
 	await supervisor(cast);
 	await charge(cast);
 	await temperature(cast);
+	await siren(cast);
 }
 
 async function hire(): Promise<Cast> {
@@ -43,14 +48,17 @@ async function hire(): Promise<Cast> {
 
 async function battery({ engineer, peer, approver }: Cast): Promise<void> {
 	const { id, number } = await write(engineer, batteryVoltage);
-	await freeze(number, engineer, peer, approver);
+	await freeze(number, engineer, peer, approver, { purpose: 'First series of the station' });
 	await rewrite(id, engineer, widened);
-	await freeze(number, engineer, peer, approver);
+	await freeze(number, engineer, peer, approver, {
+		purpose: 'Stations with the new charge regulator',
+		changes: 'The range ends at 32 V: the new regulator equalises with up to 31.2 V.',
+	});
 }
 
 async function level({ engineer, approver }: Cast): Promise<void> {
 	const { number } = await write(engineer, levelTransmitter);
-	await propose(engineer, number);
+	await propose(engineer, number, { purpose: 'Prototype of the level board' });
 	const { password } = accounts.approver;
 	await candidates.sendBack(approver, number, {
 		password,
@@ -64,10 +72,28 @@ async function supervisor({ peer }: Cast): Promise<void> {
 	await write(peer, supplySupervisor);
 }
 
-async function charge({ engineer, peer }: Cast): Promise<void> {
+/** Frozen once, then withdrawn. */
+async function siren({ engineer, peer, approver }: Cast): Promise<void> {
+	const { number } = await write(engineer, floodSiren);
+	await freeze(number, engineer, peer, approver, { purpose: 'Flood siren, trial at two stations' });
+	const { revision } = await revisions.get(approver, number, 'A');
+	await withdraw(approver, number, 'A', {
+		password: accounts.approver.password,
+		digest: revision.digest,
+		reason:
+			'The siren of the trial was replaced by one for 24 V. Nothing charges a capacitor to 80 V any more.',
+	});
+}
+
+async function charge({ engineer, peer, approver }: Cast): Promise<void> {
 	const { id, number } = await write(engineer, chargeCurrent);
 	const { cells } = (await current(id)).content;
-	await propose(engineer, number);
+	await propose(engineer, number, {
+		purpose: 'Release of the charge board',
+		checkers: [peer.personId],
+		approver: approver.personId,
+		due: '2026-12-18',
+	});
 	const question = await threads.open(peer, number, {
 		cellId: cells[4]?.id ?? '',
 		kind: 'question',
@@ -103,16 +129,24 @@ async function write(author: Actor, sheet: Sheet): Promise<{ id: string; number:
 	return made;
 }
 
-async function freeze(number: string, author: Actor, checker: Actor, approver: Actor) {
-	await propose(author, number);
+async function freeze(
+	number: string,
+	author: Actor,
+	checker: Actor,
+	approver: Actor,
+	said: Partial<Proposal>,
+) {
+	await propose(author, number, said);
 	const { password } = accounts.peer;
 	const digest = await digestOf(checker, number);
 	await candidates.check(checker, number, { password, digest });
-	await candidates.approve(approver, number, { password, digest });
+	await candidates.approve(approver, number, { password, digest, acknowledged: true });
 }
 
-async function propose(author: Actor, number: string): Promise<void> {
-	await candidates.propose(author, number, accounts.engineer.password);
+async function propose(author: Actor, number: string, said: Partial<Proposal>): Promise<void> {
+	const { password } = accounts.engineer;
+	const nothing = { purpose: '', changes: '', checkers: [], approver: '', due: '' };
+	await candidates.propose(author, number, { ...nothing, ...said, password });
 }
 
 async function digestOf(actor: Actor, number: string): Promise<string> {

@@ -129,18 +129,16 @@ export interface SignOff {
 }
 
 /** One thing that the team's policy asks of a candidate before it is frozen. */
-export interface Condition {
-	text: string;
+export interface Condition extends Blocker {
 	fulfilled: boolean;
-	cellId?: string;
-	/** Set where the approver may waive it: the name of the form's field behind its prefix, and the requirement. */
-	waivable?: { field: string; requirement: string };
 }
 
 /** A reason why the candidate cannot be frozen, with the cell to look at where there is one. */
 export interface Blocker {
 	text: string;
 	cellId?: string;
+	/** Set where the approver may waive it: the name of the form's field behind its prefix, and the requirement. */
+	waivable?: { field: string; requirement: string };
 }
 
 export interface CandidateStatus {

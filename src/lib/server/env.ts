@@ -13,6 +13,10 @@ const settings = z.object({
 	EVALUATORS: z.coerce.number().int().min(1).max(32).default(2),
 	/** File the evaluator children run. */
 	EVALUATOR_ENTRY: z.string().default('build/evaluator.js'),
+	/** File of the private key that signs the record; without it nothing can be signed. */
+	SIGNING_KEY_FILE: z.string().default(''),
+	/** Folder outside the database that keeps the record's checkpoints; none where it is empty. */
+	CHECKPOINT_FOLDER: z.string().default(''),
 	/** Header with the client's address, set by a trusted proxy; empty where there is none. */
 	ADDRESS_HEADER: z.string().default(''),
 	LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),

@@ -9,6 +9,8 @@ export interface Actor {
 	teamId: string;
 	teamName: string;
 	role: Role;
+	/** When the session began; absent where none is in use. */
+	signedInAt?: Date;
 }
 
 /** Throws AppError `forbidden` where the actor's role does not allow the deed. */

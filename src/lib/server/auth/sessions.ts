@@ -21,7 +21,7 @@ const alive = () => and(gt(session.expires, sql`now()`), gt(session.endsAt, sql`
 /** The person behind a session token, with the role they have now; undefined where the session is over. */
 export async function findActor(token: string): Promise<Actor | undefined> {
 	const [actor] = await db()
-		.select(actorColumns)
+		.select({ ...actorColumns, signedInAt: session.createdAt })
 		.from(session)
 		.innerJoin(person, eq(person.id, session.userId))
 		.innerJoin(

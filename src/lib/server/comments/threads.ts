@@ -106,7 +106,8 @@ async function find(tx: Connection, noteId: string, threadId: string) {
 	return found;
 }
 
-async function read(connection: Connection, noteId: string): Promise<Thread[]> {
+/** The same within a deed that has asked who may. */
+export async function read(connection: Connection, noteId: string): Promise<Thread[]> {
 	const closer = alias(person, 'closer');
 	const rows = await connection
 		.select({ thread, comment, author: person.name, closer: closer.name })

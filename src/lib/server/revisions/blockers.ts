@@ -1,34 +1,38 @@
-import type { Evaluation } from '$lib/calc/results';
+import type { Evaluation, Verdict } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
-import type { Blocker } from '$lib/schemas/review';
+import type { Blocker, Policy } from '$lib/schemas/review';
 import { and, asc, eq, isNull } from 'drizzle-orm';
 import type { Connection } from '../db/client';
 import { thread } from '../db/schema/notes';
 import type { CandidateRow } from './standing';
 
-/** Why a candidate cannot be frozen now: open blocking threads, requirements that are not met, lines with errors. */
-export async function of(connection: Connection, candidate: CandidateRow): Promise<Blocker[]> {
+/** Why a candidate cannot be frozen now: open threads, requirements that are not met, lines with errors. */
+export async function of(
+	connection: Connection,
+	candidate: CandidateRow,
+	policy: Policy,
+): Promise<Blocker[]> {
 	const { content, results } = candidate;
 	const threads = await connection
-		.select({ cellId: thread.cellId, kind: thread.kind })
+		.select({ cellId: thread.cellId, kind: thread.kind, blocking: thread.blocking })
 		.from(thread)
 		.where(
-			and(eq(thread.noteId, candidate.noteId), eq(thread.blocking, true), isNull(thread.closedAt)),
+			and(
+				eq(thread.noteId, candidate.noteId),
+				isNull(thread.closedAt),
+				policy.commentsBlock ? undefined : eq(thread.blocking, true),
+			),
 		)
 		.orderBy(asc(thread.id));
 	return [
-		...threads.map(({ cellId, kind }) => {
+		...threads.map(({ cellId, kind, blocking }) => {
 			const place = terminalOf(content, cellId);
+			const what = blocking ? `An open blocking ${kind}` : `An open ${kind}`;
 			return place === null
-				? { text: `An open blocking ${kind} on a cell that this candidate does not have.` }
-				: { text: `An open blocking ${kind} on cell ${place}.`, cellId };
+				? { text: `${what} on a cell that this candidate does not have.` }
+				: { text: `${what} on cell ${place}.`, cellId };
 		}),
-		...results.requirements
-			.filter((one) => one.verdict === 'not met')
-			.map(({ cell, line }) => ({
-				text: `Cell ${terminalOf(content, cell)}: ${lineOf(content, cell, line)} is not met.`,
-				cellId: cell,
-			})),
+		...requirements(content, results, policy),
 		...faults(content, results),
 	];
 }
@@ -39,6 +43,20 @@ export function faults(content: NoteContent, results: Evaluation): Blocker[] {
 		text: `Cell ${terminalOf(content, cell)}, line ${line}: ${message}`,
 		cellId: cell,
 	}));
+}
+
+function requirements(content: NoteContent, results: Evaluation, policy: Policy): Blocker[] {
+	const blocking: Verdict[] = policy.undecidedBlocks ? ['not met', 'undecided'] : ['not met'];
+	return results.requirements
+		.filter(({ verdict }) => blocking.includes(verdict))
+		.map(({ cell, line, verdict }) => {
+			const requirement = lineOf(content, cell, line);
+			return {
+				text: `Cell ${terminalOf(content, cell)}: ${requirement} is ${verdict}.`,
+				cellId: cell,
+				...(policy.waivers && { waivable: { field: `${cell}:${line}`, requirement } }),
+			};
+		});
 }
 
 /** Number of a cell on its sheet, from 1. */

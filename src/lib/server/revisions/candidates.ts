@@ -5,7 +5,6 @@ import type { CandidateStatus, ReviewStatus } from '$lib/schemas/review';
 import { eq } from 'drizzle-orm';
 import * as audit from '../audit/audit';
 import { demand, type Actor } from '../auth/access';
-import * as signIn from '../auth/sign-in';
 import { db, type Connection } from '../db/client';
 import { notify } from '../db/notify';
 import { candidate } from '../db/schema/review';
@@ -13,19 +12,29 @@ import { current } from '../evaluation/store';
 import { lock } from '../notes/lock';
 import * as notes from '../notes/notes';
 import * as updates from '../notes/updates';
+import * as checkpoints from '../signed-record/checkpoints';
 import * as blockers from './blockers';
-import { seal } from './digest';
 import { freeze } from './freeze';
 import { frozenResults } from './frozen-results';
+import { identify, type Credentials } from './identify';
+import * as policies from './policy';
+import { detailsOf, type Proposal } from './proposal';
 import { statusOf } from './review';
 import * as rules from './rules';
 import { sign } from './sign';
+import { digestOf } from './snapshot';
 import * as standings from './standing';
+import { waivedBy } from './waivers';
 
 /** What a person looked at when they signed. */
-interface Seen {
-	password: string;
+interface Seen extends Credentials {
 	digest: string;
+}
+
+/** What an approver says beside: cautions acknowledged, and a reason for each requirement waived, by its field's name. */
+interface Approval extends Seen {
+	acknowledged?: boolean;
+	waivers?: readonly (readonly [field: string, reason: string])[];
 }
 
 /** The newest candidate of a note with its content and results, and where the note stands. */
@@ -51,10 +60,10 @@ export async function get(
 }
 
 /** Takes a snapshot of the working copy as the next candidate and signs it as prepared. */
-export async function propose(actor: Actor, number: string, password: string): Promise<void> {
+export async function propose(actor: Actor, number: string, proposal: Proposal): Promise<void> {
 	demand(actor, 'write');
 	const note = await notes.get(actor, number);
-	await signIn.confirm(actor, password);
+	await identify(actor, await policies.get(actor), proposal);
 	const { seq, content, results: shown, pending } = await current(note.id);
 	if (pending) {
 		throw new AppError('blocked', 'Edits are still arriving. Wait until the page says Saved.');
@@ -65,44 +74,32 @@ export async function propose(actor: Actor, number: string, password: string): P
 			details: { blockers: faults },
 		});
 	}
-	const results = await frozenResults(note.id, content, shown);
+	const kept = await frozenResults(note.id, content, shown);
 	await db().transaction(async (tx) => {
 		await lock(tx, note.id);
 		const standing = await standings.read(tx, note.id);
 		must(rules.propose(actor, standing));
 		const frozen = standing.revisions[0] && (await seqOf(tx, standing.revisions[0].candidateId));
-		const ordinal = (standing.candidate?.ordinal ?? 0) + 1;
-		const authors = await updates.authorsSince(note.id, frozen ?? 0);
-		const { digest } = seal({
-			format: 'halfdigit-candidate-1',
-			team: { id: actor.teamId, name: actor.teamName },
-			note: number,
-			ordinal,
+		const details = await detailsOf(tx, actor, note, standing, proposal, { content, ...kept });
+		const row = {
+			noteId: note.id,
+			ordinal: (standing.candidate?.ordinal ?? 0) + 1,
 			seq,
 			content,
-			results,
-			engine: results.engine,
-			authors,
-		});
-		const at = new Date();
+			results: kept.results,
+			engine: kept.results.engine,
+			authors: await updates.authorsSince(note.id, frozen ?? 0),
+			details,
+		};
+		const digest = digestOf(row);
 		const [made] = await tx
 			.insert(candidate)
-			.values({
-				noteId: note.id,
-				ordinal,
-				seq,
-				content,
-				results,
-				engine: results.engine,
-				authors,
-				digest,
-				at,
-			})
-			.returning({ id: candidate.id, digest: candidate.digest });
+			.values({ ...row, digest })
+			.returning();
 		if (!made) throw new Error('the candidate was not stored');
-		await sign(tx, actor, made, 'prepared', at);
+		await sign(tx, actor, made, 'prepared');
 		await audit.record(tx, actor, 'candidate proposed', `note:${note.id}`, {
-			after: { ordinal, seq, digest },
+			after: { ordinal: row.ordinal, seq, digest, purpose: details.purpose },
 		});
 	});
 	await notify(note.id, 'review');
@@ -112,8 +109,7 @@ export async function propose(actor: Actor, number: string, password: string): P
 export async function check(actor: Actor, number: string, seen: Seen): Promise<void> {
 	demand(actor, 'check');
 	await decide(actor, number, seen, rules.check, async (tx, standing, open) => {
-		const at = new Date();
-		await sign(tx, actor, open, 'checked', at);
+		await sign(tx, actor, open, 'checked');
 		await audit.record(tx, actor, 'candidate checked', `note:${open.noteId}`, {
 			after: { ordinal: open.ordinal, digest: open.digest },
 		});
@@ -121,15 +117,28 @@ export async function check(actor: Actor, number: string, seen: Seen): Promise<v
 }
 
 /** Signs the candidate as approved and freezes it under the next letter, which is returned. */
-export async function approve(actor: Actor, number: string, seen: Seen): Promise<string> {
+export async function approve(actor: Actor, number: string, given: Approval): Promise<string> {
 	demand(actor, 'approve');
-	return await decide(actor, number, seen, rules.approve, async (tx, standing, open) => {
-		const blocked = await blockers.of(tx, open);
-		if (blocked.length > 0) {
-			throw new AppError('blocked', 'It cannot be frozen yet.', { details: { blockers: blocked } });
+	const done = await decide(actor, number, given, rules.approve, async (tx, standing, open) => {
+		const { waivers, left } = waivedBy(
+			await blockers.of(tx, open, standing.policy),
+			given.waivers ?? [],
+		);
+		if (left.length > 0) {
+			throw new AppError('blocked', 'It cannot be frozen yet.', { details: { blockers: left } });
 		}
-		return await freeze(tx, actor, number, standing, open);
+		const cautions = open.details?.cautions.map(({ text }) => text) ?? [];
+		if (cautions.length > 0 && given.acknowledged !== true) {
+			throw new AppError('blocked', 'Acknowledge the caution first: tick it before you sign.');
+		}
+		const letter = await freeze(tx, actor, number, standing, open, {
+			...(waivers.length > 0 && { waivers }),
+			...(cautions.length > 0 && { cautions }),
+		});
+		return { letter, checkpoint: await checkpoints.make(tx) };
 	});
+	await checkpoints.keepOutside(done.checkpoint);
+	return done.letter;
 }
 
 /** Sends the candidate back with a reason. */
@@ -140,8 +149,7 @@ export async function sendBack(
 ): Promise<void> {
 	demand(actor, 'check');
 	await decide(actor, number, seen, rules.sendBack, async (tx, standing, open) => {
-		const at = new Date();
-		await sign(tx, actor, open, 'returned', at, reason);
+		await sign(tx, actor, open, 'returned', { reason });
 		await audit.record(tx, actor, 'candidate returned', `note:${open.noteId}`, {
 			after: { ordinal: open.ordinal, digest: open.digest },
 			reason,
@@ -158,7 +166,7 @@ async function decide<T>(
 	deed: (tx: Connection, standing: standings.Standing, open: standings.CandidateRow) => Promise<T>,
 ): Promise<T> {
 	const note = await notes.get(actor, number);
-	await signIn.confirm(actor, seen.password);
+	await identify(actor, await policies.get(actor), seen);
 	const done = await db().transaction(async (tx) => {
 		await lock(tx, note.id);
 		const standing = await standings.read(tx, note.id);

@@ -1,5 +1,5 @@
 import { defaultOptions } from '$lib/calc/engine';
-import type { Evaluation } from '$lib/calc/results';
+import type { Evaluation, Options } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
 import { evaluateInChild } from '../evaluation/pool';
 import { seedOf } from '../evaluation/seed';
@@ -8,19 +8,20 @@ import { seedOf } from '../evaluation/seed';
 const most = 20;
 
 /**
- * Results as a candidate keeps them: beside those of the sheet, budgets, bounds and trials (JCGM 101:2008) of the
- * quantities in doubt that requirements speak of.
+ * Results as a candidate keeps them, with the options that give them again: beside those of the sheet, budgets, bounds
+ * and trials (JCGM 101:2008) of the quantities in doubt that requirements speak of.
  */
 export async function frozenResults(
 	noteId: string,
 	content: NoteContent,
 	results: Evaluation,
-): Promise<Evaluation> {
+): Promise<{ results: Evaluation; options: Options }> {
 	const named = results.requirements.flatMap(({ dependsOn }) => dependsOn);
 	const judged = [...new Set(named)].filter(
 		(name) => results.quantities[name]?.standardUncertainty !== undefined,
 	);
-	if (judged.length === 0) return results;
+	if (judged.length === 0) return { results, options: defaultOptions };
 	const monteCarlo = { quantities: judged.slice(0, most), seed: seedOf(noteId) };
-	return evaluateInChild(content.cells, { ...defaultOptions, detail: judged, monteCarlo });
+	const options = { ...defaultOptions, detail: judged, monteCarlo };
+	return { results: await evaluateInChild(content.cells, options), options };
 }

@@ -3,6 +3,8 @@ import { demand, type Actor } from '../auth/access';
 import { db, type Connection } from '../db/client';
 import * as notes from '../notes/notes';
 import * as blockers from './blockers';
+import * as conditions from './conditions';
+import { needsAddress } from './identify';
 import * as rules from './rules';
 import * as standings from './standing';
 
@@ -20,17 +22,20 @@ export async function statusOf(
 	standing: standings.Standing,
 ): Promise<ReviewStatus> {
 	const open = standings.openCandidate(standing);
-	const blocked = open ? await blockers.of(connection, open) : [];
+	const blocked = open ? await blockers.of(connection, open, standing.policy) : [];
 	return {
 		state: standing.state,
 		nextLetter: standing.nextLetter,
 		candidate: standings.candidateStatus(standing),
-		revisions: standing.revisions.map(({ letter, digest, frozenAt }) => ({
+		revisions: standing.revisions.map(({ letter, digest, frozenAt, withdrawn }) => ({
 			letter,
 			digest,
 			frozenAt: frozenAt.toISOString(),
+			withdrawn,
 		})),
 		blockers: blocked,
-		can: rules.answers(actor, standing, blocked.length > 0),
+		conditions: conditions.of(standing, blocked),
+		identify: needsAddress(actor, standing.policy),
+		can: rules.answers(actor, standing, blocked),
 	};
 }

@@ -1,13 +1,15 @@
 import type { Evaluation } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import type { NoteContent } from '$lib/note/document';
-import type { SignOff } from '$lib/schemas/review';
+import type { ProposalDetails, SignOff, Withdrawal } from '$lib/schemas/review';
+import { may } from '$lib/schemas/role';
 import { and, desc, eq } from 'drizzle-orm';
 import { demand, type Actor } from '../auth/access';
 import { db } from '../db/client';
 import { candidate, revision } from '../db/schema/review';
 import * as notes from '../notes/notes';
-import { signOffsOf } from './standing';
+import { needsAddress } from './identify';
+import * as standings from './standing';
 
 export interface Frozen {
 	revision: {
@@ -19,9 +21,16 @@ export interface Frozen {
 		engine: string;
 		signOffs: SignOff[];
 		authors: { id: string; name: string }[];
+		/** What was said when it was proposed; null for those frozen before that was asked. */
+		details: ProposalDetails | null;
 		/** Letter of the note's newest revision: another one supersedes this. */
 		newest: string;
+		/** The next revision and why it replaces this one. */
+		supersededBy: { letter: string; reason: string } | null;
+		withdrawn: Withdrawal | null;
 	};
+	/** Whether the actor may withdraw it, and what their signature needs. */
+	may: { withdraw: boolean; identify: boolean };
 	content: NoteContent;
 	results: Evaluation;
 }
@@ -32,14 +41,11 @@ const noSuchRevision = () => new AppError('notFound', 'There is no such revision
 export async function get(actor: Actor, number: string, letter: string): Promise<Frozen> {
 	demand(actor, 'readFrozen');
 	const { id } = await notes.get(actor, number);
-	if (!/^[A-Z]{1,9}$/.test(letter)) throw noSuchRevision();
-	const [found] = await db()
-		.select({ revision, candidate })
-		.from(revision)
-		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
-		.where(and(eq(revision.noteId, id), eq(revision.letter, letter)));
-	if (!found) throw noSuchRevision();
-	const { seq, content, results, engine, authors } = found.candidate;
+	const found = await find(id, letter);
+	const standing = await standings.read(db(), id);
+	const { seq, content, results, engine, authors, details } = found.candidate;
+	const place = standing.revisions.findIndex((one) => one.letter === letter);
+	const withdrawn = standing.revisions[place]?.withdrawn ?? null;
 	return {
 		revision: {
 			letter,
@@ -47,9 +53,16 @@ export async function get(actor: Actor, number: string, letter: string): Promise
 			digest: found.revision.digest,
 			frozenAt: found.revision.frozenAt.toISOString(),
 			engine,
-			signOffs: await signOffsOf(db(), found.candidate.id),
+			signOffs: await standings.signOffsOf(db(), found.candidate.id),
 			authors,
-			newest: (await newestLetter(id)) ?? letter,
+			details,
+			newest: standing.revisions[0]?.letter ?? letter,
+			supersededBy: place > 0 ? await successor(id, standing.revisions[place - 1]!.letter) : null,
+			withdrawn,
+		},
+		may: {
+			withdraw: may(actor.role, 'approve') && !withdrawn && place === 0,
+			identify: needsAddress(actor, standing.policy),
 		},
 		content,
 		results,
@@ -59,18 +72,30 @@ export async function get(actor: Actor, number: string, letter: string): Promise
 /** Letter of a note's newest revision. Throws AppError `notFound` where nothing is frozen. */
 export async function newest(actor: Actor, number: string): Promise<string> {
 	demand(actor, 'readFrozen');
-	const letter = await newestLetter((await notes.get(actor, number)).id);
-	if (letter === undefined) throw new AppError('notFound', 'Nothing of this note is frozen yet.');
-	return letter;
-}
-
-async function newestLetter(noteId: string): Promise<string | undefined> {
+	const { id } = await notes.get(actor, number);
 	const [row] = await db()
 		.select({ letter: revision.letter })
 		.from(revision)
 		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
-		.where(eq(revision.noteId, noteId))
+		.where(eq(revision.noteId, id))
 		.orderBy(desc(candidate.ordinal))
 		.limit(1);
-	return row?.letter;
+	if (!row) throw new AppError('notFound', 'Nothing of this note is frozen yet.');
+	return row.letter;
+}
+
+async function successor(noteId: string, letter: string) {
+	const { details } = (await find(noteId, letter)).candidate;
+	return { letter, reason: details?.changes ?? '' };
+}
+
+async function find(noteId: string, letter: string) {
+	if (!/^[A-Z]{1,9}$/.test(letter)) throw noSuchRevision();
+	const [found] = await db()
+		.select({ revision, candidate })
+		.from(revision)
+		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
+		.where(and(eq(revision.noteId, noteId), eq(revision.letter, letter)));
+	if (!found) throw noSuchRevision();
+	return found;
 }

@@ -1,16 +1,18 @@
-import type { CandidateStatus, SignOff } from '$lib/schemas/review';
+import type { CandidateStatus, Policy, SignOff, Withdrawal } from '$lib/schemas/review';
 import type { NoteState } from '$lib/schemas/notes';
 import { asc, desc, eq } from 'drizzle-orm';
 import type { Connection } from '../db/client';
 import { noteStanding } from '../db/schema/listing';
-import { candidate, revision, signOff } from '../db/schema/review';
+import { note } from '../db/schema/notes';
+import { candidate, revision, signOff, withdrawal } from '../db/schema/review';
 import { letterOf } from './letters';
+import * as policies from './policy';
 
 export type CandidateRow = typeof candidate.$inferSelect;
 type RevisionRow = Pick<
 	typeof revision.$inferSelect,
 	'candidateId' | 'letter' | 'digest' | 'frozenAt'
->;
+> & { withdrawn: Withdrawal | null };
 
 /** Where a note stands, as its rows say. */
 export interface Standing {
@@ -21,13 +23,16 @@ export interface Standing {
 	signOffs: SignOff[];
 	/** Newest first. */
 	revisions: RevisionRow[];
+	/** What the note's team asks of a sign-off. */
+	policy: Policy;
 }
 
 /** Reads where a note stands. What decides on it reads it under the note's lock. */
 export async function read(connection: Connection, noteId: string): Promise<Standing> {
 	const [standing] = await connection
-		.select({ state: noteStanding.state })
+		.select({ state: noteStanding.state, teamId: note.teamId })
 		.from(noteStanding)
+		.innerJoin(note, eq(note.id, noteStanding.noteId))
 		.where(eq(noteStanding.noteId, noteId));
 	const [newest] = await connection
 		.select()
@@ -35,26 +40,39 @@ export async function read(connection: Connection, noteId: string): Promise<Stan
 		.where(eq(candidate.noteId, noteId))
 		.orderBy(desc(candidate.ordinal))
 		.limit(1);
-	const revisions = await connection
-		.select({
-			candidateId: revision.candidateId,
-			letter: revision.letter,
-			digest: revision.digest,
-			frozenAt: revision.frozenAt,
-		})
-		.from(revision)
-		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
-		.where(eq(revision.noteId, noteId))
-		.orderBy(desc(candidate.ordinal));
+	const revisions = await revisionsOf(connection, noteId);
 	const signOffs = newest ? await signOffsOf(connection, newest.id) : [];
+	const policy = await policies.read(connection, standing?.teamId ?? '');
 	return {
 		state: standing?.state ?? 'draft',
 		nextLetter: letterOf(revisions.length + 1),
 		candidate: newest ?? null,
-		candidateState: newest ? stateOf(signOffs) : null,
+		candidateState: newest ? stateOf(signOffs, policy) : null,
 		signOffs,
 		revisions,
+		policy,
 	};
+}
+
+async function revisionsOf(connection: Connection, noteId: string): Promise<RevisionRow[]> {
+	const rows = await connection
+		.select({ revision, withdrawal })
+		.from(revision)
+		.innerJoin(candidate, eq(candidate.id, revision.candidateId))
+		.leftJoin(withdrawal, eq(withdrawal.revisionId, revision.id))
+		.where(eq(revision.noteId, noteId))
+		.orderBy(desc(candidate.ordinal));
+	return rows.map(({ revision: { candidateId, letter, digest, frozenAt }, withdrawal: taken }) => ({
+		candidateId,
+		letter,
+		digest,
+		frozenAt,
+		withdrawn: taken && {
+			name: taken.personName,
+			at: taken.at.toISOString(),
+			reason: taken.reason,
+		},
+	}));
 }
 
 /** The sign-offs of a candidate, oldest first. */
@@ -63,21 +81,23 @@ export async function signOffsOf(connection: Connection, candidateId: string): P
 		.select()
 		.from(signOff)
 		.where(eq(signOff.candidateId, candidateId))
-		.orderBy(asc(signOff.at), asc(signOff.id));
-	return rows.map(({ meaning, personName, personId, at, reason }) => ({
+		.orderBy(asc(signOff.at), asc(signOff.entry), asc(signOff.id));
+	return rows.map(({ meaning, personName, personId, at, reason, details }) => ({
 		meaning,
 		name: personName,
 		personId,
 		at: at.toISOString(),
 		reason,
+		...details,
 	}));
 }
 
-function stateOf(signOffs: SignOff[]): CandidateStatus['state'] {
-	const has = (meaning: SignOff['meaning']) => signOffs.some((one) => one.meaning === meaning);
-	if (has('returned')) return 'returned';
-	if (has('approved')) return 'approved';
-	return has('checked') ? 'checked' : 'in check';
+function stateOf(signOffs: SignOff[], policy: Policy): CandidateStatus['state'] {
+	const count = (meaning: SignOff['meaning']) =>
+		signOffs.filter((one) => one.meaning === meaning).length;
+	if (count('returned') > 0) return 'returned';
+	if (count('approved') > 0) return 'approved';
+	return count('checked') >= policy.checkers ? 'checked' : 'in check';
 }
 
 /** The newest candidate while nobody has approved or returned it. */
@@ -89,6 +109,13 @@ export function openCandidate(standing: Standing): CandidateRow | null {
 /** A candidate as pages see it. */
 export function candidateStatus(standing: Standing): CandidateStatus | null {
 	if (!standing.candidate || !standing.candidateState) return null;
-	const { ordinal, digest, authors } = standing.candidate;
-	return { ordinal, state: standing.candidateState, digest, authors, signOffs: standing.signOffs };
+	const { ordinal, digest, authors, details } = standing.candidate;
+	return {
+		ordinal,
+		state: standing.candidateState,
+		digest,
+		authors,
+		signOffs: standing.signOffs,
+		details,
+	};
 }

@@ -1,10 +1,11 @@
 import { redirect } from '@sveltejs/kit';
-import { proposing } from '$lib/schemas/review';
+import { askPrefix, fieldsNamed, proposing } from '$lib/schemas/review';
 import { may } from '$lib/schemas/role';
 import * as threads from '$lib/server/comments/threads';
 import { current } from '$lib/server/evaluation/store';
 import * as notes from '$lib/server/notes/notes';
 import * as candidates from '$lib/server/revisions/candidates';
+import { askable } from '$lib/server/revisions/proposal';
 import * as review from '$lib/server/revisions/review';
 import * as revisions from '$lib/server/revisions/revisions';
 import { action } from '$lib/server/web/form';
@@ -23,12 +24,14 @@ export const load = forMember(async (actor, { params: { number } }: PageServerLo
 		evaluation: results,
 		threads: await threads.list(actor, number),
 		review: await review.status(actor, number),
+		askable: await askable(actor),
 	};
 });
 
 export const actions = {
-	propose: action('propose', proposing, async (actor, { password }, { params }: RequestEvent) => {
-		await candidates.propose(actor, params.number, password);
+	propose: action('propose', proposing, async (actor, said, { params }: RequestEvent) => {
+		const checkers = fieldsNamed(askPrefix, said).map(([id]) => id);
+		await candidates.propose(actor, params.number, { ...said, checkers });
 		redirect(303, `/notes/${params.number}/candidate`);
 	}),
 };

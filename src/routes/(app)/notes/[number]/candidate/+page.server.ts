@@ -1,5 +1,5 @@
 import { redirect } from '@sveltejs/kit';
-import { returning, signing } from '$lib/schemas/review';
+import { approving, fieldsNamed, returning, signing, waivePrefix } from '$lib/schemas/review';
 import * as threads from '$lib/server/comments/threads';
 import * as notes from '$lib/server/notes/notes';
 import * as candidates from '$lib/server/revisions/candidates';
@@ -23,8 +23,12 @@ export const actions = {
 		await candidates.check(actor, params.number, seen);
 		redirect(303, `/notes/${params.number}/candidate`);
 	}),
-	approve: action('approve', signing, async (actor, seen, { params }: RequestEvent) => {
-		const letter = await candidates.approve(actor, params.number, seen);
+	approve: action('approve', approving, async (actor, seen, { params }: RequestEvent) => {
+		const letter = await candidates.approve(actor, params.number, {
+			...seen,
+			acknowledged: seen.caution === 'on',
+			waivers: fieldsNamed(waivePrefix, seen),
+		});
 		redirect(303, `/notes/${params.number}/revisions/${letter}`);
 	}),
 	return: action('return', returning, async (actor, seen, { params }: RequestEvent) => {

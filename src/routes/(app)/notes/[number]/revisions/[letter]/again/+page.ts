@@ -1,0 +1,2 @@
+/** Like the revision it speaks of, it ships no scripts. */
+export const csr = false;
