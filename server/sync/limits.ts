@@ -2,7 +2,7 @@
 export const maxUnsaved = { edits: 5000, bytes: 8 * 1024 * 1024 };
 
 /** Bytes a slow page may leave unread: results are held back at the first, the socket is ended at the second. */
-export const maxUnread = { results: 1024 * 1024, all: 8 * 1024 * 1024 };
+export const maxUnread = { results: 1024 * 1024, all: 4 * 1024 * 1024 };
 
 /** Bytes of a document, written down whole. */
 export const maxDocumentBytes = 24 * 1024 * 1024;

@@ -10,7 +10,6 @@ import {
 	type Refused,
 	type Saved,
 } from '$lib/protocol/messages';
-import { announce } from '$lib/server/db/notify';
 import { Scheduler } from '$lib/server/evaluation/scheduler';
 import { log } from '$lib/server/log';
 import * as authorship from '$lib/server/notes/authorship';
@@ -23,7 +22,7 @@ import { HeldUpdates } from './held-updates';
 import type { Incoming } from './incoming';
 import { Journal, type Entry } from './journal';
 import * as outgoing from './outgoing';
-import { People } from './people';
+import { People, type Entry as PersonEntry } from './people';
 import { Proof, type Finding } from './proof';
 import { ResultStore } from './result-store';
 import { Upkeep } from './upkeep';
@@ -32,6 +31,10 @@ interface Events {
 	onEmpty: (room: Room) => void;
 	/** What is in memory cannot be stored any more. */
 	onBroken: (room: Room) => void;
+	/** The log has grown by edits of this process. */
+	onStored: (room: Room, seq: number) => void;
+	/** Something is new of those who are connected here. */
+	onPeople: (room: Room, entries: readonly PersonEntry[]) => void;
 }
 
 /**
@@ -125,7 +128,7 @@ export class Room {
 	join(connection: Connection): void {
 		this.connections.add(connection);
 		this.greet(connection);
-		connection.send(this.#people.all());
+		connection.send(outgoing.presence(this.#people.all()));
 		connection.send(this.#authors.of(cellsOf(this.#doc).keys()));
 		const results = this.#scheduler.last?.results;
 		if (results) connection.sendResults(encodeJson('results', results));
@@ -144,8 +147,7 @@ export class Room {
 
 	leave(connection: Connection): void {
 		if (!this.connections.delete(connection)) return;
-		const message = this.#people.leave(connection);
-		if (message) this.#broadcast(message, connection);
+		this.#tellPeople(this.#people.leave(connection), connection);
 		if (this.isEmpty) this.#events.onEmpty(this);
 	}
 
@@ -160,11 +162,9 @@ export class Room {
 			case 'more':
 				connection.answer.onRead(incoming);
 				return true;
-			case 'presence': {
-				const message = this.#people.take(connection, incoming.said);
-				if (message) this.#broadcast(message, connection);
+			case 'presence':
+				this.#tellPeople(this.#people.take(connection, incoming.said), connection);
 				return true;
-			}
 			case 'nothing':
 				return true;
 			case 'update':
@@ -179,6 +179,17 @@ export class Room {
 	/** Hears that the log has grown to `seq`. */
 	hear(seq: number): void {
 		this.#follower.hear(seq);
+	}
+
+	/** Hears who is in the note on another process. */
+	hearPeople(entries: readonly PersonEntry[]): void {
+		this.#showPeople(this.#people.hear(entries), undefined);
+	}
+
+	/** Those who are connected here; forgets those of whom other processes say nothing any more. */
+	countPeople(): readonly PersonEntry[] {
+		this.#showPeople(this.#people.forget(), undefined);
+		return this.#people.here();
 	}
 
 	/** Whether this room's document is the one with that epoch. */
@@ -258,6 +269,15 @@ export class Room {
 		return true;
 	}
 
+	#tellPeople(entries: readonly PersonEntry[], but: Connection): void {
+		this.#showPeople(entries, but);
+		if (entries.length > 0) this.#events.onPeople(this, entries);
+	}
+
+	#showPeople(entries: readonly PersonEntry[], but: Connection | undefined): void {
+		if (entries.length > 0) this.#broadcast(outgoing.presence(entries), but);
+	}
+
 	#judge(connection: Connection, update: Uint8Array): Finding {
 		const { refusedFor, actor } = connection;
 		if (refusedFor) return { kind: 'refused', reason: refusedFor };
@@ -308,7 +328,7 @@ export class Room {
 		this.#follower.stored(appended);
 		this.#authors.hear(entries.flatMap(({ cells }) => cells));
 		this.#storeResults();
-		if (appended.first !== undefined) void announce(this.noteId, seq);
+		if (appended.first !== undefined) this.#events.onStored(this, seq);
 	}
 
 	#applyRows(rows: readonly updates.Row[]): void {

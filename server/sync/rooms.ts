@@ -5,17 +5,22 @@ import { listen, type Hint, type Listener } from '$lib/server/db/notify';
 import { log } from '$lib/server/log';
 import { heads } from '$lib/server/notes/updates';
 import type { Connection } from './connection';
+import { Neighbours } from './neighbours';
+import type { Entry as PersonEntry } from './people';
 import { Room } from './room';
 
 const graceMs = 30_000;
-const pollMs = 2000;
+const pollMs = 1000;
+/** Other processes hear so often that this one runs, and who is in it. */
+const beatMs = 5000;
 const keepAliveMs = 9000;
 
 /** The rooms of this process: one per note, loaded once however many pages wait for it. */
 export class Rooms {
 	readonly #rooms = new Map<string, Promise<Room>>();
-	/** Rooms that are loaded. */
-	readonly #open = new Set<Room>();
+	/** Rooms that are loaded, by note. */
+	readonly #open = new Map<string, Room>();
+	readonly #neighbours = new Neighbours();
 	readonly #unloading = new Map<Room, NodeJS.Timeout>();
 	readonly #timers: NodeJS.Timeout[];
 	readonly #listener: Listener;
@@ -31,6 +36,7 @@ export class Rooms {
 				this.#polling ??= this.#poll();
 			}, pollMs),
 			setInterval(() => this.#open.forEach((room) => room.keepAlive()), keepAliveMs),
+			setInterval(() => this.#beat(), beatMs),
 		];
 	}
 
@@ -48,21 +54,22 @@ export class Rooms {
 
 	/** Takes no more edits, and settles when everything that was taken is stored and acknowledged. */
 	async drain(): Promise<void> {
-		await Promise.all([...this.#open].map((room) => room.drain()));
+		await Promise.all([...this.#open.values()].map((room) => room.drain()));
 	}
 
 	/** Closes every socket. */
 	close(code: number): void {
-		for (const room of this.#open) room.close(code);
+		for (const room of this.#open.values()) room.close(code);
 	}
 
 	/** Ends what runs besides the rooms, and gives the rooms up. */
 	async stop(): Promise<void> {
 		this.#timers.forEach(clearInterval);
 		this.#unloading.forEach(clearTimeout);
+		await this.#neighbours.stop();
 		await this.#listener.close();
 		await this.#polling;
-		for (const room of this.#open) room.destroy();
+		for (const room of this.#open.values()) room.destroy();
 	}
 
 	#load(noteId: string): Promise<Room> {
@@ -72,11 +79,14 @@ export class Rooms {
 				this.#forget(room);
 				room.close(closeCode.unavailable);
 			},
+			onStored: (room, seq) => this.#neighbours.announce(room.noteId, seq),
+			onPeople: (room, entries) => this.#neighbours.sayPeople(room.noteId, entries),
 		});
 		this.#rooms.set(noteId, loading);
 		return loading.then(
 			(room) => {
-				this.#open.add(room);
+				this.#open.set(noteId, room);
+				this.#neighbours.ask(noteId);
 				return room;
 			},
 			(error: unknown) => {
@@ -87,7 +97,7 @@ export class Rooms {
 	}
 
 	#unloadLater(room: Room): void {
-		if (!this.#open.has(room)) return;
+		if (this.#open.get(room.noteId) !== room) return;
 		clearTimeout(this.#unloading.get(room));
 		const timer: NodeJS.Timeout = setTimeout(() => void this.#unload(room, timer), graceMs);
 		this.#unloading.set(room, timer);
@@ -100,7 +110,8 @@ export class Rooms {
 	}
 
 	#forget(room: Room): void {
-		if (!this.#open.delete(room)) return;
+		if (this.#open.get(room.noteId) !== room) return;
+		this.#open.delete(room.noteId);
 		clearTimeout(this.#unloading.get(room));
 		this.#unloading.delete(room);
 		this.#rooms.delete(room.noteId);
@@ -108,20 +119,40 @@ export class Rooms {
 	}
 
 	#connections(): Connection[] {
-		return [...this.#open].flatMap((room) => [...room.connections]);
+		return [...this.#open.values()].flatMap((room) => [...room.connections]);
 	}
 
 	#onHint(hint: Hint): void {
-		for (const room of this.#open) {
-			if (room.noteId !== hint.noteId) continue;
-			if ('seq' in hint) room.hear(hint.seq);
-			else room.tell(hint.about);
+		if ('noteId' in hint) {
+			this.#open.get(hint.noteId)?.tell(hint.about);
+			return;
+		}
+		const who = this.#neighbours.hear(hint.from);
+		if (who === 'own') return;
+		// A process that has just begun knows nobody yet.
+		if (who === 'new') this.#beat();
+		for (const [noteId, seq] of Object.entries(hint.seqs ?? {})) this.#open.get(noteId)?.hear(seq);
+		for (const noteId of hint.asks ?? []) {
+			this.#neighbours.sayPeople(noteId, this.#open.get(noteId)?.countPeople() ?? []);
+		}
+		for (const [noteId, people] of Object.entries(hint.people ?? {})) {
+			const entries = people.map(([clientId, clock, state]) => ({ clientId, clock, state }));
+			this.#open.get(noteId)?.hearPeople(entries as PersonEntry[]);
+		}
+	}
+
+	/** Says that this process runs and who is in it, and forgets those of whom others say nothing any more. */
+	#beat(): void {
+		this.#neighbours.beat();
+		for (const room of this.#open.values()) {
+			this.#neighbours.sayPeople(room.noteId, room.countPeople());
 		}
 	}
 
 	#onGap(): void {
 		this.#polling ??= this.#poll();
-		for (const room of this.#open) {
+		this.#beat();
+		for (const room of this.#open.values()) {
 			room.tell('comments');
 			room.tell('review');
 		}
@@ -138,7 +169,7 @@ export class Rooms {
 	}
 
 	async #pollRooms(): Promise<void> {
-		const rooms = [...this.#open];
+		const rooms = [...this.#open.values()];
 		if (rooms.length === 0) return;
 		const found = await heads(rooms.map((room) => room.noteId));
 		for (const room of rooms) {

@@ -7,8 +7,29 @@ import { db } from './client';
 
 const channel = 'halfdigit';
 
-/** A hint that something changed: news for the pages of a note, or a newer sequence number of its log. */
-export type Hint = { noteId: string } & ({ about: News['about'] } | { seq: number });
+/** News for the pages of a note. */
+interface NewsHint {
+	noteId: string;
+	about: News['about'];
+}
+
+/** What one process tells the others of the notes that are open in it, by note. A bare one says that it runs. */
+export interface ProcessHint {
+	/** The process. */
+	from: string;
+	/** Newer sequence numbers of logs. */
+	seqs?: Record<string, number>;
+	/** Who is there: client id, clock, and what is known of them or null where they are gone. */
+	people?: Record<string, [clientId: number, clock: number, state: unknown][]>;
+	/** Notes that were opened in it; the others say who is there. */
+	asks?: string[];
+}
+
+/** A hint that something changed. What it tells of is in the database, or will be told again. */
+export type Hint = NewsHint | ProcessHint;
+
+/** PostgreSQL takes payloads shorter than 8,000 bytes. */
+export const maxHintBytes = 7900;
 
 /**
  * Tells every process that comments or the review of a note changed. Call it after the commit. It is a
@@ -18,16 +39,16 @@ export async function notify(noteId: string, about: News['about']): Promise<void
 	await send({ noteId, about });
 }
 
-/** Tells every process that a note's log has grown to a sequence number. A hint, like `notify`. */
-export async function announce(noteId: string, seq: number): Promise<void> {
-	await send({ noteId, seq });
+/** Tells the other processes of this one. A hint, like `notify`. */
+export async function tell(hint: ProcessHint): Promise<void> {
+	await send(hint);
 }
 
 async function send(hint: Hint): Promise<void> {
 	try {
 		await db().execute(sql`select pg_notify(${channel}, ${JSON.stringify(hint)})`);
 	} catch (error) {
-		log().warn({ err: error, noteId: hint.noteId }, 'a hint could not be sent');
+		log().warn({ err: error }, 'a hint could not be sent');
 	}
 }
 
