@@ -12,7 +12,7 @@ test('places are rewritten exactly, and what another one types beside them at th
 			{ kind: 'text', source: 'about {{R1}}' },
 		],
 	});
-	const [first, second] = placedCells(doc) as [{ id: string }, { id: string }];
+	const [first, second] = [placedCells(doc)[0]!, placedCells(doc)[1]!];
 	const peer = new Y.Doc();
 	Y.applyUpdate(peer, Y.encodeStateAsUpdate(doc));
 	placedCells(peer)[0]!.text.insert(11, ' # upper');

@@ -1,13 +1,19 @@
+import type { EditorView } from '@codemirror/view';
 import { createContext, tick } from 'svelte';
+import { SvelteSet } from 'svelte/reactivity';
 import type { Evaluation } from '$lib/calc/results';
 import { OpenLine } from '$lib/client/open-line.svelte';
 import { Threads } from '$lib/client/threads.svelte';
 import { WorkingCopy } from '$lib/client/working-copy.svelte';
+import type { NoteContext, Place } from '$lib/editor/note-context';
 import type { CellKind, NoteContent } from '$lib/note/document';
 import type { Thread } from '$lib/schemas/comments';
 import { CellDrag } from './drag.svelte';
+import { Finder } from './finder.svelte';
 import type LineDetailType from './detail/LineDetail.svelte';
 import { MarginPlaces } from './margin-places';
+import { Nearness } from './nearness';
+import { Settled } from './settled.svelte';
 
 interface Start {
 	note: { id: string; number: string; epoch: string };
@@ -20,6 +26,25 @@ interface Start {
 /** Where the cursor comes in when a cell is entered with the keyboard. */
 export type Edge = 'start' | 'end';
 
+/** A piece of a cell's source that is entered, or only shown where the focus is to stay elsewhere. */
+interface Spot {
+	from: number;
+	to: number;
+	focus: boolean;
+}
+
+export type Target = Edge | Spot;
+
+/** What stands at the sheet's foot: finding, renaming, the list of actions, the list of keys. */
+type Tool = { kind: 'find' | 'actions' | 'keys' } | { kind: 'rename'; name: string; next: string };
+
+/** The editor that has, or had last, the focus. */
+interface ActiveEditor {
+	cellId: string;
+	kind: CellKind;
+	view: EditorView;
+}
+
 /** The open sheet: its working copy and threads, and what is being done to them on this page. */
 export class Sheet {
 	readonly number: string;
@@ -27,6 +52,8 @@ export class Sheet {
 	readonly threads: Threads;
 	readonly drag: CellDrag;
 	readonly margin = new MarginPlaces();
+	readonly nearness = new Nearness();
+	readonly settled: Settled;
 	/** The worked line that is open. */
 	readonly line: OpenLine;
 	/** Loaded when a line is opened first. */
@@ -35,7 +62,21 @@ export class Sheet {
 	composing = $state<string>();
 	/** Cell below which a divider is searched for; null on an empty sheet. */
 	finding = $state<string | null>();
-	readonly #doors = new Map<string, (edge: Edge) => void>();
+	/** Cells of which only the first line is shown on this page. */
+	readonly folded = new SvelteSet<string>();
+	readonly finder: Finder;
+	/** The note as editors need it. */
+	readonly note: NoteContext;
+	/** Open tool at the sheet's foot. */
+	tool = $state.raw<Tool>();
+	/** What the last action has to say, a sentence. */
+	told = $state('');
+	active: ActiveEditor | undefined;
+	/** Kind of the cell that is being written in. */
+	writing = $state<CellKind>();
+	/** The cell that the person is at, or was last. */
+	at: string | undefined;
+	readonly #doors = new Map<string, (target: Target) => void>();
 
 	constructor({ note, person, content, evaluation, threads }: Start) {
 		this.number = note.number;
@@ -47,20 +88,78 @@ export class Sheet {
 			content,
 			evaluation,
 		});
+		this.settled = new Settled(evaluation);
 		this.drag = new CellDrag(this.copy);
 		this.threads = new Threads(note.number, threads);
 		this.line = new OpenLine(note.number);
+		this.finder = new Finder(this);
+		const { copy } = this;
+		this.note = {
+			get cells() {
+				return copy.cells;
+			},
+			get evaluation() {
+				return copy.evaluation;
+			},
+			go: (place) => this.go(place),
+			rename: (name, next) => (this.tool = { kind: 'rename', name, next: next ?? name }),
+		};
 	}
 
 	/** Announces how a cell takes the focus; call what it returns when the cell goes. */
-	addDoor(cellId: string, enter: (edge: Edge) => void): () => void {
+	addDoor(cellId: string, enter: (target: Target) => void): () => void {
 		this.#doors.set(cellId, enter);
 		return () => this.#doors.delete(cellId);
 	}
 
+	/** Attachment of the sheet: keeps in mind which cell the person is at. */
+	readonly followFocus = (element: HTMLElement): (() => void) => {
+		const follow = ({ target }: FocusEvent) => {
+			const cell = target instanceof Element && target.closest<HTMLElement>('[data-cell]');
+			if (cell) this.at = cell.dataset.cell;
+		};
+		element.addEventListener('focusin', follow);
+		return () => element.removeEventListener('focusin', follow);
+	};
+
 	/** Puts the focus into a cell. */
-	enter(cellId: string, edge: Edge = 'end'): void {
-		this.#doors.get(cellId)?.(edge);
+	enter(cellId: string, target: Target = 'end'): void {
+		this.folded.delete(cellId);
+		this.#doors.get(cellId)?.(target);
+	}
+
+	/** Puts the cursor onto a place; with `focus` false it is only shown. */
+	go({ cellId, from, to }: Place, focus = true): void {
+		this.enter(cellId, { from, to, focus });
+	}
+
+	/** Closes the tool at the foot and goes back to where the person was writing. */
+	closeTool(): void {
+		this.tool = undefined;
+		this.refocus();
+	}
+
+	/** Goes back to where the person was: the editor, where it was in the same cell, else the cell's terminal. */
+	refocus(): void {
+		const { active, at } = this;
+		if (active && active.cellId === at) {
+			if (active.view.dom.isConnected) active.view.focus();
+			// The editor of a text closes when it loses the focus.
+			else this.enter(active.cellId);
+		} else if (at !== undefined) this.focusTerminal(at);
+	}
+
+	/** Comes to a cell: into its editor, or to the terminal of one that is only read. */
+	arrive(cellId: string): void {
+		const { copy } = this;
+		const kind = copy.cells.find(({ id }) => id === cellId)?.kind;
+		if (copy.editable && kind !== 'text' && !this.folded.has(cellId)) this.enter(cellId, 'start');
+		else this.focusTerminal(cellId);
+		this.at = cellId;
+	}
+
+	focusTerminal(cellId: string): void {
+		document.querySelector<HTMLElement>(`#cell-${cellId} [aria-haspopup=menu]`)?.focus();
 	}
 
 	/** Moves the focus from a cell to the one before or behind it, if there is one. */
