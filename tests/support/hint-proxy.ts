@@ -33,7 +33,7 @@ export async function startHintProxy(target: number): Promise<HintProxy> {
 		}
 		near.pipe(far);
 		const held: Buffer[] = [];
-		let rest = Buffer.alloc(0);
+		let rest: Buffer = Buffer.alloc(0);
 		far.on('data', (chunk: Buffer) => {
 			const { messages, rest: left } = split(Buffer.concat([rest, chunk]));
 			rest = left;

@@ -6,6 +6,10 @@ export interface Proxy {
 	port: number;
 	/** Port on the loopback address to which new connections go. */
 	target: number;
+	/** How many connections were let in so far. */
+	readonly connections: number;
+	/** Bytes a second from the server to each client; no bound unless set. */
+	bytesPerSecond: number | undefined;
 	/** Breaks every connection and lets no new one in. */
 	cut(): void;
 	mend(): void;
@@ -15,11 +19,13 @@ export interface Proxy {
 export async function startProxy(target: number): Promise<Proxy> {
 	const sockets = new Set<Socket>();
 	let isCut = false;
+	let connections = 0;
 	const server = createServer((near) => {
 		if (isCut) {
 			near.destroy();
 			return;
 		}
+		connections += 1;
 		const far = connect(proxy.target, '127.0.0.1');
 		for (const [from, to] of [
 			[near, far],
@@ -31,7 +37,8 @@ export async function startProxy(target: number): Promise<Proxy> {
 				sockets.delete(from);
 				to.destroy();
 			});
-			from.pipe(to);
+			if (from === far && proxy.bytesPerSecond) throttle(from, to, proxy.bytesPerSecond);
+			else from.pipe(to);
 		}
 	});
 	server.listen(0, '127.0.0.1');
@@ -42,6 +49,10 @@ export async function startProxy(target: number): Promise<Proxy> {
 	};
 	const proxy: Proxy = {
 		target,
+		bytesPerSecond: undefined,
+		get connections() {
+			return connections;
+		},
 		port: (server.address() as AddressInfo).port,
 		cut,
 		mend: () => {
@@ -54,4 +65,18 @@ export async function startProxy(target: number): Promise<Proxy> {
 		},
 	};
 	return proxy;
+}
+
+/** Passes bytes on at a rate; what does not fit stays where it comes from, as on a slow line. */
+function throttle(from: Socket, to: Socket, bytesPerSecond: number): void {
+	const stepMs = 20;
+	const clock = setInterval(() => {
+		const step = Math.ceil((bytesPerSecond * stepMs) / 1000);
+		const chunk = (from.read(Math.min(step, from.readableLength)) ?? undefined) as
+			Buffer | undefined;
+		if (chunk) to.write(chunk);
+	}, stepMs);
+	from.on('readable', () => undefined);
+	from.on('close', () => clearInterval(clock));
+	from.on('end', () => to.end());
 }
