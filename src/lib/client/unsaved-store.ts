@@ -52,6 +52,8 @@ interface Place {
 
 const edits = 'edits';
 const asides = 'asides';
+/** How long a page that does not let go of the database can hold up signing out. */
+const wipeMs = 2000;
 /** What is said to be kept is on the disk. */
 const strict = { durability: 'strict' } as const;
 const nameOf = (personId: string) => `halfdigit-unsaved-${personId}`;
@@ -173,7 +175,8 @@ export async function listKept(personId: string): Promise<{ number: string; chan
 
 /** Forgets everything that this browser keeps for a person. Their other pages keep nothing from then on. */
 export async function wipe(personId: string): Promise<void> {
-	await idb.deleteDB(nameOf(personId));
+	const late = new Promise((resolve) => setTimeout(resolve, wipeMs));
+	await Promise.race([idb.deleteDB(nameOf(personId)), late]);
 }
 
 function openStore(personId: string): Promise<IDBDatabase> {

@@ -213,7 +213,9 @@ export class WorkingCopy {
 		server: { url: string; WebSocket?: typeof WebSocket },
 	): NoteSocket {
 		this.awareness.on('change', () => {
-			this.#people = othersIn(this.awareness.getStates(), this.#person.id);
+			const people = othersIn(this.awareness.getStates(), this.#person.id);
+			// A cursor that moves within a cell changes nothing here.
+			if (JSON.stringify(people) !== JSON.stringify(this.#people)) this.#people = people;
 		});
 		this.#stopWatching = watchWindow({
 			onLeaving: (event) => this.isUnsaved && event.preventDefault(),

@@ -122,8 +122,9 @@ export function tokenOf(cookies: Cookies): string {
 	return cookies.get(sessionCookie().name) ?? '';
 }
 
-/** Takes the session's cookie away. */
-export function forget(cookies: Cookies): void {
+/** Takes the session's cookie away, and everything that pages have kept in the browser. */
+export function forget({ cookies, setHeaders }: RequestEvent): void {
 	const { name, options } = sessionCookie();
 	cookies.delete(name, options);
+	setHeaders({ 'clear-site-data': '"storage"' });
 }

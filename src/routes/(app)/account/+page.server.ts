@@ -28,9 +28,9 @@ export const actions = {
 		action: 'revokeToken',
 		done: `“${await apiTokens.revoke(actor, id)}” is revoked.`,
 	})),
-	signOutEverywhere: forMember(async (actor, { cookies }: RequestEvent) => {
+	signOutEverywhere: forMember(async (actor, event: RequestEvent) => {
 		await sessions.endAll(actor);
-		auth.forget(cookies);
+		auth.forget(event);
 		redirect(303, '/sign-in');
 	}),
 };

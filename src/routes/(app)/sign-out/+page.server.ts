@@ -7,9 +7,9 @@ import type { PageServerLoad, RequestEvent } from './$types';
 export const load: PageServerLoad = () => redirect(303, '/notes');
 
 export const actions = {
-	default: forMember(async (actor, { cookies }: RequestEvent) => {
-		await sessions.end(actor, auth.tokenOf(cookies));
-		auth.forget(cookies);
+	default: forMember(async (actor, event: RequestEvent) => {
+		await sessions.end(actor, auth.tokenOf(event.cookies));
+		auth.forget(event);
 		redirect(303, '/sign-in');
 	}),
 };

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { savingWords } from './saving-words';
+import { savingNews, savingWords } from './saving-words';
 
 const open = { ready: true, mayWrite: true };
 const clock = (at: string) => at.slice(11, 16);
@@ -16,13 +16,24 @@ test('nothing is called saved before the note is complete', () => {
 	).toBe('Opening…');
 });
 
-test('edits that wait for the connection are counted', () => {
-	expect(savingWords({ state: 'offline', count: 1, kept: 1 }, open, clock)).toBe(
-		'Not saved: 1 change kept on this page',
+test('changes that wait for the connection are counted, and where they are kept is said', () => {
+	const offline = { state: 'offline' as const, count: 3 };
+	expect(savingWords({ ...offline, kept: 3 }, open, clock)).toBe(
+		'Offline: 3 changes kept on this computer',
 	);
-	expect(savingWords({ state: 'offline', count: 3, kept: 3 }, open, clock)).toBe(
-		'Not saved: 3 changes kept on this page',
+	expect(savingWords({ ...offline, kept: 1 }, open, clock)).toBe(
+		'Offline: 1 change kept on this computer',
 	);
+	expect(savingWords({ ...offline, kept: 0 }, open, clock)).toBe('Offline: 3 changes not saved');
+	expect(savingWords({ ...offline, kept: 0, failure: 'No room.' }, open, clock)).toBe(
+		'Offline: 3 changes on this page only. No room.',
+	);
+});
+
+test('with every key the same is said to people who listen', () => {
+	const offline = { state: 'offline' as const, kept: 0 };
+	expect(savingNews({ ...offline, count: 1 })).toBe(savingNews({ ...offline, count: 2 }));
+	expect(savingNews({ state: 'saving', count: 1, kept: 0 })).toBe('');
 });
 
 test('a refused edit says why', () => {
@@ -36,7 +47,5 @@ test('who may not write is told so instead of being told that something is saved
 	expect(savingWords({ state: 'saved', count: 0, kept: 0 }, reading, clock)).toBe(
 		'To read and comment',
 	);
-	expect(savingWords({ state: 'offline', count: 0, kept: 0 }, reading, clock)).toBe(
-		'Not connected',
-	);
+	expect(savingWords({ state: 'offline', count: 0, kept: 0 }, reading, clock)).toBe('Offline');
 });

@@ -4,20 +4,39 @@ const changes = (count: number) => `${count} ${count === 1 ? 'change' : 'changes
 
 /** What the page says of its unsaved changes. `clock` turns an ISO time into the hour as people read it. */
 export function savingWords(
-	{ state, count, at, reason }: Saving,
+	{ state, count, kept, at, reason, failure }: Saving,
 	{ ready, mayWrite }: { ready: boolean; mayWrite: boolean },
 	clock: (at: string) => string,
 ): string {
-	if (!ready && state === 'saved') return 'Opening…';
-	if (!mayWrite && state === 'saved') return 'To read and comment';
+	if (!ready && state !== 'offline' && state !== 'refused') return 'Opening…';
+	if (!mayWrite && count === 0 && state !== 'offline' && state !== 'refused') {
+		return 'To read and comment';
+	}
 	switch (state) {
 		case 'refused':
 			return `Refused: ${reason ?? 'the server did not take a change'}`;
 		case 'offline':
-			return count > 0 ? `Not saved: ${changes(count)} kept on this page` : 'Not connected';
+			if (count === 0) return 'Offline';
+			if (kept > 0) return `Offline: ${changes(kept)} kept on this computer`;
+			return failure
+				? `Offline: ${changes(count)} on this page only. ${failure}`
+				: `Offline: ${changes(count)} not saved`;
 		case 'saving':
 			return 'Saving';
 		case 'saved':
 			return at ? `Saved ${clock(at)}` : 'Saved';
+	}
+}
+
+/** The same for people who listen: said when the state changes, not with every key. */
+export function savingNews({ state, count, reason, failure }: Saving): string {
+	switch (state) {
+		case 'refused':
+			return `Refused: ${reason ?? ''}`;
+		case 'offline':
+			if (count === 0) return 'Offline';
+			return failure ? `Offline. ${failure}` : 'Offline. Changes are kept on this computer.';
+		default:
+			return '';
 	}
 }
