@@ -1,5 +1,6 @@
 import { AppError } from '$lib/errors';
 import { closeDb } from '$lib/server/db/client';
+import { demandDurable } from '$lib/server/db/durability';
 import { env } from '$lib/server/env';
 import { defaultOptions } from '$lib/calc/engine';
 import { closePool, evaluateInChild } from '$lib/server/evaluation/pool';
@@ -16,6 +17,7 @@ async function start(): Promise<void> {
 	checkNodeOptions(process.env.NODE_OPTIONS);
 	const { HOST, PORT, ROLES } = env();
 	const roles = readRoles(ROLES);
+	if (roles.has('sync')) await demandDurable();
 	const server = createServer(roles.has('web') ? await webHandler() : noPages);
 	const sync = roles.has('sync') ? openSync(server) : undefined;
 	await listening(server, PORT, HOST);

@@ -6,6 +6,7 @@ const entries = {
 	main: 'server/main.ts',
 	evaluator: 'server/evaluator.ts',
 	migrate: 'server/local/migrate.ts',
+	restored: 'server/restored.ts',
 	demonstration: 'server/local/demonstration.ts',
 };
 

@@ -117,7 +117,7 @@ export class Journal<Sender> {
 /** Whether trying again cannot help: the note is gone, or PostgreSQL refuses the data itself (SQLSTATE classes 22, 23, 42). */
 function isFinal(error: unknown): boolean {
 	for (let cause = error; cause instanceof Error; cause = cause.cause) {
-		if (cause instanceof AppError) return true;
+		if (cause instanceof AppError) return cause.code !== 'unavailable';
 		if ('code' in cause && /^(22|23|42)...$/.test(String(cause.code))) return true;
 	}
 	return false;

@@ -4,6 +4,7 @@ import { clientsIn, touchedBy } from '$lib/note/touched';
 import { and, asc, eq, gt, inArray } from 'drizzle-orm';
 import * as Y from 'yjs';
 import { db, type Connection } from '../db/client';
+import { refuseWeak, weakness } from '../db/durability';
 import { note, noteClient, noteUpdate } from '../db/schema/notes';
 import { person } from '../db/schema/people';
 import * as authorship from './authorship';
@@ -33,16 +34,18 @@ export interface Appended {
 /**
  * Stores edits in one transaction, in order, and returns after its commit. An edit whose id the note
  * already has is not stored again, so an append that may or may not have been committed can be repeated. Throws
- * AppError `conflict` where edits carry client ids of somebody else (`details.ids`), and stores nothing then.
+ * AppError `conflict` where edits carry client ids of somebody else (`details.ids`), `unavailable` where the database
+ * would not keep them through a crash; nothing is stored then.
  */
 export async function append(noteId: string, edits: readonly Edit[]): Promise<Appended> {
 	return db().transaction(async (tx) => {
 		const [head] = await tx
-			.select({ seq: note.seq, epoch: note.epoch, at: note.changedAt })
+			.select({ seq: note.seq, epoch: note.epoch, at: note.changedAt, weak: weakness })
 			.from(note)
 			.where(eq(note.id, noteId))
 			.for('update');
 		if (!head) throw new AppError('notFound', 'This note does not exist.');
+		refuseWeak(head.weak);
 		const known = await tx
 			.select({ id: noteUpdate.clientEditId })
 			.from(noteUpdate)
