@@ -13,6 +13,7 @@ import { firstFree } from '../../server/local/ports.mjs';
 import { endEarlier, serve, settings } from '../../server/local/serving.mjs';
 import { openBrowser, signIn } from './browser';
 import { engineRows } from './engine';
+import { loadRows } from './load';
 import { pageRows } from './pages';
 import { table, type Row } from './row';
 import { setupRows } from './setup';
@@ -26,6 +27,7 @@ const rows: Row[] = [];
 
 if (wants('engine')) rows.push(...engineRows(), ...(await trialRows()));
 if (wants('page') || wants('sync')) rows.push(...(await servedRows()));
+if (wants('load')) rows.push(...(await loadRows()));
 if (wants('setup')) rows.push(...(await setupRows()));
 
 const file = 'test-results/bench.json';
