@@ -8,6 +8,7 @@ import { log } from '$lib/server/log';
 import { closeCode } from '$lib/protocol/closing';
 import { createServer, type RequestListener, type Server } from 'node:http';
 import { inspect } from 'node:util';
+import { signDaily } from './daily';
 import { checkNodeOptions, readRoles } from './roles';
 import { onSignal } from './shutdown';
 import { Rooms } from './sync/rooms';
@@ -23,8 +24,10 @@ async function start(): Promise<void> {
 	await listening(server, PORT, HOST);
 	log().info({ host: HOST, port: PORT, roles: [...roles] }, 'listening');
 
+	const endDaily = signDaily();
 	let answered: (() => Promise<void>) | undefined;
 	const stop = () => {
+		endDaily();
 		sync?.gate.shut();
 		// Whoever comes from now on finds nobody listening, and a proxy in front asks the next process.
 		answered = stopListening(server);
@@ -39,7 +42,7 @@ async function start(): Promise<void> {
 		{
 			name: 'close the sockets',
 			limitMs: 500,
-			run: async () => sync?.rooms.close(closeCode.restarting),
+			run: () => Promise.resolve(sync?.rooms.close(closeCode.restarting)),
 		},
 		{ name: 'answer what was asked', limitMs: 1500, run: async () => answered?.() },
 		{ name: 'tell the pages', limitMs: 100, run: tellPages },

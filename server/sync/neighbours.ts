@@ -66,7 +66,9 @@ export class Neighbours {
 		const people = this.#people.get(noteId) ?? new Map<number, Entry>();
 		this.#people.set(noteId, people);
 		for (const entry of entries) people.set(entry.clientId, entry);
-		this.#timer ??= setTimeout(() => (this.#sending ??= this.#flush()), peopleMs);
+		this.#timer ??= setTimeout(() => {
+			this.#sending ??= this.#flush();
+		}, peopleMs);
 	}
 
 	/** Sends what waits. */

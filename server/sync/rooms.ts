@@ -6,7 +6,6 @@ import { log } from '$lib/server/log';
 import { heads } from '$lib/server/notes/updates';
 import type { Connection } from './connection';
 import { Neighbours } from './neighbours';
-import type { Entry as PersonEntry } from './people';
 import { Room } from './room';
 
 const graceMs = 30_000;
@@ -137,7 +136,7 @@ export class Rooms {
 		}
 		for (const [noteId, people] of Object.entries(hint.people ?? {})) {
 			const entries = people.map(([clientId, clock, state]) => ({ clientId, clock, state }));
-			this.#open.get(noteId)?.hearPeople(entries as PersonEntry[]);
+			this.#open.get(noteId)?.hearPeople(entries);
 		}
 	}
 

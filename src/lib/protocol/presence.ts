@@ -17,6 +17,7 @@ export const ownPresence = z.object({
 });
 
 /** A person in a note as the others see them. `user` has the names that the editor's cursors read. */
-export interface Presence extends z.infer<typeof ownPresence> {
-	user: { id: string; name: string; color: string; colorLight: string };
-}
+export const presence = ownPresence.extend({
+	user: z.object({ id: z.string(), name: z.string(), color: z.string(), colorLight: z.string() }),
+});
+export type Presence = z.infer<typeof presence>;

@@ -1,6 +1,8 @@
 import { sql } from 'drizzle-orm';
 import pg from 'pg';
+import { z } from 'zod';
 import type { News } from '$lib/protocol/messages';
+import { presence } from '$lib/protocol/presence';
 import { env } from '../env';
 import { log } from '../log';
 import { db } from './client';
@@ -8,25 +10,26 @@ import { db } from './client';
 const channel = 'halfdigit';
 
 /** News for the pages of a note. */
-interface NewsHint {
-	noteId: string;
-	about: News['about'];
-}
+const newsHint = z.object({ noteId: z.string(), about: z.enum(['comments', 'review']) });
+
+const count = z.int().min(0);
+const personEntry = z.tuple([count, count, presence.nullable()]);
 
 /** What one process tells the others of the notes that are open in it, by note. A bare one says that it runs. */
-export interface ProcessHint {
+const processHint = z.object({
 	/** The process. */
-	from: string;
+	from: z.string().max(100),
 	/** Newer sequence numbers of logs. */
-	seqs?: Record<string, number>;
+	seqs: z.record(z.string(), count).optional(),
 	/** Who is there: client id, clock, and what is known of them or null where they are gone. */
-	people?: Record<string, [clientId: number, clock: number, state: unknown][]>;
+	people: z.record(z.string(), z.array(personEntry)).optional(),
 	/** Notes that were opened in it; the others say who is there. */
-	asks?: string[];
-}
+	asks: z.array(z.string()).optional(),
+});
+export type ProcessHint = z.infer<typeof processHint>;
 
 /** A hint that something changed. What it tells of is in the database, or will be told again. */
-export type Hint = NewsHint | ProcessHint;
+export type Hint = z.infer<typeof newsHint> | ProcessHint;
 
 /** PostgreSQL takes payloads shorter than 8,000 bytes. */
 export const maxHintBytes = 7900;
@@ -110,9 +113,10 @@ export function listen(onHint: (hint: Hint) => void, onGap: () => void): Listene
 	};
 }
 
+/** Whoever may use the database can send a hint: what is none counts for nothing. */
 function parse(payload: string | undefined): Hint | undefined {
 	try {
-		return JSON.parse(payload ?? '') as Hint;
+		return z.union([newsHint, processHint]).safeParse(JSON.parse(payload ?? '')).data;
 	} catch {
 		return undefined;
 	}
