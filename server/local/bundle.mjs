@@ -8,6 +8,8 @@ const entries = {
 	migrate: 'server/local/migrate.ts',
 	restored: 'server/restored.ts',
 	demonstration: 'server/local/demonstration.ts',
+	verify: 'server/verify.ts',
+	'signing-key': 'server/signing-key.ts',
 };
 
 /** @typedef {keyof typeof entries} Entry */

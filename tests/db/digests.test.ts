@@ -5,9 +5,15 @@ import fc from 'fast-check';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { defaultOptions, evaluate } from '$lib/calc/evaluate';
 import { db } from '$lib/server/db/client';
+import { signedEntry } from '$lib/server/db/schema/record';
 import { candidate, revision, signOff } from '$lib/server/db/schema/review';
+import { current } from '$lib/server/evaluation/store';
 import { closePool } from '$lib/server/evaluation/pool';
 import { seal } from '$lib/server/revisions/digest';
+import * as policies from '$lib/server/revisions/policy';
+import { digestOf } from '$lib/server/revisions/snapshot';
+import { placedCells, seedContent } from '$lib/note/document';
+import * as Y from 'yjs';
 import { canonicalJson } from '../support/canonical';
 import { createDatabase, type TestDatabase } from '../support/database';
 import { edit, freeze, writeNote } from '../support/note-life';
@@ -126,54 +132,108 @@ describe('a frozen revision', () => {
 
 		const frozen = await rows(id);
 		expect(frozen.map((one) => one.revision.letter)).toEqual(['A', 'B']);
-		let previous: string | null = null;
+		let previous: { letter: string; digest: string } | undefined;
 		for (const { candidate: snapshot, revision: made } of frozen) {
-			const { content, results, engine, authors, ordinal, seq } = snapshot;
-			const team = { id: cast.author.teamId, name: 'Digest Bench' };
-			const proposed = canonicalJson({
-				format: 'halfdigit-candidate-1',
-				team,
-				note: number,
+			const { content, results, engine, authors, ordinal, seq, details } = snapshot;
+			const proposal = {
+				format: 'halfdigit-candidate-2',
+				...details,
 				ordinal,
 				seq,
 				content,
 				results,
 				engine,
 				authors,
+				files: [],
+			};
+			expect(snapshot.digest).toBe(sha256(canonicalJson(proposal)));
+			expect(details).toMatchObject({
+				team: { id: cast.author.teamId, name: 'Digest Bench' },
+				note: { id, number },
+				letter: made.letter,
 			});
-			expect(snapshot.digest).toBe(sha256(proposed));
 
 			const signed = await db()
-				.select()
+				.select({ signOff, entry: signedEntry })
 				.from(signOff)
+				.innerJoin(signedEntry, eq(signedEntry.index, signOff.entry))
 				.where(eq(signOff.candidateId, snapshot.id))
-				.orderBy(signOff.at);
-			expect(signed.map((one) => one.meaning)).toEqual(['prepared', 'checked', 'approved']);
-			expect(new Set(signed.map((one) => one.digest))).toEqual(new Set([snapshot.digest]));
+				.orderBy(signedEntry.index);
+			expect(signed.map((one) => one.signOff.meaning)).toEqual(['prepared', 'checked', 'approved']);
+			expect(new Set(signed.map((one) => one.signOff.digest))).toEqual(new Set([snapshot.digest]));
 			const canonical = canonicalJson({
-				format: 'halfdigit-revision-1',
-				team,
-				note: number,
+				format: 'halfdigit-revision-2',
+				team: details?.team,
+				note: details?.note,
 				letter: made.letter,
-				content,
-				results,
-				engine,
-				authors,
+				proposal,
 				candidate: snapshot.digest,
-				signOffs: signed.map(({ meaning, personName, personId, at, reason }) => ({
-					meaning,
-					name: personName,
-					personId,
-					at: at.toISOString(),
-					reason,
+				policy: await policies.get(cast.author),
+				review: [],
+				signatures: signed.map(({ entry: { statement, keyId, signature } }) => ({
+					statement: JSON.parse(statement) as unknown,
+					keyId,
+					signature,
 				})),
 				frozenAt: made.frozenAt.toISOString(),
-				previous,
+				previous: previous?.digest ?? null,
+				replaces: previous ? { letter: previous.letter, reason: details?.changes } : null,
 			});
 			expect(made.canonical).toBe(canonical);
 			expect(made.digest).toBe(sha256(canonical));
-			previous = made.digest;
+			previous = made;
 		}
+	});
+
+	test('keeps each signature with name, time in UTC with its source, and meaning', async () => {
+		const { id, number } = await writeNote(cast.author, 'Signed');
+		await freeze(cast, number);
+		const [frozen] = await rows(id);
+		const { signatures } = JSON.parse(frozen?.revision.canonical ?? '') as {
+			signatures: { statement: Record<string, unknown> }[];
+		};
+		expect(signatures.map(({ statement }) => statement)).toMatchObject(
+			[
+				['prepared', 'Author Example', 'engineer'],
+				['checked', 'Engineer Example', 'engineer'],
+				['approved', 'Approver Example', 'approver'],
+			].map(([meaning, name, role]) => ({
+				meaning,
+				signer: { name, role },
+				time: expect.stringMatching(/^\d{4}-\d\d-\d\dT\d\d:\d\d:\d\d\.\d{3}Z$/) as string,
+				timeSource: 'clock of the database server',
+				method: 'password',
+			})),
+		);
+	});
+
+	test('has the same candidate digest whichever history its document went through', async () => {
+		const { id, number } = await writeNote(cast.author, 'Histories');
+		await edit(cast.author, id, 1, '\nI = 1 mA');
+		const { content } = await current(id);
+		const again = new Y.Doc();
+		seedContent(again, content);
+		// Another document with ids of its own, in which the same was written in another order.
+		const cells = placedCells(again).map(({ kind, source }, index) => ({
+			id: content.cells[index]?.id ?? '',
+			kind,
+			source,
+		}));
+		const results = evaluate(cells, defaultOptions);
+		const row = (written: typeof content, computed: typeof results) => ({
+			ordinal: 1,
+			seq: 1,
+			content: written,
+			results: computed,
+			engine: computed.engine,
+			authors: [],
+			details: null,
+		});
+		const stored = (await current(id)).results;
+		expect(digestOf(row({ title: content.title, cells }, results))).toBe(
+			digestOf(row(content, stored)),
+		);
+		expect(number).toMatch(/^MN-/);
 	});
 
 	test('holds the results that its engine gives for its sources', async () => {
