@@ -1,5 +1,6 @@
 import { generateKeyBetween } from 'fractional-indexing';
 import * as Y from 'yjs';
+import { replaceText } from './replace-text';
 
 export const cellKinds = ['text', 'calculation', 'requirement'] as const;
 export type CellKind = (typeof cellKinds)[number];
@@ -93,12 +94,16 @@ export function toContent(doc: Y.Doc): NoteContent {
 /** Adds a cell after the cell `after`, or first where it is null, and returns its id. */
 export function addCell(doc: Y.Doc, kind: CellKind, after: string | null, source = ''): string {
 	const id = newId();
+	putCell(doc, { id, kind, source }, after);
+	return id;
+}
+
+function putCell(doc: Y.Doc, { id, kind, source }: NoteCell, after: string | null): void {
 	const entry = new Y.Map<unknown>();
 	entry.set('kind', kind);
 	entry.set('order', orderAfter(doc, after, id));
 	entry.set('source', new Y.Text(source));
 	cellsOf(doc).set(id, entry);
-	return id;
 }
 
 /** Moves a cell behind `after` (null: to the top). One key changes, so two movers never make two copies. */
@@ -159,5 +164,29 @@ export function seedContent(
 		titleOf(doc).insert(0, content.title);
 		let last: string | null = null;
 		for (const cell of content.cells) last = addCell(doc, cell.kind, last, cell.source);
+	});
+}
+
+/**
+ * Makes a document say what `content` says, by changes like any others, in one transaction: what is the same already
+ * is not touched, and a cell that was removed comes back under its id.
+ */
+export function matchContent(doc: Y.Doc, content: NoteContent): void {
+	doc.transact(() => {
+		replaceText(titleOf(doc), content.title);
+		const wanted = new Set(content.cells.map(({ id }) => id));
+		for (const { id } of placedCells(doc)) if (!wanted.has(id)) removeCell(doc, id);
+		let last: string | null = null;
+		for (const cell of content.cells) {
+			const placed = placedCells(doc);
+			const at = placed.findIndex(({ id }) => id === cell.id);
+			const present = placed[at];
+			if (present?.kind !== cell.kind) putCell(doc, cell, last);
+			else {
+				replaceText(present.text, cell.source);
+				if ((placed[at - 1]?.id ?? null) !== last) moveCell(doc, cell.id, last);
+			}
+			last = cell.id;
+		}
 	});
 }
