@@ -8,7 +8,7 @@ import { Allowance, maxUnread } from './limits';
 import type { Room } from './room';
 
 /** Time in which a page must take note of a closing. */
-const closingMs = 5000;
+const closingMs = 15_000;
 
 /** One page's socket in a room. Reads and judges what comes in, and sends what the room says. */
 export class Connection {

@@ -2,7 +2,7 @@ import { addCell, cellsOf, seedContent, titleOf, toContent } from '$lib/note/doc
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import * as Y from 'yjs';
-import { maxPendingBytes } from './limits';
+import { maxDocumentBytes, maxPendingBytes } from './limits';
 import { Proof } from './proof';
 
 const nobody = () => undefined;
@@ -141,6 +141,24 @@ describe('an edit is refused', () => {
 			'reason',
 			expect.stringMatching(/^This change is not taken\. .+\.$/),
 		);
+	});
+
+	test('that would make the note larger than a note may be', () => {
+		const doc = someNote();
+		doc.getText('bulk').insert(0, 'x'.repeat(maxDocumentBytes - 100_000));
+		const page = new Y.Doc();
+		const proof = new Proof(doc);
+		const insert = (length: number) => {
+			const edit = editOf(page, () => titleOf(page).insert(0, 'x'.repeat(length)));
+			const { kind } = proof.judge(edit, 'ann', nobody);
+			if (kind === 'good') Y.applyUpdate(doc, edit);
+			return kind;
+		};
+		expect(insert(60_000)).toBe('good');
+		expect(insert(60_000)).toBe('tooLarge');
+		// What is taken out makes room again.
+		doc.getText('bulk').delete(0, 200_000);
+		expect(insert(60_000)).toBe('good');
 	});
 
 	test('that would make more wait than may', () => {
