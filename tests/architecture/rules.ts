@@ -33,7 +33,7 @@ const rules: readonly Rule[] = [
 		who: /^src\/lib\/(editor|client|components)\//,
 		files: new RegExp(`^(${foundation}|src/lib/(editor|client|components)/)`),
 		packages:
-			/^(svelte(\/.+)?|\$app\/.+|@codemirror\/.+|@lezer\/.+|codemirror|y-codemirror\.next|y-websocket|y-protocols\/.+|yjs|lib0\/.+|zod|markdown-it|mathjs)$/,
+			/^(svelte(\/.+)?|\$app\/.+|@codemirror\/.+|@lezer\/.+|codemirror|y-codemirror\.next|y-websocket|y-protocols\/.+|yjs|lib0\/.+|zod|markdown-it|mathjs|katex(\/.+)?)$/,
 	},
 	{
 		who: /^src\/lib\/server\/web\//,

@@ -1,6 +1,9 @@
 import { describe, expect, test } from 'vitest';
 import type { FindReadout } from './figures';
-import { headingsOf, longestProse, toHtml } from './markdown';
+import { headingsOf, longestProse, toHtml as toHtmlWith } from './markdown';
+import { render } from './tex-html';
+
+const toHtml = (source: string, find: FindReadout) => toHtmlWith(source, find, render);
 
 const find: FindReadout = (quoted) =>
 	quoted === '{{Vadc}}' ? { text: '2.41 V', number: '2.41', unit: 'V' } : undefined;
@@ -9,13 +12,17 @@ const find: FindReadout = (quoted) =>
 const allowed =
 	/^<\/?(?:p|h[234]|em|strong|s|code|pre|ul|ol|li|blockquote|hr|br|table|thead|tbody|tr|th|td|div|span|small|a)(?: (?:class|data-quantity|start|title|rel|target|href|style)="[^"<>]*")*\/?>$/;
 
+/** What a set formula is made of beside that. */
+const allowedInFormula =
+	/^<\/?(?:span|math|semantics|annotation|m[a-z]+|svg|path|line|g)(?: (?:class|style|aria-hidden|xmlns|encoding|display|d|viewBox|preserveAspectRatio|width|height|[xy][12]|stroke-width|math[a-z]+|stretchy|fence|separator|accent|accentunder|lspace|rspace|minsize|maxsize|columnalign|columnspacing|rowspacing|columnlines|rowlines|scriptlevel|displaystyle|linethickness|notation|voffset|movablelimits|largeop|symmetric|title)="[^"<>]*")*\/?>$/;
+
 function holes(html: string): string[] {
 	const tags = html.match(/<[^>]*>?/g) ?? [];
 	return tags.filter(
 		(tag) =>
-			!allowed.test(tag) ||
+			(!allowed.test(tag) && !allowedInFormula.test(tag)) ||
 			/href="(?!https?:\/\/|mailto:)/i.test(tag) ||
-			/style="(?!text-align:(?:left|right|center)")/.test(tag),
+			/style="[^"]*(?:url|expression|import|fixed|absolute|@|\\)/i.test(tag),
 	);
 }
 
@@ -62,6 +69,19 @@ const attacks = [
 	'| a |\n|---|\n| <script>alert(1)</script> |',
 	'# <script>alert(1)</script>',
 	'&lt;script&gt;alert(1)&lt;/script&gt;',
+	'$\\href{javascript:alert(1)}{x}$',
+	'$\\url{javascript:alert(1)}$',
+	'$\\includegraphics{https://evil.example/p.png}$',
+	'$\\htmlClass{x}{y}\\htmlId{a}{b}\\htmlStyle{position:fixed}{c}\\htmlData{d=e}{f}$',
+	'$\\text{<img src=x onerror=alert(1)>}$',
+	'$<script>alert(1)</script>$',
+	'$$\n"><script>alert(1)</script>\n$$',
+	'$\\color{red" onmouseover="alert(1)}x$',
+	'$\\textcolor{url(javascript:alert(1))}{x}$',
+	'$\\rule{1em;position:fixed}{1em}$',
+	'$\\char"3C script\\char"3E$',
+	'$\\def\\x{\\href{javascript:alert(1)}{y}}\\x$',
+	'[$x$](javascript:alert(1))',
 	'\u0000<script>alert(1)</script>',
 	'<\u0000script>alert(1)</script>',
 ];
@@ -105,6 +125,25 @@ describe('text that is made to be slow', () => {
 		['a wide table', `${'|a'.repeat(15_000)}\n${'|-'.repeat(15_000)}\n|x`],
 		['a tall table', `|a|\n|-|\n${'|b|\n'.repeat(20_000)}`],
 		['autolinks', '<a@'.repeat(33_000)],
+		['formulas', '$x^2$ '.repeat(16_000)],
+		['open formulas', '$x '.repeat(30_000)],
+		[
+			'formulas of all kinds',
+			Array.from({ length: 900 }, (_, i) => `$\\frac{${i}}{\\sqrt{x_${i}}}$`).join(' '),
+		],
+		['deep formulas', `$${'{'.repeat(480)}x${'}'.repeat(480)}$ `.repeat(30)],
+		['deep fractions', `$${'\\frac{1}{'.repeat(90)}x${'}'.repeat(90)}$ `.repeat(30)],
+		['deep roots', `$${'\\sqrt{'.repeat(120)}x${'}'.repeat(120)}$ `.repeat(30)],
+		['a macro of itself', '$\\def\\x{\\x\\x}\\x$ '.repeat(1_500)],
+		[
+			'a growing macro',
+			`$${'\\def\\a{\\b\\b}\\def\\b{\\c\\c}\\def\\c{\\d\\d}\\def\\d{xxxxxxxx}'}\\a$ `.repeat(500),
+		],
+		['a huge rule', '$\\rule{9999999em}{9999999em}$ '.repeat(900)],
+		['a wide matrix', `$\\begin{matrix}${'a&'.repeat(400)}\\end{matrix}$ `.repeat(30)],
+		['dollars', '$'.repeat(100_000)],
+		['escaped dollars', '\\$'.repeat(50_000)],
+		['open blocks', '$$\nx\n'.repeat(15_000)],
 		['comments', '<!--'.repeat(25_000)],
 		['references', Array.from({ length: 5000 }, (_, i) => `[r${i}]: https://a.example`).join('\n')],
 		['lines', '\n'.repeat(100_000)],
@@ -148,6 +187,27 @@ describe('what it shows', () => {
 		expect(toHtml('[a](https://a.example)', find)).toContain(
 			'<a href="https://a.example" rel="noopener noreferrer nofollow" target="_blank">a</a>',
 		);
+	});
+
+	test("formulas are set within a line and on lines of their own, with the note's figures in them", () => {
+		expect(toHtml('the gain $\\frac{R_2}{R_1}$ of it', find)).toMatch(
+			/^<p>the gain <span class="katex">.*<mfrac>.* of it<\/p>\n$/s,
+		);
+		expect(toHtml('so\n\n$$\nU = R \\cdot I\n$$\n\nthen', find)).toMatch(
+			/<div class="table"><span class="katex-display">.*<\/div>\n<p>then/s,
+		);
+		expect(toHtml('- a\n\n  $$x$$\n- b', find)).toMatch(/<li>.*katex-display.*<\/li>/s);
+		expect(toHtml('$V = {{Vadc}}$', find)).toContain('<mtext>2.41</mtext>');
+	});
+
+	test.each(['5 $ and 6 $', 'US$5 or $6', 'a $ b$ c', '\\$x\\$', '`$x$`', '$', '$$', '$$\nx'])(
+		'%j holds no formula',
+		(source) => expect(toHtml(source, find)).not.toContain('katex'),
+	);
+
+	test('a formula that cannot be set, or that nothing sets yet, stands as it was typed', () => {
+		expect(toHtml('$\\frac{1}$', find)).toBe('<p><code>$\\frac{1}$</code></p>\n');
+		expect(toHtmlWith('$x$', find)).toBe('<p><code>$x$</code></p>\n');
 	});
 
 	test('headings start below the title and appear in the outline', () => {

@@ -1,5 +1,7 @@
 import MarkdownIt from 'markdown-it';
 import { figurePattern, quotedName, type FindReadout } from './figures';
+import { formulas } from './markdown-formulas';
+import type { Typeset } from './tex.svelte';
 
 const md = MarkdownIt({ html: false, linkify: false, typographer: false, maxNesting: 24 });
 const { escapeHtml } = md.utils;
@@ -16,6 +18,8 @@ md.inline.ruler.before('escape', 'figure', (state, silent) => {
 	state.pos += match[0].length;
 	return true;
 });
+
+md.use(formulas);
 
 // The note's title is the page's first heading; those of the text come below it.
 md.core.ruler.push('headings', (state) => {
@@ -48,12 +52,15 @@ md.renderer.rules.figure = (tokens, index, _options, env) => {
 /** A longer text is shown as it was typed: parsing a hostile one would hold up everybody who opens the note. */
 export const longestProse = 30_000;
 
-/** HTML of a text cell, safe to put into a page: no HTML of the writer's, no pictures, links to the web and mail only. */
-export function toHtml(source: string, find: FindReadout): string {
+/**
+ * HTML of a text cell, safe to put into a page: no HTML of the writer's, no pictures, links to the web and mail only.
+ * Formulas stand as they were typed where nothing sets them.
+ */
+export function toHtml(source: string, find: FindReadout, typeset?: Typeset): string {
 	if (source.length > longestProse) {
 		return `<p><em>Too long to be set as text (more than 30 000 characters):</em></p>\n<pre>${escapeHtml(source)}</pre>\n`;
 	}
-	return md.render(source, { find });
+	return md.render(source, { find, typeset });
 }
 
 export interface Heading {

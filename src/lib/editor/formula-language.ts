@@ -51,7 +51,8 @@ function piecesOf(line: string): Reading['pieces'] {
 	return formulaFrom > 0 ? [{ kind: 'plain', to: formulaFrom }, ...pieces] : pieces;
 }
 
-const style = HighlightStyle.define(
+/** Classes of the colours. */
+export const style = HighlightStyle.define(
 	Object.entries(tags).map(([kind, tag]) => ({ tag, class: `tk-${kind}` })),
 );
 
