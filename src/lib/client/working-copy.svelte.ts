@@ -8,6 +8,7 @@ import { CellList, type LiveCell } from './cell-list.svelte';
 import { NoteSocket, type ConnectionState } from './note-socket';
 import { othersIn, type Other } from './others';
 import { SavingModel, type Saving } from './saving.svelte';
+import { syncAddress } from './sync-address';
 import { undoManagerOf } from './undo';
 import { UnsavedStore, type PutAside } from './unsaved-store';
 import { watchWindow } from './window-watch';
@@ -60,7 +61,8 @@ export class WorkingCopy {
 		for (const event of ['stack-item-added', 'stack-item-popped', 'stack-cleared'] as const) {
 			this.undoManager.on(event, () => this.#onStack());
 		}
-		const server = options.server ?? serverOfPage();
+		const url = syncAddress();
+		const server = options.server ?? (url === undefined ? undefined : { url });
 		this.#saving = new SavingModel(this.doc, server && storeOf(options), () => ({
 			title: this.#title,
 			cells: this.#cells.list,
@@ -177,6 +179,11 @@ export class WorkingCopy {
 		void this.#saving.edits.discard(aside);
 	}
 
+	/** Makes the note say what it said before, as one change. */
+	restore(content: document.NoteContent): void {
+		this.#act(() => document.matchContent(this.doc, content));
+	}
+
 	/** Tells the others which cell this person is at. */
 	setPlace(cellId: string | null): void {
 		if (this.#socket) this.awareness.setLocalStateField('cellId', cellId);
@@ -268,9 +275,4 @@ export class WorkingCopy {
 function storeOf({ noteId, epoch, number, person }: Options): UnsavedStore | undefined {
 	if (typeof indexedDB === 'undefined' && typeof window === 'undefined') return undefined;
 	return new UnsavedStore({ personId: person.id, noteId, epoch, number });
-}
-
-function serverOfPage(): { url: string } | undefined {
-	if (typeof location === 'undefined') return undefined;
-	return { url: `${location.protocol === 'https:' ? 'wss' : 'ws'}://${location.host}/sync` };
 }
