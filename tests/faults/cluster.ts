@@ -5,13 +5,13 @@ import { basename, dirname, join } from 'node:path';
 import pg from 'pg';
 import { createCluster, chooseFolder } from '../../server/local/postgres-cluster.mjs';
 import { databaseUser, findPrograms } from '../../server/local/postgres-programs.mjs';
-import { folderOf, isAlive } from '../../server/local/processes.mjs';
+import { folderOf, isAlive, wordsOf } from '../../server/local/processes.mjs';
 import { childrenOf } from './processes';
 import { unmount } from './small-disk';
 import { until } from './until';
 
 const settings = `
-max_connections = 60
+max_connections = 55
 superuser_reserved_connections = 5
 log_min_messages = fatal
 `;
@@ -87,11 +87,17 @@ export class Cluster {
 		}, 30_000);
 	}
 
-	/** Kills it: the first process alone, which the others notice, or all of them at once. */
-	async kill(all: boolean): Promise<void> {
-		const others = all ? childrenOf(this.pid) : [];
+	/** Kills its first process alone, which the others notice, all of them, or one that serves, after which it starts anew. */
+	async kill(which: 'first' | 'all' | 'one'): Promise<void> {
+		const children = childrenOf(this.pid);
+		if (which === 'one') {
+			const serving = children.filter((pid) => wordsOf(pid)[0]?.includes(': halfdigit '));
+			for (const pid of serving.slice(0, 1)) process.kill(pid, 'SIGKILL');
+			return;
+		}
 		const gone = this.#gone();
-		for (const pid of [this.pid, ...others]) if (isAlive(pid)) process.kill(pid, 'SIGKILL');
+		for (const pid of [this.pid, ...(which === 'all' ? children : [])])
+			if (isAlive(pid)) process.kill(pid, 'SIGKILL');
 		await gone;
 	}
 
@@ -103,7 +109,7 @@ export class Cluster {
 	}
 
 	async remove(): Promise<void> {
-		await this.kill(true);
+		await this.kill('all');
 		rmSync(this.folder, { recursive: true, force: true, maxRetries: 20, retryDelay: 100 });
 	}
 

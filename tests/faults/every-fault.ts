@@ -13,6 +13,7 @@ export const everyFault: readonly (Fault & { long?: boolean })[] = [
 	killed.postgresKilled,
 	killed.bothKilled,
 	killed.postgresRestarted,
+	killed.rollingRestart,
 	killed.evaluatorKilled,
 	database.postgresDown,
 	database.postgresSlow,

@@ -1,11 +1,10 @@
-import { mkdirSync, writeFileSync } from 'node:fs';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { everyFault } from './every-fault';
 import { runFault } from './fault';
 import { watchFlushes } from './flushed';
 import { readForm } from './form';
 import { judge } from './judge';
-import { table, type Told } from './row';
+import { keep, table, type Told } from './row';
 import { Site } from './site';
 import { Spoilt } from './spoilt';
 import { Stage } from './stage';
@@ -24,9 +23,7 @@ beforeAll(async () => {
 });
 
 afterAll(async () => {
-	mkdirSync('test-results', { recursive: true });
-	const rows = told.map(({ row }) => row);
-	writeFileSync('test-results/faults.json', `${JSON.stringify(rows, null, '\t')}\n`);
+	if (form.isFull) keep(told.map(({ row }) => row));
 	process.stdout.write(`\n${table(told)}\n`);
 	await site.close();
 });

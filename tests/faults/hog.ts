@@ -1,59 +1,57 @@
+import { randomBytes } from 'node:crypto';
 import pg from 'pg';
 import type { Cluster } from './cluster';
-import { until } from './until';
 
 /** Takes all connections that PostgreSQL gives to anybody but the superuser. */
 export class Hog {
 	readonly #clients: pg.Client[] = [];
+	/** Holds a place too, so it stays. */
+	readonly #admin: pg.Client;
 
-	/** Takes what is free, cuts the others off and takes theirs, until nobody else has one. */
+	private constructor(admin: pg.Client) {
+		this.#admin = admin;
+	}
+
+	/** Cuts everybody off, takes every place before they are back, and only then lets them try again. */
 	static async takeAll(cluster: Cluster): Promise<Hog> {
-		const hog = new Hog();
-		const admin = await cluster.connect();
+		const hog = new Hog(await cluster.connect());
+		const password = randomBytes(12).toString('hex');
+		const ask = (question: string) => hog.#admin.query(question);
+		await ask('drop role if exists hog');
+		await ask(`create role hog login password '${password}'`);
+		await ask('alter role halfdigit connection limit 0');
 		try {
-			// Somebody who is about to come in has a place already, although he is not to be seen yet.
-			const { rows } = await admin.query<{ places: number }>(
-				`select current_setting('max_connections')::int
-				- current_setting('superuser_reserved_connections')::int as places`,
+			await ask(
+				`select pg_terminate_backend(pid) from pg_stat_activity where usename = 'halfdigit'`,
 			);
-			await until(async () => {
-				await hog.#takeFree(cluster);
-				const { rowCount } = await admin.query(
-					`select from pg_stat_activity where application_name = 'hog'`,
-				);
-				if (rowCount === rows[0]?.places) return true;
-				await admin.query(
-					`select pg_terminate_backend(pid) from pg_stat_activity
-					where usename = 'halfdigit' and application_name <> 'hog'`,
-				);
-				return false;
-			}, 30_000);
+			const url = new URL(cluster.url());
+			Object.assign(url, { username: 'hog', password });
+			await hog.#takeFree(url.href);
 		} finally {
-			await admin.end();
+			await ask('alter role halfdigit connection limit -1');
 		}
 		return hog;
 	}
 
 	async release(): Promise<void> {
-		await Promise.all(this.#clients.splice(0).map((client) => client.end()));
+		await Promise.all([...this.#clients.splice(0), this.#admin].map((client) => client.end()));
 	}
 
-	async #takeFree(cluster: Cluster): Promise<void> {
-		for (let isFree = true; isFree;) {
-			const tries = await Promise.all(Array.from({ length: 20 }, () => this.#take(cluster)));
-			isFree = tries.every(Boolean);
-		}
-	}
-
-	async #take(cluster: Cluster): Promise<boolean> {
-		const client = new pg.Client({ connectionString: cluster.url(), application_name: 'hog' });
-		client.on('error', () => undefined);
-		try {
-			await client.connect();
-			this.#clients.push(client);
-			return true;
-		} catch {
-			return false;
+	/** Takes places until PostgreSQL says that there is none left. */
+	async #takeFree(connectionString: string): Promise<void> {
+		for (;;) {
+			const client = new pg.Client({ connectionString });
+			client.on('error', () => undefined);
+			try {
+				await client.connect();
+				this.#clients.push(client);
+			} catch (error) {
+				if (error instanceof pg.DatabaseError && error.code === tooMany) return;
+				throw error;
+			}
 		}
 	}
 }
+
+/** PostgreSQL's code for "too many connections". */
+const tooMany = '53300';

@@ -1,3 +1,5 @@
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+
 /** What came of one fault. */
 export interface Row {
 	id: string;
@@ -47,4 +49,13 @@ export function table(told: readonly Told[]): string {
 				.trimEnd(),
 		)
 		.join('\n');
+}
+
+/** Writes rows to `test-results/faults.json`; those of faults that were not run now stay as they are. */
+export function keep(rows: readonly Row[]): void {
+	const file = 'test-results/faults.json';
+	mkdirSync('test-results', { recursive: true });
+	const earlier = existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as Row[]) : [];
+	const kept = earlier.filter(({ id }) => !rows.some((row) => row.id === id));
+	writeFileSync(file, `${JSON.stringify([...kept, ...rows], null, '\t')}\n`);
 }

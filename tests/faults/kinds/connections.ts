@@ -58,7 +58,7 @@ export const notifyLost: Fault = {
 		deaf.back.spoil = spoilt.deafen;
 		for (const link of deaf.back.links) link.cut();
 		stage.type(10);
-		for (let n = 0; n < (stage.isFull ? 40 : 3); n++) {
+		for (let n = 0; n < (stage.isFull ? 20 : 2); n++) {
 			await stage.acknowledges(10);
 			stage.injected += await notified(stage);
 			await stage.arrives(4000);

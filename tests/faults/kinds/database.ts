@@ -98,8 +98,11 @@ export const outOfConnections: Fault = {
 			await stage.acknowledges(50);
 			const hog = await Hog.takeAll(stage.site.cluster);
 			stage.injected += 1;
-			await outage(stage, stage.isFull ? 10_000 : 1500);
-			await hog.release();
+			try {
+				await outage(stage, stage.isFull ? 10_000 : 1500);
+			} finally {
+				await hog.release();
+			}
 			await stage.recovers();
 		}
 	},

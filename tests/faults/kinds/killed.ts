@@ -6,15 +6,18 @@ import { pause } from '../until';
 /** Edits a second and writer; everybody writes as fast as acknowledgements come. */
 const fast = 150;
 /** Edits to be acknowledged between two kills. */
-const between = { short: 150, full: 1100 };
-const killsInRun = { short: 2, full: 6 };
+const between = { short: 150, full: 1000 };
 const many = { notes: 4, writers: 12 };
 
 /** Kills at an instant that is drawn, starts again, and waits until everybody can write. */
-async function killing(stage: Stage, once: () => Promise<void>): Promise<void> {
+async function killing(
+	stage: Stage,
+	kills: { short: number; full: number },
+	once: () => Promise<void>,
+): Promise<void> {
 	stage.type(fast);
 	const form = stage.isFull ? 'full' : 'short';
-	for (let kill = 0; kill < killsInRun[form]; kill++) {
+	for (let kill = 0; kill < kills[form]; kill++) {
 		await stage.acknowledges(between[form]);
 		await pause(stage.random.below(50));
 		await once();
@@ -27,9 +30,9 @@ export const serverKilled: Fault = {
 	id: 'server-killed',
 	fault: 'kill -9 of a sync process',
 	...many,
-	runs: 7,
+	runs: 3,
 	run: (stage) =>
-		killing(stage, async () => {
+		killing(stage, { short: 2, full: 14 }, async () => {
 			const post = stage.random.pick(stage.site.posts);
 			await stage.site.kill(post);
 			await stage.site.start(post);
@@ -38,12 +41,12 @@ export const serverKilled: Fault = {
 
 export const postgresKilled: Fault = {
 	id: 'postgres-killed',
-	fault: 'kill -9 of PostgreSQL, its first process or all',
+	fault: 'kill -9 of PostgreSQL: its first process, all, or one that serves',
 	...many,
-	runs: 6,
+	runs: 2,
 	run: (stage) =>
-		killing(stage, async () => {
-			await stage.site.cluster.kill(stage.random.chance(0.5));
+		killing(stage, { short: 2, full: 18 }, async () => {
+			await stage.site.cluster.kill(stage.random.pick(['first', 'all', 'one']));
 			await stage.site.cluster.start();
 		}),
 };
@@ -52,11 +55,11 @@ export const bothKilled: Fault = {
 	id: 'both-killed',
 	fault: 'kill -9 of every sync process and of PostgreSQL at once',
 	...many,
-	runs: 5,
+	runs: 2,
 	run: (stage) =>
-		killing(stage, async () => {
+		killing(stage, { short: 1, full: 15 }, async () => {
 			const { cluster, posts } = stage.site;
-			await Promise.all([cluster.kill(true), ...posts.map((post) => stage.site.kill(post))]);
+			await Promise.all([cluster.kill('all'), ...posts.map((post) => stage.site.kill(post))]);
 			await cluster.start();
 			await Promise.all(posts.map((post) => stage.site.start(post)));
 		}),
@@ -72,6 +75,26 @@ export const postgresRestarted: Fault = {
 			await stage.site.cluster.stop();
 			stage.injected += 1;
 			await stage.site.cluster.start();
+			await stage.recovers();
+		}
+	},
+};
+
+export const rollingRestart: Fault = {
+	id: 'rolling-restart',
+	fault: 'every sync process in turn ended by SIGTERM and started again',
+	run: async (stage) => {
+		stage.type(20);
+		for (let n = 0; n < (stage.isFull ? 4 : 1); n++) {
+			for (const post of stage.site.posts) {
+				await stage.acknowledges(30);
+				const { server } = post;
+				post.server = undefined;
+				const code = await server?.stop('SIGTERM');
+				if (code !== 0) stage.complain(`a process that was asked to end ended with ${code}`);
+				stage.injected += 1;
+				await stage.site.start(post);
+			}
 			await stage.recovers();
 		}
 	},
