@@ -62,7 +62,7 @@ export const accessTable: Record<string, Row> = {
 	},
 	'GET /team': { expect: { stranger: signIn, administrator: 200, all: 403 } },
 	'POST /team?/role': {
-		form: ({ personId }) => ({ personId, role: 'reader' }),
+		form: ({ personId }) => ({ personId, role: 'engineer' }),
 		expect: { stranger: signIn, administrator: 200, all: 403 },
 	},
 	'GET /team/policy': { expect: { stranger: signIn, all: 200 } },
@@ -89,6 +89,10 @@ export const accessTable: Record<string, Row> = {
 		form: () => ({ password, purpose: 'Release of the board' }),
 		// A refused form shows its page again, and this one is none of a reader's.
 		expect: { reader: 404, administrator: 403, outsider: 404, all: 303 },
+	},
+	'GET /notes/[number]/history': {
+		...page('/history'),
+		expect: { stranger: signIn, reader: 403, outsider: 404, all: 200 },
 	},
 	'GET /notes/[number]/candidate': {
 		stage: 'proposed',
@@ -168,6 +172,14 @@ export const accessTable: Record<string, Row> = {
 		...api(({ threadId }) => `/threads/${threadId}/comments`),
 		json: () => ({ body: 'It is.' }),
 		expect: { stranger: 401, reader: 403, outsider: 404, all: 201 },
+	},
+	'GET /api/notes/[number]/history': {
+		...api(() => '/history'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'GET /api/notes/[number]/history/[seq]': {
+		...api(() => '/history/1'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
 	},
 	'GET /api/notes/[number]/review': {
 		...api(() => '/review'),

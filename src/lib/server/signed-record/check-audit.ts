@@ -29,8 +29,8 @@ export async function checkAudit(
 		}>(sql`
 			select l."position"::text as position, l.hash,
 				case when e.id is not null then audit_text(e) end as text
-			from audit_link l left join audit_event e on e.id = l.event_id
-			where l."position" > ${last} order by l."position" limit ${batch}`);
+			from (select * from audit_link where "position" > ${last} order by "position" limit ${batch}) l
+			left join audit_event e on e.id = l.event_id order by l."position"`);
 		for (const row of rows) {
 			const position = Number(row.position);
 			const place = `audit entry ${position}`;
