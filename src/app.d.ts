@@ -11,6 +11,10 @@ declare global {
 			/** The signed-in person in their team; undefined for a stranger. */
 			actor?: Actor;
 		}
+		interface PageState {
+			/** What a sheet that is gone to brings back: the moment's sequence number and time. */
+			restore?: { seq: number; at: string };
+		}
 	}
 }
 
