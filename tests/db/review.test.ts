@@ -134,9 +134,9 @@ test('who prepared, wrote or checked it may not approve it, and the check comes 
 test('a wrong password signs nothing, at each sign-off', async () => {
 	const { number } = await writeNote(cast.author);
 	const wrong = 'not the password';
-	expect(await failure(candidates.propose(cast.author, number, proposal({ password: wrong })))).toMatch(
-		/^forbidden: The password/,
-	);
+	expect(
+		await failure(candidates.propose(cast.author, number, proposal({ password: wrong }))),
+	).toMatch(/^forbidden: The password/);
 	expect((await review.status(cast.author, number)).candidate).toBeNull();
 	await propose(cast.author, number);
 	const { digest } = await seen(cast.engineer, number);

@@ -14,11 +14,14 @@ import * as checkpoints from '$lib/server/signed-record/checkpoints';
 import * as entries from '$lib/server/signed-record/entries';
 import type { FaultKind } from '$lib/server/signed-record/fault';
 import * as keys from '$lib/server/signed-record/keys';
+import { consistencyProof, leafHash, treeRoot } from '$lib/server/signed-record/merkle';
+import * as publication from '$lib/server/signed-record/publication';
 import { entryBytes, entryHash, newKeyBytes } from '$lib/server/signed-record/statement';
 import { verifyAll, verifyWithin, type Report } from '$lib/server/signed-record/verification';
 import { createDatabase, type TestDatabase } from '../support/database';
 import { check, edit, freeze, propose, seen, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
+import { extendsRecord, includes, readSigned } from '../support/transparency';
 
 const folder = mkdtempSync(join(tmpdir(), 'halfdigit-record-'));
 let database: TestDatabase;
@@ -274,6 +277,27 @@ async function withKey<T>(file: string, work: () => Promise<T>): Promise<T> {
 		env().SIGNING_KEY_FILE = before;
 	}
 }
+
+test('somebody with two old checkpoints and the documentation proves what came between, and would see a fork', async () => {
+	const { keys: known } = await publication.published();
+	const key = known[0]?.publicKey ?? '';
+	const [old, , newest] = kept.map((note) => readSigned(note, key));
+	if (!old || !newest) throw new Error('a checkpoint is not signed');
+	const proof = await publication.consistency(old.size, newest.size);
+	expect(extendsRecord(proof, old.root, newest.root)).toBe(true);
+	for (let index = 0; index < newest.size; index++) {
+		expect(includes(await publication.inclusion(index, newest.size), newest.root)).toBe(true);
+	}
+	expect(readSigned((kept[0] ?? '').replace(/\n\d+\n/, '\n6\n'), key)).toBeUndefined();
+	// A record that differs in one early entry has no proof that fits the checkpoint that was kept.
+	const leaves = await Promise.all(
+		Array.from({ length: newest.size }, (_, index) => publication.inclusion(index, newest.size)),
+	);
+	const forked = leaves.map(({ leaf }, index) => (index === 2 ? leafHash('another') : leaf));
+	const claimed = { from: old.size, size: newest.size, proof: consistencyProof(forked, old.size) };
+	expect(extendsRecord(claimed, old.root, treeRoot(forked))).toBe(false);
+	await expect(publication.inclusion(0, 10_000)).rejects.toMatchObject({ code: 'notFound' });
+});
 
 describe('the key', () => {
 	const refusals: [string, () => string, RegExp][] = [

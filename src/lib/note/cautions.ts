@@ -1,5 +1,5 @@
 import type { Evaluation, Quantity } from '$lib/calc/results';
-import type { NoteContent } from './document';
+import type { NoteCell, NoteContent } from './document';
 
 /** Why a note may lead people to what can hurt them, and the cell that says so. */
 export interface Caution {
@@ -38,7 +38,7 @@ const stored = /stored energy|energy stored|capacitor bank|charged capacitor|sup
 export function cautionsOf(content: NoteContent, results: Evaluation): Caution[] {
 	return [
 		...Object.entries(results.quantities).flatMap(([name, quantity]) => ofQuantity(name, quantity)),
-		...content.cells.flatMap(({ id, source }) => ofWords(id, source)),
+		...content.cells.flatMap(ofWords),
 	];
 }
 
@@ -60,10 +60,11 @@ function ofQuantity(name: string, quantity: Quantity): Caution[] {
 	return [{ cell, text: `${name} (${readout.text}) is more than ${limit}.` }];
 }
 
-function ofWords(cell: string, source: string): Caution[] {
+function ofWords({ id: cell, kind, source }: NoteCell): Caution[] {
 	const found: Caution[] = [];
 	if (mains.test(source)) found.push({ cell, text: 'The text speaks of a mains connection.' });
-	if (stored.test(source)) found.push({ cell, text: 'The text speaks of stored energy.' });
+	if (kind === 'text' && stored.test(source))
+		found.push({ cell, text: 'The text speaks of stored energy.' });
 	return found;
 }
 
