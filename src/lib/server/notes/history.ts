@@ -23,7 +23,7 @@ export async function sessions(actor: Actor, number: string): Promise<WorkSessio
 				at, edits, cells, lag(at) over (partition by person_id order by seq) as before
 			from note_update where note_id = ${id}
 		), numbered as (
-			select *, count(*) filter (where before is null or first_at - before > ${sessionPauseMs} * interval '1 ms')
+			select *, count(*) filter (where before is null or abs(extract(epoch from first_at - before)) * 1000 > ${sessionPauseMs})
 				over (partition by person_id order by seq) as session
 			from update
 		), touched as (

@@ -75,8 +75,9 @@ function joins(open: Stretch, next: Stretch, grain: Grain, boundaries: ReadonlyS
 	return (
 		!boundaries.has(open.last) &&
 		next.first === open.last + 1 &&
-		endOf(next) - startOf(open) <= grain.spanMs &&
-		startOf(next) - endOf(open) <= grain.pauseMs
+		// A clock that was set back makes a new stretch as well.
+		Math.abs(endOf(next) - startOf(open)) <= grain.spanMs &&
+		Math.abs(startOf(next) - endOf(open)) <= grain.pauseMs
 	);
 }
 
