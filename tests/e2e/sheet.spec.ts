@@ -146,7 +146,7 @@ test('without a connection the page says so, keeps the edits and sends them late
 	await page.locator('.cm-line', { hasText: 'V_a' }).click();
 	await page.keyboard.press('End');
 	await page.keyboard.insertText(' * 2');
-	await expect(saving(page)).toHaveText(/^Not saved: \d+ changes? kept on this page$/);
+	await expect(saving(page)).toHaveText(/^Offline: \d+ changes? kept on this computer$/);
 	await context.setOffline(false);
 	await expect(saving(page)).toHaveText(/^Saved/, { timeout: 30_000 });
 	await expect(page.getByRole('alert')).toHaveCount(0);

@@ -13,7 +13,7 @@ import {
 const pauseMs = { offline: 100, online: 300, failed: 5000 };
 
 /** Why changes of a document that was restored meanwhile are not merged. */
-export const restoredReason =
+const restoredReason =
 	'The note was restored from a backup before these changes were saved, so they were not merged.';
 
 interface Options {

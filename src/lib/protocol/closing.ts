@@ -27,16 +27,16 @@ export const closeCode = {
 	tooSlow: 4508,
 } as const;
 
-const lost = 'Connection lost. Edits are kept on this page and sent when it returns.';
+const lost = 'Connection lost. Edits are kept and sent when it returns.';
 
 /** At most 123 bytes each, the room in a close frame. */
 const sentences: Readonly<Record<number, string>> = {
 	[closeCode.tooBig]: 'An edit was too large to be sent. Undo it, or bring it in in parts.',
-	[closeCode.restarting]: 'The server restarts. Edits are kept on this page and sent in a moment.',
+	[closeCode.restarting]: 'The server restarts. Edits are kept and sent in a moment.',
 	[closeCode.malformed]:
 		'The server could not read a message of this page. Reload the page to go on.',
 	[closeCode.signedOut]:
-		'You were signed out. Sign in again to go on; edits on this page are kept until you close it.',
+		'You were signed out. Sign in again to go on; what is not saved yet is saved then.',
 	[closeCode.forbidden]: 'Your role no longer allows you to open this working copy.',
 	[closeCode.notFound]: 'This note does not exist any more.',
 	[closeCode.otherEpoch]: 'The note was restored from a backup. Reload the page to go on.',

@@ -1,7 +1,7 @@
 import { closeCode } from '$lib/protocol/closing';
 
 /** What a person can do about a lost connection. `wait`: nothing, the page tries again by itself. */
-export type Step = 'reload' | 'sign in' | 'leave' | 'wait';
+type Step = 'reload' | 'sign in' | 'leave' | 'wait';
 
 const steps: Record<keyof typeof closeCode, Step> = {
 	tooBig: 'reload',
