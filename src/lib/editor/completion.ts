@@ -19,6 +19,8 @@ import { vocabulary } from './vocabulary';
 /** Offers names, units, functions and constants while a formula or a quoted figure is written. */
 export function completion(kind: NoteCell['kind']): Extension {
 	return [
+		// Before the key that takes what is offered.
+		Prec.highest(keymap.of([{ key: 'Enter', run: leaveWhole }])),
 		autocompletion({
 			override: [(context) => complete(context, kind)],
 			icons: false,
@@ -26,7 +28,6 @@ export function completion(kind: NoteCell['kind']): Extension {
 			compareCompletions: () => 0,
 			addToOptions: [{ render: detailOf, position: 90 }],
 		}),
-		Prec.highest(keymap.of([{ key: 'Enter', run: leaveWhole }])),
 	];
 }
 

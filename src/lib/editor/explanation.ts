@@ -1,4 +1,4 @@
-import { StateEffect, StateField, type EditorState, type Extension } from '@codemirror/state';
+import { Prec, StateEffect, StateField, type EditorState, type Extension } from '@codemirror/state';
 import {
 	closeHoverTooltips,
 	hoverTooltip,
@@ -21,16 +21,19 @@ export function explanation(kind: NoteCell['kind']): Extension {
 			hoverTime: 350,
 		}),
 		asked,
-		keymap.of([
-			{
-				key: 'Escape',
-				run: (view) => {
-					if (!view.state.field(asked)) return false;
-					view.dispatch({ effects: ask.of(null) });
-					return true;
+		// Before the key that leaves the editor.
+		Prec.highest(
+			keymap.of([
+				{
+					key: 'Escape',
+					run: (view) => {
+						if (!view.state.field(asked)) return false;
+						view.dispatch({ effects: ask.of(null) });
+						return true;
+					},
 				},
-			},
-		]),
+			]),
+		),
 	];
 }
 

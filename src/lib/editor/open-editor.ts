@@ -1,6 +1,4 @@
-import { closeBrackets, closeBracketsKeymap } from '@codemirror/autocomplete';
 import { defaultKeymap, insertNewline, insertNewlineKeepIndent } from '@codemirror/commands';
-import { bracketMatching } from '@codemirror/language';
 import { Compartment, EditorState, type Extension } from '@codemirror/state';
 import { EditorView, keymap, placeholder, type KeyBinding } from '@codemirror/view';
 import { yCollab } from 'y-codemirror.next';
@@ -51,7 +49,7 @@ export function openEditor(choices: Choices): EditorView {
 		doc: text.toJSON(),
 		extensions: [
 			keys(choices.neighbours),
-			keymap.of([enter(kind), ...closeBracketsKeymap, ...defaultKeymap]),
+			keymap.of([enter(kind), ...defaultKeymap]),
 			yCollab(text, awareness, { undoManager }),
 			look(),
 			placeholder(choices.hint),
@@ -88,12 +86,5 @@ function enter(kind: Choices['kind']): KeyBinding {
 function ofKind(kind: Choices['kind']): Extension {
 	if (kind === 'title') return singleLine();
 	if (kind === 'text') return hits();
-	return [
-		lineMarks(kind),
-		formulaLanguage(),
-		closeBrackets(),
-		bracketMatching(),
-		results(),
-		hits(),
-	];
+	return [lineMarks(kind), formulaLanguage(), results(), hits()];
 }

@@ -1,5 +1,7 @@
-import { tooltips, type EditorView } from '@codemirror/view';
-import type { Extension } from '@codemirror/state';
+import { closeBrackets, closeBracketsKeymap } from '@codemirror/autocomplete';
+import { bracketMatching } from '@codemirror/language';
+import { Prec, type Extension } from '@codemirror/state';
+import { keymap, tooltips, type EditorView } from '@codemirror/view';
 import type { NoteCell } from '$lib/note/document';
 import { completion } from './completion';
 import { explanation } from './explanation';
@@ -7,14 +9,22 @@ import { wordAt, type Found } from './facts';
 import { noteContext } from './note-context';
 import { definitionOf } from './uses';
 
-/** What a cell's editor needs when somebody comes to it: offers and explanations. Loaded then, not with the page. */
+/** What a cell's editor needs when somebody comes to it: offers, explanations, brackets. Loaded then, not with the page. */
 export function writing(kind: NoteCell['kind']): Extension {
 	return [
 		tooltips({ parent: document.body, position: 'fixed' }),
 		completion(kind),
 		explanation(kind),
+		...(kind === 'text' ? [] : brackets),
 	];
 }
+
+/** An opening bracket brings its closing one, which goes when the opening one is taken back. */
+const brackets: Extension[] = [
+	closeBrackets(),
+	bracketMatching(),
+	Prec.high(keymap.of(closeBracketsKeymap)),
+];
 
 /** Goes to where the name at the cursor is defined; gives whether it is a name of the note. */
 export function goToDefinition(view: EditorView, kind: NoteCell['kind']): boolean {

@@ -64,8 +64,9 @@ export class Finder implements Question {
 		this.#sheet.tool = { kind: 'find' };
 	}
 
-	/** A new question begins with the first place. */
-	begin(): void {
+	/** Asks another question, which begins with its first place. */
+	ask(question: Partial<Question>): void {
+		Object.assign(this, question);
 		this.#index = 0;
 		this.show();
 	}

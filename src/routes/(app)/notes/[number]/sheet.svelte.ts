@@ -142,7 +142,7 @@ export class Sheet {
 	/** Goes back to where the person was: the editor, where it was in the same cell, else the cell's terminal. */
 	refocus(): void {
 		const { active, at } = this;
-		if (active && active.cellId === at) {
+		if (active && active.cellId === at && !this.folded.has(at)) {
 			if (active.view.dom.isConnected) active.view.focus();
 			// The editor of a text closes when it loses the focus.
 			else this.enter(active.cellId);
