@@ -1,7 +1,7 @@
 import { log } from '$lib/server/log';
 
 /** Something to be done before the process ends. It is left behind after `limitMs`, and the next one begins. */
-export interface Step {
+interface Step {
 	name: string;
 	limitMs: number;
 	run: () => Promise<unknown>;
