@@ -11,7 +11,7 @@ import { unmount } from './small-disk';
 import { until } from './until';
 
 const settings = `
-max_connections = 55
+max_connections = 45
 superuser_reserved_connections = 5
 log_min_messages = fatal
 `;

@@ -1,6 +1,7 @@
 import { randomBytes } from 'node:crypto';
 import pg from 'pg';
 import type { Cluster } from './cluster';
+import { until } from './until';
 
 /** Takes all connections that PostgreSQL gives to anybody but the superuser. */
 export class Hog {
@@ -21,20 +22,36 @@ export class Hog {
 		await ask(`create role hog login password '${password}'`);
 		await ask('alter role halfdigit connection limit 0');
 		try {
-			await ask(
-				`select pg_terminate_backend(pid) from pg_stat_activity where usename = 'halfdigit'`,
-			);
 			const url = new URL(cluster.url());
 			Object.assign(url, { username: 'hog', password });
-			await hog.#takeFree(url.href);
-		} finally {
-			await ask('alter role halfdigit connection limit -1');
+			// Whoever knocks holds a place until he is sent away, so that one refusal does not mean that all are taken.
+			const takesAll = async () => {
+				await ask(
+					`select pg_terminate_backend(pid) from pg_stat_activity where usename = 'halfdigit'`,
+				);
+				await hog.#takeFree(url.href);
+				return hog.#hasAll();
+			};
+			await until(takesAll, 60_000, 'not every connection could be taken');
+		} catch (error) {
+			await ask(unlimited);
+			await hog.release();
+			throw error;
 		}
+		await ask(unlimited);
 		return hog;
 	}
 
 	async release(): Promise<void> {
 		await Promise.all([...this.#clients.splice(0), this.#admin].map((client) => client.end()));
+	}
+
+	async #hasAll(): Promise<boolean> {
+		const { rows } = await this.#admin.query<{ places: number }>(
+			`select current_setting('max_connections')::int
+				- current_setting('superuser_reserved_connections')::int as places`,
+		);
+		return this.#clients.length + 1 === rows[0]?.places;
 	}
 
 	/** Takes places until PostgreSQL says that there is none left. */
@@ -52,6 +69,8 @@ export class Hog {
 		}
 	}
 }
+
+const unlimited = 'alter role halfdigit connection limit -1';
 
 /** PostgreSQL's code for "too many connections". */
 const tooMany = '53300';
