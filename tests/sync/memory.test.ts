@@ -10,6 +10,7 @@ import { startSyncBench, type SyncBench } from '../support/sync';
 let bench: SyncBench;
 beforeAll(async () => {
 	bench = await startSyncBench();
+	await bench.computes();
 });
 afterAll(() => bench.close());
 
