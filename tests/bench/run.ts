@@ -17,6 +17,7 @@ import { loadRows } from './load';
 import { pageRows } from './pages';
 import { table, type Row } from './row';
 import { setupRows } from './setup';
+import { signingRows } from './signing';
 import { sixtyLines } from './sixty-lines';
 import { syncRows } from './sync';
 import { trialRows } from './trials';
@@ -28,6 +29,7 @@ const rows: Row[] = [];
 if (wants('engine')) rows.push(...engineRows(), ...(await trialRows()));
 if (wants('page') || wants('sync')) rows.push(...(await servedRows()));
 if (wants('load')) rows.push(...(await loadRows()));
+if (wants('signing')) rows.push(...(await signingRows()));
 if (wants('setup')) rows.push(...(await setupRows()));
 
 const file = 'test-results/bench.json';

@@ -1,5 +1,5 @@
 import type { Policy } from '$lib/schemas/review';
-import { eq } from 'drizzle-orm';
+import { eq, getTableColumns } from 'drizzle-orm';
 import * as audit from '../audit/audit';
 import { demand, type Actor } from '../auth/access';
 import { db, type Connection } from '../db/client';
@@ -41,11 +41,7 @@ export async function set(actor: Actor, policy: Policy): Promise<void> {
 
 /** A team's policy within a deed. */
 export async function read(connection: Connection, teamId: string): Promise<Policy> {
-	const [row] = await connection
-		.select()
-		.from(signOffPolicy)
-		.where(eq(signOffPolicy.teamId, teamId));
-	if (!row) return usual;
-	const { teamId: _, ...policy } = row;
-	return policy;
+	const { teamId: key, ...columns } = getTableColumns(signOffPolicy);
+	const [row] = await connection.select(columns).from(signOffPolicy).where(eq(key, teamId));
+	return row ?? usual;
 }

@@ -96,17 +96,22 @@ async function standing(wanted: string, given: Checked | undefined): Promise<Out
 		.from(revision)
 		.leftJoin(withdrawal, eq(withdrawal.revisionId, revision.id))
 		.where(eq(revision.digest, wanted));
-	if (found?.revision.entry == null) {
+	const entry = found?.revision.entry ?? null;
+	if (!found || entry === null) {
 		const faults = given
 			? ['Its signatures are genuine, but this installation does not have it.']
 			: [];
 		const signers = given?.revision ? signersOf(given.revision) : [];
 		return { state: 'unknown', faults, revision: null, signers, withdrawn: null };
 	}
-	const { letter, noteId, frozenAt, canonical, entry } = found.revision;
+	const { letter, noteId, frozenAt, canonical } = found.revision;
 	const [own] = await entries.read(db(), [entry]);
 	const stored = check(
-		{ format: 'halfdigit-sealed-revision-1', revision: JSON.parse(canonical), seal: own },
+		{
+			format: 'halfdigit-sealed-revision-1',
+			revision: JSON.parse(canonical) as unknown,
+			seal: own,
+		},
 		await knownKeys(),
 	);
 	if (!stored.revision || stored.faults.length > 0 || stored.digest !== wanted) {

@@ -15,7 +15,7 @@ export interface SigningKey {
 	id: string;
 	/** SPKI, DER, base64. */
 	publicKey: string;
-	sign(bytes: Buffer): string;
+	sign: (bytes: Buffer) => string;
 }
 
 const mend = 'Nothing was signed. Ask the administrator of the installation (SIGNING_KEY_FILE).';
