@@ -1,4 +1,3 @@
-import { randomBytes } from 'node:crypto';
 import pg from 'pg';
 import type { Cluster } from './cluster';
 import { until } from './until';
@@ -13,33 +12,24 @@ export class Hog {
 		this.#admin = admin;
 	}
 
-	/** Cuts everybody off, takes every place before they are back, and only then lets them try again. */
+	/** Cuts everybody off and takes every place. Nobody may be trying to come in meanwhile. */
 	static async takeAll(cluster: Cluster): Promise<Hog> {
 		const hog = new Hog(await cluster.connect());
-		const password = randomBytes(12).toString('hex');
-		const ask = (question: string) => hog.#admin.query(question);
-		await ask('drop role if exists hog');
-		await ask(`create role hog login password '${password}'`);
-		await ask('alter role halfdigit connection limit 0');
+		const takesAll = async () => {
+			await hog.#admin.query(
+				`select pg_terminate_backend(pid) from pg_stat_activity
+				where usename = 'halfdigit' and application_name <> 'hog'`,
+			);
+			await hog.#takeFree(cluster.url());
+			return hog.#hasAll();
+		};
 		try {
-			const url = new URL(cluster.url());
-			Object.assign(url, { username: 'hog', password });
-			// Whoever knocks holds a place until he is sent away, so that one refusal does not mean that all are taken.
-			const takesAll = async () => {
-				await ask(
-					`select pg_terminate_backend(pid) from pg_stat_activity where usename = 'halfdigit'`,
-				);
-				await hog.#takeFree(url.href);
-				return hog.#hasAll();
-			};
 			await until(takesAll, 60_000, 'not every connection could be taken');
+			return hog;
 		} catch (error) {
-			await ask(unlimited);
 			await hog.release();
 			throw error;
 		}
-		await ask(unlimited);
-		return hog;
 	}
 
 	async release(): Promise<void> {
@@ -57,7 +47,7 @@ export class Hog {
 	/** Takes places until PostgreSQL says that there is none left. */
 	async #takeFree(connectionString: string): Promise<void> {
 		for (;;) {
-			const client = new pg.Client({ connectionString });
+			const client = new pg.Client({ connectionString, application_name: 'hog' });
 			client.on('error', () => undefined);
 			try {
 				await client.connect();
@@ -69,8 +59,6 @@ export class Hog {
 		}
 	}
 }
-
-const unlimited = 'alter role halfdigit connection limit -1';
 
 /** PostgreSQL's code for "too many connections". */
 const tooMany = '53300';

@@ -96,7 +96,17 @@ export const outOfConnections: Fault = {
 		stage.type(20);
 		for (let n = 0; n < (stage.isFull ? 3 : 1); n++) {
 			await stage.acknowledges(50);
-			const hog = await Hog.takeAll(stage.site.cluster);
+			// They stand still until all is taken: whoever knocks holds a place until he is sent away.
+			for (const { server, back } of stage.site.posts) {
+				process.kill(server?.pid ?? 0, 'SIGSTOP');
+				back.cut();
+			}
+			const hog = await Hog.takeAll(stage.site.cluster).finally(() => {
+				for (const { server, back } of stage.site.posts) {
+					back.mend();
+					process.kill(server?.pid ?? 0, 'SIGCONT');
+				}
+			});
 			stage.injected += 1;
 			try {
 				await outage(stage, stage.isFull ? 10_000 : 1500);
