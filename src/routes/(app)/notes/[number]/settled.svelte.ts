@@ -1,24 +1,33 @@
 import type { Evaluation } from '$lib/calc/results';
+import type { NoteContent } from '$lib/note/document';
 
-/** Figures that go on changing, as while somebody types, have settled when they stood still this long. */
+/** What goes on changing, as while somebody types, has settled when it stood still this long. */
 const settledMs = 300;
 
-/** Results as they were when they last stood still. */
+interface State extends NoteContent {
+	evaluation: Evaluation;
+}
+
+/** The note as it was when it last stood still, for what need not follow each key. */
 export class Settled {
-	#evaluation = $state.raw<Evaluation>() as Evaluation;
+	#state = $state.raw<State>() as State;
 	#timer: ReturnType<typeof setTimeout> | undefined;
 
-	constructor(first: Evaluation) {
-		this.#evaluation = first;
+	constructor(first: State) {
+		this.#state = first;
 	}
 
 	get evaluation(): Evaluation {
-		return this.#evaluation;
+		return this.#state.evaluation;
 	}
 
-	follow(next: Evaluation): void {
+	get content(): NoteContent {
+		return this.#state;
+	}
+
+	follow(next: State): void {
 		clearTimeout(this.#timer);
-		this.#timer = setTimeout(() => (this.#evaluation = next), settledMs);
+		this.#timer = setTimeout(() => (this.#state = next), settledMs);
 	}
 
 	end(): void {

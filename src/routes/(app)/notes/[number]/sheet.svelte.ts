@@ -88,7 +88,7 @@ export class Sheet {
 			content,
 			evaluation,
 		});
-		this.settled = new Settled(evaluation);
+		this.settled = new Settled({ ...content, evaluation });
 		this.drag = new CellDrag(this.copy);
 		this.threads = new Threads(note.number, threads);
 		this.line = new OpenLine(note.number);
@@ -124,8 +124,9 @@ export class Sheet {
 
 	/** Puts the focus into a cell. */
 	enter(cellId: string, target: Target = 'end'): void {
-		this.folded.delete(cellId);
-		this.#doors.get(cellId)?.(target);
+		const enter = () => this.#doors.get(cellId)?.(target);
+		if (this.folded.delete(cellId)) void tick().then(enter);
+		else enter();
 	}
 
 	/** Puts the cursor onto a place; with `focus` false it is only shown. */
@@ -167,7 +168,8 @@ export class Sheet {
 		const { cells } = this.copy;
 		const next = cells[cells.findIndex((cell) => cell.id === cellId) + direction];
 		if (!next) return false;
-		this.enter(next.id, direction > 0 ? 'start' : 'end');
+		if (this.folded.has(next.id)) this.focusTerminal(next.id);
+		else this.enter(next.id, direction > 0 ? 'start' : 'end');
 		return true;
 	}
 

@@ -5,13 +5,15 @@ import { cellActions } from './cell-actions';
 import { lineActions } from './line-actions';
 import { noteActions } from './note-actions';
 
+const ofNote = 'The note';
+
 /** Everything that can be done on the sheet now, by what it is done with. */
 export function actionsOf(sheet: Sheet): { of: string; actions: Action[] }[] {
 	const at = sheet.at ?? sheet.copy.cells[0]?.id;
 	return [
 		{ of: 'At the cursor', actions: lineActions(sheet) },
 		{ of: 'The cell', actions: at === undefined ? [] : cellActions(sheet, at) },
-		{ of: 'The note', actions: noteActions(sheet) },
+		{ of: ofNote, actions: noteActions(sheet) },
 	].filter(({ actions }) => actions.length > 0);
 }
 
@@ -28,15 +30,16 @@ export async function perform(sheet: Sheet, action: Action): Promise<void> {
 	else sheet.refocus();
 }
 
-/** Keys of actions, from anywhere on the page but a field that is being filled in or a dialog. */
+/** Keys of actions, from anywhere on the page but a dialog; in a field that is filled in only those of the note. */
 export function actionKeys(event: KeyboardEvent, sheet: Sheet): void {
 	if (event.defaultPrevented || !(event.target instanceof Element)) return;
-	const writes = event.target.closest('input, textarea, select, [contenteditable=true]');
+	const fills = event.target.closest('input, textarea, select');
+	const writes = fills ?? event.target.closest('[contenteditable=true]');
 	const asks = event.key === '?' && !writes && !event.ctrlKey && !event.metaKey && !event.altKey;
 	const keys = asks ? '?' : chordOf(event);
 	if (keys === undefined || event.target.closest('dialog')) return;
 	const action = actionsOf(sheet)
-		.flatMap(({ actions }) => actions)
+		.flatMap(({ of, actions }) => (fills && of !== ofNote ? [] : actions))
 		.find((each) => each.keys === keys);
 	if (!action) return;
 	event.preventDefault();
