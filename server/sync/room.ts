@@ -16,6 +16,7 @@ import * as authorship from '$lib/server/notes/authorship';
 import * as updates from '$lib/server/notes/updates';
 import * as Y from 'yjs';
 import { CellAuthors } from './cell-authors';
+import { completedSince } from './completed';
 import type { Connection } from './connection';
 import { Follower } from './follower';
 import { HeldUpdates } from './held-updates';
@@ -254,15 +255,19 @@ export class Room {
 		}
 		for (const client of finding.clients) this.#owners.set(client, connection.actor.personId);
 		// What it completes may be another page's: then the sender lacks that, and gets everything too.
-		const origin = updates.isPending(this.#doc) ? 'pending' : connection;
+		const before = updates.isPending(this.#doc) ? Y.encodeStateVector(this.#doc) : undefined;
+		const origin = before ? 'pending' : connection;
 		const cells = touchedBy(this.#doc, () => Y.applyUpdate(this.#doc, update, origin));
+		const { personId } = connection.actor;
+		const by = { personId, owners: this.#owners };
 		// The very bytes that came: an update that waits for another makes no Yjs event and is stored all the same.
 		this.#journal.add({
 			id,
-			personId: connection.actor.personId,
+			personId,
 			bytes: update,
 			clients: finding.clients,
 			cells,
+			...(before && { completed: completedSince(this.#doc, Y.decodeStateVector(before), by) }),
 			sender: connection,
 		});
 		this.#askForMissing(connection);

@@ -22,10 +22,36 @@ export function touchedBy(doc: Y.Doc, change: () => void): string[] {
 
 function cellsIn(event: Y.YEvent<Y.AbstractType<unknown>>): string[] {
 	const [id] = event.path;
-	if (id === undefined) return [...event.changes.keys.keys()];
-	const moved =
-		event.path.length === 1 && [...event.changes.keys.keys()].every((key) => key === 'order');
+	const keys = [...event.changes.keys.keys()];
+	if (id === undefined) return keys;
+	const moved = event.path.length === 1 && keys.every((key) => key === 'order');
 	return moved ? [] : [String(id)];
+}
+
+/** The cells that each client's content lies in, of what a document has beyond an earlier state. */
+export function cellsByClient(
+	doc: Y.Doc,
+	before: ReadonlyMap<number, number>,
+): Map<number, Set<string>> {
+	const found = new Map<number, Set<string>>();
+	for (const [client, structs] of doc.store.clients) {
+		const from = before.get(client) ?? 0;
+		if (Y.getState(doc.store, client) <= from) continue;
+		for (const struct of structs.slice(Y.findIndexSS(structs, from))) {
+			const id = struct instanceof Y.Item ? cellOf(cellsOf(doc), struct) : undefined;
+			if (id !== undefined) found.set(client, (found.get(client) ?? new Set()).add(id));
+		}
+	}
+	return found;
+}
+
+function cellOf(cells: unknown, item: Y.Item): string | undefined {
+	for (let at: Y.Item | null = item; at;) {
+		if (!(at.parent instanceof Y.AbstractType)) return undefined;
+		if (at.parent === cells) return at.parentSub ?? undefined;
+		at = at.parent._item;
+	}
+	return undefined;
 }
 
 /** Yjs client ids whose content an update holds. */
