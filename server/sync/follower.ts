@@ -1,4 +1,5 @@
 import { log } from '$lib/server/log';
+import type { Appended } from '$lib/server/notes/append';
 import * as updates from '$lib/server/notes/updates';
 
 interface Events {
@@ -40,7 +41,7 @@ export class Follower {
 	}
 
 	/** The room's own edits were stored. Rows of other processes may lie before them; those are read then. */
-	stored({ seq, first }: updates.Appended): void {
+	stored({ seq, first }: Appended): void {
 		if (first !== undefined && first <= this.#seq + 1) this.#seq = Math.max(this.#seq, seq);
 		this.hear(seq);
 	}

@@ -1,15 +1,16 @@
 import { AppError } from '$lib/errors';
 import { log } from '$lib/server/log';
-import * as updates from '$lib/server/notes/updates';
+import type { Appended, Edit } from '$lib/server/notes/append';
 import { maxUnsaved } from './limits';
+import { writer } from './writer';
 
 /** An edit on its way into the database, and whom to tell when it is there. */
-export interface Entry<Sender> extends updates.Edit {
+export interface Entry<Sender> extends Edit {
 	sender: Sender;
 }
 
 interface Events<Sender> {
-	onSaved(entries: readonly Entry<Sender>[], appended: updates.Appended): void;
+	onSaved(entries: readonly Entry<Sender>[], appended: Appended): void;
 	/** The database will never take these edits; the document in memory is not what is stored. */
 	onFailed(error: unknown, entries: readonly Entry<Sender>[]): void;
 }
@@ -71,7 +72,7 @@ export class Journal<Sender> {
 		while (this.#unsaved.size > 0 && !this.#stopped) {
 			const batch = this.#nextBatch();
 			try {
-				const appended = await updates.append(this.#noteId, batch);
+				const appended = await writer.append(this.#noteId, batch);
 				for (const entry of batch) {
 					this.#unsaved.delete(entry.id);
 					this.#bytes -= entry.bytes.length;

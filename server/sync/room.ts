@@ -13,6 +13,7 @@ import {
 import { Scheduler } from '$lib/server/evaluation/scheduler';
 import { log } from '$lib/server/log';
 import * as authorship from '$lib/server/notes/authorship';
+import type { Appended } from '$lib/server/notes/append';
 import * as updates from '$lib/server/notes/updates';
 import * as Y from 'yjs';
 import { CellAuthors } from './cell-authors';
@@ -320,7 +321,7 @@ export class Room {
 		connection.send(outgoing.question(this.#doc));
 	}
 
-	#onSaved(entries: readonly Entry<Connection>[], appended: updates.Appended): void {
+	#onSaved(entries: readonly Entry<Connection>[], appended: Appended): void {
 		const { seq, at } = appended;
 		const idsOf = new Map<Connection, string[]>();
 		for (const { id, sender } of entries) {

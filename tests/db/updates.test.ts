@@ -11,6 +11,7 @@ import * as authorship from '$lib/server/notes/authorship';
 import { fold } from '$lib/server/notes/folding';
 import * as notes from '$lib/server/notes/notes';
 import * as snapshots from '$lib/server/notes/snapshots';
+import { append, type Edit } from '$lib/server/notes/append';
 import * as updates from '$lib/server/notes/updates';
 import { createDatabase, type TestDatabase } from '../support/database';
 import { LongLog, stored } from '../support/long-log';
@@ -71,21 +72,21 @@ async function snapshot(noteId: string): Promise<void> {
 
 test('an edit under the client id of somebody else is refused with all that came with it, and named', async () => {
 	const noteId = await makeNote();
-	const edit = (id: string, person: number, client: number): updates.Edit => ({
+	const edit = (id: string, person: number, client: number): Edit => ({
 		id,
 		personId: people[person]!.personId,
 		bytes: Y.encodeStateAsUpdate(new Y.Doc()),
 		clients: [client],
 		cells: [],
 	});
-	await updates.append(noteId, [edit('one', 0, 4711)]);
-	const refused = updates.append(noteId, [edit('two', 1, 4712), edit('three', 1, 4711)]);
+	await append(noteId, [edit('one', 0, 4711)]);
+	const refused = append(noteId, [edit('two', 1, 4712), edit('three', 1, 4711)]);
 	await expect(refused).rejects.toMatchObject({ code: 'conflict', details: { ids: ['three'] } });
 	// Two people under one id that is new to the note.
-	const both = updates.append(noteId, [edit('four', 1, 4713), edit('five', 2, 4713)]);
+	const both = append(noteId, [edit('four', 1, 4713), edit('five', 2, 4713)]);
 	await expect(both).rejects.toMatchObject({ details: { ids: ['five'] } });
 	expect((await updates.loadDocument(noteId)).seq).toBe(2);
-	await updates.append(noteId, [edit('two', 1, 4712), edit('six', 0, 4711)]);
+	await append(noteId, [edit('two', 1, 4712), edit('six', 0, 4711)]);
 	const { clients } = await updates.loadDocument(noteId);
 	expect([clients.get(4711), clients.get(4712), clients.get(4713)]).toEqual([
 		people[0]!.personId,

@@ -5,7 +5,7 @@ import { db } from '$lib/server/db/client';
 import { noteUpdate } from '$lib/server/db/schema/notes';
 import { closeCode } from '$lib/protocol/closing';
 import { encodeEdit, messageType, type Saved } from '$lib/protocol/messages';
-import { append } from '$lib/server/notes/updates';
+import { append } from '$lib/server/notes/append';
 import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
 import { startProxy } from '../support/proxy';
 import { RawSocket } from '../support/raw-socket';

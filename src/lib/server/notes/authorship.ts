@@ -1,8 +1,8 @@
-import { and, eq, inArray, sql } from 'drizzle-orm';
-import { db, type Connection } from '../db/client';
+import { and, eq, inArray } from 'drizzle-orm';
+import { db } from '../db/client';
 import { cellAuthor } from '../db/schema/notes';
 import { person } from '../db/schema/people';
-import type { Edit } from './updates';
+import type { Edit } from './append';
 
 /** Who wrote last in a cell, by which update. */
 export interface CellAuthor {
@@ -30,32 +30,19 @@ export async function read(
 		.where(and(eq(cellAuthor.noteId, noteId), cellIds && inArray(cellAuthor.cellId, [...cellIds])));
 }
 
-/** Keeps who wrote last in the cells of edits that are being stored; the first of them has the number `first`. */
-export async function record(
-	connection: Connection,
-	noteId: string,
-	{ edits, first, at }: { edits: readonly Edit[]; first: number; at: Date },
-): Promise<void> {
-	const last = new Map<string, CellAuthor>();
+/** Who wrote last in the cells of edits that are being stored; the first of them has the number `first`. */
+export function lastIn(
+	edits: readonly Edit[],
+	first: number,
+): { cellId: string; personId: string; seq: number }[] {
+	const last = new Map<string, { cellId: string; personId: string; seq: number }>();
 	edits.forEach(({ cells, personId, completed = [] }, index) => {
 		const write = (cellId: string, by: string) =>
-			last.set(cellId, { cellId, personId: by, seq: first + index, at });
+			last.set(cellId, { cellId, personId: by, seq: first + index });
 		for (const cellId of cells) write(cellId, personId);
 		for (const other of completed) {
 			for (const cellId of other.cells) write(cellId, other.personId);
 		}
 	});
-	const authors = [...last.values()];
-	if (authors.length === 0) return;
-	await connection
-		.insert(cellAuthor)
-		.values(authors.map((author) => ({ noteId, ...author })))
-		.onConflictDoUpdate({
-			target: [cellAuthor.noteId, cellAuthor.cellId],
-			set: {
-				personId: sql`excluded.person_id`,
-				seq: sql`excluded.seq`,
-				at: sql`excluded.at`,
-			},
-		});
+	return [...last.values()];
 }

@@ -1,8 +1,7 @@
-import { AppError } from '$lib/errors';
-import { and, eq, inArray } from 'drizzle-orm';
+import { eq, sql } from 'drizzle-orm';
 import type { Connection } from '../db/client';
 import { noteClient } from '../db/schema/notes';
-import type { Edit } from './updates';
+import type { Edit } from './append';
 
 /** Claims that were found in the database, by epoch and client id. They never change, so that hot notes need not ask again. */
 const found = new Map<string, string>();
@@ -17,55 +16,75 @@ export async function read(connection: Connection, noteId: string): Promise<Map<
 	return new Map(rows.map(({ clientId, personId }) => [clientId, personId]));
 }
 
+/** Edits of a note whose row is locked, and the life of its document. */
+interface Claiming {
+	noteId: string;
+	epoch: string;
+	edits: readonly Edit[];
+}
+
+/** A client id that becomes a person's. */
+export interface Claim {
+	noteId: string;
+	clientId: number;
+	personId: string;
+}
+
 /**
- * Gives the client ids of edits to their authors, under the note's lock. Throws AppError `conflict` where one belongs
- * to somebody else; `details.ids` are the edits that say so.
+ * What client ids edits claim for their authors, under the locks of the notes. `wrong` are the edits, by note, under a
+ * client id that belongs to somebody else.
  */
-export async function claim(
+export async function claimsOf(
 	connection: Connection,
-	{ noteId, epoch }: { noteId: string; epoch: string },
-	edits: readonly Edit[],
-): Promise<void> {
-	const key = (clientId: number) => `${epoch}/${clientId}`;
-	const strange = new Set(
-		edits.flatMap(({ clients }) => clients).filter((id) => !found.has(key(id))),
+	notes: readonly Claiming[],
+): Promise<{ claims: Claim[]; wrong: Map<string, string[]> }> {
+	const strange = notes.flatMap(({ noteId, epoch, edits }) =>
+		[...new Set(edits.flatMap(({ clients }) => clients))]
+			.filter((id) => !found.has(key(epoch, id)))
+			.map((clientId) => ({ note_id: noteId, client_id: clientId })),
 	);
-	const owners = strange.size > 0 ? await ownersOf(connection, noteId, [...strange]) : new Map();
-	remember(key, owners);
-	const claimed = new Map<number, string>();
-	const ids = edits
-		.filter(({ clients, personId }) =>
-			clients.some((id) => {
-				const owner = found.get(key(id)) ?? claimed.get(id);
-				if (owner === undefined) claimed.set(id, personId);
+	if (strange.length > 0) remember(notes, await ownersOf(connection, strange));
+	const claims: Claim[] = [];
+	const wrong = new Map<string, string[]>();
+	for (const { noteId, epoch, edits } of notes) {
+		const claimed = new Map<number, string>();
+		for (const { id, clients, personId } of edits) {
+			const isWrong = clients.some((clientId) => {
+				const owner = found.get(key(epoch, clientId)) ?? claimed.get(clientId);
+				if (owner === undefined) claimed.set(clientId, personId);
 				return owner !== undefined && owner !== personId;
-			}),
-		)
-		.map(({ id }) => id);
-	if (ids.length > 0) {
-		throw new AppError('conflict', 'An edit was written under the client id of somebody else.', {
-			details: { ids },
-		});
+			});
+			if (isWrong) wrong.set(noteId, [...(wrong.get(noteId) ?? []), id]);
+		}
+		if (wrong.has(noteId)) continue;
+		for (const [clientId, personId] of claimed) claims.push({ noteId, clientId, personId });
 	}
-	if (claimed.size === 0) return;
-	await connection
-		.insert(noteClient)
-		.values([...claimed].map(([clientId, personId]) => ({ noteId, clientId, personId })));
+	return { claims, wrong };
+}
+
+function key(epoch: string, clientId: number): string {
+	return `${epoch}/${clientId}`;
 }
 
 async function ownersOf(
 	connection: Connection,
-	noteId: string,
-	ids: number[],
-): Promise<Map<number, string>> {
-	const rows = await connection
-		.select({ clientId: noteClient.clientId, personId: noteClient.personId })
-		.from(noteClient)
-		.where(and(eq(noteClient.noteId, noteId), inArray(noteClient.clientId, ids)));
-	return new Map(rows.map(({ clientId, personId }) => [clientId, personId]));
+	asked: readonly { note_id: string; client_id: number }[],
+): Promise<Claim[]> {
+	const { rows } = await connection.execute<{ note: string; client: string; person: string }>(sql`
+		select known.note_id as note, known.client_id as client, known.person_id as person
+		from jsonb_to_recordset(${JSON.stringify(asked)}::jsonb) as asked (note_id uuid, client_id bigint)
+		join note_client known using (note_id, client_id)`);
+	return rows.map(({ note, client, person }) => ({
+		noteId: note,
+		clientId: Number(client),
+		personId: person,
+	}));
 }
 
-function remember(key: (clientId: number) => string, owners: ReadonlyMap<number, string>): void {
-	if (found.size + owners.size > mostFound) found.clear();
-	for (const [clientId, personId] of owners) found.set(key(clientId), personId);
+function remember(notes: readonly Claiming[], owners: readonly Claim[]): void {
+	if (found.size + owners.length > mostFound) found.clear();
+	const epochs = new Map(notes.map(({ noteId, epoch }) => [noteId, epoch]));
+	for (const { noteId, clientId, personId } of owners) {
+		found.set(key(epochs.get(noteId) ?? '', clientId), personId);
+	}
 }

@@ -4,88 +4,12 @@ import { clientsIn, touchedBy } from '$lib/note/touched';
 import { and, asc, eq, gt, inArray } from 'drizzle-orm';
 import * as Y from 'yjs';
 import { db, type Connection } from '../db/client';
-import { refuseWeak, weakness } from '../db/durability';
-import { note, noteClient, noteUpdate } from '../db/schema/notes';
+import { cellAuthor, note, noteClient, noteUpdate } from '../db/schema/notes';
 import { person } from '../db/schema/people';
+import { append, type Edit } from './append';
 import * as authorship from './authorship';
 import * as clients from './clients';
 import { documentOf, readState } from './stored-log';
-
-/** A change of a note's working copy: raw update bytes, under the id its client chose. */
-export interface Edit {
-	id: string;
-	personId: string;
-	bytes: Uint8Array;
-	/** Yjs client ids that the bytes hold content of. */
-	clients: readonly number[];
-	/** Cells that came, went or changed their text with it. */
-	cells: readonly string[];
-	/** Others whose earlier edits counted only with this one, and the cells those changed. */
-	completed?: readonly { personId: string; cells: readonly string[] }[];
-}
-
-/** Where the log stands after an append; `first` is the sequence number of the first new row, if there was one. */
-export interface Appended {
-	seq: number;
-	first: number | undefined;
-	at: Date;
-}
-
-/**
- * Stores edits in one transaction, in order, and returns after its commit. An edit whose id the note
- * already has is not stored again, so an append that may or may not have been committed can be repeated. Throws
- * AppError `conflict` where edits carry client ids of somebody else (`details.ids`), `unavailable` where the database
- * would not keep them through a crash; nothing is stored then.
- */
-export async function append(noteId: string, edits: readonly Edit[]): Promise<Appended> {
-	return db().transaction(async (tx) => {
-		const [head] = await tx
-			.select({ seq: note.seq, epoch: note.epoch, at: note.changedAt, weak: weakness })
-			.from(note)
-			.where(eq(note.id, noteId))
-			.for('update');
-		if (!head) throw new AppError('notFound', 'This note does not exist.');
-		refuseWeak(head.weak);
-		const known = await tx
-			.select({ id: noteUpdate.clientEditId })
-			.from(noteUpdate)
-			.where(
-				and(
-					eq(noteUpdate.noteId, noteId),
-					inArray(
-						noteUpdate.clientEditId,
-						edits.map((edit) => edit.id),
-					),
-				),
-			);
-		const taken = new Set(known.map((row) => row.id));
-		const fresh = edits.filter((edit) => !taken.has(edit.id) && taken.add(edit.id));
-		const last = fresh.at(-1);
-		if (!last) return { seq: head.seq, first: undefined, at: head.at };
-
-		await clients.claim(tx, { noteId, epoch: head.epoch }, fresh);
-		const at = new Date();
-		const first = head.seq + 1;
-		const seq = head.seq + fresh.length;
-		await tx.insert(noteUpdate).values(
-			fresh.map((edit, index) => ({
-				noteId,
-				seq: first + index,
-				clientEditId: edit.id,
-				personId: edit.personId,
-				at,
-				bytes: edit.bytes,
-				cells: [...edit.cells],
-			})),
-		);
-		await authorship.record(tx, noteId, { edits: fresh, first, at });
-		await tx
-			.update(note)
-			.set({ seq, changedAt: at, changedBy: last.personId })
-			.where(eq(note.id, noteId));
-		return { seq, first, at };
-	});
-}
 
 /** A stored update. */
 export interface Row {
@@ -220,7 +144,12 @@ export async function seed(
 		cells: [...edit.cells],
 	});
 	await connection.insert(noteClient).values({ noteId, clientId: doc.clientID, personId });
-	await authorship.record(connection, noteId, { edits: [edit], first: 1, at });
+	const authors = authorship.lastIn([edit], 1);
+	if (authors.length > 0) {
+		await connection
+			.insert(cellAuthor)
+			.values(authors.map((author) => ({ noteId, at, ...author })));
+	}
 	await connection.update(note).set({ seq: 1 }).where(eq(note.id, noteId));
 	doc.destroy();
 }
