@@ -68,15 +68,12 @@ describe.each(changing)('%s', (route) => {
 			(one) => one !== 'stranger' && (row.expect[one] ?? row.expect.all) < 400,
 		);
 		await givePassword(cast.author);
+		const role =
+			allowed === 'outsider' || allowed === 'author' ? 'approver' : (allowed ?? 'reader');
 		const actor =
-			allowed === 'author'
+			allowed === 'author' || role === 'stranger'
 				? cast.author
-				: await givePassword(
-						await makeMember(
-							cast.author,
-							allowed === 'outsider' ? 'approver' : (allowed ?? 'reader'),
-						),
-					);
+				: await givePassword(await makeMember(cast.author, role));
 		const scene = await stage(cast, row.stage ?? 'draft', actor);
 		const [method = '', address = ''] = route.split(' ');
 		const path = row.at?.(scene) ?? address;

@@ -9,7 +9,7 @@ import type { ReadRecord } from './check-entries';
 import { fault, type Fault } from './fault';
 import { check } from './sealed';
 import * as entries from './entries';
-import type { Statement } from './statement';
+import type { PersonalStatement, Statement } from './statement';
 
 const batch = 50;
 
@@ -151,7 +151,7 @@ async function checkWithdrawals(connection: Connection, { statements }: ReadReco
 }
 
 function fits(
-	statement: Statement & { kind: 'withdrawal' },
+	statement: Statement & PersonalStatement,
 	row: typeof withdrawal.$inferSelect,
 	digest: string,
 ): boolean {
