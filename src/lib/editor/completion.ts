@@ -9,12 +9,13 @@ import {
 } from '@codemirror/autocomplete';
 import { Prec, type Extension } from '@codemirror/state';
 import { keymap, type EditorView } from '@codemirror/view';
+import type { Vocabulary } from '$lib/calc/language/vocabulary';
 import type { NoteCell } from '$lib/note/document';
 import { cardOf } from './fact-card';
 import { factOf, wordFact } from './facts';
 import { noteContext } from './note-context';
 import { suggestionsAt, type Suggestion } from './suggestions';
-import { vocabulary } from './vocabulary';
+import { vocabulary, vocabularyNow } from './vocabulary';
 
 /** Offers names, units, functions and constants while a formula or a quoted figure is written. */
 export function completion(kind: NoteCell['kind']): Extension {
@@ -48,13 +49,24 @@ interface Offered extends Completion {
 	suggestion: Suggestion;
 }
 
-async function complete(
+/** Answers at once where it can: while an answer is awaited, Escape takes back the question and nothing else. */
+function complete(
 	context: CompletionContext,
 	kind: NoteCell['kind'],
-): Promise<CompletionResult | null> {
+): CompletionResult | null | Promise<CompletionResult | null> {
+	const now = vocabularyNow();
+	const answer = answerWith(now.words, context, kind);
+	if (!answer || now.complete) return answer;
+	return vocabulary().then((words) => answerWith(words, context, kind));
+}
+
+function answerWith(
+	words: Vocabulary,
+	context: CompletionContext,
+	kind: NoteCell['kind'],
+): CompletionResult | null {
 	const note = context.state.facet(noteContext);
 	if (!note) return null;
-	const words = await vocabulary();
 	const line = context.state.doc.lineAt(context.pos);
 	const found = suggestionsAt({
 		kind,

@@ -1,19 +1,25 @@
 import type { Vocabulary } from '$lib/calc/language/vocabulary';
 
 let loading: Promise<Vocabulary> | undefined;
+let ready: Vocabulary | undefined;
 
 const none: Vocabulary = { functions: {}, units: {}, constants: {}, series: {}, words: {} };
 
 /** The words of the formula language, fetched when they are wanted first. Without a connection there are none yet. */
 export function vocabulary(): Promise<Vocabulary> {
 	loading ??= import('$lib/calc/language/vocabulary.json').then(
-		(loaded) => loaded.default as Vocabulary,
+		(loaded) => (ready = loaded.default as Vocabulary),
 		() => {
 			loading = undefined;
 			return none;
 		},
 	);
 	return loading;
+}
+
+/** The words as far as they are there: none before they are fetched. */
+export function vocabularyNow(): { words: Vocabulary; complete: boolean } {
+	return { words: ready ?? none, complete: ready !== undefined };
 }
 
 /** The unit that a word stands for behind a number: `kohm`, `kΩ`, `µA`, `°C`, `volts`. */
