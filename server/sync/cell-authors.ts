@@ -15,6 +15,8 @@ export class CellAuthors {
 	readonly #tell: (message: Uint8Array) => void;
 	readonly #last = new Map<string, Author>();
 	#asked = new Set<string>();
+	/** Known, but not told yet. */
+	#news = new Map<string, Author>();
 	#timer: NodeJS.Timeout | undefined;
 	#stopped = false;
 
@@ -29,12 +31,16 @@ export class CellAuthors {
 		return encode([...cellIds].flatMap((id) => this.#last.get(id) ?? []));
 	}
 
-	/** Hears that updates which changed these cells are stored. */
+	/** Hears who wrote in cells, in the order in which it was stored. */
+	know(authors: readonly Author[]): void {
+		for (const author of authors) this.#take(author);
+		this.#wait();
+	}
+
+	/** Hears that updates which changed these cells are stored, but not whose they are. */
 	hear(cellIds: Iterable<string>): void {
 		for (const id of cellIds) this.#asked.add(id);
-		if (this.#asked.size > 0 && !this.#stopped) {
-			this.#timer ??= setTimeout(() => void this.#read(), pauseMs);
-		}
+		this.#wait();
 	}
 
 	stop(): void {
@@ -42,24 +48,32 @@ export class CellAuthors {
 		clearTimeout(this.#timer);
 	}
 
-	async #read(): Promise<void> {
-		const asked = this.#asked;
-		this.#asked = new Set();
-		let again: Iterable<string> = [];
-		try {
-			this.#take(await authorship.read(this.#noteId, [...asked]));
-		} catch (error) {
-			log().warn({ err: error, noteId: this.#noteId }, 'the authors of cells could not be read');
-			again = asked;
-		}
-		this.#timer = undefined;
-		this.hear([...again, ...this.#asked]);
+	#wait(): void {
+		if (this.#stopped || this.#asked.size + this.#news.size === 0) return;
+		this.#timer ??= setTimeout(() => void this.#tellNews(), pauseMs);
 	}
 
-	#take(found: readonly Author[]): void {
-		const news = found.filter(({ cellId, seq }) => seq > (this.#last.get(cellId)?.seq ?? 0));
-		for (const author of news) this.#last.set(author.cellId, author);
-		if (news.length > 0 && !this.#stopped) this.#tell(encode(news));
+	async #tellNews(): Promise<void> {
+		const asked = [...this.#asked];
+		this.#asked = new Set();
+		try {
+			if (asked.length > 0) {
+				for (const author of await authorship.read(this.#noteId, asked)) this.#take(author);
+			}
+		} catch (error) {
+			log().warn({ err: error, noteId: this.#noteId }, 'the authors of cells could not be read');
+			for (const id of asked) this.#asked.add(id);
+		}
+		if (this.#news.size > 0 && !this.#stopped) this.#tell(encode([...this.#news.values()]));
+		this.#news = new Map();
+		this.#timer = undefined;
+		this.#wait();
+	}
+
+	#take(author: Author): void {
+		if (author.seq <= (this.#last.get(author.cellId)?.seq ?? 0)) return;
+		this.#last.set(author.cellId, author);
+		this.#news.set(author.cellId, author);
 	}
 }
 

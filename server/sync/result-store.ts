@@ -2,9 +2,9 @@ import { engineVersion } from '$lib/calc/engine';
 import * as store from '$lib/server/evaluation/store';
 import { log } from '$lib/server/log';
 
-const pauseMs = 300;
+const pauseMs = 1000;
 
-/** Writes a room's newest results, at once and then no more often than every 300 ms. */
+/** Writes a room's newest results, at once and then no more often than once a second. */
 export class ResultStore {
 	readonly #noteId: string;
 	#next: store.Stored | undefined;

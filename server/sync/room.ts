@@ -332,9 +332,29 @@ export class Room {
 			connection.send(encodeJson('saved', saved));
 		}
 		this.#follower.stored(appended);
-		this.#authors.hear(entries.flatMap(({ cells }) => cells));
+		this.#hearAuthors(entries, appended);
 		this.#storeResults();
 		if (appended.first !== undefined) this.#events.onStored(this, seq);
+	}
+
+	#hearAuthors(entries: readonly Entry<Connection>[], { first, seq, at }: Appended): void {
+		const isPlain = entries.every(({ completed }) => !completed);
+		// Where all are new and none completed others, they have their numbers in this order.
+		if (first === undefined || seq - first + 1 !== entries.length || !isPlain) {
+			this.#authors.hear(entries.flatMap(({ cells }) => cells));
+			return;
+		}
+		this.#authors.know(
+			entries.flatMap(({ cells, personId, sender }, index) =>
+				cells.map((cellId) => ({
+					cellId,
+					personId,
+					name: sender.actor.name,
+					seq: first + index,
+					at,
+				})),
+			),
+		);
 	}
 
 	#applyRows(rows: readonly updates.Row[]): void {

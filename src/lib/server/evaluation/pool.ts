@@ -17,6 +17,14 @@ export interface PoolSettings extends ChildSettings {
 
 const mostStartFailures = 3;
 
+/**
+ * While very many notes wait for their turn, a child rests so many times as long as it computed: keeping edits and
+ * telling them to others goes before figures, and each note gets the figures of its newest state only.
+ */
+const restShare = 3;
+const longestRestMs = 100;
+const manyWaiting = 8;
+
 /** What an evaluation is for. */
 export interface Circumstances {
 	/** The note, where it is likely to be evaluated again after an edit. */
@@ -59,11 +67,14 @@ export class Pool {
 		const turns = isLong ? this.#longTurns : this.#turns;
 		if (this.#closed) throw closedError();
 		await turns.take();
+		const from = performance.now();
 		try {
 			if (signal?.aborted) throw stoppedError();
 			return await this.#attempt(cells, options, isLong, { note, onProgress, signal });
 		} finally {
-			turns.give();
+			const rest = turns.isCrowded ? restShare * (performance.now() - from) : 0;
+			if (rest > 0) setTimeout(() => turns.give(), Math.min(rest, longestRestMs));
+			else turns.give();
 		}
 	}
 
@@ -160,6 +171,11 @@ class Turns {
 	#running = 0;
 
 	constructor(private readonly most: number) {}
+
+	/** Whether many wait. */
+	get isCrowded(): boolean {
+		return this.#waiting.length > manyWaiting;
+	}
 
 	async take(): Promise<void> {
 		if (this.#running >= this.most)
