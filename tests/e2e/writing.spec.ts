@@ -55,10 +55,10 @@ test('names, units, functions and quoted figures are offered while they are writ
 	await page.keyboard.type('Rs = paral');
 	await expect(offers(page).first()).toContainText('parallel');
 	await expect(page.locator('.cm-completionInfo')).toContainText('parallel(');
-	await page.keyboard.press('Enter');
+	await offers(page).first().click();
 	await page.keyboard.type('R1, 4.7 ko');
 	await expect(offers(page).first()).toContainText('kΩ');
-	await page.keyboard.press('Enter');
+	await offers(page).first().click();
 	await page.keyboard.press('End');
 	await expect.poll(() => lines(page, 1)).toContain('Rs = parallel(R1, 4.7 kΩ)');
 	await expect(figure(page, 'Rs')).toHaveText(/4\.65/);
@@ -68,7 +68,7 @@ test('names, units, functions and quoted figures are offered while they are writ
 	await page.keyboard.press('Enter');
 	await page.keyboard.type('rat');
 	await expect(offers(page).first()).toContainText('ratio');
-	await page.keyboard.press('Enter');
+	await offers(page).first().click();
 	await page.keyboard.type(' < 0.1');
 	await expect(page.locator('[data-kind=requirement] .line-requirement')).toHaveCount(2);
 
@@ -76,7 +76,7 @@ test('names, units, functions and quoted figures are offered while they are writ
 	await text.getByRole('button', { name: 'Edit text' }).click();
 	await page.keyboard.type(' The ratio is {{rat');
 	await expect(offers(page).first()).toContainText('ratio');
-	await page.keyboard.press('Enter');
+	await offers(page).first().click();
 	await page.keyboard.press('Escape');
 	await expect(text.locator('[data-quantity=ratio]')).toHaveText(/0\.065/);
 });
@@ -91,11 +91,11 @@ test('a name says what it is, leads to its definition and is renamed everywhere 
 		.hover({ position: { x: 10, y: 14 } });
 	await expect(card(page, 'Vadc')).toContainText(/2\.099\s*4\s*V/);
 	await expect(card(page, 'Vadc')).toContainText('Cell 2, line 4');
-	await shoot(page, 'editor-explanation', { whole: false });
 
 	await content(page, 2).click({ position: { x: 10, y: 14 } });
 	await page.keyboard.press('Alt+Shift+W');
 	await expect(card(page, 'Vadc')).toContainText('divider(Vmax, R1, R2)');
+	await shoot(page, 'editor-explanation', { whole: false });
 	await page.keyboard.press('Escape');
 	await expect(card(page, 'Vadc')).toHaveCount(0);
 	await page.keyboard.press('Alt+Shift+G');

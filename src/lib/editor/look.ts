@@ -52,7 +52,7 @@ export function look(): Extension {
 				fontSize: '12.5px',
 				textOverflow: 'ellipsis',
 			},
-			'.cm-tooltip.cm-completionInfo': { width: 'auto', padding: '0' },
+			'.cm-tooltip.cm-completionInfo': { width: 'max-content', maxWidth: '340px', padding: '0' },
 			'.cm-ySelectionCaret': { borderWidth: '0 0 0 2px', margin: '0 -1px', position: 'relative' },
 			'.cm-ySelectionCaretDot': { display: 'none' },
 			'.cm-ySelectionInfo': {

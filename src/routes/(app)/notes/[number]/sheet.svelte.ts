@@ -109,7 +109,10 @@ export class Sheet {
 	/** Announces how a cell takes the focus; call what it returns when the cell goes. */
 	addDoor(cellId: string, enter: (target: Target) => void): () => void {
 		this.#doors.set(cellId, enter);
-		return () => this.#doors.delete(cellId);
+		// An editor that took the cell over has announced itself by then.
+		return () => {
+			if (this.#doors.get(cellId) === enter) this.#doors.delete(cellId);
+		};
 	}
 
 	/** Attachment of the sheet: keeps in mind which cell the person is at. */
