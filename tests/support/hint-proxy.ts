@@ -2,7 +2,7 @@ import { once } from 'node:events';
 import { connect, createServer, type AddressInfo, type Socket } from 'node:net';
 
 /** What becomes of the notifications that PostgreSQL sends. */
-export type Fate = 'pass' | 'drop' | 'mangle';
+type Fate = 'pass' | 'drop' | 'mangle';
 
 /** A way to PostgreSQL that loses notifications, or delays, doubles and reorders them; all else passes. */
 export interface HintProxy {

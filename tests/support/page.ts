@@ -1,5 +1,5 @@
 import { vi } from 'vitest';
-import { WebSocket } from 'ws';
+import { WebSocket, type ClientOptions } from 'ws';
 import type { Evaluation } from '$lib/calc/results';
 import { WorkingCopy } from '$lib/client/working-copy.svelte';
 import { toContent, type NoteContent } from '$lib/note/document';
@@ -22,7 +22,7 @@ interface Visit {
 	epoch?: string;
 	person?: { id: string; name: string };
 	/** The kind of socket the page uses, where a test wants to see or disturb what goes over it. */
-	Socket?: typeof WebSocket;
+	Socket?: new (url: string, protocols: string[], options: ClientOptions) => WebSocket;
 }
 
 /** A page that has a note open: the same working copy as in a browser, over a socket of Node's. */

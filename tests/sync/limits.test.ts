@@ -166,8 +166,9 @@ test(
 		let index = 0;
 		await eventually(() => {
 			const parts = raw.received.filter(({ type }) => type === messageType.part);
-			const part = parts[index] && decodePart(decoding.clone(parts[index].decoder));
-			if (!part) return false;
+			const message = parts[index];
+			if (!message) return false;
+			const part = decodePart(decoding.clone(message.decoder));
 			expect(part.bytes.length).toBeLessThanOrEqual(maxPartBytes);
 			// No more than two come before the first is said to be there.
 			expect(parts.length).toBeLessThanOrEqual(index + 2);

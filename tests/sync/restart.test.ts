@@ -1,4 +1,5 @@
 import { readFileSync } from 'node:fs';
+import type { WorkingCopy } from '$lib/client/working-copy.svelte';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { probeLag } from '../support/lag';
 import {
@@ -107,7 +108,7 @@ test(`${crowd.notes * crowd.pages} pages are complete again within ${crowd.limit
 			signIn(await makeMember(bench.engineer, 'engineer')),
 		),
 	);
-	const pages = [];
+	const pages: WorkingCopy[] = [];
 	for (const [index, noteId] of noteIds.entries()) {
 		const opened = Array.from({ length: crowd.pages }, (_, page) => {
 			const cookie = cookies[(index * crowd.pages + page) % cookies.length]!;

@@ -69,11 +69,11 @@ export function formulas(md: MarkdownIt): void {
 	};
 	md.renderer.rules.formula = (tokens, index, _options, env) => {
 		const { content = '', markup } = tokens[index] ?? {};
-		return html(content, markup === '$$', env as Env);
+		return html(content, markup === '$$', env as unknown as Env);
 	};
 	// What is wider than the sheet scrolls inside itself.
 	md.renderer.rules.formula_block = (tokens, index, _options, env) =>
-		`<div class="table">${html(tokens[index]?.content ?? '', true, env as Env)}</div>\n`;
+		`<div class="table">${html(tokens[index]?.content ?? '', true, env as unknown as Env)}</div>\n`;
 }
 
 function lineOf({ src, bMarks, tShift, eMarks }: StateBlock, line: number): string {

@@ -24,7 +24,7 @@ interface Start {
 }
 
 /** Where the cursor comes in when a cell is entered with the keyboard. */
-export type Edge = 'start' | 'end';
+type Edge = 'start' | 'end';
 
 /** A piece of a cell's source that is entered, or only shown where the focus is to stay elsewhere. */
 interface Spot {
