@@ -1,17 +1,12 @@
-import { ensureSyntaxTree, indentUnit } from '@codemirror/language';
-import { EditorState } from '@codemirror/state';
-import { highlightTree } from '@lezer/highlight';
+import { matchBrackets } from '@codemirror/language';
+import { EditorState, Text } from '@codemirror/state';
 import { expect, test } from 'vitest';
-import { formulaLanguage, style } from './formula-language';
+import { colouredIn, formulaLanguage } from './formula-language';
 
-/** Colours of a source, as classes with what they colour. */
-function coloured(doc: string): string[] {
-	const state = EditorState.create({ doc, extensions: [formulaLanguage(), indentUnit.of('\t')] });
-	const found: string[] = [];
-	highlightTree(ensureSyntaxTree(state, doc.length, 5_000)!, style, (from, to, name) =>
-		found.push(`${name.replace('tk-', '')} ${doc.slice(from, to)}`),
-	);
-	return found;
+/** Colours of a source, with what they colour. */
+function coloured(source: string): string[] {
+	const doc = Text.of(source.split('\n'));
+	return [...colouredIn(doc)].map(({ kind, from, to }) => `${kind} ${source.slice(from, to)}`);
 }
 
 test('calls, numbers with units, texts and comments have their colours, names and signs none', () => {
@@ -30,4 +25,16 @@ test('calls, numbers with units, texts and comments have their colours, names an
 
 test('the name that a line defines has no colour, also that of a function', () => {
 	expect(coloured('f(x) = 2 * x')).toEqual(['number 2']);
+});
+
+test('brackets match, and close and comment as those of formulas do', () => {
+	const doc = 'a = (1 + [2, 3][1])';
+	const state = EditorState.create({ doc, extensions: formulaLanguage() });
+	expect(matchBrackets(state, 4, 1)).toMatchObject({
+		matched: true,
+		end: { from: doc.length - 1 },
+	});
+	const [first] = state.languageDataAt<{ brackets: string[] }>('closeBrackets', 5);
+	expect(first?.brackets).toEqual(['(', '[', '"']);
+	expect(state.languageDataAt<{ line: string }>('commentTokens', 5)[0]?.line).toBe('#');
 });

@@ -1,62 +1,73 @@
-import { HighlightStyle, StreamLanguage, syntaxHighlighting } from '@codemirror/language';
-import type { Extension } from '@codemirror/state';
-import { Tag } from '@lezer/highlight';
+import { javascriptLanguage } from '@codemirror/lang-javascript';
+import { EditorState, Prec, type Extension, type Range, type Text } from '@codemirror/state';
+import { Decoration, ViewPlugin, type EditorView, type ViewUpdate } from '@codemirror/view';
 import { splitLine, tokenize, type Token } from '$lib/components/lines';
 
 type Coloured = Exclude<Token['kind'], 'plain' | 'name'>;
 
-const tags: Record<Coloured, Tag> = {
-	call: Tag.define(),
-	number: Tag.define(),
-	unit: Tag.define(),
-	string: Tag.define(),
-	comment: Tag.define(),
+const marks: Record<Coloured, Decoration> = {
+	call: Decoration.mark({ class: 'tk-call' }),
+	number: Decoration.mark({ class: 'tk-number' }),
+	unit: Decoration.mark({ class: 'tk-unit' }),
+	string: Decoration.mark({ class: 'tk-string' }),
+	comment: Decoration.mark({ class: 'tk-comment' }),
 };
 
-/** Pieces of the line that is being read, and which of them comes next. */
-interface Reading {
-	pieces: readonly { kind: Token['kind']; to: number }[];
-	next: number;
+/** A stretch of text that has a colour. */
+interface Piece {
+	kind: Coloured;
+	from: number;
+	to: number;
 }
 
-/** The language of formulas for editors; its words are cut as those of the sheet are. */
-const language = StreamLanguage.define<Reading>({
-	name: 'formula',
-	startState: () => ({ pieces: [], next: 0 }),
-	copyState: (state) => ({ ...state }),
-	token(stream, state) {
-		if (stream.sol()) {
-			state.pieces = piecesOf(stream.string);
-			state.next = 0;
+/** What has a colour in formulas; the words are cut as those of the sheet are. */
+export function* colouredIn(doc: Text): Generator<Piece> {
+	for (let number = 1; number <= doc.lines; number++) {
+		const line = doc.line(number);
+		// What stands before a definition's equals sign is set as a name, in no colour.
+		const { formulaFrom } = splitLine(line.text);
+		let from = line.from + formulaFrom;
+		for (const { kind, text } of tokenize(line.text.slice(formulaFrom))) {
+			const to = from + text.length;
+			if (kind !== 'plain' && kind !== 'name') yield { kind, from, to };
+			from = to;
 		}
-		const piece = state.pieces[state.next++];
-		stream.pos = Math.max(stream.pos + 1, piece?.to ?? stream.string.length);
-		return piece && piece.kind !== 'plain' && piece.kind !== 'name' ? piece.kind : null;
-	},
-	tokenTable: tags,
-	languageData: {
-		closeBrackets: { brackets: ['(', '[', '"'] },
-		commentTokens: { line: '#' },
-	},
-});
-
-/** What stands before a definition's equals sign is set as a name, in no colour. */
-function piecesOf(line: string): Reading['pieces'] {
-	const { formulaFrom } = splitLine(line);
-	let to = formulaFrom;
-	const pieces = tokenize(line.slice(formulaFrom)).map(({ kind, text }) => ({
-		kind,
-		to: (to += text.length),
-	}));
-	return formulaFrom > 0 ? [{ kind: 'plain', to: formulaFrom }, ...pieces] : pieces;
+	}
 }
 
-/** Classes of the colours. */
-export const style = HighlightStyle.define(
-	Object.entries(tags).map(([kind, tag]) => ({ tag, class: `tk-${kind}` })),
-);
+class Colours {
+	decorations;
 
-/** Formulas: their words for colours, brackets and comments. */
+	constructor({ state }: EditorView) {
+		this.decorations = decorate(state);
+	}
+
+	update({ docChanged, state }: ViewUpdate): void {
+		if (docChanged) this.decorations = decorate(state);
+	}
+}
+
+function decorate({ doc }: EditorState) {
+	const ranges: Range<Decoration>[] = [];
+	for (const { kind, from, to } of colouredIn(doc)) ranges.push(marks[kind].range(from, to));
+	return Decoration.set(ranges);
+}
+
+/**
+ * Formulas: their words for colours, brackets and comments. The grammar of JavaScript lies under them, as its brackets,
+ * numbers and texts in quotes are those of formulas.
+ */
 export function formulaLanguage(): Extension {
-	return [language, syntaxHighlighting(style)];
+	return [
+		Prec.high(
+			EditorState.languageData.of(() => [
+				{
+					closeBrackets: { brackets: ['(', '[', '"'] },
+					commentTokens: { line: '#' },
+				},
+			]),
+		),
+		javascriptLanguage,
+		ViewPlugin.fromClass(Colours, { decorations: (plugin) => plugin.decorations }),
+	];
 }
