@@ -31,7 +31,7 @@ const lost = 'Connection lost. Edits are kept and sent when it returns.';
 
 /** At most 123 bytes each, the room in a close frame. */
 const sentences: Readonly<Record<number, string>> = {
-	[closeCode.tooBig]: 'An edit was too large to be sent. Undo it, or bring it in in parts.',
+	[closeCode.tooBig]: 'An edit was too large to be sent. Reload the note and bring it in in parts.',
 	[closeCode.restarting]: 'The server restarts. Edits are kept and sent in a moment.',
 	[closeCode.malformed]:
 		'The server could not read a message of this page. Reload the page to go on.',
