@@ -105,9 +105,11 @@ export function results(): Extension {
 
 /** Puts a fault's replacement where the fault stands now. */
 function mend(view: EditorView, fault: Fault): void {
+	// A note under a line stays while its fault does; newer results hold an equal fault, not the same.
+	const text = JSON.stringify(fault);
 	const place = view.state
 		.field(field)
-		.list.find((result) => result.kind === 'fault' && result.fault === fault);
+		.list.find((result) => result.kind === 'fault' && JSON.stringify(result.fault) === text);
 	if (place?.kind !== 'fault' || view.state.readOnly) return;
 	const note = view.state.facet(noteContext);
 	if (fault.rename && note) return note.rename(fault.rename.from, fault.rename.to);
