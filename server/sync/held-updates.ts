@@ -1,9 +1,11 @@
 /** Longest time in ms that a change waits for its figures. */
 const longest = 15;
+/** Pages of a note up to which changes wait. */
+const few = 3;
 
 /**
- * Changes on their way to the other pages. They wait for the few milliseconds that their figures take, so that a page
- * gets both at once and is laid out once.
+ * Changes on their way to the other pages. Among few pages they wait for the few milliseconds that their figures take,
+ * so that a page gets both at once and is laid out once; in a crowd nothing waits.
  */
 export class HeldUpdates {
 	readonly #send: (message: Uint8Array, origin: unknown) => void;
@@ -14,9 +16,10 @@ export class HeldUpdates {
 		this.#send = send;
 	}
 
-	add(message: Uint8Array, origin: unknown): void {
+	add(message: Uint8Array, origin: unknown, pages: number): void {
 		this.#held.push({ message, origin });
-		this.#timer ??= setTimeout(() => this.release(), longest);
+		if (pages > few) this.release();
+		else this.#timer ??= setTimeout(() => this.release(), longest);
 	}
 
 	/** Sends what waits, in its order. */

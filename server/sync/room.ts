@@ -118,7 +118,7 @@ export class Room {
 		);
 		this.#doc.on('update', (bytes: Uint8Array, origin: unknown) => {
 			this.#version += 1;
-			this.#held.add(outgoing.update(bytes), origin);
+			this.#held.add(outgoing.update(bytes), origin, this.connections.size);
 			this.#scheduler.request();
 		});
 	}

@@ -8,6 +8,8 @@ import type { Actor } from '$lib/server/auth/access';
 import { createDatabase } from '../support/database';
 import { makeMember, makeTeam, signIn } from '../support/people';
 import { startSyncServer, type SyncServer } from '../support/server';
+import { sixtyLines } from './sixty-lines';
+import { memoryRow, openingRow } from './opening';
 import { Crowd, type Heard, type Seat, type Session } from './crowd';
 import { quantile, row, type Row } from './row';
 
@@ -20,10 +22,12 @@ export async function loadRows(): Promise<Row[]> {
 	const place = await Place.make(server);
 	try {
 		return [
+			await memoryRow(server, await place.seats(200, 1, sixtyLines)),
 			...(await oneNote(place, relay.url)),
 			...(await figures(place)),
 			...(await durable(place)),
 			...(await manyEditors(place)),
+			await openingRow((await place.seats(1, 1, sixtyLines))[0]![0]!, place.author),
 		];
 	} finally {
 		relay.stop();
@@ -49,6 +53,11 @@ class Place {
 			people.push({ actor, cookie: await signIn(actor) });
 		}
 		return new Place(server, people);
+	}
+
+	/** Who makes the notes. */
+	get author(): string {
+		return this.people[0]!.actor.personId;
 	}
 
 	/** Seats of so many people on each of so many new notes. */
