@@ -179,7 +179,7 @@ test('who may not write sees the sheet with its figures and can comment', async 
 	await expect(page.locator('[contenteditable=true]')).toHaveCount(0);
 	await expect(page.getByRole('button', { name: 'Propose for check' })).toHaveCount(0);
 	await terminal(page, 1).click();
-	await expect(page.getByRole('menuitem')).toHaveText(['Comment']);
+	await expect(page.getByRole('menuitem')).toHaveText(['Comment', 'Fold']);
 });
 
 test('nothing moves when the editors take the place of the first paint', async ({ page }) => {

@@ -140,7 +140,6 @@ test('faults are mended by a key: where they stand, at the end of the line, in a
 	await expect(page.locator('[data-fault=reserved]')).toContainText('coulomb');
 	await shoot(page, 'editor-faults', { whole: false });
 	await page.getByRole('button', { name: 'Rename to C1' }).first().click();
-	await page.getByRole('button', { name: 'Rename', exact: true }).click();
 	await expect(figure(page, 'tau')).toHaveText(/4\.7\s*ms/);
 	await page.keyboard.press('Alt+Shift+E');
 	await page.keyboard.press('Alt+Shift+M');

@@ -13,6 +13,7 @@ import { Finder } from './finder.svelte';
 import type LineDetailType from './detail/LineDetail.svelte';
 import { MarginPlaces } from './margin-places';
 import { Nearness } from './nearness';
+import { rename } from './rename';
 import { Settled } from './settled.svelte';
 
 interface Start {
@@ -36,7 +37,7 @@ interface Spot {
 export type Target = Edge | Spot;
 
 /** What stands at the sheet's foot: finding, renaming, the list of actions, the list of keys. */
-type Tool = { kind: 'find' | 'actions' | 'keys' } | { kind: 'rename'; name: string; next: string };
+type Tool = { kind: 'find' | 'actions' | 'keys' } | { kind: 'rename'; name: string };
 
 /** The editor that has, or had last, the focus. */
 interface ActiveEditor {
@@ -102,7 +103,10 @@ export class Sheet {
 				return copy.evaluation;
 			},
 			go: (place) => this.go(place),
-			rename: (name, next) => (this.tool = { kind: 'rename', name, next: next ?? name }),
+			rename: (name, next) => {
+				if (next === undefined) this.tool = { kind: 'rename', name };
+				else void rename(this, name, next);
+			},
 		};
 	}
 
