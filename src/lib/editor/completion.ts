@@ -1,6 +1,7 @@
 import {
 	autocompletion,
 	closeCompletion,
+	completionKeymap,
 	completionStatus,
 	selectedCompletion,
 	type Completion,
@@ -8,7 +9,7 @@ import {
 	type CompletionResult,
 } from '@codemirror/autocomplete';
 import { Prec, type Extension } from '@codemirror/state';
-import { keymap, type EditorView } from '@codemirror/view';
+import { keymap, type EditorView, type KeyBinding } from '@codemirror/view';
 import type { Vocabulary } from '$lib/calc/language/vocabulary';
 import type { NoteCell } from '$lib/note/document';
 import { cardOf } from './fact-card';
@@ -20,17 +21,28 @@ import { vocabulary, vocabularyNow } from './vocabulary';
 /** Offers names, units, functions and constants while a formula or a quoted figure is written. */
 export function completion(kind: NoteCell['kind']): Extension {
 	return [
-		// Before the key that takes what is offered.
-		Prec.highest(keymap.of([{ key: 'Enter', run: leaveWhole }])),
+		Prec.highest(keymap.of(keys)),
 		autocompletion({
 			override: [(context) => complete(context, kind)],
 			icons: false,
+			defaultKeymap: false,
 			// Names stand in the order of the sheet where nothing else tells them apart.
 			compareCompletions: () => 0,
 			addToOptions: [{ render: detailOf, position: 90 }],
 		}),
 	];
 }
+
+const keys: readonly KeyBinding[] = [
+	// Before the key that takes what is offered.
+	{ key: 'Enter', run: leaveWhole },
+	...completionKeymap.filter(({ key }) => key !== 'Escape'),
+	// What is only being looked for must not keep a person from leaving.
+	{
+		key: 'Escape',
+		run: (view) => completionStatus(view.state) === 'active' && closeCompletion(view),
+	},
+];
 
 /** What is offered is written already: Enter is a new line. */
 function leaveWhole(view: EditorView): boolean {
