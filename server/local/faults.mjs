@@ -1,12 +1,10 @@
-import { spawn } from 'node:child_process';
-import { once } from 'node:events';
 import { parseArgs } from 'node:util';
 import { installTracer } from './debian.mjs';
 import { alone } from './lock.mjs';
-import { root } from './place.mjs';
 import { release } from './postgres.mjs';
 import { Problem, report } from './problem.mjs';
 import { step } from './progress.mjs';
+import { runInstalled } from './running.mjs';
 import { setUp } from './set-up.mjs';
 
 /** `npm run faults [-- --seed N --only id,id]`: sets up as the tests do, then breaks what can break, in the long form. */
@@ -16,17 +14,11 @@ try {
 		await setUp(['postgresql']);
 		await step('Program to trace with', installTracer);
 	});
-	const words = ['run', '--project', 'faults', '--reporter', 'verbose'];
-	const child = spawn('node_modules/.bin/vitest', words, {
-		cwd: root,
-		env: { ...process.env, FAULTS_FORM: 'full', FAULTS_SEED: seed, FAULTS_ONLY: only },
-		stdio: 'inherit',
+	await runInstalled('vitest', ['run', '--project', 'faults', '--reporter', 'verbose'], {
+		FAULTS_FORM: 'full',
+		FAULTS_SEED: seed,
+		FAULTS_ONLY: only,
 	});
-	for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM'])) {
-		process.on(signal, () => child.kill(signal));
-	}
-	const [code] = await once(child, 'exit');
-	process.exitCode = /** @type {number | null} */ (code) ?? 1;
 } catch (error) {
 	report(error);
 	process.exitCode = 1;

@@ -1,3 +1,5 @@
+import { lined } from '../support/table';
+
 /** One measured figure against what it should be and, where there is one, what another way of doing it takes. */
 export interface Row {
 	/** Area and name: `engine.…`, `sync.…`, `page.…`, `setup.…`. */
@@ -51,17 +53,7 @@ export function table(rows: readonly Row[]): string {
 		one.most === null ? '' : String(one.most),
 		one.ok ? 'yes' : 'NO',
 	]);
-	const widths = head.map((title, column) =>
-		Math.max(title.length, ...cells.map((line) => line[column]?.length ?? 0)),
-	);
-	return [head, ...cells]
-		.map((line) =>
-			line
-				.map((text, column) => text.padEnd(widths[column] ?? 0))
-				.join('  ')
-				.trimEnd(),
-		)
-		.join('\n');
+	return lined([head, ...cells]);
 }
 
 /** The value below which this share of the sample lies. */

@@ -1,4 +1,3 @@
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { eq } from 'drizzle-orm';
 import { listQuery } from '$lib/schemas/notes';
 import type { Actor } from '$lib/server/auth/access';
@@ -11,6 +10,7 @@ import { fill } from '../../server/local/demonstration-database.mjs';
 import { inData } from '../../server/local/place.mjs';
 import { firstFree } from '../../server/local/ports.mjs';
 import { endEarlier, serve, settings } from '../../server/local/serving.mjs';
+import { keep } from '../support/table';
 import { openBrowser, signIn } from './browser';
 import { engineRows } from './engine';
 import { loadRows } from './load';
@@ -32,12 +32,7 @@ if (wants('load')) rows.push(...(await loadRows()));
 if (wants('signing')) rows.push(...(await signingRows()));
 if (wants('setup')) rows.push(...(await setupRows()));
 
-const file = 'test-results/bench.json';
-mkdirSync('test-results', { recursive: true });
-// Rows of areas that were not measured now stay as they are.
-const earlier = existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as Row[]) : [];
-const kept = earlier.filter(({ id }) => !rows.some((row) => row.id === id));
-writeFileSync(file, `${JSON.stringify([...kept, ...rows], null, '\t')}\n`);
+keep('bench.json', rows);
 process.stdout.write(`\n${table(rows)}\n`);
 if (!rows.every((row) => row.ok)) process.exitCode = 1;
 

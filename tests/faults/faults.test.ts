@@ -4,7 +4,8 @@ import { runFault } from './fault';
 import { watchFlushes } from './flushed';
 import { readForm } from './form';
 import { judge } from './judge';
-import { keep, table, type Told } from './row';
+import { table, type Told } from './row';
+import { keep } from '../support/table';
 import { Site } from './site';
 import { Spoilt } from './spoilt';
 import { Stage } from './stage';
@@ -23,7 +24,11 @@ beforeAll(async () => {
 });
 
 afterAll(async () => {
-	if (form.isFull) keep(told.map(({ row }) => row));
+	if (form.isFull)
+		keep(
+			'faults.json',
+			told.map(({ row }) => row),
+		);
 	process.stdout.write(`\n${table(told)}\n`);
 	await site.close();
 });

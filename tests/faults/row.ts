@@ -1,4 +1,4 @@
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { lined } from '../support/table';
 
 /** What came of one fault. */
 export interface Row {
@@ -38,24 +38,5 @@ export function table(told: readonly Told[]): string {
 		`${seconds.toFixed(0)} s`,
 		row.ok ? 'yes' : 'NO',
 	]);
-	const widths = head.map((title, column) =>
-		Math.max(title.length, ...cells.map((line) => line[column]?.length ?? 0)),
-	);
-	return [head, ...cells]
-		.map((line) =>
-			line
-				.map((text, column) => text.padEnd(widths[column] ?? 0))
-				.join('  ')
-				.trimEnd(),
-		)
-		.join('\n');
-}
-
-/** Writes rows to `test-results/faults.json`; those of faults that were not run now stay as they are. */
-export function keep(rows: readonly Row[]): void {
-	const file = 'test-results/faults.json';
-	mkdirSync('test-results', { recursive: true });
-	const earlier = existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as Row[]) : [];
-	const kept = earlier.filter(({ id }) => !rows.some((row) => row.id === id));
-	writeFileSync(file, `${JSON.stringify([...kept, ...rows], null, '\t')}\n`);
+	return lined([head, ...cells]);
 }
