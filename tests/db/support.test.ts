@@ -18,11 +18,13 @@ test('a test file has a migrated database of its own', async () => {
 	expect(tables.rowCount).toBe(1);
 });
 
-test('the application works as a role that is no superuser and owns its database', async () => {
+test('the application works as a role that is no superuser and owns neither its database nor a table', async () => {
 	const found = await db().execute(sql`
-		select rolsuper, pg_get_userbyid(datdba) = current_user as owner
+		select rolsuper,
+			pg_get_userbyid(datdba) = current_user
+				or exists (select 1 from pg_tables where tableowner = current_user) as owner
 		from pg_roles, pg_database where rolname = current_user and datname = current_database()`);
-	expect(found.rows).toEqual([{ rolsuper: false, owner: true }]);
+	expect(found.rows).toEqual([{ rolsuper: false, owner: false }]);
 });
 
 test('durability is on', async () => {
