@@ -13,10 +13,11 @@ test('in a note of 2,000 lines only cells near the window have editors, and any 
 	for (let n = 1; n <= 5; n++) await addCell(page, 'calculation', cell(n).join('\n'));
 	await expect(page.locator('[data-saving]')).toHaveText(/^Saved/);
 	await page.reload();
-	// A browser that loads a page again goes where it was.
-	await page.evaluate(() => scrollTo(0, 0));
 	await expect(page.locator('.cm-content').first()).toBeVisible();
 	await expect(page.getByRole('link', { name: /^x5_399, 404$/ })).toBeVisible();
+	// A page that is loaded again goes where it was.
+	await page.evaluate(() => scrollTo(0, 0));
+	await expect(page.locator('.cm-line', { hasText: 'x1_5 =' })).toBeVisible();
 	expect(await page.locator('.cm-content').count()).toBeLessThan(5);
 
 	// From the key's event to the end of all work that it makes before the next frame.
