@@ -1,3 +1,4 @@
+import { setTimeout as wait } from 'node:timers/promises';
 import pg from 'pg';
 import { databaseUrl } from './postgres.mjs';
 
@@ -17,9 +18,19 @@ export async function createDatabase(name, template = 'template1') {
  * @param {string} name
  */
 export async function dropDatabase(name) {
-	await administer((client) =>
-		client.query(`drop database if exists ${quoted(name)} with (force)`),
-	);
+	await administer(async (client) => {
+		for (let left = 50; ; left--) {
+			try {
+				await client.query(`drop database if exists ${quoted(name)} with (force)`);
+				return;
+			} catch (error) {
+				// The database's own vacuum is at work in it, which only a superuser may end; it is done in a moment.
+				const isVacuum = error instanceof pg.DatabaseError && error.code === '42501';
+				if (!isVacuum || left === 0) throw error;
+				await wait(100);
+			}
+		}
+	});
 }
 
 /**

@@ -6,7 +6,8 @@ import { writer } from './writer';
 
 /** An edit on its way into the database, and whom to tell when it is there. */
 export interface Entry<Sender> extends Edit {
-	sender: Sender;
+	/** Pages that sent it: the same person's tabs may send what one of them had kept. */
+	senders: Sender[];
 }
 
 interface Events<Sender> {
@@ -45,11 +46,11 @@ export class Journal<Sender> {
 		return this.#unsaved.size < maxUnsaved.edits && this.#bytes < maxUnsaved.bytes;
 	}
 
-	/** Takes an edit. One that is on its way already is not taken twice, but told to its newest sender. */
+	/** Takes an edit. One that is on its way already is not taken twice, but told to all who sent it. */
 	add(entry: Entry<Sender>): void {
 		const known = this.#unsaved.get(entry.id);
 		if (known) {
-			known.sender = entry.sender;
+			known.senders.push(...entry.senders.filter((sender) => !known.senders.includes(sender)));
 			return;
 		}
 		this.#unsaved.set(entry.id, entry);

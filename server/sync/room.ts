@@ -269,7 +269,7 @@ export class Room {
 			clients: finding.clients,
 			cells,
 			...(before && { completed: completedSince(this.#doc, Y.decodeStateVector(before), by) }),
-			sender: connection,
+			senders: [connection],
 		});
 		this.#askForMissing(connection);
 		return true;
@@ -300,13 +300,11 @@ export class Room {
 		log().error({ err: error, noteId: this.noteId }, 'a room was given up');
 		const wrong =
 			error instanceof AppError && error.code === 'conflict' ? error.details : undefined;
-		for (const { id, sender } of entries) {
+		const reason =
+			'This change is not taken. It was written under the name of somebody else’s page.';
+		for (const { id, senders } of entries) {
 			if (!Array.isArray(wrong?.ids) || !wrong.ids.includes(id)) continue;
-			refuse(
-				sender,
-				id,
-				'This change is not taken. It was written under the name of somebody else’s page.',
-			);
+			for (const sender of senders) refuse(sender, id, reason);
 		}
 		this.#events.onBroken(this);
 	}
@@ -324,8 +322,8 @@ export class Room {
 	#onSaved(entries: readonly Entry<Connection>[], appended: Appended): void {
 		const { seq, at } = appended;
 		const idsOf = new Map<Connection, string[]>();
-		for (const { id, sender } of entries) {
-			idsOf.set(sender, [...(idsOf.get(sender) ?? []), id]);
+		for (const { id, senders } of entries) {
+			for (const sender of senders) idsOf.set(sender, [...(idsOf.get(sender) ?? []), id]);
 		}
 		for (const [connection, ids] of idsOf) {
 			const saved: Saved = { ids, seq, at: at.toISOString() };
@@ -345,11 +343,11 @@ export class Room {
 			return;
 		}
 		this.#authors.know(
-			entries.flatMap(({ cells, personId, sender }, index) =>
+			entries.flatMap(({ cells, personId, senders }, index) =>
 				cells.map((cellId) => ({
 					cellId,
 					personId,
-					name: sender.actor.name,
+					name: senders[0]?.actor.name ?? '',
 					seq: first + index,
 					at,
 				})),

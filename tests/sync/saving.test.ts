@@ -156,3 +156,22 @@ test('a process that is asked to end stores what it took, says so, and asks page
 	expect(await ending).toBe(0);
 	expect((await storedContent(noteId)).title).toContain('Last words');
 });
+
+test('an edit that two tabs send at once is stored once, and both hear of it', async () => {
+	const noteId = await bench.makeNote('');
+	const cookie = bench.cookie;
+	const [one, other] = await Promise.all([
+		new RawSocket(bench.server, noteId, { cookie }).greeted(),
+		new RawSocket(bench.server, noteId, { cookie }).greeted(),
+	]);
+	const doc = new Y.Doc();
+	doc.getText('title').insert(0, 'Twice ');
+	const message = encodeEdit('twice', Y.encodeStateAsUpdate(doc));
+	one.send(message);
+	other.send(message);
+	const heard = (socket: RawSocket) =>
+		socket.bodies<Saved>(messageType.saved).some(({ ids }) => ids.includes('twice'));
+	await eventually(() => heard(one) && heard(other));
+	expect((await storedContent(noteId)).title.split('Twice')).toHaveLength(2);
+	await Promise.all([one.close(), other.close()]);
+});
