@@ -62,7 +62,8 @@ export const postgresSlow: Fault = {
 			for (const { back } of stage.site.posts) back.delayMs = delayMs;
 			stage.injected += 1;
 			if (delayMs < 1000) await pause(5000);
-			else await outage(stage, delayMs);
+			// The answer to a commit that was on its way comes after the delay, and rightly counts.
+			else await outage(stage, delayMs - 500);
 			for (const { back } of stage.site.posts) back.mend();
 			await stage.recovers();
 		}

@@ -146,7 +146,7 @@ async function store(
 	const time = sql`${at.toISOString()}::timestamptz`;
 	await tx.execute(sql`
 		with stored as (
-			insert into note_update (note_id, seq, client_edit_id, person_id, at, bytes, cells)
+			insert into "note_update" (note_id, seq, client_edit_id, person_id, at, bytes, cells)
 			select note_id, seq, client_edit_id, person_id, ${time}, decode(bytes, 'base64'), cells
 			from jsonb_to_recordset(${json(rows)})
 				as (note_id uuid, seq bigint, client_edit_id text, person_id text, bytes text, cells text[])
