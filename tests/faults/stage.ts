@@ -6,8 +6,11 @@ import { makeTestNote, storedView, type TestNote } from './test-note';
 import { comesTrue, pause, until } from './until';
 import { Writer } from './writer';
 
-/** Longest time in ms that a service may take to serve again, once what was broken is whole. */
-const recoveryMs = 10_000;
+/**
+ * Longest time in ms that a service may take to serve again, once what was broken is whole. The short form runs beside
+ * other tests on busy machines and only asks that it serves again at all.
+ */
+const recoveryMs = { full: 10_000, short: 60_000 };
 
 export interface Size {
 	notes: number;
@@ -96,7 +99,7 @@ export class Stage {
 		const came = await comesTrue(done, 60_000);
 		const tookMs = performance.now() - from;
 		this.slowestMs = Math.max(this.slowestMs, tookMs);
-		if (!came || tookMs > recoveryMs)
+		if (!came || tookMs > (this.isFull ? recoveryMs.full : recoveryMs.short))
 			this.complain(`it took ${Math.round(tookMs)} ms to recover${came ? '' : ', and went on'}`);
 	}
 
