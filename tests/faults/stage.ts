@@ -121,7 +121,7 @@ export class Stage {
 	}
 
 	/** Waits for everything to settle, up to so long, and gives the evidence, note by note. */
-	async evidence(patienceMs = recoveryMs): Promise<Evidence[]> {
+	async evidence(patienceMs = recoveryMs.full): Promise<Evidence[]> {
 		await this.rest();
 		const saved = () => this.writers.every((writer) => writer.isSaved);
 		if (!(await comesTrue(saved, 30_000))) this.complain('a page was not saved at the end');
