@@ -137,7 +137,9 @@ test('a frozen revision ships no scripts and carries its seal and signatures', a
 	const bands = digest.replaceAll(/\D/g, '').slice(0, 5).split('').join(' ');
 	await expect(page.getByRole('img', { name: `Seal ${bands}` }).first()).toBeVisible();
 	for (const meaning of ['Prepared', 'Checked', 'Approved']) {
-		await expect(page.getByRole('row', { name: new RegExp(`^${meaning}.* .+ UTC$`) })).toBeVisible();
+		await expect(
+			page.getByRole('row', { name: new RegExp(`^${meaning}.* .+ UTC$`) }),
+		).toBeVisible();
 	}
 });
 
