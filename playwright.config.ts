@@ -18,6 +18,7 @@ export default defineConfig({
 	use: {
 		baseURL: `http://localhost:${port}`,
 		trace: 'retain-on-failure',
+		actionTimeout: 30_000,
 		launchOptions: {
 			executablePath: chromium,
 			args: [

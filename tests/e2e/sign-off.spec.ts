@@ -16,7 +16,7 @@ async function propose(page: Page, purpose: string, changes?: string) {
 	await page.getByRole('button', { name: 'Propose for check' }).click();
 	const dialog = page.getByRole('dialog');
 	await dialog.getByLabel('What revision A is for').fill(purpose);
-	if (changes !== undefined) await dialog.getByLabel(/^What changed since/).fill(changes);
+	if (changes !== undefined) await dialog.getByLabel(/What changed since/).fill(changes);
 	await dialog.getByLabel('Cass Kettering').check();
 	await dialog.getByLabel('Who is asked to approve').selectOption({ label: 'Anouk Halder' });
 	await dialog.getByLabel('Wanted by').fill('2026-12-24');
@@ -32,7 +32,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	test.setTimeout(240_000);
 	const administrator = await arrive(browser, 'administrator');
 	await administrator.goto('/team/policy');
-	const waive = administrator.getByLabel(/^The approver may waive requirements/);
+	const waive = administrator.getByLabel(/The approver may waive requirements/);
 	await waive.check();
 	await administrator.getByRole('button', { name: 'Set the policy' }).click();
 	await expect(administrator.getByRole('status')).toHaveText('The policy is set.');
@@ -74,7 +74,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	const policy = approver.getByRole('list', { name: 'What the team’s policy asks' });
 	await expect(policy).toContainText('is not met.');
 	await approver.getByLabel(/Reason why it is waived/).fill('The input is clamped at 2.5 V.');
-	await approver.getByLabel(/^I acknowledge the caution/).check();
+	await approver.getByLabel(/I acknowledge the caution/).check();
 	await approver.getByLabel('Your password').first().fill(demoPassword);
 	await shoot(approver, 'candidate-waiver');
 	await approver.getByRole('button', { name: 'Approve and freeze' }).click();
@@ -103,7 +103,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	const outcome = stranger.getByRole('status', { name: 'Outcome' });
 	const drop = async (content: string) => {
 		await stranger.goto('/verify');
-		await stranger.getByLabel(/^Drop the JSON file/).setInputFiles({
+		await stranger.getByLabel(/Drop the JSON file/).setInputFiles({
 			name: `${number}-A.json`,
 			mimeType: 'application/json',
 			buffer: Buffer.from(content),
@@ -118,7 +118,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	await expect(outcome).toContainText('Its content is not what was sealed.');
 	await shoot(stranger, 'verify-altered');
 	await stranger.goto('/verify');
-	await stranger.getByLabel(/^Or type its digest/).fill(digest);
+	await stranger.getByLabel(/Or type its digest/).fill(digest);
 	await stranger.getByRole('button', { name: 'Verify' }).click();
 	await expect(outcome).toContainText(`${number}, revision A`);
 	await expect(outcome).not.toContainText('Siren capacitor');
