@@ -1,7 +1,7 @@
 import { lined } from '../support/table';
 
 /** What came of one fault. */
-export interface Row {
+interface Row {
 	id: string;
 	fault: string;
 	/** Times it was brought about. */
