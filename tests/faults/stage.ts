@@ -6,11 +6,8 @@ import { makeTestNote, storedView, type TestNote } from './test-note';
 import { comesTrue, pause, until } from './until';
 import { Writer } from './writer';
 
-/**
- * Longest time in ms that a service may take to serve again, once what was broken is whole. The short form runs beside
- * other tests on busy machines and only asks that it serves again at all.
- */
-const recoveryMs = { full: 10_000, short: 60_000 };
+/** Longest time in ms that a service may take to serve again, once what was broken is whole. */
+const recoveryMs = 10_000;
 
 export interface Size {
 	notes: number;
@@ -99,7 +96,7 @@ export class Stage {
 		const came = await comesTrue(done, 60_000);
 		const tookMs = performance.now() - from;
 		this.slowestMs = Math.max(this.slowestMs, tookMs);
-		if (!came || tookMs > (this.isFull ? recoveryMs.full : recoveryMs.short))
+		if (!came || tookMs > recoveryMs)
 			this.complain(`it took ${Math.round(tookMs)} ms to recover${came ? '' : ', and went on'}`);
 	}
 
@@ -121,7 +118,7 @@ export class Stage {
 	}
 
 	/** Waits for everything to settle, up to so long, and gives the evidence, note by note. */
-	async evidence(patienceMs = recoveryMs.full): Promise<Evidence[]> {
+	async evidence(patienceMs = recoveryMs): Promise<Evidence[]> {
 		await this.rest();
 		const saved = () => this.writers.every((writer) => writer.isSaved);
 		if (!(await comesTrue(saved, 30_000))) this.complain('a page was not saved at the end');
