@@ -8,25 +8,10 @@ import {
 	moveCell,
 	placedCells,
 	removeCell,
-	seedContent,
 	titleOf,
 	toContent,
 } from './document';
-
-function noteOf(...sources: string[]): Y.Doc {
-	const doc = new Y.Doc();
-	seedContent(doc, {
-		title: 'Divider',
-		cells: sources.map((source) => ({ kind: 'calculation', source })),
-	});
-	return doc;
-}
-
-function replicaOf(doc: Y.Doc): Y.Doc {
-	const replica = new Y.Doc();
-	Y.applyUpdate(replica, Y.encodeStateAsUpdate(doc));
-	return replica;
-}
+import { noteOf, replicaOf } from '../../../tests/support/documents';
 
 const steps = fc.array(
 	fc.record({
