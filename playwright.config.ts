@@ -10,7 +10,8 @@ export default defineConfig({
 	testDir: 'tests/e2e',
 	outputDir: 'test-results/browser',
 	forbidOnly: true,
-	retries: 0,
+	// Who needed the second try is named in the output of the whole run.
+	retries: 1,
 	workers: 1,
 	timeout: 90_000,
 	expect: { timeout: 10_000 },

@@ -65,8 +65,10 @@ async function runCheck(check) {
 		const result = await check.run();
 		passed += result.passed;
 		failed += result.failed;
-		if (result.failed > 0) output = result.output;
-		return `${result.passed} passed, ${result.failed} failed`;
+		const { again = 0 } = result;
+		if (result.failed > 0 || again > 0) output = result.output;
+		const line = `${result.passed} passed, ${result.failed} failed`;
+		return again > 0 ? `${line} (${again} passed at the second try)` : line;
 	});
 	if (output) process.stdout.write(`\n${output.trim()}\n\n`);
 }

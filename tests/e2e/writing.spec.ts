@@ -81,6 +81,26 @@ test('names, units, functions and quoted figures are offered while they are writ
 	await expect(text.locator('[data-quantity=ratio]')).toHaveText(/0\.065/);
 });
 
+test('offers stay under their line when a message above the sheet moves it', async ({
+	page,
+	context,
+}) => {
+	await dividerNote(page, 'Offers that follow');
+	await page.keyboard.type('ratio = Va');
+	await expect(offers(page).first()).toContainText('Vadc');
+	const gap = async () => {
+		const line = await content(page, 1).locator('.cm-line', { hasText: 'ratio =' }).boundingBox();
+		const list = await page.locator('.cm-tooltip-autocomplete').boundingBox();
+		return line && list ? Math.round(list.y - line.y) : undefined;
+	};
+	const before = await gap();
+	expect(before).toBeGreaterThan(10);
+	await context.setOffline(true);
+	await expect(page.getByRole('alert')).toContainText('Connection lost');
+	await expect.poll(gap).toBe(before);
+	await context.setOffline(false);
+});
+
 test('a name says what it is, leads to its definition and is renamed everywhere as one step', async ({
 	page,
 }) => {

@@ -1,22 +1,18 @@
 import { closeBrackets, closeBracketsKeymap } from '@codemirror/autocomplete';
 import { bracketMatching } from '@codemirror/language';
 import { Prec, type Extension } from '@codemirror/state';
-import { keymap, tooltips, type EditorView } from '@codemirror/view';
+import { keymap, type EditorView } from '@codemirror/view';
 import type { NoteCell } from '$lib/note/document';
 import { completion } from './completion';
 import { explanation } from './explanation';
 import { wordAt, type Found } from './facts';
 import { noteContext } from './note-context';
+import { overTheSheet } from './over-the-sheet';
 import { definitionOf } from './uses';
 
 /** What a cell's editor needs when somebody comes to it: offers, explanations, brackets. Loaded then, not with the page. */
 export function writing(kind: NoteCell['kind']): Extension {
-	return [
-		tooltips({ parent: document.body, position: 'fixed' }),
-		completion(kind),
-		explanation(kind),
-		...(kind === 'text' ? [] : brackets),
-	];
+	return [overTheSheet, completion(kind), explanation(kind), ...(kind === 'text' ? [] : brackets)];
 }
 
 /** An opening bracket brings its closing one, which goes when the opening one is taken back. */
