@@ -1,5 +1,6 @@
 import type { Evaluation } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
+import type { AttachedTrial, TrialChange } from '$lib/schemas/trial';
 import {
 	bigint,
 	boolean,
@@ -169,7 +170,27 @@ export const comment = pgTable(
 			.notNull()
 			.references(() => person.id),
 		body: text('body').notNull(),
+		/** Changed inputs that the comment speaks of, and what they moved then. */
+		trial: jsonb('trial').$type<AttachedTrial>(),
 		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
 	},
 	(t) => [index('comment_thread').on(t.threadId, t.at)],
+);
+
+/** Changed inputs of a note that a person keeps for themselves. */
+export const keptTrial = pgTable(
+	'kept_trial',
+	{
+		id: uuid('id').primaryKey().defaultRandom(),
+		noteId: uuid('note_id')
+			.notNull()
+			.references(() => note.id),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+		title: text('title').notNull(),
+		changes: jsonb('changes').$type<TrialChange[]>().notNull(),
+		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
+	},
+	(t) => [index('kept_trial_person').on(t.noteId, t.personId, t.at)],
 );
