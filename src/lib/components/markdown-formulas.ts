@@ -81,7 +81,7 @@ function lineOf({ src, bMarks, tShift, eMarks }: StateBlock, line: number): stri
 }
 
 /** A quoted figure within a formula is its value. */
-function withFigures(tex: string, find: FindReadout): string {
+export function withFigures(tex: string, find: FindReadout): string {
 	return tex.replace(new RegExp(figurePattern.source, 'g'), (quoted) => {
 		const shown = find(quoted);
 		if (!shown) return quoted;

@@ -63,6 +63,13 @@ export function toHtml(source: string, find: FindReadout, typeset?: Typeset): st
 	return md.render(source, { find, typeset });
 }
 
+export type ProseToken = ReturnType<typeof md.parse>[number];
+
+/** A text cell as markdown-it reads it, for what sets it in another way than as HTML. */
+export function tokensOf(source: string): ProseToken[] {
+	return md.parse(source, {});
+}
+
 export interface Heading {
 	/** 2 to 4. */
 	level: number;
