@@ -49,7 +49,7 @@ function quote(inner: string, note: Note, worked: Worked) {
 		throw new Trouble('value', at, `\`${typed}\` is a function; only a quantity can be quoted.`);
 	if (!computed) throw note.waiting(typed, line, at);
 	const remembered = note.remembered.get(line);
-	if (right === undefined && remembered) return worked.shown(remembered).readout;
+	if (right === undefined && remembered) return worked.readoutOf(line.defined?.typed, remembered);
 	const unit = unitAt(right ?? '', left.length + 1);
 	const { type } = computed;
 	if (type.dimension && !same(type.dimension, unit.dimension))

@@ -35,8 +35,15 @@ export interface CurveCell {
 	weighted?: boolean;
 }
 
+/** A picture of quantities over the range of another: its source is one line, `Vadc over Vmax from 0 V to 40 V`. */
+export interface SweepCell {
+	id: string;
+	kind: 'curve';
+	source: string;
+}
+
 /** A cell as the engine reads it. */
-export type Cell = SourceCell | ReadingsCell | CurveCell;
+export type Cell = SourceCell | ReadingsCell | SweepCell | CurveCell;
 
 export interface Options {
 	/** Coverage probability of expanded uncertainties, 0 to 1. */
@@ -47,6 +54,16 @@ export interface Options {
 	/** Quantities whose budget, worst case and formula are wanted; none where absent. */
 	detail?: 'all' | string[];
 	monteCarlo?: MonteCarloOptions;
+	/** How readouts are set, by the name of the quantity; the others are set as usual. */
+	shown?: Readonly<Record<string, Display>>;
+}
+
+/** How a quantity's readouts are set. A unit that does not fit the quantity counts for nothing. */
+export interface Display {
+	/** As typed, `mV`. */
+	unit?: string;
+	/** Significant digits of the value. */
+	digits?: number;
 }
 
 export interface MonteCarloOptions {
@@ -243,6 +260,77 @@ export interface Curve {
 	};
 }
 
+/** How the numbers of an axis are shown: times `factor`, in `unit` with its prefix, '' for pure numbers. */
+export interface AxisUnit {
+	factor: number;
+	unit: string;
+}
+
+/**
+ * Quantities over the range of another, as a curve cell draws them: the note is computed at every point. The quantity
+ * that takes the range keeps the doubt that its line states. Numbers are unrounded; where a point has no value they are null.
+ */
+export interface Sweep {
+	cell: string;
+	/** Line of the cell that says it. */
+	line: number;
+	/** Text of the comment behind the line. */
+	description?: string;
+	over: {
+		name: string;
+		/** Unit of all `x`. */
+		unit: string;
+		shown: AxisUnit;
+		/** What the note says it is, and how that is read. */
+		present: number;
+		presentText: string;
+	};
+	logarithmic: boolean;
+	/** Ascending. */
+	x: number[];
+	/** Unit of all numbers of `series` and `limits`. */
+	unit: string;
+	shown: AxisUnit;
+	series: SweepSeries[];
+	/** Requirements whose value is one of the quantities. */
+	limits: SweepLimit[];
+	/** What must be known beside the picture: sentences. */
+	remarks?: string[];
+}
+
+export interface SweepSeries {
+	name: string;
+	values: (number | null)[];
+	/** Half-width of the band at each point; absent where the quantity is exact at all of them. */
+	expandedUncertainties?: (number | null)[];
+	/** Ends of the worst case at each point; absent where the quantity is exact at all of them. */
+	worstCase?: { lower: (number | null)[]; upper: (number | null)[] };
+	/** Value at the present point, as it is read. */
+	presentText: string;
+	present: number | null;
+}
+
+/** A requirement along a sweep. */
+export interface SweepLimit {
+	/** The requirement's own place. */
+	cell: string;
+	line: number;
+	/** Name of the series that it limits. */
+	name: string;
+	/** At each point, or one number where it is the same at all of them; null where there is none on that side. */
+	lower: (number | null)[] | null;
+	upper: (number | null)[] | null;
+	/** At the present point, as they are read. */
+	lowerText: string | null;
+	upperText: string | null;
+	/** Neighbouring parts of the range with one verdict each, null where there is none. `text` says from where to where. */
+	stretches: { from: number; to: number; verdict: Verdict | null; text: string }[];
+	/** Where the value itself passes a limit, whatever its doubt. */
+	crossings: { x: number; limit: 'lower' | 'upper'; text: string }[];
+	/** The stretches as a sentence without a full stop. */
+	text: string;
+}
+
 /** A `{{name}}` of a text cell; `from` and `to` are offsets in the cell's source. */
 export interface Figure {
 	cell: string;
@@ -296,5 +384,7 @@ export interface Evaluation {
 	figures: Figure[];
 	/** By the name of the curve; absent where the note has none. */
 	curves?: Record<string, Curve>;
+	/** In sheet order; absent where the note has none. */
+	sweeps?: Sweep[];
 	errors: Fault[];
 }

@@ -3,7 +3,7 @@ import type { Quantity, Readout } from './results';
 import type { Type } from './types';
 import { none } from './units/dimension';
 import { coherentUnit } from './units/coherent';
-import { compose, doubtfulReadout, readout } from './units/display';
+import { compose, digitsReadout, doubtfulReadout, readout } from './units/display';
 import { formatNumber } from './units/number-text';
 import { fromSI, type Unit } from './units/unit';
 import { isGrid, type Value } from './values';
@@ -13,15 +13,20 @@ export function unitOf(type: Type): Unit {
 	return type.unit ?? coherentUnit(type.dimension ?? none);
 }
 
-/** The readout of a value, with its expanded uncertainty where it has one. Exact values have six significant digits. */
-export function show(value: Value, type: Type, expanded?: number): Readout {
+/**
+ * The readout of a value, with its expanded uncertainty where it has one. Exact values have six significant digits where
+ * nobody chose how many.
+ */
+export function show(value: Value, type: Type, expanded?: number, digits?: number): Readout {
 	if (typeof value === 'boolean') return compose(value ? 'true' : 'false', '');
 	if (typeof value === 'string') return compose(value, '');
 	const unit = unitOf(type);
-	if (!isGrid(value))
-		return expanded === undefined
+	if (!isGrid(value)) {
+		if (expanded !== undefined) return doubtfulReadout(value, expanded, unit, !type.fixed, digits);
+		return digits === undefined
 			? readout(value, unit, !type.fixed)
-			: doubtfulReadout(value, expanded, unit, !type.fixed);
+			: digitsReadout(value, unit, !type.fixed, digits);
+	}
 	return showGrid(value.data, value.shape, unit, !type.fixed);
 }
 

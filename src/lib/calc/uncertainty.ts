@@ -31,11 +31,11 @@ type Fields = Pick<
 	| 'needsMonteCarlo'
 >;
 
-/** Readout and uncertainty of a computed value, numbers in its unit. */
-export function shown(computed: Computed, doubts: Doubts, coverage: number) {
+/** Readout, to so many digits where somebody chose that, and uncertainty of a computed value, numbers in its unit. */
+export function shown(computed: Computed, doubts: Doubts, coverage: number, digits?: number) {
 	const { value, type } = computed;
 	const step = stepOf(computed);
-	if (!step) return { readout: show(value, type), fields: {} };
+	if (!step) return { readout: show(value, type, undefined, digits), fields: {} };
 	const found = finiteUncertainty(step, doubts, coverage);
 	const needed = !found || needsTrials(step.propagated, doubts);
 	const remarks = sentences(step, found !== undefined, needed);
@@ -43,14 +43,14 @@ export function shown(computed: Computed, doubts: Doubts, coverage: number) {
 		...(remarks.length > 0 && { remarks }),
 		...(needed && { needsMonteCarlo: true }),
 	};
-	if (!found) return { readout: show(value, type), fields };
+	if (!found) return { readout: show(value, type, undefined, digits), fields };
 	const unit = unitOf(type);
 	fields.standardUncertainty = differenceFromSI(found.standardUncertainty, unit);
 	fields.degreesOfFreedom = Number.isFinite(found.dof) ? found.dof : null;
 	fields.coverageFactor = found.coverageFactor;
 	fields.expandedUncertainty = differenceFromSI(found.expandedUncertainty, unit);
 	const expanded = found.expandedUncertainty > 0 ? found.expandedUncertainty : undefined;
-	return { readout: show(value, type, expanded), fields };
+	return { readout: show(value, type, expanded, digits), fields };
 }
 
 function sentences({ propagated }: Step, finite: boolean, needed: boolean): string[] {

@@ -1,10 +1,14 @@
 import { isStatement } from './correlated-lines';
+import { parseUnit } from './language/parse-line';
 import type { Computed, Remembered, Shown } from './memory';
 import type { Note } from './note';
 import type { NoteLine } from './note-lines';
 import type { Options, Quantity, Readout, WorkedLine } from './results';
 import { figures } from './show';
+import { Trouble } from './trouble';
+import type { Type } from './types';
 import { shown } from './uncertainty';
+import { same } from './units/dimension';
 
 /** The lines of a note as they are shown. */
 export class Worked {
@@ -22,6 +26,18 @@ export class Worked {
 		return (remembered.shown = { correlations, ...made });
 	}
 
+	/** The readout of a quantity: as somebody chose that it is set, else as usual. */
+	readoutOf(name: string | undefined, remembered: Remembered): Readout {
+		const { shown: choices = {} } = this.options;
+		const choice = name !== undefined && Object.hasOwn(choices, name) ? choices[name] : undefined;
+		if (!choice) return this.shown(remembered).readout;
+		const { computed } = remembered;
+		const type =
+			choice.unit === undefined ? computed.type : inChosenUnit(computed.type, choice.unit);
+		const { doubts } = this.note;
+		return shown({ ...computed, type }, doubts, this.options.coverage, choice.digits).readout;
+	}
+
 	/** Readout of a computed value in a unit of its own choice. */
 	inUnit(computed: Computed): Readout {
 		return shown(computed, this.note.doubts, this.options.coverage).readout;
@@ -32,7 +48,11 @@ export class Worked {
 		for (const line of this.note.lines) {
 			const remembered = this.note.remembered.get(line);
 			if (!line.defined || line.kind !== 'definition' || !remembered || line.requirement) continue;
-			all[line.defined.typed] = this.#quantity(line, remembered);
+			const { typed } = line.defined;
+			const quantity = this.#quantity(line, remembered);
+			const readout = this.readoutOf(typed, remembered);
+			all[typed] =
+				readout === quantity.readout ? quantity : { ...quantity, text: readout.text, readout };
 		}
 		return all;
 	}
@@ -40,7 +60,13 @@ export class Worked {
 	lines(): WorkedLine[] {
 		return this.note.lines
 			.filter((line) => !line.requirement && !line.given)
-			.map((line) => this.#line(line));
+			.map((line) => {
+				const made = this.#line(line);
+				const remembered = this.note.remembered.get(line);
+				if (!made.readout || !remembered) return made;
+				const readout = this.readoutOf(made.name, remembered);
+				return readout === made.readout ? made : { ...made, readout };
+			});
 	}
 
 	#quantity(line: NoteLine, remembered: Remembered): Quantity {
@@ -84,5 +110,17 @@ export class Worked {
 		};
 		if (shown) shown.line = made;
 		return made;
+	}
+}
+
+/** A type whose readouts stand in a unit; the type as it is where that unit does not fit or cannot be read. */
+function inChosenUnit(type: Type, text: string): Type {
+	try {
+		const unit = parseUnit(text);
+		if (!type.dimension || !same(type.dimension, unit.dimension)) return type;
+		return { ...type, unit, fixed: true, point: unit.offset !== 0 };
+	} catch (error) {
+		if (error instanceof Trouble) return type;
+		throw error;
 	}
 }

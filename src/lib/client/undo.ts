@@ -1,4 +1,5 @@
 import { cellsOf, titleOf } from '$lib/note/document';
+import { shownOf } from '$lib/note/shown';
 import * as Y from 'yjs';
 
 /** Changes within this time of each other, typing above all, are undone together. */
@@ -6,7 +7,8 @@ const captureMs = 500;
 
 /** Undoes a document's changes that carry this origin; editors add theirs to its tracked origins. */
 export function undoManagerOf(doc: Y.Doc, origin: unknown): Y.UndoManager {
-	return new Y.UndoManager([titleOf(doc), cellsOf(doc)] as Y.AbstractType<unknown>[], {
+	const parts = [titleOf(doc), cellsOf(doc), shownOf(doc)] as Y.AbstractType<unknown>[];
+	return new Y.UndoManager(parts, {
 		trackedOrigins: new Set([origin]),
 		captureTimeout: captureMs,
 	});

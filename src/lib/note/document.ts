@@ -1,6 +1,8 @@
 import { generateKeyBetween } from 'fractional-indexing';
+import type { Display } from '$lib/calc/results';
 import * as Y from 'yjs';
 import { replaceText } from './replace-text';
+import { matchShown, readShown } from './shown';
 
 export const cellKinds = ['text', 'calculation', 'requirement'] as const;
 export type CellKind = (typeof cellKinds)[number];
@@ -16,6 +18,8 @@ export interface NoteCell {
 export interface NoteContent {
 	title: string;
 	cells: NoteCell[];
+	/** How readouts are set, by the name of the quantity (`shown.ts`); absent where nobody chose anything. */
+	shown?: Record<string, Display>;
 }
 
 /** Longest order key; moving cells to and fro at one place makes keys longer. */
@@ -81,6 +85,7 @@ function compare(a: string, b: string): number {
 /** The document as plain data, in sheet order. A null character, which the database cannot keep, becomes U+FFFD. */
 export function toContent(doc: Y.Doc): NoteContent {
 	const kept = (text: string) => text.replaceAll('\0', '\ufffd');
+	const shown = readShown(doc);
 	return {
 		title: kept(titleOf(doc).toJSON()),
 		cells: placedCells(doc).map(({ id, kind, source }) => ({
@@ -88,6 +93,7 @@ export function toContent(doc: Y.Doc): NoteContent {
 			kind,
 			source: kept(source),
 		})),
+		...(shown && { shown }),
 	};
 }
 
@@ -188,5 +194,6 @@ export function matchContent(doc: Y.Doc, content: NoteContent): void {
 			}
 			last = cell.id;
 		}
+		matchShown(doc, content.shown ?? {});
 	});
 }

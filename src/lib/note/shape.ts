@@ -1,5 +1,8 @@
 import * as Y from 'yjs';
 import { cellKinds, cellsOf, isCellId, isOrderKey, placedCells, titleOf } from './document';
+import { isDisplay, isShownName, shownOf } from './shown';
+
+const roots = ['title', 'cells', 'shown'];
 
 /**
  * The first thing of a transaction that no note holds, in words; undefined where all is as `document.ts` describes
@@ -10,6 +13,7 @@ export function strangenessOf(transaction: Y.Transaction): string | undefined {
 	// Yjs gives a root its type when it is first asked for, and the items in it another parent then.
 	titleOf(doc);
 	cellsOf(doc);
+	shownOf(doc);
 	for (const [client, after] of afterState) {
 		const before = beforeState.get(client) ?? 0;
 		const structs = doc.store.clients.get(client);
@@ -25,14 +29,16 @@ export function strangenessOf(transaction: Y.Transaction): string | undefined {
 
 /** How many things a document holds that no note does, or that are half a cell; they count for nothing. */
 export function countStrange(doc: Y.Doc): number {
-	const roots = [...doc.share.keys()].filter((name) => name !== 'title' && name !== 'cells');
-	return roots.length + cellsOf(doc).size - placedCells(doc).length;
+	const others = [...doc.share.keys()].filter((name) => !roots.includes(name));
+	return others.length + cellsOf(doc).size - placedCells(doc).length;
 }
 
 function whatIsStrange(doc: Y.Doc, { parent, parentSub, content }: Y.Item): string | undefined {
 	if (content instanceof Y.ContentDeleted || !(parent instanceof Y.AbstractType)) return undefined;
 	if (parent === titleOf(doc))
 		return isPlain(content) ? undefined : 'a title that is no plain text';
+	if (parent === shownOf(doc))
+		return isShown(parentSub, content) ? undefined : 'a readout set as none can be';
 	const cells = cellsOf(doc);
 	if (parent === cells) {
 		const isCell =
@@ -49,6 +55,15 @@ function whatIsStrange(doc: Y.Doc, { parent, parentSub, content }: Y.Item): stri
 	if (grandparent?.parent !== cells || holder.parentSub !== 'source')
 		return 'content within content';
 	return isPlain(content) ? undefined : 'a source that is no plain text';
+}
+
+function isShown(name: string | null, content: Y.Item['content']): boolean {
+	return (
+		isShownName(name ?? '') &&
+		content instanceof Y.ContentAny &&
+		content.arr.length === 1 &&
+		isDisplay(content.arr[0])
+	);
 }
 
 function isPlain(content: Y.Item['content']): boolean {

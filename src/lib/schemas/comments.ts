@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { typed } from './text';
+import { trialChanges, type AttachedTrial } from './trial';
 
 export const threadKinds = ['question', 'correction', 'remark'] as const;
 
@@ -8,9 +9,11 @@ export const newThread = z.object({
 	kind: z.enum(threadKinds),
 	blocking: z.boolean(),
 	body: typed.trim().min(1, 'Write something first.').max(4000, 'At most 4 000 characters.'),
+	/** Changed inputs that the comment speaks of. */
+	trial: trialChanges.optional(),
 });
 
-export const newComment = newThread.pick({ body: true });
+export const newComment = newThread.pick({ body: true, trial: true });
 
 export const threadChange = z.object({ closed: z.boolean() });
 
@@ -18,6 +21,7 @@ export interface Comment {
 	id: string;
 	person: { id: string; name: string };
 	body: string;
+	trial?: AttachedTrial;
 	/** ISO 8601 */
 	at: string;
 }

@@ -1,5 +1,7 @@
 import type { MonteCarlo, Quantity } from '$lib/calc/results';
+import type { UnitChoice } from '$lib/calc/units/compatible';
 import { z } from 'zod';
+import { typed } from './text';
 
 /** What stands behind a worked line. */
 export interface QuantityDetail {
@@ -22,3 +24,12 @@ export type TrialsLine =
 	| { drawn: number; total: number }
 	| { quantity: Quantity & { monteCarlo: MonteCarlo } }
 	| { message: string };
+
+/** A unit that somebody typed, to be looked at. */
+export const typedUnit = typed.max(60).nullable().catch('');
+
+/** Units that a quantity's readouts may stand in, and what is to be said of a typed one. */
+export interface QuantityUnits {
+	choices: UnitChoice[];
+	typed?: UnitChoice | string;
+}

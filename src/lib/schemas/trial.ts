@@ -1,4 +1,5 @@
-import type { Fault, Figure, Readout, Requirement, Verdict } from '$lib/calc/results';
+import type { Moved } from '$lib/calc/moved';
+import type { Verdict } from '$lib/calc/results';
 import { z } from 'zod';
 import { typed } from './text';
 
@@ -37,38 +38,13 @@ export const newKeptTrial = z.strictObject({
 	changes: trialChanges,
 });
 
-/** A quantity that a trial moves. */
-export interface MovedQuantity {
-	name: string;
-	/** null where it has no value. */
-	before: Readout | null;
-	after: Readout | null;
-	/** With its sign and unit; null where there is no number to subtract. */
-	difference: string | null;
-	/** Of the present value; null where that is zero or none. */
-	share: number | null;
-}
-
-/** A requirement that a trial moves. */
-export interface MovedRequirement {
-	cell: string;
-	/** 1-based. */
-	line: number;
-	before: Requirement | null;
-	after: Requirement | null;
-}
-
-/** What a trial does to a note. What it leaves as it is stands nowhere here. */
-export interface TrialAnswer {
-	/** In the order in which the note defines them. */
-	quantities: MovedQuantity[];
-	requirements: MovedRequirement[];
-	figures: Figure[];
-	/** Faults that the note does not have without the trial. */
-	faults: Fault[];
-	/** Changed quantities that the note does not define any more. */
+/** What a trial does to a note, and the changed quantities that the note does not define any more. */
+export interface TrialAnswer extends Moved {
 	gone: string[];
 }
+
+/** Between which values an input in doubt lies, in the unit of the quantity, by name. */
+export type TrialRanges = Record<string, { lower: number; upper: number }>;
 
 interface JudgedText {
 	verdict: Verdict;

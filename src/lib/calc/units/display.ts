@@ -1,8 +1,8 @@
 import { rounded } from '../doubt/display';
-import type { Readout } from '../results';
+import type { AxisUnit, Readout } from '../results';
 import type { Unit } from './unit';
 import { differenceFromSI, fromSI } from './unit';
-import { formatNumber, group, minus, noBreak, superscript } from './number-text';
+import { formatDigits, formatNumber, group, minus, noBreak, superscript } from './number-text';
 import { findSymbol } from './table';
 
 /** Prefixes that a readout may choose, by unit; others are shown without a prefix. */
@@ -29,6 +29,11 @@ const shown: Readonly<Record<string, readonly string[]>> = {
 	mol: ['u', 'm', '', 'k'],
 };
 
+/** Prefixes that readouts of a unit use; undefined where it takes none. */
+export function prefixesOf(base: string): readonly string[] | undefined {
+	return Object.hasOwn(shown, base) ? shown[base] : undefined;
+}
+
 /** A unit with another prefix on its first symbol, where that is a plain one (`V/K`, not `V²`). */
 function reprefixed(unit: Unit, prefix: string): { label: string; shift: number } | undefined {
 	const first = unit.parts[0];
@@ -49,21 +54,43 @@ export function takesPrefix(unit: Unit): boolean {
 
 /** A value of SI units in `unit`; with `engineering` the prefix is chosen so that 1 to 999 stands before the mark. */
 export function readout(si: number, unit: Unit, engineering: boolean, digits = 6): Readout {
+	return exactReadout(si, unit, engineering, digits, formatNumber);
+}
+
+/** The same to exactly so many digits, zeros at the end kept. */
+export function digitsReadout(
+	si: number,
+	unit: Unit,
+	engineering: boolean,
+	digits: number,
+): Readout {
+	return exactReadout(si, unit, engineering, digits, formatDigits);
+}
+
+function exactReadout(
+	si: number,
+	unit: Unit,
+	engineering: boolean,
+	digits: number,
+	format: (value: number, digits: number) => string,
+): Readout {
 	const value = fromSI(si, unit);
 	const chosen = engineering ? choose(value, unit, digits) : undefined;
-	const number = formatNumber(chosen ? shifted(value, chosen.shift) : value, digits);
+	const number = format(chosen ? shifted(value, chosen.shift) : value, digits);
 	return compose(number, chosen?.label ?? unit.label);
 }
 
 /**
  * A value of SI units with its expanded uncertainty, a difference: both to the same place and with one unit, the
- * uncertainty to two significant digits (JCGM 100:2008, 7.2.6).
+ * uncertainty to two significant digits (JCGM 100:2008, 7.2.6), or the value to so many `digits` as somebody chose; of
+ * the uncertainty one digit stays at least.
  */
 export function doubtfulReadout(
 	si: number,
 	expanded: number,
 	unit: Unit,
 	engineering: boolean,
+	digits?: number,
 ): Readout {
 	const value = fromSI(si, unit);
 	const doubt = differenceFromSI(expanded, unit);
@@ -71,7 +98,8 @@ export function doubtfulReadout(
 	const chosen = engineering ? choose(leading, unit, 6) : undefined;
 	const shift = chosen?.shift ?? plainShift(leading);
 	const power = chosen ? '' : powerOfTen(-shift);
-	const figures = rounded(shifted(value, shift), shifted(doubt, shift));
+	const [size, width] = [shifted(value, shift), shifted(doubt, shift)];
+	const figures = rounded(size, width, 1, doubtDigits(size, width, digits));
 	if (!figures) return readout(si, unit, engineering);
 	const number = typeset(figures.value) + power;
 	const plusMinus = typeset(figures.uncertainty) + power;
@@ -83,6 +111,20 @@ export function doubtfulReadout(
 		unit: label,
 		doubt: plusMinus,
 	};
+}
+
+/** The unit that an axis is labelled in, with the prefix of its largest number, in SI units here. */
+export function axisUnit(largest: number, unit: Unit, engineering: boolean): AxisUnit {
+	const chosen = engineering ? choose(fromSI(largest, unit), unit, 6) : undefined;
+	return { factor: 10 ** (chosen?.shift ?? 0), unit: chosen?.label ?? unit.label };
+}
+
+/** Significant digits of an uncertainty with which the value beside it has so many. */
+function doubtDigits(value: number, doubt: number, digits: number | undefined): number {
+	if (digits === undefined) return 2;
+	if (value === 0 || !(doubt > 0)) return 2;
+	const place = Math.floor(Math.log10(Math.abs(value))) - digits + 1;
+	return Math.min(15, Math.max(1, Math.floor(Math.log10(doubt)) - place + 1));
 }
 
 /** Decade that a figure without a prefix is shifted by, so that no row of zeros is shown. */

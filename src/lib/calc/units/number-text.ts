@@ -21,6 +21,21 @@ export function formatNumber(value: number, digits = 6): string {
 	return signed(value, group(plain(size, digits)));
 }
 
+/** A number to exactly so many significant digits, zeros at the end kept. */
+export function formatDigits(value: number, digits: number): string {
+	const size = Math.abs(Number(value.toPrecision(digits)));
+	if (size !== 0 && (size < 1e-4 || size >= 1e9)) {
+		const [mantissa = '', exponent = ''] = size.toExponential(digits - 1).split('e');
+		return signed(
+			value,
+			`${group(mantissa)}${noBreak}×${noBreak}10${superscript(Number(exponent))}`,
+		);
+	}
+	const before = size === 0 ? 0 : Math.floor(Math.log10(size));
+	const text = group(size.toFixed(Math.min(100, Math.max(0, digits - 1 - before))));
+	return size === 0 ? text : signed(value, text);
+}
+
 /** Decimal digits without an exponent. */
 function plain(size: number, digits: number): string {
 	const places = Math.max(0, digits - 1 - Math.floor(Math.log10(size)));

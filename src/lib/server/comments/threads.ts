@@ -11,6 +11,7 @@ import { comment, thread } from '../db/schema/notes';
 import { person } from '../db/schema/people';
 import { lock } from '../notes/lock';
 import * as notes from '../notes/notes';
+import * as trials from '../trial/trial';
 
 /** The threads of a note in the order they were opened. */
 export async function list(actor: Actor, number: string): Promise<Thread[]> {
@@ -22,18 +23,19 @@ export async function list(actor: Actor, number: string): Promise<Thread[]> {
 export async function open(
 	actor: Actor,
 	number: string,
-	{ body, ...about }: z.output<typeof newThread>,
+	{ body, trial: changes, ...about }: z.output<typeof newThread>,
 ): Promise<Thread> {
 	demand(actor, 'comment');
+	const trial = changes && (await trials.attach(actor, number, changes));
 	return await change(actor, number, async (tx, noteId) => {
 		const [made] = await tx
 			.insert(thread)
 			.values({ noteId, ...about })
 			.returning({ id: thread.id });
 		if (!made) throw new Error('the thread was not stored');
-		await tx.insert(comment).values({ threadId: made.id, personId: actor.personId, body });
+		await tx.insert(comment).values({ threadId: made.id, personId: actor.personId, body, trial });
 		await audit.record(tx, actor, 'thread opened', `note:${noteId}`, {
-			after: { thread: made.id, ...about, body },
+			after: { thread: made.id, ...about, body, ...(trial && { trial: trial.changes }) },
 		});
 		return made.id;
 	});
@@ -44,14 +46,15 @@ export async function reply(
 	actor: Actor,
 	number: string,
 	threadId: string,
-	{ body }: z.output<typeof newComment>,
+	{ body, trial: changes }: z.output<typeof newComment>,
 ): Promise<Thread> {
 	demand(actor, 'comment');
+	const trial = changes && (await trials.attach(actor, number, changes));
 	return await change(actor, number, async (tx, noteId) => {
 		await find(tx, noteId, threadId);
-		await tx.insert(comment).values({ threadId, personId: actor.personId, body });
+		await tx.insert(comment).values({ threadId, personId: actor.personId, body, trial });
 		await audit.record(tx, actor, 'comment added', `note:${noteId}`, {
-			after: { thread: threadId, body },
+			after: { thread: threadId, body, ...(trial && { trial: trial.changes }) },
 		});
 		return threadId;
 	});
@@ -126,6 +129,7 @@ export async function read(connection: Connection, noteId: string): Promise<Thre
 			id: said.id,
 			person: { id: said.personId, name: author },
 			body: said.body,
+			...(said.trial && { trial: said.trial }),
 			at: said.at.toISOString(),
 		});
 		threads.set(id, entry);

@@ -1,7 +1,7 @@
-import { defaultOptions } from '$lib/calc/engine';
 import type { Evaluation } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
 import { log } from '../log';
+import { optionsOf } from './note-options';
 import { evaluateInChild } from './pool';
 
 /** What a document held at a version of it, with the results of that. */
@@ -95,9 +95,14 @@ export class Scheduler {
 	async #evaluate(content: NoteContent): Promise<Evaluation> {
 		const last = this.#last;
 		// A change of the title, or one that was taken back, changes no result.
-		if (last && JSON.stringify(last.content.cells) === JSON.stringify(content.cells)) {
+		if (last && JSON.stringify(computedOf(last.content)) === JSON.stringify(computedOf(content))) {
 			return last.results;
 		}
-		return this.#compute(content.cells, defaultOptions, { note: this.#note });
+		return this.#compute(content.cells, optionsOf(content), { note: this.#note });
 	}
+}
+
+/** What of a note its results depend on. */
+function computedOf({ cells, shown }: NoteContent) {
+	return { cells, shown };
 }

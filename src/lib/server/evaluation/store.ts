@@ -1,4 +1,4 @@
-import { defaultOptions, engineVersion } from '$lib/calc/engine';
+import { engineVersion } from '$lib/calc/engine';
 import type { Evaluation } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { toContent, type NoteContent } from '$lib/note/document';
@@ -6,6 +6,7 @@ import { and, eq, lte, ne } from 'drizzle-orm';
 import { db } from '../db/client';
 import { evaluation, note } from '../db/schema/notes';
 import * as updates from '../notes/updates';
+import { optionsOf } from './note-options';
 import { evaluateInChild } from './pool';
 
 /** A note's content at a sequence number, with its results. */
@@ -86,7 +87,7 @@ async function evaluateNow(noteId: string): Promise<Stored & { pending: boolean 
 	const { doc, seq, pending } = await updates.loadDocument(noteId);
 	const content = toContent(doc);
 	doc.destroy();
-	const results = await evaluateInChild(content.cells, defaultOptions);
+	const results = await evaluateInChild(content.cells, optionsOf(content));
 	if (!pending) await save(noteId, { seq, content, results });
 	return { seq, content, results, pending };
 }

@@ -1,10 +1,10 @@
-import { defaultOptions } from '$lib/calc/engine';
 import { AppError } from '$lib/errors';
 import { toContent } from '$lib/note/document';
 import type { Moment, WorkSession } from '$lib/schemas/history';
 import { sql } from 'drizzle-orm';
 import { demand, type Actor } from '../auth/access';
 import { db } from '../db/client';
+import { optionsOf } from '../evaluation/note-options';
 import { evaluateInChild } from '../evaluation/pool';
 import * as notes from './notes';
 import { documentOf, readState } from './stored-log';
@@ -90,7 +90,7 @@ export async function at(actor: Actor, number: string, seq: number): Promise<Mom
 		by: { id: last.person_id, name: last.name },
 		at: iso(last.at),
 		content,
-		results: await evaluateInChild(content.cells, defaultOptions),
+		results: await evaluateInChild(content.cells, optionsOf(content)),
 		authors: Object.fromEntries(
 			authors.map((row) => [
 				row.cell,

@@ -1,7 +1,7 @@
-import { defaultOptions } from '$lib/calc/engine';
 import type { MonteCarlo, Quantity } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { demand, type Actor } from '../auth/access';
+import { optionsOf } from '../evaluation/note-options';
 import { evaluateInChild } from '../evaluation/pool';
 import { seedOf } from '../evaluation/seed';
 import * as store from '../evaluation/store';
@@ -43,7 +43,7 @@ export async function prepare(
 	return async ({ onProgress, signal }) => {
 		await expectFree(actor);
 		const options = {
-			...defaultOptions,
+			...optionsOf(content),
 			monteCarlo: { quantities: [name], adaptive, seed: seedOf(id) },
 		};
 		const run = evaluateInChild(content.cells, options, { onProgress, signal }).then(

@@ -1,6 +1,6 @@
-import { defaultOptions } from '$lib/calc/engine';
 import type { Evaluation, Options } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
+import { optionsOf } from '../evaluation/note-options';
 import { evaluateInChild } from '../evaluation/pool';
 import { seedOf } from '../evaluation/seed';
 
@@ -20,8 +20,8 @@ export async function frozenResults(
 	const judged = [...new Set(named)].filter(
 		(name) => results.quantities[name]?.standardUncertainty !== undefined,
 	);
-	if (judged.length === 0) return { results, options: defaultOptions };
+	if (judged.length === 0) return { results, options: optionsOf(content) };
 	const monteCarlo = { quantities: judged.slice(0, most), seed: seedOf(noteId) };
-	const options = { ...defaultOptions, detail: judged, monteCarlo };
+	const options = { ...optionsOf(content), detail: judged, monteCarlo };
 	return { results: await evaluateInChild(content.cells, options), options };
 }

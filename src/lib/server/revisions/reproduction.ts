@@ -1,7 +1,8 @@
-import { defaultOptions, engineVersion } from '$lib/calc/engine';
+import { engineVersion } from '$lib/calc/engine';
 import type { Evaluation, Options } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
 import { demand, type Actor } from '../auth/access';
+import { optionsOf } from '../evaluation/note-options';
 import { evaluateInChild } from '../evaluation/pool';
 import { seal } from './digest';
 import * as revisions from './revisions';
@@ -31,7 +32,7 @@ export async function ofRevision(
 ): Promise<Reproduction> {
 	demand(actor, 'readFrozen');
 	const { revision, content, results } = await revisions.get(actor, number, letter);
-	return compare(content, results, revision.details?.options ?? defaultOptions);
+	return compare(content, results, revision.details?.options ?? optionsOf(content));
 }
 
 /** The same from what a candidate keeps. */

@@ -1,9 +1,9 @@
-import { defaultOptions } from '$lib/calc/engine';
 import type { Cell, Evaluation, Options } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
 import type { NoteState } from '$lib/schemas/notes';
 import { may } from '$lib/schemas/role';
 import { demand, type Actor } from '../auth/access';
+import { optionsOf } from '../evaluation/note-options';
 import { evaluateInChild } from '../evaluation/pool';
 import * as store from '../evaluation/store';
 import * as notes from '../notes/notes';
@@ -45,7 +45,7 @@ async function readWorkingCopy(actor: Actor, number: string): Promise<ScriptNote
 	const { id, state, revision } = await notes.get(actor, number);
 	const { seq, content, results } = await store.current(id);
 	const { title, cells } = content;
-	return { number, title, state, revision, seq, cells, options: defaultOptions, results };
+	return { number, title, state, revision, seq, cells, options: optionsOf(content), results };
 }
 
 async function readFrozen(actor: Actor, number: string): Promise<ScriptNote> {
@@ -59,7 +59,7 @@ async function readFrozen(actor: Actor, number: string): Promise<ScriptNote> {
 		revision: letter,
 		seq: revision.seq,
 		cells,
-		options: defaultOptions,
+		options: optionsOf(content),
 		results,
 	};
 }

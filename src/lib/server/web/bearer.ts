@@ -5,7 +5,7 @@ import { expected, toJson } from './errors';
 import { Pace } from './pace';
 
 const routes = '/api/v1/';
-const pace = new Pace({ atOnce: 8, burst: 300, perSecond: 20 });
+const pace = new Pace({ who: 'Your scripts', atOnce: 8, burst: 300, perSecond: 20 });
 
 /**
  * Answers what scripts ask. A token in the Authorization header counts there and no cookie does, so that no other

@@ -1,6 +1,8 @@
 import { AppError } from '$lib/errors';
 
 interface Bounds {
+	/** Who asks, as a sentence begins: "Your scripts". */
+	who: string;
 	/** Requests under way at the same time. */
 	atOnce: number;
 	/** Requests without a pause between them. */
@@ -15,7 +17,7 @@ interface Use {
 	underWay: number;
 }
 
-/** How fast each person's scripts may ask one process. `now` is in milliseconds and never runs backwards. */
+/** How fast each person may ask one process. `now` is in milliseconds and never runs backwards. */
 export class Pace {
 	readonly #bounds: Bounds;
 	readonly #now: () => number;
@@ -34,10 +36,10 @@ export class Pace {
 	/** Does the work unless the person asks too fast; throws AppError `tooMany`, with the time to wait, then. */
 	async run<T>(personId: string, work: () => Promise<T>): Promise<T> {
 		const use = this.#useOf(personId);
-		const { atOnce, perSecond } = this.#bounds;
-		if (use.underWay >= atOnce) throw tooMany(`more than ${atOnce} at the same time`, 1000);
+		const { who, atOnce, perSecond } = this.#bounds;
+		if (use.underWay >= atOnce) throw tooMany(who, `more than ${atOnce} at the same time`, 1000);
 		if (use.left < 1) {
-			throw tooMany(`more than ${perSecond} a second`, ((1 - use.left) / perSecond) * 1000);
+			throw tooMany(who, `more than ${perSecond} a second`, ((1 - use.left) / perSecond) * 1000);
 		}
 		use.left -= 1;
 		use.underWay += 1;
@@ -62,10 +64,10 @@ export class Pace {
 	}
 }
 
-function tooMany(what: string, waitMs: number): AppError {
+function tooMany(who: string, what: string, waitMs: number): AppError {
 	const seconds = Math.max(1, Math.ceil(waitMs / 1000));
 	const wait = seconds === 1 ? 'a second' : `${seconds} seconds`;
-	return new AppError('tooMany', `Your scripts ask ${what}. Wait ${wait}, then try again.`, {
+	return new AppError('tooMany', `${who} ask ${what}. Wait ${wait}, then try again.`, {
 		details: { waitMs },
 	});
 }

@@ -6,7 +6,7 @@ import { expected, toHttp } from './errors';
 import { Pace } from './pace';
 
 /** Strangers may ask, so nobody may ask much. */
-const pace = new Pace({ atOnce: 2, burst: 20, perSecond: 1 });
+const pace = new Pace({ who: 'Your scripts', atOnce: 2, burst: 20, perSecond: 1 });
 
 interface Answer {
 	/** What was typed. */
