@@ -13,7 +13,7 @@ interface Rule {
 
 const foundation = 'src/lib/(errors\\.ts|calc/|note/|protocol/|schemas/)';
 const serverPackages =
-	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|@node-rs\/argon2$|@zxcvbn-ts\/|katex$)/;
+	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|diff$|@node-rs\/argon2$|@zxcvbn-ts\/|katex$)/;
 
 /** Who may import whom, as DEVELOPERS.md explains it. Tests are outside these rules. */
 const rules: readonly Rule[] = [
