@@ -5,6 +5,7 @@ import { root } from './place.mjs';
 const entries = {
 	main: 'server/main.ts',
 	evaluator: 'server/evaluator.ts',
+	typesetter: 'server/typesetter.ts',
 	migrate: 'server/local/migrate.ts',
 	restored: 'server/restored.ts',
 	demonstration: 'server/local/demonstration.ts',
@@ -37,13 +38,18 @@ export async function watch(names) {
 }
 
 /**
- * The evaluator is bundled for itself, with its packages.
+ * Each child's program is bundled for itself, with its packages.
  * @param {Entry[]} names
  */
 function groups(names) {
-	const evaluator = names.filter((name) => name === 'evaluator');
-	const others = names.filter((name) => name !== 'evaluator');
-	return [evaluator, others].filter((group) => group.length > 0);
+	const children = names.filter(isChild).map((name) => [name]);
+	const others = names.filter((name) => !isChild(name));
+	return [...children, others].filter((group) => group.length > 0);
+}
+
+/** @param {Entry} name */
+function isChild(name) {
+	return name === 'evaluator' || name === 'typesetter';
 }
 
 /** A bundled CommonJS package asks for Node.js's own modules with `require`, which a module does not have by itself. */
@@ -51,13 +57,13 @@ const requireOfNode =
 	"import { createRequire } from 'node:module';\nconst require = createRequire(import.meta.url);";
 
 /**
- * Packages stay outside, and so do the built pages; `$lib` comes from the TypeScript settings. Evaluators start often
- * and use a small part of a large package, so that it is bundled into theirs.
+ * Packages stay outside, and so do the built pages; `$lib` comes from the TypeScript settings. Children start often
+ * and use a small part of large packages, so that these are bundled into theirs, but for compiled code and fonts.
  * @param {Entry[]} names
  * @returns {esbuild.BuildOptions}
  */
 export function options(names) {
-	const whole = names.includes('evaluator');
+	const whole = names.some(isChild);
 	return {
 		absWorkingDir: root,
 		entryPoints: Object.fromEntries(names.map((name) => [name, entries[name]])),
@@ -68,7 +74,8 @@ export function options(names) {
 		target: 'node20',
 		packages: whole ? 'bundle' : 'external',
 		...(whole && { banner: { js: requireOfNode } }),
-		external: ['./web/*'],
+		external: ['./web/*', '@myriaddreamin/*', '@expo-google-fonts/*'],
+		loader: { '.typ': 'text' },
 		sourcemap: true,
 		logLevel: 'warning',
 	};

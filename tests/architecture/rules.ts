@@ -41,6 +41,12 @@ const rules: readonly Rule[] = [
 		packages: new RegExp(`${serverPackages.source}|^(@sveltejs/kit|@auth/|\\$app/|\\$env/)`),
 	},
 	{
+		// The paper shows what the page shows: how text, lines, gauges and seals are read comes from one place.
+		who: /^src\/lib\/server\/paper\//,
+		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/)|src/lib/components/[a-z-]+\\.ts$)`),
+		packages: serverPackages,
+	},
+	{
 		who: /^src\/lib\/server\//,
 		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/))`),
 		packages: serverPackages,
@@ -64,7 +70,8 @@ const rules: readonly Rule[] = [
 	{
 		who: /^server\//,
 		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/)|server/(?!local/))`),
-		packages: /^(node:|ws$|yjs$|lib0\/|y-protocols\/|pino$|zod$|pg$)/,
+		packages:
+			/^(node:|ws$|yjs$|lib0\/|y-protocols\/|pino$|zod$|pg$|uqr$|@myriaddreamin\/typst-ts-node-compiler$|\.\/typesetting\/[a-z]+\.typ$)/,
 	},
 ];
 

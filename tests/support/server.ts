@@ -5,6 +5,10 @@ import { createServer, type AddressInfo } from 'node:net';
 /** Where the built programs are; another folder keeps a run apart from a build that goes on. */
 const build = process.env.BUILD_FOLDER ?? 'build';
 
+/** What a test that failed has left running ends with its process. */
+const running = new Set<ChildProcess>();
+process.once('exit', () => running.forEach((child) => child.kill('SIGKILL')));
+
 /** The production entry, serving sockets only. */
 export interface SyncServer {
 	/** ws://host:port/sync */
@@ -30,7 +34,8 @@ export async function startSyncServer(
 		env: { ...process.env, ...ownSettings(port), ...settings },
 		stdio: ['ignore', 'pipe', 'pipe'],
 	});
-	const gone = once(child, 'exit');
+	running.add(child);
+	const gone = once(child, 'exit').finally(() => running.delete(child));
 	await listening(child);
 	return {
 		url: syncUrl(port),
@@ -64,6 +69,7 @@ function ownSettings(port: number): Record<string, string> {
 		LOG_LEVEL: 'info',
 		PORT: String(port),
 		EVALUATOR_ENTRY: `${build}/evaluator.js`,
+		TYPESETTER_ENTRY: `${build}/typesetter.js`,
 	};
 }
 

@@ -13,6 +13,8 @@ const settings = z.object({
 	EVALUATORS: z.coerce.number().int().min(1).max(32).default(2),
 	/** File the evaluator children run. */
 	EVALUATOR_ENTRY: z.string().default('build/evaluator.js'),
+	/** File that the child runs which typesets PDFs. */
+	TYPESETTER_ENTRY: z.string().default('build/typesetter.js'),
 	/** File of the private key that signs the record; without it nothing can be signed. */
 	SIGNING_KEY_FILE: z.string().default(''),
 	/** Folder outside the database that keeps the record's checkpoints; none where it is empty. */

@@ -5,7 +5,9 @@ import type { SignOff, Withdrawal } from '$lib/schemas/review';
 import { desc, eq } from 'drizzle-orm';
 import { db } from '../db/client';
 import { candidate, revision, withdrawal } from '../db/schema/review';
+import { print } from '../paper/printing';
 import { seal } from '../revisions/digest';
+import { attachedRecords, isPdf } from './attached';
 import * as entries from './entries';
 import { check, signersOf, type Checked, type KnownKeys } from './sealed';
 
@@ -17,14 +19,28 @@ export interface Outcome {
 	revision: { number: string; letter: string; frozenAt: string; digest: string } | null;
 	signers: SignOff[];
 	withdrawn: Withdrawal | null;
+	/** Letter of the note's newest revision where this one is superseded. */
+	newest?: string;
+	/**
+	 * Of a PDF whose attached record is genuine: whether the whole file is what this installation makes of the record
+	 * (`same`), is not (`other`), or could not be made to compare with (`unknown`).
+	 */
+	paper?: 'same' | 'other' | 'unknown';
 }
 
 /** Bytes of a file after it is unpacked. */
 const maxBytes = 32_000_000;
 
-/** Verifies a file: canonical JSON with its seal, plain or packed with gzip. */
+/** Verifies a file: canonical JSON with its seal, or a PDF that has it attached, plain or packed with gzip. */
 export async function file(bytes: Buffer): Promise<Outcome> {
-	const text = await textOf(bytes);
+	const plain = await unpacked(bytes);
+	if (!isPdf(plain)) return record(plain.toString('utf8'));
+	const text = await attachedRecord(plain);
+	const outcome = await record(text);
+	return outcome.revision ? { ...outcome, paper: await comparePaper(plain, text) } : outcome;
+}
+
+async function record(text: string): Promise<Outcome> {
 	const known = await knownKeys();
 	const { value, canonical } = parse(text);
 	const checked = check(value, known);
@@ -32,6 +48,18 @@ export async function file(bytes: Buffer): Promise<Outcome> {
 	if (!checked.revision || (faults.length > 0 && !checked.foreign)) return altered(checked, faults);
 	if (checked.foreign) return { ...altered(checked, faults), state: 'unknown' };
 	return standing(checked.digest, checked);
+}
+
+/** Sets the pages anew and compares every byte; only of a record that is genuine and this installation's own. */
+async function comparePaper(pdf: Buffer, text: string): Promise<Outcome['paper']> {
+	try {
+		for (const paper of ['a4', 'us-letter'] as const)
+			if (pdf.equals(await print(text, paper))) return 'same';
+		return 'other';
+	} catch (thrown) {
+		if (thrown instanceof AppError) return 'unknown';
+		throw thrown;
+	}
 }
 
 /** Verifies a digest as it is printed, spaces and all. */
@@ -51,20 +79,28 @@ export async function knownKeys(): Promise<KnownKeys> {
 	return new Map((await entries.keysOf(db())).map(({ id, publicKey }) => [id, publicKey]));
 }
 
-async function textOf(bytes: Buffer): Promise<string> {
+async function unpacked(bytes: Buffer): Promise<Buffer> {
 	if (bytes.length === 0) throw new AppError('invalid', 'The file is empty.');
 	const packed = bytes[0] === 0x1f && bytes[1] === 0x8b;
-	const plain = packed ? await unpack(bytes) : bytes;
-	return attachedJson(plain) ?? plain.toString('utf8');
+	return packed ? await unpack(bytes) : bytes;
 }
 
-/** The JSON attached to a PDF; undefined where the file is none. Halfdigit's own print does not attach it yet. */
-function attachedJson(bytes: Buffer): string | undefined {
-	if (bytes.subarray(0, 5).toString('latin1') !== '%PDF-') return undefined;
-	throw new AppError(
-		'invalid',
-		'This PDF carries no revision. Drop the JSON file of the revision, or type the digest that is printed.',
-	);
+/** The one sealed record attached to a PDF. */
+async function attachedRecord(pdf: Buffer): Promise<string> {
+	const [text, second] = await attachedRecords(pdf, maxBytes);
+	if (text === undefined) {
+		throw new AppError(
+			'invalid',
+			'This PDF carries no revision. Drop the JSON file of the revision, or type the digest that is printed.',
+		);
+	}
+	if (second !== undefined) {
+		throw new AppError(
+			'invalid',
+			'This PDF carries more than one record, so nobody can tell which one its pages show. Drop the JSON file of the revision.',
+		);
+	}
+	return text;
 }
 
 async function unpack(bytes: Buffer): Promise<Buffer> {
@@ -118,8 +154,11 @@ async function standing(wanted: string, given: Checked | undefined): Promise<Out
 		return altered(stored, ['What this installation has stored was altered.', ...stored.faults]);
 	}
 	const taken = found.withdrawal;
+	const newest = await newestLetter(noteId);
+	const isNewest = newest === letter;
 	return {
-		state: taken ? 'withdrawn' : (await newestLetter(noteId)) === letter ? 'valid' : 'superseded',
+		...(newest !== undefined && !isNewest && { newest }),
+		state: taken ? 'withdrawn' : isNewest ? 'valid' : 'superseded',
 		faults: [],
 		revision: {
 			number: stored.revision.revision.note.number,

@@ -1,0 +1,126 @@
+import { bandsOf, grouped } from '$lib/components/seal';
+import { day } from '$lib/components/time';
+import type { NoteCell } from '$lib/note/document';
+import { budgetsOf, type Budget } from './budgets';
+import { visible } from './glyphs';
+import { judgedLines, workedLines, type Judged, type Worked } from './lines';
+import { proseOf, type Block } from './prose';
+import { recordOf, type ReviewRecord } from './record';
+import type { SealedContent } from './sealed-content';
+
+type Cell = { id: string; terminal: number } & (
+	| { kind: 'text'; blocks: Block[]; faults: string[] }
+	| { kind: 'calculation'; lines: Worked[] }
+	| { kind: 'requirement'; lines: Judged[] }
+);
+
+/** All that the typesetter sets, as data: what people wrote is never part of its program. */
+export interface Sheet {
+	paper: 'a4' | 'us-letter';
+	/** "MN-014 revision B: title" */
+	documentTitle: string;
+	number: string;
+	letter: string;
+	title: string;
+	/** The title as far as a line of the title block holds it. */
+	shortTitle: string;
+	team: string;
+	purpose: string;
+	replaces: { letter: string; reason: string } | null;
+	authors: string[];
+	/** Year, month, day, hour, minute, second of freezing, UTC. */
+	frozenAt: number[];
+	frozenDay: string;
+	engine: string;
+	digest: string;
+	/** In groups of eight. */
+	groups: string[];
+	bands: { digit: number; name: string; shade: string }[];
+	/** Where the QR code leads. */
+	address: string;
+	cautions: string[];
+	cells: Cell[];
+	budgets: Budget[];
+	record: ReviewRecord;
+}
+
+/** The paper of a sealed revision. Equal files give equal sheets. */
+export function sheetOf(
+	{ revision, seal }: SealedContent,
+	{ paper, origin }: { paper: Sheet['paper']; origin: string },
+): Sheet {
+	const { proposal, note, letter } = revision;
+	const { content, results, engine, cautions } = proposal;
+	const digest = seal.statement.contentHash;
+	const title = visible(content.title.replace(/\s+/g, ' ').trim()) || 'Untitled';
+	const frozen = new Date(revision.frozenAt);
+	return {
+		paper,
+		documentTitle: `${note.number} revision ${letter}: ${title}`,
+		number: note.number,
+		letter,
+		title,
+		shortTitle: title.length > 56 ? `${title.slice(0, 55).trimEnd()}…` : title,
+		team: visible(revision.team.name),
+		purpose: visible(proposal.purpose),
+		replaces: revision.replaces && {
+			letter: revision.replaces.letter,
+			reason: visible(revision.replaces.reason),
+		},
+		authors: proposal.authors.map(({ name }) => visible(name)),
+		frozenAt: [
+			frozen.getUTCFullYear(),
+			frozen.getUTCMonth() + 1,
+			frozen.getUTCDate(),
+			frozen.getUTCHours(),
+			frozen.getUTCMinutes(),
+			frozen.getUTCSeconds(),
+		],
+		frozenDay: day(revision.frozenAt),
+		engine,
+		digest,
+		groups: grouped(digest).split(' '),
+		bands: bandsOf(digest),
+		address: addressOf(digest, origin),
+		cautions: [...new Set(cautions.map(({ text }) => visible(text)))],
+		cells: content.cells.map((cell, index) => cellOf(cell, index + 1, results)),
+		budgets: budgetsOf(results, proposal.options.coverage),
+		record: recordOf(revision),
+	};
+}
+
+/** Digits of the digest in the address: nobody guesses 128 bits, and the code stays coarse enough for a poor print. */
+const digits = 32;
+
+/** The public page that says whether the revision of this digest is still the current one. */
+export function addressOf(digest: string, origin: string): string {
+	return `${origin}/r/${digest.slice(0, digits)}`;
+}
+
+function cellOf(
+	cell: NoteCell,
+	terminal: number,
+	results: SealedContent['revision']['proposal']['results'],
+): Cell {
+	const { id, kind } = cell;
+	switch (kind) {
+		case 'text': {
+			const faults = results.errors
+				.filter((fault) => fault.cell === id)
+				.map(({ message }) => visible(message));
+			return { id, terminal, kind, blocks: proseOf(cell, results), faults };
+		}
+		case 'calculation':
+			return { id, terminal, kind, lines: workedLines(cell, results) };
+		case 'requirement':
+			return { id, terminal, kind, lines: judgedLines(cell, results) };
+		default:
+			return {
+				id,
+				terminal,
+				kind: 'text',
+				blocks: [{ k: 'code', t: visible(cell.source) }],
+				faults: [],
+			};
+	}
+}
