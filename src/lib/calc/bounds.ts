@@ -26,4 +26,10 @@ export const bounds = {
 	curvatures: 800_000,
 	/** Members of a matrix that are handed out with the results. */
 	listedMembers: 10_000,
+	/** Points of one curve, and quantities in its picture. */
+	sweepPoints: 401,
+	sweepQuantities: 6,
+	/** Operations of all curves of a note, and what looking at one line at one point counts. */
+	sweepSteps: 1_000_000,
+	sweepLineSteps: 4,
 } as const;

@@ -5,11 +5,11 @@ import { readFigures } from './figures';
 import { addFormulas } from './formulas';
 import { Memory } from './memory';
 import { Note } from './note';
-import { readLines, type NoteLine, type Watch } from './note-lines';
+import { faultOf, readLines, type Watch } from './note-lines';
 import { judge } from './requirements';
 import type { Cell, CurveCell, Evaluation, Fault, Options, Quantity } from './results';
 import { Bounds } from './steps';
-import { mendOf, type Trouble } from './trouble';
+import { Sweeps } from './sweeps/sweeps';
 import { finiteUncertainty, stepOf } from './uncertainty';
 import { Worked } from './worked';
 
@@ -19,23 +19,29 @@ import { Worked } from './worked';
  */
 export class Calculator {
 	#memory = new Memory();
+	#sweeps = new Sweeps();
 	#options = '';
 
 	/** No input makes it throw. `watch` is for the process around it that must be able to end it. */
 	evaluate(cells: readonly Cell[], options: Options, watch: Watch = {}): Evaluation {
 		const { coverage, decisionRule } = options;
 		const settings = JSON.stringify([coverage, decisionRule]);
-		if (settings !== this.#options) this.#memory = new Memory();
+		if (settings !== this.#options) {
+			this.#memory = new Memory();
+			this.#sweeps = new Sweeps();
+		}
 		this.#options = settings;
 		const { lines, readable, faults } = readLines(cells, watch);
 		const note = new Note(lines, watch, this.#memory);
 		const worked = new Worked(note, options);
 		const requirements = lines.flatMap((line) => judge(line, note, options) ?? []);
 		const quoted = readFigures(cells, readable, note, worked);
+		const drawn = this.#sweeps.draw(cells, readable, note, options, watch);
 		const errors = [
 			...faults,
-			...lines.flatMap((line) => note.faultsOf(line).map((trouble) => fault(line, trouble))),
+			...lines.flatMap((line) => note.faultsOf(line).map((trouble) => faultOf(line, trouble))),
 			...quoted.faults,
+			...drawn.faults,
 		];
 		const quantities = worked.quantities();
 		addDetails(quantities, note, options, watch);
@@ -49,6 +55,7 @@ export class Calculator {
 			requirements,
 			figures: quoted.figures,
 			...(note.curves.fitted.size > 0 && { curves }),
+			...(drawn.sweeps.length > 0 && { sweeps: drawn.sweeps }),
 			errors: inSheetOrder(errors, cells),
 		};
 	}
@@ -92,20 +99,6 @@ function addDetails(
 		const found = computed && trials.get(computed);
 		if (found && quantity) quantities[name] = { ...quantity, monteCarlo: found };
 	}
-}
-
-function fault(line: NoteLine, { code, at, message, how }: Trouble): Fault {
-	const length = line.text.length;
-	const from = Math.min(at.from, Math.max(0, length - 1));
-	return {
-		cell: line.cell,
-		line: line.line,
-		from,
-		to: Math.max(from, Math.min(at.to, length)),
-		code,
-		message,
-		...mendOf(how),
-	};
 }
 
 function inSheetOrder(errors: Fault[], cells: readonly Cell[]): Fault[] {

@@ -123,7 +123,8 @@ export class Memory {
 	}
 }
 
-function alike(a: readonly unknown[], b: readonly unknown[]): boolean {
+/** Whether two results rest on the same. */
+export function alike(a: readonly unknown[], b: readonly unknown[]): boolean {
 	return a.length === b.length && a.every((use, i) => use !== undefined && use === b[i]);
 }
 

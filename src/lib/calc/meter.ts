@@ -16,6 +16,11 @@ export class Meter {
 		return this.#line;
 	}
 
+	/** Operations of the note. */
+	get total(): number {
+		return this.#note;
+	}
+
 	/** Whether the note has so many operations left. */
 	affords(steps: number): boolean {
 		return this.#note + steps <= bounds.noteSteps;

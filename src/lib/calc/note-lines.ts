@@ -4,7 +4,7 @@ import { givenLines, type Given } from './given-cells';
 import { isRemembered, parseLine, unreadLine, type ParsedLine } from './language/parse-line';
 import type { SharedDraw } from './doubt/shared-trials';
 import type { Cell, Fault } from './results';
-import { Trouble } from './trouble';
+import { mendOf, Trouble } from './trouble';
 
 /** How a process that watches the engine takes part: it learns where the engine is and names lines to leave out. */
 export interface Watch {
@@ -72,7 +72,7 @@ export function readLines(
 			return;
 		}
 		readable.add(cell.id);
-		if (cell.kind === 'readings' || cell.kind === 'curve') lines.push(...givenLines(cell, i + 1));
+		if (!('source' in cell)) lines.push(...givenLines(cell, i + 1));
 		rows.forEach((text, row) => {
 			const place = { cell: cell.id, terminal: i + 1, line: row + 1, text };
 			if (!isRemembered(text)) watch.at?.(cell.id, row + 1);
@@ -101,4 +101,22 @@ function unfinished({ code }: SkippedLine, text: string): Trouble {
 	return new Trouble(code, { from: 0, to: text.length }, message, {
 		mend: 'Work on fewer values, or split it into several quantities.',
 	});
+}
+
+/** A fault at its place in the note. */
+export function faultOf(
+	{ cell, line, text }: Pick<NoteLine, 'cell' | 'line' | 'text'>,
+	{ code, at, message, how }: Trouble,
+): Fault {
+	const { length } = text;
+	const from = Math.min(at.from, Math.max(0, length - 1));
+	return {
+		cell,
+		line,
+		from,
+		to: Math.max(from, Math.min(at.to, length)),
+		code,
+		message,
+		...mendOf(how),
+	};
 }

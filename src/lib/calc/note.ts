@@ -48,7 +48,7 @@ export class Note {
 	readonly curves: NoteCurves;
 	readonly #doubtfulFunctions: DoubtfulFunctions;
 	#correlations: Correlations = uncorrelated;
-	#curvaturesLeft: number = bounds.curvatures;
+	#curvaturesLeft: number;
 	/** Of the line that was computed last. */
 	#lastSecondOrder = { curvatures: 0, secondOrder: true };
 
@@ -56,8 +56,10 @@ export class Note {
 		readonly lines: readonly NoteLine[],
 		private readonly watch: Watch,
 		readonly memory: Memory,
+		private readonly secondOrder = true,
 	) {
 		memory.begin();
+		this.#curvaturesLeft = secondOrder ? bounds.curvatures : -1;
 		const names = new Set(lines.flatMap((line) => (line.defined ? [line.defined.name] : [])));
 		const fail = (line: NoteLine, trouble: Trouble) => this.fail(line, trouble);
 		this.#definitions = define(lines, names, fail);
@@ -70,6 +72,11 @@ export class Note {
 		);
 		this.curves = new NoteCurves((name) => this.#definitions.get(name), this.inputs, memory);
 		this.#evaluateAll();
+	}
+
+	/** Operations that computing it took. */
+	get spent(): number {
+		return this.#meter.total;
 	}
 
 	/** What the note says of correlations between its inputs. */
@@ -173,7 +180,8 @@ export class Note {
 			if (isExact(part)) return undefined;
 			const count = tracer.inputs.length;
 			const out = nodesOf(tracer.tape, part);
-			return stepsOf(tracer.tape, out, tracer.args, first, this.inputs, count)[0];
+			const { tape, args } = tracer;
+			return stepsOf(tape, out, args, first, this.inputs, count, this.secondOrder)[0];
 		});
 	}
 

@@ -112,7 +112,7 @@ function distanceNode(op: Comparison, value: Node, limit: Node): Node {
 }
 
 /** Which side is the value and which are the limits. Throws Trouble `notComparable`. */
-function shapeOf(body: Node): Shape {
+export function shapeOf(body: Node): Shape {
 	if (body.kind !== 'compare')
 		throw new Trouble('notComparable', body, 'A requirement is a comparison.', {
 			mend: 'Write `quantity <= limit`, or `lowest <= quantity <= highest`.',

@@ -37,8 +37,27 @@ const curveCell = z.strictObject({
 	weighted: z.boolean().optional(),
 });
 
+const sweepCell = z.strictObject({
+	id,
+	kind: z.literal('curve'),
+	source: z.string().max(maxSourceLength, `has at most ${maxSourceLength} characters`),
+});
+
+const otherCell = z.discriminatedUnion('kind', [sourceCell, readingsCell, curveCell]);
+
+/** A curve is a line of words where it has a source, and a fit otherwise. */
+const cell = z.unknown().transform((sent, context): Cell => {
+	const isSweep = z
+		.object({ kind: z.literal('curve'), source: z.unknown() })
+		.safeParse(sent).success;
+	const parsed = (isSweep ? sweepCell : otherCell).safeParse(sent);
+	if (parsed.success) return parsed.data;
+	for (const issue of parsed.error.issues) context.issues.push({ ...issue, input: sent });
+	return z.NEVER;
+});
+
 const cells = z
-	.array(z.discriminatedUnion('kind', [sourceCell, readingsCell, curveCell]))
+	.array(cell)
 	.max(1000, 'has at most 1 000 cells')
 	.superRefine((all, context) => {
 		const seen = new Set<string>();
