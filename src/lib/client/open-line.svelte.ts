@@ -8,9 +8,18 @@ const settledMs = 120;
 /** An answer that is older than the page's figures is asked for again, this often at most. */
 const mostTries = 12;
 
+/** What can be asked of a line beside what is known of it. */
+interface Asks {
+	/** Tries another value of the quantity. */
+	trial: (name: string) => void;
+	/** Chooses unit and digits of its readouts, beside an element; undefined where nothing may be written. */
+	setting: ((name: string, at: Element) => void) | undefined;
+}
+
 /** The worked line that is open on the sheet, and what the server says of its quantity. */
 export class OpenLine {
 	readonly trials: Trials;
+	readonly asks: Asks;
 	readonly #address: string;
 	#opened = $state<string>();
 	#detail = $state.raw<QuantityDetail>();
@@ -23,7 +32,8 @@ export class OpenLine {
 	#wanted = 0;
 
 	/** `number` as in addresses, MN-014. */
-	constructor(number: string) {
+	constructor(number: string, asks: Asks) {
+		this.asks = asks;
 		this.#address = `/api/notes/${number}/quantities`;
 		this.trials = new Trials(`/api/notes/${number}/trials`);
 	}

@@ -1,10 +1,13 @@
 import type { Thread, threadKinds } from '$lib/schemas/comments';
+import type { TrialChange } from '$lib/schemas/trial';
 import { call } from './call';
 
 interface NewThread {
 	kind: (typeof threadKinds)[number];
 	blocking: boolean;
 	body: string;
+	/** Changed inputs that it speaks of. */
+	trial?: readonly TrialChange[] | undefined;
 }
 
 /** Threads of a note in the page. What fails throws an Error with a sentence to show; what was typed stays with the caller. */
@@ -35,9 +38,9 @@ export class Threads {
 		return this.#take(await call<Thread>('POST', this.#address, { cellId, ...thread }));
 	}
 
-	async reply(threadId: string, body: string): Promise<Thread> {
+	async reply(threadId: string, said: Pick<NewThread, 'body' | 'trial'>): Promise<Thread> {
 		const address = `${this.#address}/${threadId}/comments`;
-		return this.#take(await call<Thread>('POST', address, { body }));
+		return this.#take(await call<Thread>('POST', address, said));
 	}
 
 	/** Closes a thread or opens it again. */

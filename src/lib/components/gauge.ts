@@ -20,10 +20,15 @@ const rest = 0.24;
 
 type Drawn = Pick<Requirement, 'value' | 'lower' | 'upper' | 'expandedUncertainty' | 'guardBand'>;
 
-/** A linear scale on which limits, doubt and value can be told apart: it starts from zero where that shows enough. */
-export function gaugeScale(requirement: Drawn): GaugeScale {
+/**
+ * A linear scale on which limits, doubt and value can be told apart: it starts from zero where that shows enough. With
+ * another state of the requirement `beside` it, both fit on it.
+ */
+export function gaugeScale(requirement: Drawn, beside?: Drawn): GaugeScale {
 	const { value, lower, upper, expandedUncertainty: doubt = 0, guardBand } = requirement;
-	const [left, right] = drawnRange(requirement);
+	const ranges = [requirement, ...(beside ? [beside] : [])].map(drawnRange);
+	const left = Math.min(...ranges.map(([from]) => from));
+	const right = Math.max(...ranges.map(([, to]) => to));
 	const share = (x: number) => (x - left) / (right - left);
 	const inside = (x: number) => Math.min(1, Math.max(0, share(x)));
 	const at = share(value);

@@ -1,3 +1,4 @@
+import type { Readout } from '$lib/calc/results';
 import MarkdownIt from 'markdown-it';
 import { figurePattern, quotedName, type FindReadout } from './figures';
 import { formulas } from './markdown-formulas';
@@ -43,11 +44,18 @@ md.renderer.rules.figure = (tokens, index, _options, env) => {
 	const quoted = tokens[index]?.content ?? '';
 	const readout = (env?.find as FindReadout)(quoted);
 	if (!readout) return `<span class="no-readout">${escapeHtml(quoted)}</span>`;
+	const name = escapeHtml(quotedName(quoted));
+	const tried = readout.tried
+		? ` <span class="text-tried" data-tried="${name}"><span class="tried-word">trial</span>${figureOf(readout.tried)}</span>`
+		: '';
+	return `<span class="readout" data-quantity="${name}">${figureOf(readout)}</span>${tried}`;
+};
+
+function figureOf(readout: Readout): string {
 	const unit = readout.unit && `&nbsp;<span class="unit">${escapeHtml(readout.unit)}</span>`;
 	const doubt = readout.doubt ? `&nbsp;<small>±&nbsp;${escapeHtml(readout.doubt)}</small>` : '';
-	const name = escapeHtml(quotedName(quoted));
-	return `<span class="readout" data-quantity="${name}">${escapeHtml(readout.number)}${doubt}${unit}</span>`;
-};
+	return escapeHtml(readout.number) + doubt + unit;
+}
 
 /** A longer text is shown as it was typed: parsing a hostile one would hold up everybody who opens the note. */
 export const longestProse = 30_000;

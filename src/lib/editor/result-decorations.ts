@@ -1,6 +1,7 @@
 import type { Range, Text } from '@codemirror/state';
 import { Decoration, type DecorationSet, type EditorView } from '@codemirror/view';
 import type { Component } from 'svelte';
+import type { MovedQuantity, MovedRequirement } from '$lib/calc/moved';
 import type { Fault, Readout as Shown, Requirement, WorkedLine } from '$lib/calc/results';
 import FaultNote from '$lib/components/FaultNote.svelte';
 import LineValue from '$lib/components/LineValue.svelte';
@@ -63,12 +64,13 @@ export function readout(
 	shown: Shown,
 	remarks: readonly string[] | undefined,
 	opener: Opener | undefined,
+	moved: MovedQuantity | undefined,
 ) {
 	return new MountedWidget({
 		component: LineValue,
-		props: () => ({ readout: shown, quantity: name, remarks, opener }),
+		props: () => ({ readout: shown, quantity: name, remarks, opener, moved }),
 		key: name ?? `line ${line}`,
-		text: JSON.stringify([shown, remarks]),
+		text: JSON.stringify([shown, remarks, moved]),
 		className: 'line-readout',
 		ownEvents: true,
 		onchange: fadeOnce,
@@ -87,12 +89,12 @@ export function detail(name: string, component: Behind, line: OpenLine) {
 	});
 }
 
-export function verdict(requirement: Requirement) {
+export function verdict(requirement: Requirement, moved: MovedRequirement | undefined) {
 	return new MountedWidget({
 		component: Verdict,
-		props: () => ({ requirement }),
+		props: () => ({ requirement, moved }),
 		key: `line ${requirement.line}`,
-		text: JSON.stringify(requirement),
+		text: JSON.stringify([requirement, moved]),
 	});
 }
 

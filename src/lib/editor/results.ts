@@ -11,6 +11,7 @@ import { splitLine } from '$lib/components/lines';
 import type { OpenLine } from '$lib/client/open-line.svelte';
 import { noteContext } from './note-context';
 import { remarksOf } from '$lib/components/remarks';
+import type { Tried } from '$lib/components/tried';
 import {
 	decorate,
 	detail,
@@ -25,10 +26,11 @@ import {
 
 const arrived = StateEffect.define<Result[]>();
 
-/** The line that is open, and what stands under it as soon as that is loaded. */
+/** The line that is open, what stands under it as soon as that is loaded, and a trial that moves figures. */
 interface Open {
 	line: OpenLine;
 	Behind: Behind | undefined;
+	tried: Tried;
 }
 
 /** Shows the results of a cell in its editor. */
@@ -152,7 +154,7 @@ function placed(
 	doc: Text,
 	cell: string,
 	evaluation: Evaluation,
-	{ line: opener, Behind }: Open,
+	{ line: opener, Behind, tried }: Open,
 ): Result[] {
 	const list: Result[] = [];
 	for (const line of evaluation.lines) {
@@ -164,14 +166,22 @@ function placed(
 			list.push({ kind: 'detail', at, widget: detail(line.name, Behind, opener) });
 		if (line.readout) {
 			const remarks = remarksOf(evaluation, line.name);
-			list.push({ kind: 'readout', at, widget: readout(line, line.readout, remarks, opener) });
+			list.push({
+				kind: 'readout',
+				at,
+				widget: readout(line, line.readout, remarks, opener, tried.ofQuantity(line.name)),
+			});
 		}
 	}
 	for (const requirement of evaluation.requirements) {
 		if (requirement.cell !== cell) continue;
 		const at = startOf(doc, requirement.line);
 		if (at !== undefined) {
-			list.push({ kind: 'verdict', at, widget: verdict(requirement) });
+			list.push({
+				kind: 'verdict',
+				at,
+				widget: verdict(requirement, tried.ofRequirement(cell, requirement.line)),
+			});
 		}
 	}
 	for (const fault of evaluation.errors) {

@@ -49,6 +49,14 @@ export function setShown(doc: Y.Doc, name: string, { unit, digits }: Display): v
 	else shown.delete(name);
 }
 
+/** A quantity that gets another name keeps how its readouts are set. */
+export function renameShown(doc: Y.Doc, name: string, next: string): void {
+	const display = shownOf(doc).get(name);
+	if (!display) return;
+	shownOf(doc).delete(name);
+	setShown(doc, next, display);
+}
+
 /** Makes a document set readouts as `wanted` says, by changes of what differs. */
 export function matchShown(doc: Y.Doc, wanted: Readonly<Record<string, Display>>): void {
 	const shown = shownOf(doc);

@@ -4,6 +4,7 @@ import { SvelteSet } from 'svelte/reactivity';
 import type { Evaluation } from '$lib/calc/results';
 import { OpenLine } from '$lib/client/open-line.svelte';
 import { Threads } from '$lib/client/threads.svelte';
+import { Trial } from '$lib/client/trial.svelte';
 import { WorkingCopy } from '$lib/client/working-copy.svelte';
 import type { NoteContext, Place } from '$lib/editor/note-context';
 import type { CellKind, NoteContent } from '$lib/note/document';
@@ -13,8 +14,10 @@ import { Finder } from './finder.svelte';
 import type LineDetailType from './detail/LineDetail.svelte';
 import { MarginPlaces } from './margin-places';
 import { Nearness } from './nearness';
+import { askToSet } from './readout/click-to-set';
 import { rename } from './rename';
 import { Settled } from './settled.svelte';
+import { beginTrial } from './trial/trial-deeds';
 
 interface Start {
 	note: { id: string; number: string; epoch: string };
@@ -57,6 +60,8 @@ export class Sheet {
 	readonly settled: Settled;
 	/** The worked line that is open. */
 	readonly line: OpenLine;
+	/** Inputs that this person changes privately. */
+	readonly trial: Trial;
 	/** Loaded when a line is opened first. */
 	LineDetail = $state.raw<typeof LineDetailType>();
 	/** Cell whose thread form is open. */
@@ -68,6 +73,8 @@ export class Sheet {
 	readonly finder: Finder;
 	/** The note as editors need it. */
 	readonly note: NoteContext;
+	/** The quantity whose unit and digits are chosen, and what it was asked from. */
+	setting = $state.raw<{ name: string; at: Element }>();
 	/** Open tool at the sheet's foot. */
 	tool = $state.raw<Tool>();
 	/** What the last action has to say, a sentence. */
@@ -92,9 +99,16 @@ export class Sheet {
 		this.settled = new Settled({ ...content, evaluation });
 		this.drag = new CellDrag(this.copy);
 		this.threads = new Threads(note.number, threads);
-		this.line = new OpenLine(note.number);
-		this.finder = new Finder(this);
 		const { copy } = this;
+		const ask = (name: string, at: Element) => askToSet(this, name, at);
+		this.line = new OpenLine(note.number, {
+			trial: (name) => beginTrial(this, name),
+			get setting() {
+				return copy.editable ? ask : undefined;
+			},
+		});
+		this.trial = new Trial(note.number);
+		this.finder = new Finder(this);
 		this.note = {
 			get cells() {
 				return copy.cells;

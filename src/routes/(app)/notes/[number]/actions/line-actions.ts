@@ -1,6 +1,8 @@
 import { splitLine } from '$lib/components/lines';
 import { mendHere } from '$lib/editor/results';
+import { askToSet } from '../readout/click-to-set';
 import type { Sheet } from '../sheet.svelte';
+import { beginTrial } from '../trial/trial-deeds';
 import type { Action } from './action';
 
 const load = () => import('$lib/editor/writing');
@@ -37,6 +39,17 @@ export function lineActions(sheet: Sheet): Action[] {
 			},
 		});
 	}
+	actions.push({
+		name: 'Try another value of it',
+		keys: 'Alt+Shift+V',
+		run: () =>
+			void load().then((writing) => {
+				const found = writing.nameHere(view, kind);
+				if (found) beginTrial(sheet, found.name);
+				else nothing();
+			}),
+		keepsFocus: true,
+	});
 	if (!copy.editable) return actions;
 	return [
 		...actions,
@@ -52,6 +65,17 @@ export function lineActions(sheet: Sheet): Action[] {
 			keepsFocus: true,
 		},
 		{
+			name: 'Choose its unit and digits',
+			keys: 'Alt+Shift+U',
+			run: () =>
+				void load().then((writing) => {
+					const found = writing.nameHere(view, kind);
+					if (found) askToSet(sheet, found.name, readoutOf(sheet, found.name));
+					else nothing();
+				}),
+			keepsFocus: true,
+		},
+		{
 			name: 'Mend this line',
 			keys: 'Alt+Shift+M',
 			run: () => {
@@ -61,4 +85,11 @@ export function lineActions(sheet: Sheet): Action[] {
 			keepsFocus: true,
 		},
 	];
+}
+
+/** The readout beside which something about a quantity is asked: the one in the cell at hand, else its first. */
+function readoutOf({ active }: Sheet, name: string): Element | null {
+	const at = `[data-quantity="${CSS.escape(name)}"]`;
+	const here = active && document.querySelector(`#cell-${active.cellId} ${at}`);
+	return here ?? document.querySelector(`[data-cell] ${at}`);
 }

@@ -1,4 +1,5 @@
 import type { Sheet } from '../sheet.svelte';
+import { beginTrial } from '../trial/trial-deeds';
 import type { Action } from './action';
 
 /** What can be done with the note as a whole, and ways through it. */
@@ -25,6 +26,20 @@ export function noteActions(sheet: Sheet): Action[] {
 			keepsFocus: true,
 		},
 		{
+			name: 'Look through the register',
+			keys: 'Alt+Shift+R',
+			run: () => showRegister(),
+			keepsFocus: true,
+		},
+		sheet.trial.isOpen
+			? { name: 'End the trial', run: () => sheet.trial.close() }
+			: {
+					name: 'Open a trial: change inputs privately',
+					keys: 'Alt+Shift+T',
+					run: () => beginTrial(sheet),
+					keepsFocus: true,
+				},
+		{
 			name: 'Go to the next cell',
 			keys: 'Alt+PageDown',
 			run: () => step(sheet, 1),
@@ -44,6 +59,11 @@ export function noteActions(sheet: Sheet): Action[] {
 			keepsFocus: true,
 		},
 		{
+			name: 'Compare with a revision or candidate',
+			run: () => location.assign(`/notes/${sheet.number}/compare`),
+			keepsFocus: true,
+		},
+		{
 			name: 'Unfold all cells',
 			run: () => sheet.folded.clear(),
 			off: sheet.folded.size === 0,
@@ -55,6 +75,13 @@ export function noteActions(sheet: Sheet): Action[] {
 				]
 			: []),
 	];
+}
+
+/** Comes to the register's filter, in its drawer where the window is narrow. */
+function showRegister(): void {
+	const rail = document.getElementById('rail');
+	if (rail && getComputedStyle(rail).display === 'none') rail.showPopover();
+	document.getElementById('register-filter')?.focus();
 }
 
 function step(sheet: Sheet, direction: -1 | 1): void {
