@@ -2,9 +2,10 @@ import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import * as Y from 'yjs';
 import { db } from '$lib/server/db/client';
-import { note } from '$lib/server/db/schema/notes';
+import { evaluation, note } from '$lib/server/db/schema/notes';
 import * as store from '$lib/server/evaluation/store';
 import { closePool } from '$lib/server/evaluation/pool';
+import * as updates from '$lib/server/notes/updates';
 import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
 import { startSyncBench, type SyncBench } from '../support/sync';
 
@@ -105,3 +106,26 @@ test('recalculations, cursors and presence add nothing to the document or the lo
 	page.destroy();
 	peer.destroy();
 });
+
+const recalculations = process.env.HALFDIGIT_LONG ? 10_000 : 200;
+
+test(`${recalculations} recalculations without an edit leave document and log byte for byte as they were`, async () => {
+	const noteId = await bench.makeNote('U = 5 V\nI = U / 2 kohm\n');
+	const page = await open(noteId);
+	const standing = async () => {
+		const rows = await updates.rowsSince(noteId, 0);
+		return {
+			log: rows.map(({ seq, bytes }) => `${seq} ${Buffer.from(bytes).toString('base64')}`),
+			state: Buffer.from(Y.encodeStateAsUpdate(page.doc)).toString('base64'),
+		};
+	};
+	const before = await standing();
+	for (let time = 0; time < recalculations; time += 1) {
+		// Without stored results the note is computed anew for whoever asks.
+		await db().delete(evaluation).where(eq(evaluation.noteId, noteId));
+		const { results } = await store.current(noteId);
+		expect(results.quantities.I?.value).toBe(0.0025);
+	}
+	expect(await standing()).toEqual(before);
+	page.destroy();
+}, 600_000);
