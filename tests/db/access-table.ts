@@ -122,6 +122,11 @@ export const accessTable: Record<string, Row> = {
 		...page('/revisions/A'),
 		expect: { stranger: signIn, outsider: 404, all: 200 },
 	},
+	'GET /notes/[number]/compare': {
+		stage: 'frozen',
+		...page('/compare'),
+		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
 	'POST /notes/[number]/revisions/[letter]?/withdraw': {
 		stage: 'frozen',
 		...page('/revisions/A?/withdraw'),
@@ -199,6 +204,12 @@ export const accessTable: Record<string, Row> = {
 		script: true,
 		at: ({ number }) => `/api/v1/notes/${number}`,
 		expect: { stranger: 401, reader: 404, outsider: 404, all: 200 },
+	},
+	'GET /api/v1/notes/[number]/comparison': {
+		script: true,
+		stage: 'frozen',
+		at: ({ number }) => `/api/v1/notes/${number}/comparison?from=A&to=A`,
+		expect: { stranger: 401, outsider: 404, all: 200 },
 	},
 	'POST /api/v1/evaluate': {
 		script: true,

@@ -7,14 +7,19 @@ import type { SignOff, Waiver } from './review';
 /** A side in an address: a revision's letter, `candidate-2` or `working-copy`. */
 const side = z
 	.string()
-	.regex(/^([A-Z]{1,9}|candidate-[1-9]\d{0,8}|working-copy)$/)
-	.optional()
-	.catch(undefined);
+	.regex(
+		/^([A-Z]{1,9}|candidate-[1-9]\d{0,8}|working-copy)$/,
+		'Name a side as A, candidate-2 or working-copy.',
+	)
+	.optional();
 
-/** What the address of a comparison asks for; what cannot be read counts as not said. */
+/** The two sides that are asked for. */
+export const comparedSides = z.object({ from: side, to: side });
+
+/** What the address of the page asks for; what cannot be read counts as not said. */
 export const comparisonQuery = z.object({
-	from: side,
-	to: side,
+	from: side.catch(undefined),
+	to: side.catch(undefined),
 	view: z.enum(['columns', 'one']).catch('columns'),
 });
 
@@ -155,6 +160,28 @@ export interface TextChange {
 	hunks: Hunk[];
 }
 
+/** How a quantity's readouts are set; null where nobody chose anything. */
+export interface DisplayChange {
+	name: string;
+	/** "mV, 4 digits" */
+	from: string | null;
+	to: string | null;
+}
+
+/** A picture of quantities over another one that is not the same on both sides. */
+export interface SweepChange {
+	/** "V_adc over V_max" */
+	title: string;
+	change: 'moved' | 'added' | 'removed';
+	/** The range that is drawn, where it is another one; its points cannot be compared then. */
+	range: { from: string; to: string } | null;
+	/** Curves with points that moved, came or went. */
+	series: { name: string; change: 'moved' | 'added' | 'removed'; moved: number; points: number }[];
+	/** Where a curve passes its limit, as it is read; null where it does not on that side. */
+	crossings: { name: string; limit: 'lower' | 'upper'; from: string | null; to: string | null }[];
+	place: Place;
+}
+
 export interface WaiverChange {
 	change: 'added' | 'removed';
 	waiver: Waiver;
@@ -182,6 +209,8 @@ export interface ComparedSide extends Side {
 	pending: boolean;
 	/** Lines that have an error. */
 	faults: number;
+	/** Ids of its cells in the order of the sheet. */
+	cells: string[];
 }
 
 /** Everything that differs between two sides of a note. */
@@ -198,6 +227,8 @@ export interface Differences {
 	requirements: RequirementChange[];
 	cells: CellChange[];
 	texts: TextChange[];
+	displays: DisplayChange[];
+	sweeps: SweepChange[];
 }
 
 export interface Comparison extends Differences {

@@ -27,9 +27,8 @@ export function deltaOf(from: Amount | null, to: Amount | null): Delta | undefin
 	const shown = { from: from.shown, to: to.shown };
 	const alike = reconciled(from, to);
 	if (!alike) return { ...shown, difference: null, relative: null };
-	const { a, b, unit } = alike;
+	const { a, b, unit, hasZero } = alike;
 	if (isSame(a, b)) return undefined;
-	const hasZero = unit.offset !== 0 && !from.interval;
 	const share = (b - a) / Math.abs(a);
 	return {
 		...shown,
@@ -44,12 +43,13 @@ export function isSame(a: number, b: number): boolean {
 }
 
 /** Both numbers in the unit of the second; undefined where they are of different kinds. */
-function reconciled(from: Amount, to: Amount): { a: number; b: number; unit: Unit } | undefined {
+function reconciled(from: Amount, to: Amount) {
 	const unit = unitOf(to.unit);
-	if (from.unit === to.unit) return { a: from.value, b: to.value, unit };
-	const other = unitOf(from.unit);
+	const other = from.unit === to.unit ? unit : unitOf(from.unit);
 	if (!sameDimension(other.dimension, unit.dimension)) return undefined;
-	return { a: inUnit(from, other, unit), b: to.value, unit };
+	const a = other === unit ? from.value : inUnit(from, other, unit);
+	const hasZero = !from.interval && (unit.offset !== 0 || other.offset !== 0);
+	return { a, b: to.value, unit, hasZero };
 }
 
 function inUnit({ value, interval }: Amount, from: Unit, to: Unit): number {

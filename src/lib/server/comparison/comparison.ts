@@ -1,4 +1,3 @@
-import { defaultOptions } from '$lib/calc/engine';
 import type { Evaluation } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import type { NoteContent } from '$lib/note/document';
@@ -8,6 +7,7 @@ import { eq } from 'drizzle-orm';
 import { demand, type Actor } from '../auth/access';
 import { db } from '../db/client';
 import { candidate } from '../db/schema/review';
+import { optionsOf } from '../evaluation/note-options';
 import { evaluateInChild } from '../evaluation/pool';
 import { current } from '../evaluation/store';
 import * as notes from '../notes/notes';
@@ -94,7 +94,8 @@ async function detailed(side: ReadSide, names: readonly string[]): Promise<ReadS
 		(name) => side.results.quantities[name]?.standardUncertainty !== undefined,
 	);
 	if (side.isFrozen || detail.length === 0) return side;
-	const results = await evaluateInChild(side.content.cells, { ...defaultOptions, detail });
+	const options = { ...optionsOf(side.content), detail };
+	const results = await evaluateInChild(side.content.cells, options);
 	return { ...side, results };
 }
 
@@ -107,6 +108,7 @@ function said(side: KnownSide, { content, results, signOffs, pending }: ReadSide
 		signOffs,
 		pending,
 		faults,
+		cells: content.cells.map(({ id }) => id),
 	};
 }
 

@@ -31,6 +31,8 @@ const nothing: Differences = {
 	requirements: [],
 	cells: [],
 	texts: [],
+	displays: [],
+	sweeps: [],
 };
 const plain = (text: string | null) => text && spaced(text);
 const told = (delta: Delta | undefined) =>
@@ -207,6 +209,16 @@ test('a requirement that moved to another cell is the same one', () => {
 	const before = note({ c1: 'V = 2 V', r1: 'V <= 3 V\nV >= 1 V' });
 	const after = note({ c1: 'V = 2 V', r1: 'V >= 1 V', r2: 'V <= 3 V' });
 	expect(differences(before, after).requirements).toEqual([]);
+});
+
+test('how readouts are set is told where it changed', () => {
+	const [before, after] = [note({ c1: 'a = 1 V' }), note({ c1: 'a = 1 V' })];
+	before.content.shown = { a: { unit: 'mV' }, b: { digits: 3 } };
+	after.content.shown = { a: { unit: 'mV', digits: 1 }, b: { digits: 3 }, c: { unit: 'kV' } };
+	expect(differences(before, after).displays).toEqual([
+		{ name: 'a', from: 'mV', to: 'mV, 1 digit' },
+		{ name: 'c', from: null, to: 'kV' },
+	]);
 });
 
 describe('any two notes', () => {

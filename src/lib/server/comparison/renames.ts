@@ -5,11 +5,17 @@ type Definitions = ReadonlyMap<string, Definition>;
 
 /**
  * Names of the earlier side that only became other names: the line stands in the same cell in place of the other one and
- * its formula is the same, by the names that its own quantities got. Whatever is not as plain as that came and went.
+ * its formula is the same, by the names that its own quantities got, and no line speaks of the other name. Whatever is
+ * not as plain as that came and went.
  */
-export function renamesOf(from: Definitions, to: Definitions): Map<string, string> {
-	const gone = [...from.values()].filter(({ name }) => !to.has(name));
-	const come = [...to.values()].filter(({ name }) => !from.has(name));
+export function renamesOf(
+	from: Definitions,
+	to: Definitions,
+	spokenBefore: ReadonlySet<string>,
+	spokenNow: ReadonlySet<string>,
+): Map<string, string> {
+	const gone = [...from.values()].filter(({ name }) => !spokenNow.has(name));
+	const come = [...to.values()].filter(({ name }) => !spokenBefore.has(name));
 	const renamed = new Map<string, string>();
 	if (gone.length === 0 || come.length === 0) return renamed;
 	const places = exchangesOf(from, to);

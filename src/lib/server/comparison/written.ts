@@ -61,3 +61,11 @@ const tokens = /[\p{L}\p{M}_°%][\p{L}\p{M}\p{N}_]*|(?:\d+\.?\d*|\.\d+)(?:[eE][+
 export function spelled(code: string, renamed?: ReadonlyMap<string, string>): string {
 	return (code.match(tokens) ?? []).map((token) => renamed?.get(token) ?? token).join(' ');
 }
+
+/** Every name that a line of the note has or speaks of, and the other signs of its formulas. */
+export function spokenIn({ cells }: NoteContent): Set<string> {
+	const lines = cells
+		.filter(({ kind }) => kind !== 'text')
+		.flatMap(({ source }) => source.split('\n'));
+	return new Set(lines.flatMap((line) => codeOf(line).match(tokens) ?? []));
+}

@@ -1,6 +1,7 @@
 import { redirect } from '@sveltejs/kit';
 import { approving, fieldsNamed, returning, signing, waivePrefix } from '$lib/schemas/review';
 import * as threads from '$lib/server/comments/threads';
+import * as comparison from '$lib/server/comparison/comparison';
 import * as notes from '$lib/server/notes/notes';
 import * as candidates from '$lib/server/revisions/candidates';
 import { action } from '$lib/server/web/form';
@@ -15,6 +16,7 @@ export const load = forMember(async (actor, { params: { number } }: PageServerLo
 		candidate,
 		review,
 		threads: await threads.list(actor, number),
+		sides: await comparison.sides(actor, number),
 	};
 });
 
