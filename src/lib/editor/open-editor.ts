@@ -11,6 +11,7 @@ import { keys, type Neighbours } from './keys';
 import { lineMarks } from './line-marks';
 import { look } from './look';
 import { noteContext, type NoteContext } from './note-context';
+import { ownDirections } from './own-direction';
 import { results } from './results';
 import { singleLine } from './single-line';
 
@@ -84,7 +85,7 @@ function enter(kind: Choices['kind']): KeyBinding {
 }
 
 function ofKind(kind: Choices['kind']): Extension {
-	if (kind === 'title') return singleLine();
-	if (kind === 'text') return hits();
+	if (kind === 'title') return [singleLine(), ownDirections()];
+	if (kind === 'text') return [hits(), ownDirections()];
 	return [lineMarks(kind), formulaLanguage(), results(), hits()];
 }
