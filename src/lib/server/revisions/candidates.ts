@@ -59,8 +59,16 @@ export async function get(
 	};
 }
 
-/** Takes a snapshot of the working copy as the next candidate and signs it as prepared. */
-export async function propose(actor: Actor, number: string, proposal: Proposal): Promise<void> {
+/**
+ * Takes a snapshot of the working copy as the next candidate and signs it as prepared. Trials may take a while before
+ * that; `signal` stops them, and then nothing is signed.
+ */
+export async function propose(
+	actor: Actor,
+	number: string,
+	proposal: Proposal,
+	signal?: AbortSignal,
+): Promise<void> {
 	demand(actor, 'write');
 	const note = await notes.get(actor, number);
 	await identify(actor, await policies.get(actor), proposal);
@@ -74,11 +82,12 @@ export async function propose(actor: Actor, number: string, proposal: Proposal):
 			details: { blockers: faults },
 		});
 	}
-	const kept = await frozenResults(note.id, content, shown);
+	const kept = await frozenResults(note.id, content, shown, signal);
 	await db().transaction(async (tx) => {
 		await lock(tx, note.id);
 		const standing = await standings.read(tx, note.id);
 		must(rules.propose(actor, standing));
+		if (signal?.aborted) throw new AppError('unavailable', 'This was stopped.');
 		const frozen = standing.revisions[0] && (await seqOf(tx, standing.revisions[0].candidateId));
 		const details = await detailsOf(tx, actor, note, standing, proposal, { content, ...kept });
 		const row = {

@@ -15,6 +15,7 @@ export async function frozenResults(
 	noteId: string,
 	content: NoteContent,
 	results: Evaluation,
+	signal?: AbortSignal,
 ): Promise<{ results: Evaluation; options: Options }> {
 	const named = results.requirements.flatMap(({ dependsOn }) => dependsOn);
 	const judged = [...new Set(named)].filter(
@@ -23,5 +24,5 @@ export async function frozenResults(
 	if (judged.length === 0) return { results, options: optionsOf(content) };
 	const monteCarlo = { quantities: judged.slice(0, most), seed: seedOf(noteId) };
 	const options = { ...optionsOf(content), detail: judged, monteCarlo };
-	return { results: await evaluateInChild(content.cells, options), options };
+	return { results: await evaluateInChild(content.cells, options, { signal }), options };
 }

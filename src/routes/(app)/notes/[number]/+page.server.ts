@@ -29,9 +29,9 @@ export const load = forMember(async (actor, { params: { number } }: PageServerLo
 });
 
 export const actions = {
-	propose: action('propose', proposing, async (actor, said, { params }: RequestEvent) => {
+	propose: action('propose', proposing, async (actor, said, { params, request }: RequestEvent) => {
 		const checkers = fieldsNamed(askPrefix, said).map(([id]) => id);
-		await candidates.propose(actor, params.number, { ...said, checkers });
+		await candidates.propose(actor, params.number, { ...said, checkers }, request.signal);
 		redirect(303, `/notes/${params.number}/candidate`);
 	}),
 };
