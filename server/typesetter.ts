@@ -1,11 +1,11 @@
 import { NodeCompiler } from '@myriaddreamin/typst-ts-node-compiler';
 import { useFonts } from '$lib/server/paper/glyphs';
 import type { PressAnswer, PressTask } from '$lib/server/paper/press';
+import { qrSvg } from '$lib/server/paper/qr';
 import type { SealedContent } from '$lib/server/paper/sealed-content';
 import { sheetOf } from '$lib/server/paper/sheet';
 import { readFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
-import { renderSVG } from 'uqr';
 import formula from './typesetting/formula.typ';
 import lines from './typesetting/lines.typ';
 import look from './typesetting/look.typ';
@@ -42,7 +42,7 @@ function typeset({ id, file, paper, origin }: PressTask): PressAnswer {
 		const sheet = sheetOf(JSON.parse(file) as SealedContent, { paper, origin });
 		give('sheet.json', JSON.stringify(sheet));
 		give('revision.json', file);
-		give('qr.svg', renderSVG(sheet.address, { border: 0, ecc: 'M' }));
+		give('qr.svg', qrSvg(sheet.address));
 		return { kind: 'done', id, pdf: pdfOf() };
 	} catch (error) {
 		return { kind: 'failed', id, why: error instanceof Error ? error.message : String(error) };

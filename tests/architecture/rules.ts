@@ -13,7 +13,7 @@ interface Rule {
 
 const foundation = 'src/lib/(errors\\.ts|calc/|note/|protocol/|schemas/)';
 const serverPackages =
-	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|diff$|@node-rs\/argon2$|@zxcvbn-ts\/|katex$)/;
+	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|diff$|@node-rs\/argon2$|@zxcvbn-ts\/|katex$|uqr$)/;
 
 /** Who may import whom, as DEVELOPERS.md explains it. Tests are outside these rules. */
 const rules: readonly Rule[] = [
@@ -71,7 +71,7 @@ const rules: readonly Rule[] = [
 		who: /^server\//,
 		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/)|server/(?!local/))`),
 		packages:
-			/^(node:|ws$|yjs$|lib0\/|y-protocols\/|pino$|zod$|pg$|uqr$|@myriaddreamin\/typst-ts-node-compiler$|\.\/typesetting\/[a-z]+\.typ$)/,
+			/^(node:|ws$|yjs$|lib0\/|y-protocols\/|pino$|zod$|pg$|@myriaddreamin\/typst-ts-node-compiler$|\.\/typesetting\/[a-z]+\.typ$)/,
 	},
 ];
 

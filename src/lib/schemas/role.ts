@@ -5,13 +5,20 @@ export type Role = z.infer<typeof role>;
 
 /** What a person may be allowed to do in a team. */
 export type Deed =
-	'readFrozen' | 'readWorkingCopy' | 'write' | 'comment' | 'check' | 'approve' | 'administer';
+	| 'readFrozen'
+	| 'readWorkingCopy'
+	| 'write'
+	| 'comment'
+	| 'share'
+	| 'check'
+	| 'approve'
+	| 'administer';
 
 const deeds: Readonly<Record<Role, readonly Deed[]>> = {
 	reader: ['readFrozen'],
-	engineer: ['readFrozen', 'readWorkingCopy', 'write', 'comment', 'check'],
-	approver: ['readFrozen', 'readWorkingCopy', 'write', 'comment', 'check', 'approve'],
-	administrator: ['readFrozen', 'readWorkingCopy', 'comment', 'administer'],
+	engineer: ['readFrozen', 'readWorkingCopy', 'write', 'comment', 'share', 'check'],
+	approver: ['readFrozen', 'readWorkingCopy', 'write', 'comment', 'share', 'check', 'approve'],
+	administrator: ['readFrozen', 'readWorkingCopy', 'comment', 'share', 'administer'],
 };
 
 /** Whether a role allows a deed; who may sign a particular candidate is decided by its authorship besides. */

@@ -1,6 +1,7 @@
 import { bandsOf, grouped } from '$lib/components/seal';
 import { day } from '$lib/components/time';
 import type { NoteCell } from '$lib/note/document';
+import { addressOf } from './address';
 import { budgetsOf, type Budget } from './budgets';
 import { visible } from './glyphs';
 import { judgedLines, workedLines, type Judged, type Worked } from './lines';
@@ -87,14 +88,6 @@ export function sheetOf(
 		budgets: budgetsOf(results, proposal.options.coverage),
 		record: recordOf(revision),
 	};
-}
-
-/** Digits of the digest in the address: nobody guesses 128 bits, and the code stays coarse enough for a poor print. */
-const digits = 32;
-
-/** The public page that says whether the revision of this digest is still the current one. */
-export function addressOf(digest: string, origin: string): string {
-	return `${origin}/r/${digest.slice(0, digits)}`;
 }
 
 function cellOf(

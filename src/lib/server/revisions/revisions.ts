@@ -41,11 +41,28 @@ const noSuchRevision = () => new AppError('notFound', 'There is no such revision
 export async function get(actor: Actor, number: string, letter: string): Promise<Frozen> {
 	demand(actor, 'readFrozen');
 	const { id } = await notes.get(actor, number);
-	const found = await find(id, letter);
 	const standing = await standings.read(db(), id);
+	const found = await read(id, letter, standing);
+	const { withdrawn, newest: last } = found.revision;
+	return {
+		...found,
+		may: {
+			withdraw: may(actor.role, 'approve') && !withdrawn && last === letter,
+			identify: needsAddress(actor, standing.policy),
+		},
+	};
+}
+
+/** The same for those whose right to see it was found otherwise. */
+export async function read(
+	noteId: string,
+	letter: string,
+	standing?: standings.Standing,
+): Promise<Omit<Frozen, 'may'>> {
+	const found = await find(noteId, letter);
+	const { revisions } = standing ?? (await standings.read(db(), noteId));
 	const { seq, content, results, engine, authors, details } = found.candidate;
-	const place = standing.revisions.findIndex((one) => one.letter === letter);
-	const withdrawn = standing.revisions[place]?.withdrawn ?? null;
+	const place = revisions.findIndex((one) => one.letter === letter);
 	return {
 		revision: {
 			letter,
@@ -56,13 +73,9 @@ export async function get(actor: Actor, number: string, letter: string): Promise
 			signOffs: await standings.signOffsOf(db(), found.candidate.id),
 			authors,
 			details,
-			newest: standing.revisions[0]?.letter ?? letter,
-			supersededBy: place > 0 ? await successor(id, standing.revisions[place - 1]!.letter) : null,
-			withdrawn,
-		},
-		may: {
-			withdraw: may(actor.role, 'approve') && !withdrawn && place === 0,
-			identify: needsAddress(actor, standing.policy),
+			newest: revisions[0]?.letter ?? letter,
+			supersededBy: place > 0 ? await successor(noteId, revisions[place - 1]!.letter) : null,
+			withdrawn: revisions[place]?.withdrawn ?? null,
 		},
 		content,
 		results,

@@ -2,7 +2,7 @@ import { promisify } from 'node:util';
 import { gunzip } from 'node:zlib';
 import { AppError } from '$lib/errors';
 import type { SignOff, Withdrawal } from '$lib/schemas/review';
-import { desc, eq } from 'drizzle-orm';
+import { desc, eq, like } from 'drizzle-orm';
 import { db } from '../db/client';
 import { candidate, revision, withdrawal } from '../db/schema/review';
 import { print } from '../paper/printing';
@@ -74,6 +74,16 @@ export async function digest(typed: string): Promise<Outcome> {
 	return standing(wanted, undefined);
 }
 
+/** Verifies the beginning of a digest, 32 digits, as a QR code on paper holds it. */
+export async function beginning(digits: string): Promise<Outcome> {
+	if (!/^[0-9a-f]{32}$/.test(digits)) return nothing([]);
+	const [found] = await db()
+		.select({ digest: revision.digest })
+		.from(revision)
+		.where(like(revision.digest, `${digits}%`));
+	return found ? standing(found.digest, undefined) : nothing([]);
+}
+
 /** The installation's public keys by their id. */
 export async function knownKeys(): Promise<KnownKeys> {
 	return new Map((await entries.keysOf(db())).map(({ id, publicKey }) => [id, publicKey]));
@@ -120,6 +130,10 @@ function parse(text: string): { value: unknown; canonical: boolean } {
 	}
 }
 
+function nothing(faults: string[]): Outcome {
+	return { state: 'unknown', faults, revision: null, signers: [], withdrawn: null };
+}
+
 function altered({ revision: sealed }: Checked, faults: string[]): Outcome {
 	const signers = sealed ? signersOf(sealed) : [];
 	return { state: 'altered', faults, revision: null, signers, withdrawn: null };
@@ -137,8 +151,7 @@ async function standing(wanted: string, given: Checked | undefined): Promise<Out
 		const faults = given
 			? ['Its signatures are genuine, but this installation does not have it.']
 			: [];
-		const signers = given?.revision ? signersOf(given.revision) : [];
-		return { state: 'unknown', faults, revision: null, signers, withdrawn: null };
+		return { ...nothing(faults), signers: given?.revision ? signersOf(given.revision) : [] };
 	}
 	const { letter, noteId, frozenAt, canonical } = found.revision;
 	const [own] = await entries.read(db(), [entry]);

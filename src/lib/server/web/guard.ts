@@ -40,6 +40,11 @@ export const headers: Handle = async ({ event, resolve }) => {
 	set('cross-origin-opener-policy', 'same-origin');
 	set('permissions-policy', 'camera=(), microphone=(), geolocation=()');
 	set('content-security-policy', "default-src 'none'; frame-ancestors 'none'");
+	if (/^\/\(public\)\/(shared|r)\//.test(event.route.id ?? '')) {
+		// Whoever has the address sees it: no cache and no search engine should.
+		response.headers.set('cache-control', 'no-store');
+		response.headers.set('x-robots-tag', 'noindex, nofollow, noarchive');
+	}
 	if (event.locals.actor) set('cache-control', 'private, no-cache');
 	if (env().ORIGIN.startsWith('https:')) set('strict-transport-security', 'max-age=31536000');
 	return response;

@@ -15,6 +15,15 @@ interface Answer {
 	outcome?: dropped.Outcome;
 }
 
+/** Verifies the beginning of a digest that a stranger's address holds. */
+export async function known(event: RequestEvent, digits: string): Promise<dropped.Outcome> {
+	try {
+		return await pace.run(event.getClientAddress(), () => dropped.beginning(digits));
+	} catch (thrown) {
+		throw toHttp(thrown);
+	}
+}
+
 /** Verifies what a stranger's form holds: a file, or a digest where there is none. */
 export async function verified(
 	event: RequestEvent,

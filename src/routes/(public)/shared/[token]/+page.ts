@@ -1,0 +1,2 @@
+/** Paper for a stranger: it ships no scripts. */
+export const csr = false;
