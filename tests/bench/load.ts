@@ -9,9 +9,11 @@ import { createDatabase } from '../support/database';
 import { makeMember, makeTeam, signIn } from '../support/people';
 import { startSyncServer, type SyncServer } from '../support/server';
 import { sixtyLines } from './sixty-lines';
-import { memoryRow, openingRow } from './opening';
 import { Crowd, type Heard, type Seat, type Session } from './crowd';
+import { memoryRow, openingRow, resident } from './opening';
 import { quantile, row, type Row } from './row';
+import { storeRows } from './store';
+import { processRows } from './two-processes';
 
 /** Many editors at once on one process of the production entry, with clients and database on the same cores. */
 export async function loadRows(): Promise<Row[]> {
@@ -26,7 +28,13 @@ export async function loadRows(): Promise<Row[]> {
 			...(await oneNote(place, relay.url)),
 			...(await figures(place)),
 			...(await durable(place)),
+			residentRow(server),
 			...(await manyEditors(place)),
+			...(await processRows(
+				(count) => place.seats(count, 2, prose),
+				() => place.visitor(),
+			)),
+			...(await storeRows({ author: place.author, makeNote: () => place.note(prose) })),
 			await openingRow((await place.seats(1, 1, sixtyLines))[0]![0]!, place.author),
 		];
 	} finally {
@@ -60,11 +68,21 @@ class Place {
 		return this.people[0]!.actor.personId;
 	}
 
+	/** The cookie of one of them who signs in once more. */
+	visitor(): Promise<string> {
+		return signIn(this.people[0]!.actor);
+	}
+
+	/** The id of a new note. */
+	async note(cells: Content): Promise<string> {
+		return (await notes.create(this.people[0]!.actor, { title: 'Load', cells })).id;
+	}
+
 	/** Seats of so many people on each of so many new notes. */
 	async seats(noteCount: number, each: number, cells: Content): Promise<Seat[][]> {
 		const made: Seat[][] = [];
 		for (let count = 0; count < noteCount; count++) {
-			const { id } = await notes.create(this.people[0]!.actor, { title: 'Load', cells });
+			const id = await this.note(cells);
 			made.push(
 				Array.from({ length: each }, (_, place) => ({
 					url: `${this.server.url}/${id}`,
@@ -167,6 +185,17 @@ async function durable(place: Place): Promise<Row[]> {
 		);
 	}
 	return rows;
+}
+
+/** What the process holds after 200 people wrote in 40 notes, and evaluators apart. */
+function residentRow(server: SyncServer): Row {
+	return row({
+		id: 'sync.memory-200-on-40',
+		what: 'resident memory of the process when 200 people have written in 40 notes',
+		value: resident(server.pid),
+		unit: 'MB',
+		target: 300,
+	});
 }
 
 /** 1,000 editors at once. */

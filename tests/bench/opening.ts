@@ -111,7 +111,7 @@ export async function memoryRow(server: SyncServer, notes: readonly Seat[][]): P
 }
 
 /** Resident memory of a process in MB. */
-function resident(pid: number): number {
+export function resident(pid: number): number {
 	const [, pages = '0'] = readFileSync(`/proc/${pid}/statm`, 'utf8').split(' ');
 	return (Number(pages) * 4096) / 1e6;
 }

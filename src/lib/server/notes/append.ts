@@ -1,5 +1,6 @@
 import { AppError } from '$lib/errors';
 import { inArray, sql } from 'drizzle-orm';
+import { DatabaseError } from 'pg';
 import { db, type Connection } from '../db/client';
 import { refuseWeak, weakness } from '../db/durability';
 import { note } from '../db/schema/notes';
@@ -60,8 +61,22 @@ export async function appendAll(
 	batches: readonly Batch[],
 	{ waiting = false } = {},
 ): Promise<Map<string, Appended | AppError>> {
+	try {
+		return await attempt(batches, waiting, noneKnown);
+	} catch (error) {
+		// Hardly any edit comes again: only where one did is it worth asking which.
+		if (!isRepeated(error)) throw error;
+		return attempt(batches, waiting, knownOf);
+	}
+}
+
+async function attempt(
+	batches: readonly Batch[],
+	waiting: boolean,
+	readKnown: typeof knownOf,
+): Promise<Map<string, Appended | AppError>> {
 	return db().transaction(async (tx) => {
-		const taken = await take(tx, batches, waiting);
+		const taken = await take(tx, batches, waiting, readKnown);
 		const outcomes = new Map<string, Appended | AppError>();
 		for (const { noteId, seq, at } of taken) outcomes.set(noteId, { seq, first: undefined, at });
 		const { claims, wrong } = await clients.claimsOf(tx, taken);
@@ -77,6 +92,12 @@ export async function appendAll(
 	});
 }
 
+/** Whether a statement failed because the log has one of its edits already. */
+function isRepeated(error: unknown): boolean {
+	const cause = error instanceof Error ? error.cause : undefined;
+	return cause instanceof DatabaseError && cause.constraint === 'note_update_once';
+}
+
 function conflict(ids: string[]): AppError {
 	return new AppError('conflict', 'An edit was written under the client id of somebody else.', {
 		details: { ids },
@@ -84,7 +105,12 @@ function conflict(ids: string[]): AppError {
 }
 
 /** Locks the notes, always in the same order, and leaves out what they have already. */
-async function take(tx: Connection, batches: readonly Batch[], waiting: boolean): Promise<Taken[]> {
+async function take(
+	tx: Connection,
+	batches: readonly Batch[],
+	waiting: boolean,
+	readKnown: typeof knownOf,
+): Promise<Taken[]> {
 	const noteIds = batches.map(({ noteId }) => noteId);
 	const heads = await tx
 		.select({ id: note.id, seq: note.seq, epoch: note.epoch, at: note.changedAt, weak: weakness })
@@ -93,20 +119,27 @@ async function take(tx: Connection, batches: readonly Batch[], waiting: boolean)
 		.orderBy(note.id)
 		.for('update', waiting ? {} : { skipLocked: true });
 	refuseWeak(heads[0]?.weak ?? '');
-	const asked = batches.flatMap(({ noteId, edits }) =>
-		edits.map(({ id }) => ({ note_id: noteId, client_edit_id: id })),
-	);
-	const { rows: known } = await tx.execute<{ note: string; id: string }>(sql`
-		select known.note_id as note, known.client_edit_id as id
-		from jsonb_to_recordset(${JSON.stringify(asked)}::jsonb) as asked (note_id uuid, client_edit_id text)
-		join note_update known using (note_id, client_edit_id)`);
-	const had = new Set(known.map((row) => `${row.note} ${row.id}`));
+	const had = await readKnown(tx, batches);
 	return heads.flatMap(({ id: noteId, seq, epoch, at }) => {
 		const batch = batches.find((one) => one.noteId === noteId);
 		const isNew = ({ id }: Edit) => !had.has(`${noteId} ${id}`) && had.add(`${noteId} ${id}`);
 		return batch ? { noteId, seq, epoch, at, edits: batch.edits.filter(isNew) } : [];
 	});
 }
+
+/** Which of the edits their notes have already, as `note edit`. */
+async function knownOf(tx: Connection, batches: readonly Batch[]): Promise<Set<string>> {
+	const asked = batches.flatMap(({ noteId, edits }) =>
+		edits.map(({ id }) => ({ note_id: noteId, client_edit_id: id })),
+	);
+	const { rows } = await tx.execute<{ note: string; id: string }>(sql`
+		select known.note_id as note, known.client_edit_id as id
+		from jsonb_to_recordset(${JSON.stringify(asked)}::jsonb) as asked (note_id uuid, client_edit_id text)
+		join note_update known using (note_id, client_edit_id)`);
+	return new Set(rows.map((row) => `${row.note} ${row.id}`));
+}
+
+const noneKnown = () => Promise.resolve(new Set<string>());
 
 /** Writes everything that belongs to new edits, in one statement. */
 async function store(
