@@ -44,6 +44,7 @@ export const accessTable: Record<string, Row> = {
 		form: ({ email }) => ({ email, password, to: '/notes' }),
 		expect: { all: 303 },
 	},
+	'GET /desk': { expect: { stranger: signIn, reader: 403, all: 200 } },
 	'GET /sign-out': { expect: { all: 303 } },
 	'POST /sign-out': { form: () => ({}), expect: { all: 303 } },
 	'GET /account': { expect: { stranger: signIn, all: 200 } },
