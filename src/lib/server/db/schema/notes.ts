@@ -1,5 +1,6 @@
 import type { Evaluation } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
+import type { Anchor } from '$lib/schemas/comments';
 import type { AttachedTrial, TrialChange } from '$lib/schemas/trial';
 import {
 	bigint,
@@ -152,6 +153,11 @@ export const thread = pgTable(
 		cellId: text('cell_id').notNull(),
 		kind: text('kind', { enum: ['question', 'correction', 'remark'] }).notNull(),
 		blocking: boolean('blocking').notNull(),
+		/** The stretch of the cell's source that it is about; null where that is the whole cell. */
+		anchor: jsonb('anchor').$type<Anchor>(),
+		/** Set while it is handed back to whoever opened it. */
+		answeredAt: timestamp('answered_at', { withTimezone: true }),
+		answeredBy: text('answered_by').references(() => person.id),
 		closedAt: timestamp('closed_at', { withTimezone: true }),
 		closedBy: text('closed_by').references(() => person.id),
 	},
@@ -175,6 +181,42 @@ export const comment = pgTable(
 		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
 	},
 	(t) => [index('comment_thread').on(t.threadId, t.at)],
+);
+
+/** What became of a thread, beside what was said in it. Rows are only added. */
+export const threadChange = pgTable(
+	'thread_change',
+	{
+		id: uuid('id').primaryKey().defaultRandom(),
+		threadId: uuid('thread_id')
+			.notNull()
+			.references(() => thread.id),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+		what: text('what', {
+			enum: ['answered', 'closed', 'reopened', 'blocking', 'not blocking'],
+		}).notNull(),
+		at: timestamp('at', { withTimezone: true }).notNull().defaultNow(),
+	},
+	(t) => [index('thread_change_thread').on(t.threadId, t.at)],
+);
+
+/** Who is named in a comment. Its body holds `@{id}` where the name is read. */
+export const mention = pgTable(
+	'mention',
+	{
+		commentId: uuid('comment_id')
+			.notNull()
+			.references(() => comment.id),
+		personId: text('person_id')
+			.notNull()
+			.references(() => person.id),
+	},
+	(t) => [
+		primaryKey({ columns: [t.commentId, t.personId] }),
+		index('mention_person').on(t.personId),
+	],
 );
 
 /** Changed inputs of a note that a person keeps for themselves. */
