@@ -19,7 +19,7 @@ interface Marks {
  * Sets each line as the sheet does: the defined name typeset in the symbol column, the formula beside it. The text
  * itself stays whole; a line with the cursor shows underscore, equals sign and Greek names as they are typed.
  */
-export function lineMarks(kind: 'calculation' | 'requirement'): Extension {
+export function lineMarks(kind: 'calculation' | 'requirement' | 'curve'): Extension {
 	class LineMarks {
 		marks: Marks;
 
@@ -61,7 +61,7 @@ function marksOf({ state, hasFocus: focused, viewport }: EditorView, kind: strin
 }
 
 function lineClass({ kind: set }: LineParts, kind: string, last: boolean): Decoration {
-	const name = kind === 'requirement' && set !== 'comment' && set !== 'blank' ? kind : set;
+	const name = kind !== 'calculation' && set !== 'comment' && set !== 'blank' ? kind : set;
 	return Decoration.line({ class: `line line-${name}${last ? ' line-last' : ''}` });
 }
 

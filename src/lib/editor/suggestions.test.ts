@@ -127,3 +127,16 @@ test.each([
 });
 
 test('a free name is taken', () => expect(whyTaken(known.words, 'V_ref')).toBeUndefined());
+
+test('in the line of a curve names are offered, the word that comes next, and units within the range', () => {
+	const at = (typed: string) => offered(typed, 'curve').names;
+	expect(at('V|')).toEqual(['Vmax', 'R1', 'wrong']);
+	expect(at('R1 o|').slice(0, 1)).toEqual(['over']);
+	expect(at('R1 over V|')).not.toContain('half');
+	expect(at('R1 over Vmax f|').slice(0, 1)).toEqual(['from']);
+	expect(at('R1 over Vmax from 0 V t|')).toEqual(['to']);
+	expect(at('R1 over Vmax from 0 k|')).toContain('kV');
+	expect(at('R1 over Vmax from 0 V to 40 V lo|')).toEqual(['logarithmic']);
+	expect(at('R1 over Vmax from 0 V to Vm|')).toContain('Vmax');
+	expect(at('R1 over Vmax # V|')).toEqual([]);
+});

@@ -39,7 +39,8 @@ const wordPattern = /[\p{L}_°%][\p{L}\p{N}_]*$/u;
 
 /** What may stand at the cursor; undefined where nothing is offered. `from` is a column of the line. */
 export function suggestionsAt(around: Around): Suggestions | undefined {
-	return around.kind === 'text' ? inText(around) : inFormula(around);
+	if (around.kind === 'text') return inText(around);
+	return (around.kind === 'curve' && inCurve(around)) || inFormula(around);
 }
 
 function inText({ before, line, cells, evaluation, words }: Around): Suggestions | undefined {
@@ -77,6 +78,28 @@ function inFormula(around: Around): Suggestions | undefined {
 	if (behindNumber) return { from, list: [...unitsOf(words), ...(typed.length > 1 ? names : [])] };
 	const units = behindUnit ? unitsOf(words) : [];
 	return { from, list: [...own, ...units, ...names, ...builtIn(words)] };
+}
+
+const curveWords = { over: 'the range of', from: 'where it begins', to: 'where it ends' };
+
+/** What stands around the range of a curve: names, and the word that comes next. */
+function inCurve({ before, cells, evaluation, asked }: Around): Suggestions | undefined {
+	if (before.includes('#')) return undefined;
+	const typed = wordPattern.exec(before)?.[0] ?? '';
+	const from = before.length - typed.length;
+	const written = before.slice(0, from);
+	const has = (word: string) => new RegExp(`(?:^|\\s)${word}\\s`, 'u').test(written);
+	const next = (['over', 'from', 'to'] as const).find((word) => !has(word));
+	// Behind its end a range may say how it is stepped; within it stand formulas.
+	const words: Suggestion[] =
+		next === undefined
+			? [{ name: 'logarithmic', kind: 'constant', detail: 'steps of equal ratio' }]
+			: [{ name: next, kind: 'constant', detail: curveWords[next] }];
+	if (typed === '' && !asked) return undefined;
+	const begun = words.filter(({ name }) => name.startsWith(typed) && /\S\s+$/.test(written));
+	if (has('from')) return begun.length > 0 && typed !== '' ? { from, list: begun } : undefined;
+	const quantities = quantitiesOf(cells, evaluation).filter(({ kind }) => kind === 'quantity');
+	return { from, list: [...begun, ...quantities] };
 }
 
 function endsInNumber(before: string): boolean {

@@ -4,7 +4,7 @@ import * as Y from 'yjs';
 import { replaceText } from './replace-text';
 import { matchShown, readShown } from './shown';
 
-export const cellKinds = ['text', 'calculation', 'requirement'] as const;
+export const cellKinds = ['text', 'calculation', 'requirement', 'curve'] as const;
 export type CellKind = (typeof cellKinds)[number];
 
 /** A cell as everybody but the editor sees it: plain data, in sheet order. */
