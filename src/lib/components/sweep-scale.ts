@@ -12,8 +12,8 @@ export interface Frame {
 }
 
 /** For a sheet, and for a column as narrow as a phone. */
-export const wide: Frame = { width: 660, height: 300, left: 58, right: 14, top: 26, bottom: 40 };
-export const narrow: Frame = { width: 320, height: 260, left: 50, right: 10, top: 26, bottom: 40 };
+export const wide: Frame = { width: 660, height: 312, left: 58, right: 14, top: 38, bottom: 40 };
+export const narrow: Frame = { width: 320, height: 272, left: 50, right: 10, top: 38, bottom: 40 };
 
 /** A limit as it is drawn: its line and what lies beyond it. */
 interface DrawnLimit {
@@ -22,8 +22,8 @@ interface DrawnLimit {
 	side: 'lower' | 'upper';
 	name: string;
 	text: string;
-	/** Where its words stand. */
-	at: { x: number; y: number };
+	/** Where its words stand: at the end of the line where the curve is farther away. */
+	at: { x: number; y: number; isEnd: boolean };
 }
 
 interface DrawnSeries {
@@ -88,7 +88,8 @@ export function plotOf(sweep: Sweep, frame: Frame): Plot {
 				const edge = limit[side];
 				if (!edge || !edge.some((value) => value !== null && within(value, lowest, highest)))
 					return [];
-				return drawnLimit(limit, side, xAt, (value) => inside(toY(value)), {
+				const curve = series.find(({ name }) => name === limit.name)?.values ?? [];
+				return drawnLimit(limit, side, curve, xAt, (value) => inside(toY(value)), {
 					left,
 					right,
 					top,
@@ -207,6 +208,7 @@ function outline(
 function drawnLimit(
 	limit: SweepLimit,
 	side: 'lower' | 'upper',
+	curve: readonly (number | null)[],
 	x: readonly number[],
 	toY: (value: number) => number,
 	{ left, right, top, bottom }: { left: number; right: number; top: number; bottom: number },
@@ -224,6 +226,10 @@ function drawnLimit(
 	const points = at.map(([px, py]) => `${round(px!)} ${round(py!)}`);
 	const outer = side === 'upper' ? top : bottom;
 	const [start, end] = [at[0]!, at.at(-1)!];
+	const [first, last] = [curve.find((value) => value !== null), curve.findLast((v) => v !== null)];
+	const away = (value: number | null | undefined, y: number) =>
+		value === null || value === undefined ? 0 : Math.abs(toY(value) - y);
+	const isEnd = away(last, end[1]!) > away(first, start[1]!);
 	return [
 		{
 			side,
@@ -231,7 +237,7 @@ function drawnLimit(
 			line: `M${points.join('L')}`,
 			zone: `M${points.join('L')}L${round(end[0]!)} ${outer}L${round(start[0]!)} ${outer}Z`,
 			text: (side === 'upper' ? limit.upperText : limit.lowerText) ?? '',
-			at: { x: start[0]!, y: start[1]! },
+			at: isEnd ? { x: end[0]!, y: end[1]!, isEnd } : { x: start[0]!, y: start[1]!, isEnd },
 		},
 	];
 }

@@ -106,7 +106,7 @@ export function drawSweep(
 		over: {
 			name: input.line.defined?.typed ?? said.over.typed,
 			unit: unit.text,
-			shown: axisOf(x, input.type),
+			shown: axisOf(said.logarithmic ? [Math.sqrt(x[0]! * x.at(-1)!)] : x, input.type),
 			present: fromSI(input.present, unit),
 			presentText: show(input.present, input.type).text,
 		},

@@ -73,7 +73,7 @@ function valueOf(
 		throw new Trouble(
 			'dimension',
 			at,
-			`\`${over.typed}\` is in ${spoken(wanted)}, but \`${text}\` is ${isPure(type) ? spoken(type) : `in ${spoken(type)}`}.`,
+			`\`${over.typed}\` is ${said(wanted)}, but \`${text}\` is ${said(type)}.`,
 			{
 				mend: `Give it in ${unit.label || 'a pure number'}.`,
 				...(bare && { replacement: `${text} ${unit.text}` }),
@@ -81,6 +81,10 @@ function valueOf(
 		);
 	}
 	return fromSI(value, unitOf(wanted));
+}
+
+function said(type: Type): string {
+	return type.point || isPure(type) ? spoken(type) : `in ${spoken(type)}`;
 }
 
 function measured(
