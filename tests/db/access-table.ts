@@ -45,6 +45,27 @@ export const accessTable: Record<string, Row> = {
 		expect: { all: 303 },
 	},
 	'GET /desk': { expect: { stranger: signIn, reader: 403, all: 200 } },
+	'POST /account?/mail': {
+		form: () => ({
+			requests: 'at once',
+			returns: 'never',
+			revisions: 'once a day',
+			mentions: 'at once',
+			reminders: 'at once',
+		}),
+		expect: { stranger: signIn, all: 200 },
+	},
+	'GET /mail/stop': { expect: { all: 200 } },
+	'POST /mail/stop': { form: () => ({}), expect: { all: 404 } },
+	'GET /team/mail': { expect: { stranger: signIn, administrator: 200, all: 403 } },
+	'POST /team/mail?/again': {
+		form: () => ({ id: crypto.randomUUID() }),
+		expect: { stranger: signIn, administrator: 409, all: 403 },
+	},
+	'POST /team/mail?/drop': {
+		form: () => ({ id: crypto.randomUUID() }),
+		expect: { stranger: signIn, administrator: 409, all: 403 },
+	},
 	'GET /sign-out': { expect: { all: 303 } },
 	'POST /sign-out': { form: () => ({}), expect: { all: 303 } },
 	'GET /account': { expect: { stranger: signIn, all: 200 } },
@@ -179,6 +200,10 @@ export const accessTable: Record<string, Row> = {
 		json: () => ({ body: 'It is.' }),
 		expect: { stranger: 401, reader: 403, outsider: 404, all: 201 },
 	},
+	'GET /api/notes/[number]/people': {
+		...api(() => '/people'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
 	'GET /api/notes/[number]/history': {
 		...api(() => '/history'),
 		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
@@ -200,6 +225,33 @@ export const accessTable: Record<string, Row> = {
 		// The quantity is exact, which is said to those only who may know of it.
 		json: () => ({ quantity: 'V_out', adaptive: false }),
 		expect: { stranger: 401, reader: 403, outsider: 404, all: 400 },
+	},
+	'GET /api/notes/[number]/quantities/[name]/units': {
+		...api(() => '/quantities/V_out/units?typed=mV'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'GET /api/notes/[number]/trial': {
+		...api(() => '/trial'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /api/notes/[number]/trial': {
+		...api(() => '/trial'),
+		json: () => ({ changes: [{ name: 'V_in', from: '10 V', to: '11 V' }] }),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'GET /api/notes/[number]/kept-trials': {
+		...api(() => '/kept-trials'),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /api/notes/[number]/kept-trials': {
+		...api(() => '/kept-trials'),
+		json: () => ({ title: 'More', changes: [{ name: 'V_in', from: '10 V', to: '11 V' }] }),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 201 },
+	},
+	'DELETE /api/notes/[number]/kept-trials/[trial]': {
+		...api(({ keptTrialId }) => `/kept-trials/${keptTrialId}`),
+		json: () => ({}),
+		expect: { stranger: 401, reader: 403, outsider: 404, all: 200 },
 	},
 	'GET /api/v1/notes/[number]': {
 		script: true,

@@ -1,10 +1,16 @@
+import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
-import { newComment } from '$lib/schemas/comments';
+import { dispositionOf, newComment, type Thread } from '$lib/schemas/comments';
+import * as mentions from '$lib/server/comments/mentions';
 import * as threads from '$lib/server/comments/threads';
+import { db } from '$lib/server/db/client';
+import { comment } from '$lib/server/db/schema/notes';
 import { closePool } from '$lib/server/evaluation/pool';
 import { current } from '$lib/server/evaluation/store';
+import * as review from '$lib/server/revisions/review';
+import { download } from '$lib/server/revisions/sealed-file';
 import { createDatabase, type TestDatabase } from '../support/database';
-import { writeNote } from '../support/note-life';
+import { freeze, propose, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
 
 let database: TestDatabase;
@@ -69,4 +75,94 @@ test('a null character, which the database cannot keep, breaks neither a comment
 	const cells = [{ kind: 'text' as const, source: 'a\0b' }];
 	const { id } = await writeNote(cast.author, 'Pasted', cells);
 	expect((await current(id)).content.cells[0]?.source).toBe('a\ufffdb');
+});
+
+test('an answered thread waits for whoever opened it, whose reply opens it again', async () => {
+	const { number } = await writeNote(cast.author);
+	const { id } = await threads.open(cast.engineer, number, { ...question, body: 'Why 4?' });
+	const answer = { body: 'It halves twice.', answers: true };
+	const answered = await threads.reply(cast.author, number, id, answer);
+	expect([dispositionOf(answered), answered.answered?.by]).toEqual(['answered', 'Author Example']);
+	await expect(threads.reply(cast.engineer, number, id, answer)).rejects.toMatchObject({
+		code: 'conflict',
+	});
+	const asked = await threads.reply(cast.engineer, number, id, { body: 'Halves what?' });
+	expect(dispositionOf(asked)).toBe('open');
+	await threads.reply(cast.author, number, id, answer);
+	const closed = await threads.setClosed(cast.engineer, number, id, true);
+	expect(dispositionOf(closed)).toBe('closed');
+	await expect(threads.reply(cast.author, number, id, answer)).rejects.toMatchObject({
+		code: 'conflict',
+	});
+	const reopened = await threads.setClosed(cast.author, number, id, false);
+	expect(dispositionOf(reopened)).toBe('open');
+	expect(reopened.changes?.map(({ what, by }) => `${what} by ${by}`)).toEqual([
+		'answered by Author Example',
+		'reopened by Engineer Example',
+		'answered by Author Example',
+		'closed by Engineer Example',
+		'reopened by Author Example',
+	]);
+});
+
+test('an answered comment that blocks freezing goes on blocking until it is closed or blocks no more', async () => {
+	const { number } = await writeNote(cast.author);
+	const { id } = await threads.open(cast.engineer, number, { ...question, body: 'Why 4?' });
+	await propose(cast.author, number);
+	const blockers = async () => (await review.status(cast.author, number)).blockers.length;
+	await threads.reply(cast.author, number, id, { body: 'It halves twice.', answers: true });
+	expect(await blockers()).toBe(1);
+	const changed = await threads.setBlocking(cast.engineer, number, id, false);
+	expect([changed.blocking, changed.changes?.at(-1)?.what]).toEqual([false, 'not blocking']);
+	expect(await blockers()).toBe(0);
+	await expect(threads.setBlocking(cast.reader, number, id, true)).rejects.toMatchObject({
+		code: 'forbidden',
+	});
+});
+
+test('people are named by their id, read by their name, and find what names them', async () => {
+	const { number } = await writeNote(cast.author, 'Named in a comment');
+	const body = '@Approver Example, is this yours? Not @Approver Examples, not @Reader Example.';
+	const { id } = await threads.open(cast.engineer, number, { ...question, body });
+	const [said] = await db().select().from(comment).where(eq(comment.threadId, id));
+	expect(said?.body).toBe(
+		`@{${cast.approver.personId}}, is this yours? Not @Approver Examples, not @Reader Example.`,
+	);
+	const [read] = await threads.list(cast.author, number);
+	expect(read?.comments[0]).toMatchObject({
+		body,
+		mentions: [{ id: cast.approver.personId, name: 'Approver Example' }],
+	});
+	expect(await mentions.mentionsOf(cast.approver)).toMatchObject([
+		{ number, threadId: id, disposition: 'open', by: 'Engineer Example', body },
+	]);
+	expect(await mentions.mentionsOf(cast.second)).toEqual([]);
+	await expect(mentions.mentionsOf(cast.reader)).rejects.toMatchObject({ code: 'forbidden' });
+	const named = (await mentions.people(cast.author, number)).map(({ name }) => name);
+	expect(named).toContain('Administrator Example');
+	expect(named).not.toContain('Reader Example');
+});
+
+test('an id that somebody types names nobody who is not in the team', async () => {
+	const other = await makeCast('Other Bench');
+	const { number } = await writeNote(cast.author);
+	const body = `@{${other.author.personId}} @Author Example`;
+	const opened = await threads.open(cast.engineer, number, { ...question, body });
+	expect(opened.comments[0]?.body).toBe(body);
+	expect(await mentions.mentionsOf(other.author)).toEqual([]);
+});
+
+test('what a comment is about is kept with it and goes into the review record of the revision', async () => {
+	const { number } = await writeNote(cast.author);
+	const anchor = { kind: 'words', start: 'AQID', end: 'AQIE', quote: 'The divider' } as const;
+	const about = { ...question, blocking: false, anchor };
+	await threads.open(cast.engineer, number, { ...about, body: '@Author Example: which?' });
+	expect((await threads.list(cast.author, number))[0]?.anchor).toEqual(anchor);
+	await freeze(cast, number);
+	const file = JSON.parse(await download(cast.reader, number, 'A')) as {
+		revision: { review: Thread[] };
+	};
+	expect(file.revision.review).toMatchObject([
+		{ anchor: { quote: 'The divider' }, comments: [{ body: '@Author Example: which?' }] },
+	]);
 });

@@ -6,6 +6,8 @@ import type { RequestEvent } from './$types';
 
 export const PATCH = api(async (actor, event: RequestEvent) => {
 	const { number, thread } = event.params;
-	const { closed } = await body(event, threadChange);
-	return threads.setClosed(actor, number, thread, closed);
+	const change = await body(event, threadChange);
+	return 'closed' in change
+		? threads.setClosed(actor, number, thread, change.closed)
+		: threads.setBlocking(actor, number, thread, change.blocking);
 });
