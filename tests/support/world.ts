@@ -2,6 +2,8 @@ import * as threads from '$lib/server/comments/threads';
 import type { Actor } from '$lib/server/auth/access';
 import * as apiTokens from '$lib/server/auth/api-tokens';
 import * as revisions from '$lib/server/revisions/revisions';
+import * as keptTrials from '$lib/server/trial/kept-trials';
+import { may } from '$lib/schemas/role';
 import { check, freeze, propose, seen, writeNote } from './note-life';
 import { testPassword as password, type Cast } from './people';
 
@@ -18,6 +20,8 @@ export interface Scene {
 	email: string;
 	/** A token of the visitor's. */
 	tokenId: string;
+	/** A trial that the visitor keeps, or somebody else where they may keep none. */
+	keptTrialId: string;
 }
 
 type Stage = 'draft' | 'proposed' | 'checked' | 'frozen';
@@ -25,6 +29,8 @@ type Stage = 'draft' | 'proposed' | 'checked' | 'frozen';
 /** Brings a new note of the cast's author to a stage. */
 export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Scene> {
 	const { number } = await writeNote(cast.author, secretTitle);
+	const own = visitor.teamId === cast.author.teamId && may(visitor.role, 'readWorkingCopy');
+	const changes = [{ name: 'V_in', from: '10 V', to: '11 V' }];
 	const scene: Scene = {
 		number,
 		cellId: 'abcdefghjkmn',
@@ -34,6 +40,9 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 		personId: cast.reader.personId,
 		email: visitor.email,
 		tokenId: (await apiTokens.create(visitor, { name: 'Bench', days: 1 })).id,
+		keptTrialId: (
+			await keptTrials.keep(own ? visitor : cast.author, number, { title: 'More', changes })
+		).id,
 	};
 	const body = 'Is this the loaded value?';
 	const about = { cellId: scene.cellId, kind: 'question', blocking: false, body } as const;

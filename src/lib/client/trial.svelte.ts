@@ -163,6 +163,8 @@ export class Trial {
 	}
 
 	async #ask(): Promise<void> {
+		// One turn later, so that the promise is known before it can be over.
+		await Promise.resolve();
 		while (this.#wanted && this.#isOpen) {
 			this.#wanted = false;
 			const [era, changes, from] = [this.#era, this.#changes, performance.now()];

@@ -15,7 +15,7 @@ export const kinds = {
 } as const;
 export type Kind = keyof typeof kinds;
 
-export const orders = { sheet: 'As in the note', name: 'By name', state: 'By state' } as const;
+export const orders = { sheet: 'Sheet order', name: 'By name', state: 'By state' } as const;
 export type Order = keyof typeof orders;
 
 /** A quantity of the register. */
