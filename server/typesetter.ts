@@ -10,12 +10,13 @@ import formula from './typesetting/formula.typ';
 import lines from './typesetting/lines.typ';
 import look from './typesetting/look.typ';
 import main from './typesetting/main.typ';
+import plots from './typesetting/plots.typ';
 import prose from './typesetting/prose.typ';
 import record from './typesetting/record.typ';
 
 /** Nothing lies in this folder: the compiler sees the files that are given to it, and no others. */
 const folder = '/paper';
-const program = { formula, lines, look, main, prose, record };
+const program = { formula, lines, look, main, plots, prose, record };
 
 /** PDF/A-3 with tags: an archive's file that may carry another one. */
 const standard = 'a-3a';

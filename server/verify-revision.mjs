@@ -1,30 +1,38 @@
 #!/usr/bin/env node
-// Verifies the JSON file of a frozen revision with the installation's public keys alone: no network, no database, nothing
-// but Node.js. Written from "What a sealed revision is" in DEVELOPERS.md; it shares no code with the product.
+// Verifies the JSON file of a frozen revision, or the one that is attached to its PDF, with the installation's public keys
+// alone: no network, no database, nothing but Node.js. Written from "What a sealed revision is" in DEVELOPERS.md; it shares
+// no code with the product.
 //
 //   node server/verify-revision.mjs MN-014-B.json keys.json
+//   node server/verify-revision.mjs MN-014-B.pdf keys.json
 //
 // keys.json comes from the installation's /verify/keys; get it on another way than the file, once. Ends with 0 where the
 // file is genuine, with 1 where it is not.
 import { createHash, createPublicKey, verify } from 'node:crypto';
 import { readFileSync } from 'node:fs';
-import { gunzipSync } from 'node:zlib';
+import { gunzipSync, inflateSync } from 'node:zlib';
 
 /** @typedef {{ keyId: string, signature: string, statement: any }} Signed */
 
 const [, , revisionFile, keysFile] = process.argv;
 if (!revisionFile || !keysFile) {
-	process.stderr.write('Usage: node server/verify-revision.mjs REVISION.json KEYS.json\n');
+	process.stderr.write(
+		'Usage: node server/verify-revision.mjs REVISION.json|REVISION.pdf KEYS.json\n',
+	);
 	process.exit(2);
 }
+
+/** Most bytes of a record. */
+const maxBytes = 32_000_000;
+let isPdf = false;
 
 /** @type {string[]} */
 const faults = [];
 try {
 	const bytes = readFileSync(revisionFile);
-	const text = (bytes[0] === 0x1f && bytes[1] === 0x8b ? gunzipSync(bytes) : bytes).toString(
-		'utf8',
-	);
+	const plain = bytes[0] === 0x1f && bytes[1] === 0x8b ? gunzipSync(bytes) : bytes;
+	isPdf = plain.subarray(0, 1024).includes('%PDF-');
+	const text = isPdf ? attachedTo(plain) : plain.toString('utf8');
 	const keys = new Map(
 		JSON.parse(readFileSync(keysFile, 'utf8')).keys.map(
 			(/** @type {{ id: string, publicKey: string }} */ { id, publicKey }) => [id, publicKey],
@@ -37,10 +45,52 @@ try {
 for (const fault of faults) process.stdout.write(`${fault}\n`);
 process.stdout.write(
 	faults.length === 0
-		? 'Genuine. Whether it is still the current revision, the installation knows: /verify.\n'
+		? `Genuine${isPdf ? ': the record attached to the PDF. What its pages show is not proven by this' : ''}. Whether it is still the current revision, the installation knows: /verify.\n`
 		: 'ALTERED or not sealed by these keys. Do not rely on it.\n',
 );
 process.exitCode = faults.length === 0 ? 0 : 1;
+
+/**
+ * The one sealed record attached to a PDF (ISO 32000-1, 7.11.4), plain or deflated.
+ * @param {Buffer} pdf
+ */
+function attachedTo(pdf) {
+	/** @type {Set<string>} */
+	const records = new Set();
+	let left = maxBytes;
+	for (let at = pdf.indexOf('/EmbeddedFile'), tries = 0; at >= 0 && tries < 1000; tries += 1) {
+		const from = Math.max(0, pdf.lastIndexOf('obj', at));
+		const text = at - from > 2000 ? '' : pdf.toString('latin1', from, at + 2000);
+		const head = /^obj((?:(?!endobj)[^])*?)\bstream\r?\n/.exec(text);
+		if (head && /\/EmbeddedFile(?![A-Za-z])/.test(head[1])) {
+			const start = from + head[0].length;
+			const length = /\/Length\s+(\d+)(?!\s+\d+\s+R)/.exec(head[1])?.[1];
+			const content = pdf.subarray(start, length ? start + Number(length) : undefined);
+			const bytes = /\/Filter/.test(head[1]) ? inflated(content, left) : content.subarray(0, left);
+			left -= bytes.length;
+			const record = bytes.toString('utf8');
+			if (record.startsWith('{"format":"halfdigit-sealed-revision-1"')) records.add(record);
+			if (left <= 0) break;
+		}
+		at = pdf.indexOf('/EmbeddedFile', at + 1);
+	}
+	const [record] = records;
+	if (record === undefined) throw new Error('This PDF carries no revision that can be read.');
+	if (records.size > 1) throw new Error('This PDF carries more than one record.');
+	return record;
+}
+
+/**
+ * @param {Buffer} bytes
+ * @param {number} most
+ */
+function inflated(bytes, most) {
+	try {
+		return inflateSync(bytes, { maxOutputLength: Math.max(1, most) });
+	} catch {
+		return Buffer.alloc(0);
+	}
+}
 
 /**
  * @param {any} file

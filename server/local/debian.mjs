@@ -48,12 +48,14 @@ export async function installPackages(missing) {
 }
 
 /**
- * Programs that tests compare the engine with, and where Debian puts them. Without one its comparison is left out, with
- * a notice.
+ * Programs that tests compare the engine with or look at PDFs with, and where Debian puts them. Without one what it is
+ * for is left out, with a notice.
  */
 const peers = {
 	units: '/usr/bin/units',
 	ngspice: '/usr/bin/ngspice',
+	'poppler-utils': '/usr/bin/pdftotext',
+	qpdf: '/usr/bin/qpdf',
 	'python3-uncertainties': '/usr/lib/python3/dist-packages/uncertainties',
 };
 

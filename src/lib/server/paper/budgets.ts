@@ -6,9 +6,8 @@ import {
 	factor,
 	percent,
 } from '$lib/components/doubt-words';
-import { formulaOf } from './formula';
 import { visible } from './glyphs';
-import { setSymbol, shown, type Written, type ShownReadout } from './lines';
+import { setSymbol, shown, written, type Written, type ShownReadout } from './lines';
 
 /** What stands behind a quantity in doubt: its formula, budget, bounds and trials. */
 export interface Budget {
@@ -43,10 +42,9 @@ export function budgetsOf({ quantities }: Evaluation, coverage: number): Budget[
 
 function budgetOf(name: string, quantity: Quantity, coverage: number): Budget {
 	const { formula, budget = [], texts } = quantity;
-	const symbols = formula && formulaOf(formula.symbols, true);
 	return {
 		symbol: setSymbol(name),
-		formula: symbols ? { formula: symbols, typed: visible(formula.symbols) } : null,
+		formula: formula ? written(formula.symbols, formula.symbols, true) : null,
 		readout: shown(quantity.readout),
 		facts: factsOf(quantity, coverage).map(([label, text]) => [label, visible(text)]),
 		hasDegrees: budget.some((row) => row.degreesOfFreedom !== null),

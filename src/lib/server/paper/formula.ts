@@ -15,7 +15,8 @@ export type Formula =
 	| { k: 'table'; rows: Formula[][]; align: string[] }
 	| { k: 'space'; em: number };
 
-type Style = 'italic' | 'upright' | 'bold' | 'bb' | 'cal' | 'frak' | 'sans' | 'mono';
+/** `usual`: a letter in italics, anything else upright. */
+type Style = 'usual' | 'upright' | 'bold' | 'bb' | 'cal' | 'frak' | 'sans' | 'mono';
 
 const styles: Readonly<Record<string, Style>> = {
 	normal: 'upright',
@@ -196,7 +197,7 @@ function letter(text: string, { mathvariant }: Readonly<Record<string, string>>)
 	return {
 		k: 'sign',
 		t: shown,
-		style: mathvariant ? (styles[mathvariant] ?? 'upright') : 'italic',
+		style: mathvariant ? (styles[mathvariant] ?? 'upright') : 'usual',
 	};
 }
 
@@ -204,7 +205,7 @@ function sign(text: string): Formula {
 	if (invisible.test(text)) return { k: 'space', em: 0 };
 	const shown = visible(text);
 	return [...shown].length === 1
-		? { k: 'sign', t: shown, style: 'upright' }
+		? { k: 'sign', t: shown, style: 'usual' }
 		: { k: 'words', t: shown };
 }
 

@@ -13,6 +13,14 @@ import { visible } from './glyphs';
 export interface Written {
 	formula: Formula | null;
 	typed: string;
+	/** Whether it stands above and below its line. */
+	tall: boolean;
+}
+
+/** A formula in TeX beside what was typed. */
+export function written(tex: string | undefined, typed: string, ownLine = false): Written {
+	const formula = (tex !== undefined && formulaOf(tex, ownLine)) || null;
+	return { formula, typed: visible(typed), tall: /\\(frac|begin)\b/.test(tex ?? '') };
 }
 
 export interface ShownReadout {
@@ -88,7 +96,7 @@ export function judgedLines(cell: NoteCell, evaluation: Evaluation): Judged[] {
 
 /** The symbol of a name. */
 export function setSymbol(name: string): Written {
-	return { formula: formulaOf(symbolTex(name), false) ?? null, typed: visible(name) };
+	return written(symbolTex(name), name);
 }
 
 export function shown({ number, doubt = '', unit }: Readout): ShownReadout {
@@ -100,10 +108,7 @@ function symbolOf(text: string, name: string): Written {
 	const names = parameters.map(({ typed }) => typed);
 	const behind = names.length === 0 ? '' : `(${names.join(', ')})`;
 	const tex = names.length === 0 ? '' : `\\left(${names.map(symbolTex).join(',\\, ')}\\right)`;
-	return {
-		formula: formulaOf(symbolTex(name) + tex, false) ?? null,
-		typed: visible(name + behind),
-	};
+	return written(symbolTex(name) + tex, name + behind);
 }
 
 function partsOf(text: string): { body: Written | null; comment: string } {
@@ -111,10 +116,7 @@ function partsOf(text: string): { body: Written | null; comment: string } {
 	const typed = text.slice(formulaFrom, formulaTo);
 	const { body } = parseLine(text);
 	return {
-		body:
-			typed.trim() === ''
-				? null
-				: { formula: (body && formulaOf(formulaTex(body), false)) ?? null, typed: visible(typed) },
+		body: typed.trim() === '' ? null : written(body && formulaTex(body), typed),
 		comment: visible(text.slice(commentFrom + 1).trim()),
 	};
 }

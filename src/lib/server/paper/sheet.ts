@@ -5,6 +5,7 @@ import { addressOf } from './address';
 import { budgetsOf, type Budget } from './budgets';
 import { visible } from './glyphs';
 import { judgedLines, workedLines, type Judged, type Worked } from './lines';
+import { plotsOf, type PrintedPlot } from './plots';
 import { proseOf, type Block } from './prose';
 import { recordOf, type ReviewRecord } from './record';
 import type { SealedContent } from './sealed-content';
@@ -13,6 +14,7 @@ type Cell = { id: string; terminal: number } & (
 	| { kind: 'text'; blocks: Block[]; faults: string[] }
 	| { kind: 'calculation'; lines: Worked[] }
 	| { kind: 'requirement'; lines: Judged[] }
+	| { kind: 'curve'; lines: Judged[]; plots: PrintedPlot[] }
 );
 
 /** All that the typesetter sets, as data: what people wrote is never part of its program. */
@@ -40,6 +42,8 @@ export interface Sheet {
 	/** Where the QR code leads. */
 	address: string;
 	cautions: string[];
+	/** Widths in points of the columns that stand alike down the whole sheet. */
+	columns: { symbol: number; readout: number };
 	cells: Cell[];
 	budgets: Budget[];
 	record: ReviewRecord;
@@ -55,6 +59,7 @@ export function sheetOf(
 	const digest = seal.statement.contentHash;
 	const title = visible(content.title.replace(/\s+/g, ' ').trim()) || 'Untitled';
 	const frozen = new Date(revision.frozenAt);
+	const cells = content.cells.map((cell, index) => cellOf(cell, index + 1, results));
 	return {
 		paper,
 		documentTitle: `${note.number} revision ${letter}: ${title}`,
@@ -84,9 +89,28 @@ export function sheetOf(
 		bands: bandsOf(digest),
 		address: addressOf(digest, origin),
 		cautions: [...new Set(cautions.map(({ text }) => visible(text)))],
-		cells: content.cells.map((cell, index) => cellOf(cell, index + 1, results)),
+		columns: columnsOf(cells),
+		cells,
 		budgets: budgetsOf(results, proposal.options.coverage),
 		record: recordOf(revision),
+	};
+}
+
+/** Points that a letter of a symbol and of a figure takes, about. */
+const widths = { symbol: 4.8, figure: 5.5 };
+
+/** Columns as wide as what stands in them, within bounds; what is wider breaks or goes on. */
+function columnsOf(cells: readonly Cell[]): Sheet['columns'] {
+	const lines = cells.flatMap((cell) => (cell.kind === 'calculation' ? cell.lines : []));
+	const symbols = lines.map(({ symbol }) => [...(symbol?.typed ?? '')].length);
+	const readouts = lines.map(({ readout }) =>
+		readout ? [...readout.number, ...readout.unit, ...readout.doubt].length + 5 : 0,
+	);
+	const within = (least: number, width: number, most: number) =>
+		Math.round(Math.min(most, Math.max(least, width)));
+	return {
+		symbol: within(44, 14 + widths.symbol * Math.max(0, ...symbols), 110),
+		readout: within(70, widths.figure * Math.max(0, ...readouts), 190),
 	};
 }
 
@@ -107,13 +131,13 @@ function cellOf(
 			return { id, terminal, kind, lines: workedLines(cell, results) };
 		case 'requirement':
 			return { id, terminal, kind, lines: judgedLines(cell, results) };
-		default:
+		case 'curve':
 			return {
 				id,
 				terminal,
-				kind: 'text',
-				blocks: [{ k: 'code', t: visible(cell.source) }],
-				faults: [],
+				kind,
+				lines: judgedLines(cell, results),
+				plots: plotsOf(cell, results),
 			};
 	}
 }
