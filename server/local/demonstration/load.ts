@@ -98,10 +98,11 @@ async function charge({ engineer, peer, approver }: Cast): Promise<void> {
 		cellId: cells[4]?.id ?? '',
 		kind: 'question',
 		blocking: true,
-		body: 'Is 15 µV the offset at 25 °C or over the whole range of temperature? The box reaches 60 °C beside the panel.',
+		body: '@Pia Ekdahl, is 15 µV the offset at 25 °C or over the whole range of temperature? The box reaches 60 °C beside the panel.',
 	});
 	await threads.reply(engineer, number, question.id, {
 		body: 'At 25 °C. Its drift is 0.1 µV/K, so 35 K add 3.5 µV. I will put it in if you send the note back.',
+		answers: true,
 	});
 	const remark = await threads.open(peer, number, {
 		cellId: cells[2]?.id ?? '',

@@ -1,18 +1,31 @@
-import type { Thread, threadKinds } from '$lib/schemas/comments';
+import type { Anchor, Thread, threadKinds } from '$lib/schemas/comments';
 import type { TrialChange } from '$lib/schemas/trial';
 import { call } from './call';
 
-interface NewThread {
-	kind: (typeof threadKinds)[number];
-	blocking: boolean;
+/** What is said in a comment. */
+export interface Said {
 	body: string;
 	/** Changed inputs that it speaks of. */
 	trial?: readonly TrialChange[] | undefined;
 }
 
+interface NewThread extends Said {
+	kind: (typeof threadKinds)[number];
+	blocking: boolean;
+	/** The stretch of the cell that it is about. */
+	anchor?: Anchor | undefined;
+}
+
+interface Named {
+	id: string;
+	name: string;
+}
+
 /** Threads of a note in the page. What fails throws an Error with a sentence to show; what was typed stays with the caller. */
 export class Threads {
 	readonly #address: string;
+	readonly #peopleAddress: string;
+	#people: Promise<Named[]> | undefined;
 	#list = $state.raw<readonly Thread[]>([]);
 	#refreshing: Promise<void> | undefined;
 	#stale = false;
@@ -20,6 +33,7 @@ export class Threads {
 	/** `number` as in addresses, MN-014; `threads` as the page was loaded with. */
 	constructor(number: string, threads: readonly Thread[]) {
 		this.#address = `/api/notes/${number}/threads`;
+		this.#peopleAddress = `/api/notes/${number}/people`;
 		this.#list = threads;
 	}
 
@@ -38,7 +52,8 @@ export class Threads {
 		return this.#take(await call<Thread>('POST', this.#address, { cellId, ...thread }));
 	}
 
-	async reply(threadId: string, said: Pick<NewThread, 'body' | 'trial'>): Promise<Thread> {
+	/** With `answers` it hands the thread back to whoever opened it. */
+	async reply(threadId: string, said: Said & { answers?: boolean }): Promise<Thread> {
 		const address = `${this.#address}/${threadId}/comments`;
 		return this.#take(await call<Thread>('POST', address, said));
 	}
@@ -46,6 +61,19 @@ export class Threads {
 	/** Closes a thread or opens it again. */
 	async setClosed(threadId: string, closed: boolean): Promise<Thread> {
 		return this.#take(await call<Thread>('PATCH', `${this.#address}/${threadId}`, { closed }));
+	}
+
+	/** Lets a thread block freezing, or no longer. */
+	async setBlocking(threadId: string, blocking: boolean): Promise<Thread> {
+		return this.#take(await call<Thread>('PATCH', `${this.#address}/${threadId}`, { blocking }));
+	}
+
+	/** People who can be named in a comment. */
+	people(): Promise<Named[]> {
+		return (this.#people ??= call<Named[]>('GET', this.#peopleAddress).catch((error: unknown) => {
+			this.#people = undefined;
+			throw error;
+		}));
 	}
 
 	/** Reads all threads anew. Asked for while one reading runs, another follows it. */

@@ -5,6 +5,7 @@ import { yCollab } from 'y-codemirror.next';
 import type { Awareness } from 'y-protocols/awareness';
 import type * as Y from 'yjs';
 import type { CellKind } from '$lib/note/document';
+import { commentMarks } from './comment-marks';
 import { formulaLanguage } from './formula-language';
 import { hits } from './hits';
 import { keys, type Neighbours } from './keys';
@@ -29,6 +30,8 @@ interface Choices {
 	/** The note around the cell; a title has none. */
 	note?: NoteContext;
 	onfocus: (focused: boolean) => void;
+	/** A stretch was clicked that a comment is about. */
+	onchoose?: (threadId: string) => void;
 }
 
 /** Opens an editor on a shared text. Call `destroy` on what it gives. */
@@ -74,6 +77,7 @@ export function openEditor(choices: Choices): EditorView {
 				blur: () => choices.onfocus(false),
 			}),
 			ofKind(kind),
+			...(choices.onchoose ? [commentMarks(choices.onchoose)] : []),
 		],
 	});
 	return view;

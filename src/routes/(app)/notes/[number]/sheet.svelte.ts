@@ -8,7 +8,8 @@ import { Trial } from '$lib/client/trial.svelte';
 import { WorkingCopy } from '$lib/client/working-copy.svelte';
 import type { NoteContext, Place } from '$lib/editor/note-context';
 import type { CellKind, NoteContent } from '$lib/note/document';
-import type { Thread } from '$lib/schemas/comments';
+import type { Anchor, Thread } from '$lib/schemas/comments';
+import { anyThread, type ThreadFilter } from '$lib/schemas/thread-filter';
 import { CellDrag } from './drag.svelte';
 import { Finder } from './finder.svelte';
 import type LineDetailType from './detail/LineDetail.svelte';
@@ -66,8 +67,17 @@ export class Sheet {
 	LineDetail = $state.raw<typeof LineDetailType>();
 	/** Cell whose thread form is open. */
 	composing = $state<string>();
+	/** The stretch that the thread that is being written is about; absent where that is its whole cell. */
+	about = $state.raw<{ cellId: string; anchor: Anchor }>();
+	/** Thread that is looked at: what it is about stands out. */
+	chosen = $state<string>();
+	/** Threads that the margin shows. */
+	filter = $state.raw<ThreadFilter>(anyThread);
+	readonly person: { id: string; name: string };
 	/** Cell below which a divider is searched for; null on an empty sheet. */
 	finding = $state<string | null>();
+	/** What the dependency picture is about, while it is open: a name, or cell and line of a requirement. */
+	depends = $state<string>();
 	/** Cells of which only the first line is shown on this page. */
 	readonly folded = new SvelteSet<string>();
 	readonly finder: Finder;
@@ -88,6 +98,7 @@ export class Sheet {
 
 	constructor({ note, person, content, evaluation, threads }: Start) {
 		this.number = note.number;
+		this.person = { id: person.id, name: person.name };
 		this.copy = new WorkingCopy({
 			noteId: note.id,
 			number: note.number,
@@ -103,6 +114,7 @@ export class Sheet {
 		const ask = (name: string, at: Element) => askToSet(this, name, at);
 		this.line = new OpenLine(note.number, {
 			trial: (name) => beginTrial(this, name),
+			picture: (name) => (this.depends = name),
 			get setting() {
 				return copy.editable ? ask : undefined;
 			},

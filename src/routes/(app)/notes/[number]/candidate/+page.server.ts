@@ -1,5 +1,6 @@
 import { redirect } from '@sveltejs/kit';
 import { approving, fieldsNamed, returning, signing, waivePrefix } from '$lib/schemas/review';
+import { threadFilter } from '$lib/schemas/thread-filter';
 import * as threads from '$lib/server/comments/threads';
 import * as comparison from '$lib/server/comparison/comparison';
 import * as notes from '$lib/server/notes/notes';
@@ -8,7 +9,7 @@ import { action } from '$lib/server/web/form';
 import { forMember } from '$lib/server/web/guard';
 import type { PageServerLoadEvent, RequestEvent } from './$types';
 
-export const load = forMember(async (actor, { params: { number } }: PageServerLoadEvent) => {
+export const load = forMember(async (actor, { params: { number }, url }: PageServerLoadEvent) => {
 	const { candidate, review } = await candidates.get(actor, number);
 	const { id, epoch, changedAt } = await notes.get(actor, number);
 	return {
@@ -16,6 +17,7 @@ export const load = forMember(async (actor, { params: { number } }: PageServerLo
 		candidate,
 		review,
 		threads: await threads.list(actor, number),
+		filter: threadFilter.parse(Object.fromEntries(url.searchParams)),
 		sides: await comparison.sides(actor, number),
 	};
 });

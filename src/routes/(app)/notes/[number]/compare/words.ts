@@ -66,6 +66,11 @@ export function addressOf(
 	return side.key === newest?.key ? `/notes/${number}/candidate` : undefined;
 }
 
+/** A side's name within a sentence: only its first letter changes, a revision keeps its own. */
+export function inSentence(label: string): string {
+	return label.charAt(0).toLowerCase() + label.slice(1);
+}
+
 /** The address of a comparison. */
 export function comparing(number: string, from: Side, to: Side, view = 'columns'): string {
 	const query = new URLSearchParams({ from: from.key, to: to.key });
