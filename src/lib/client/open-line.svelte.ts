@@ -12,6 +12,8 @@ const mostTries = 12;
 interface Asks {
 	/** Tries another value of the quantity. */
 	trial: (name: string) => void;
+	/** Draws what the quantity is computed from and goes into. */
+	picture: (name: string) => void;
 	/** Chooses unit and digits of its readouts, beside an element; undefined where nothing may be written. */
 	setting: ((name: string, at: Element) => void) | undefined;
 }

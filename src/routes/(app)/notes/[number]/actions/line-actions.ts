@@ -2,6 +2,7 @@ import { splitLine } from '$lib/components/lines';
 import { mendHere } from '$lib/editor/results';
 import { askToSet } from '../readout/click-to-set';
 import type { Sheet } from '../sheet.svelte';
+import { commentHere } from '../comment-here';
 import { beginTrial } from '../trial/trial-deeds';
 import type { Action } from './action';
 
@@ -27,6 +28,12 @@ export function lineActions(sheet: Sheet): Action[] {
 			keepsFocus: true,
 		},
 	];
+	actions.push({
+		name: 'Comment on the words selected, or on this line',
+		keys: 'Alt+Shift+Q',
+		run: () => commentHere(sheet),
+		keepsFocus: true,
+	});
 	if (kind !== 'text') {
 		actions.push({
 			name: 'Open or close what is behind the line',
@@ -39,6 +46,19 @@ export function lineActions(sheet: Sheet): Action[] {
 			},
 		});
 	}
+	actions.push({
+		name: 'Draw what hangs together with it',
+		keys: 'Alt+Shift+P',
+		run: () =>
+			void load().then((writing) => {
+				const found = writing.nameHere(view, kind);
+				const { number } = view.state.doc.lineAt(view.state.selection.main.head);
+				if (found && sheet.line.quantityOf(found.name)) sheet.depends = found.name;
+				else if (kind === 'requirement') sheet.depends = `${active.cellId}:${number}`;
+				else nothing();
+			}),
+		keepsFocus: true,
+	});
 	actions.push({
 		name: 'Try another value of it',
 		keys: 'Alt+Shift+V',
