@@ -39,10 +39,10 @@ test('everything about cells is done from the keyboard, and each action is one s
 	await expect.poll(() => focusedCell(page)).toBe(2);
 	await press('Alt+Shift+J', ['text: 0', 'calc: 3']);
 	await press('Alt+Shift+D', ['text: 0', 'calc: 3', 'calc: 3']);
-	await press('Alt+Enter', ['text: 0', 'calc: 3', 'calc: 1', 'calc: 3']);
+	await press('Alt+Shift+Enter', ['text: 0', 'calc: 3', 'calc: 1', 'calc: 3']);
 	await expect.poll(() => focusedCell(page)).toBe(3);
 	await press('Alt+Shift+K', ['text: 0', 'calc: 3', 'requ: 1', 'calc: 3']);
-	await press('Alt+Shift+Enter', ['text: 0', 'calc: 3', 'requ: 1', 'requ: 1', 'calc: 3']);
+	await press('Alt+Shift+H', ['text: 0', 'calc: 3', 'requ: 1', 'requ: 1', 'calc: 3']);
 	await press('Alt+Shift+Delete', ['text: 0', 'calc: 3', 'requ: 1', 'calc: 3']);
 	for (const before of steps.slice(0, -1).reverse()) {
 		await page.keyboard.press('ControlOrMeta+z');

@@ -46,13 +46,13 @@ export function cellActions(sheet: Sheet, cellId: string): Action[] {
 		{ name: 'Duplicate', keys: 'Alt+Shift+D', run: () => void copy.duplicateCell(cellId) },
 		{
 			name: 'Add a cell below',
-			keys: 'Alt+Enter',
+			keys: 'Alt+Shift+Enter',
 			run: () => void sheet.add(kind, cellId),
 			keepsFocus: true,
 		},
 		{
 			name: 'Add a cell above',
-			keys: 'Alt+Shift+Enter',
+			keys: 'Alt+Shift+H',
 			run: () => void sheet.add(kind, copy.cells[index - 1]?.id ?? null),
 			keepsFocus: true,
 		},
