@@ -6,9 +6,10 @@ import { defaultOptions } from '$lib/calc/engine';
 import { closePool, evaluateInChild } from '$lib/server/evaluation/pool';
 import { log } from '$lib/server/log';
 import { closeCode } from '$lib/protocol/closing';
-import { createServer, type RequestListener, type Server } from 'node:http';
+import { createServer, type IncomingMessage, type RequestListener, type Server } from 'node:http';
 import { inspect } from 'node:util';
 import { signDaily } from './daily';
+import { Jobs } from './jobs/jobs';
 import { checkNodeOptions, readRoles } from './roles';
 import { onSignal } from './shutdown';
 import { Rooms } from './sync/rooms';
@@ -21,6 +22,8 @@ async function start(): Promise<void> {
 	if (roles.has('sync')) await demandDurable();
 	const server = createServer(roles.has('web') ? await webHandler() : noPages);
 	const sync = roles.has('sync') ? openSync(server) : undefined;
+	const jobs = roles.has('jobs') ? new Jobs() : undefined;
+	await jobs?.start();
 	await listening(server, PORT, HOST);
 	log().info({ host: HOST, port: PORT, roles: [...roles] }, 'listening');
 
@@ -47,6 +50,7 @@ async function start(): Promise<void> {
 		{ name: 'answer what was asked', limitMs: 1500, run: async () => answered?.() },
 		{ name: 'tell the pages', limitMs: 100, run: tellPages },
 		{ name: 'stop following the log', limitMs: 500, run: async () => sync?.rooms.stop() },
+		{ name: 'stop the jobs', limitMs: 6000, run: async () => jobs?.stop() },
 		{ name: 'stop the evaluators', limitMs: 1000, run: closePool },
 		{ name: 'leave the database', limitMs: 1000, run: closeDb },
 	]);
@@ -72,8 +76,18 @@ async function webHandler(): Promise<RequestListener> {
 		response.setHeader('x-content-type-options', 'nosniff');
 		response.setHeader('referrer-policy', 'same-origin');
 		response.setHeader('content-security-policy', "frame-ancestors 'none'");
+		admitMailbox(request);
 		handler(request, response);
 	};
+}
+
+/**
+ * A mailbox's own button to stop mail (RFC 8058) posts without an origin, which no page may. The token in the address
+ * is all it is believed for, so it counts as ours.
+ */
+function admitMailbox(request: IncomingMessage): void {
+	const isStop = request.method === 'POST' && request.url?.startsWith('/mail/stop?') === true;
+	if (isStop) request.headers.origin ??= env().ORIGIN;
 }
 
 const noPages: RequestListener = (_, response) => {

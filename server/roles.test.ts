@@ -4,6 +4,7 @@ import { checkNodeOptions, readRoles } from './roles';
 test('roles are read from a list', () => {
 	expect(readRoles('web,sync')).toEqual(new Set(['web', 'sync']));
 	expect(readRoles(' sync ')).toEqual(new Set(['sync']));
+	expect(readRoles('jobs, sync')).toEqual(new Set(['sync', 'jobs']));
 });
 
 test.each(['', 'cooking', 'web,cooking', 'web,,sync'])('"%s" is no list of roles', (text) => {

@@ -1,6 +1,6 @@
 import { AppError } from '$lib/errors';
 
-const known = ['web', 'sync'] as const;
+const known = ['web', 'sync', 'jobs'] as const;
 export type Role = (typeof known)[number];
 
 /** What this process does, from ROLES. */

@@ -2,6 +2,7 @@ import { readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { endCommands } from './commands.mjs';
 import { ensure } from './demonstration-database.mjs';
 import { alone } from './lock.mjs';
+import { openMailSink } from './mail-sink.mjs';
 import { inData } from './place.mjs';
 import { isFree } from './ports.mjs';
 import { release } from './postgres.mjs';
@@ -19,6 +20,8 @@ const fresh = process.argv.includes('--fresh');
 
 /** @type {Serving | undefined} */
 let serving;
+/** @type {import('./mail-sink.mjs').MailSink | undefined} */
+let sink;
 let ending = false;
 
 async function finish() {
@@ -27,6 +30,7 @@ async function finish() {
 	endCommands();
 	rmSync(addressFile, { force: true });
 	await serving?.stop();
+	await sink?.close();
 	await release();
 	process.exit();
 }
@@ -70,23 +74,26 @@ async function prepare() {
 		demonstration = await ensure(database, { fresh, earlierToken });
 	});
 	await step('Server', async () => {
-		serving = await serve({ database, port, kind: 'demo', log: inData('server.log') });
+		sink = await openMailSink({ firstPort: port + 400 });
+		const more = { SMTP_URL: sink.smtpUrl, MAIL_FROM: 'Halfdigit <notes@alderfen.example>' };
+		serving = await serve({ database, port, kind: 'demo', log: inData('server.log'), more });
 	});
-	announce(`http://localhost:${port}`, demonstration, performance.now() - from);
+	announce(`http://localhost:${port}`, demonstration, performance.now() - from, sink?.pageUrl);
 }
 
 /**
  * @param {string} url
  * @param {Demonstration} demonstration
  * @param {number} tookMs
+ * @param {string} [mailUrl]
  */
-function announce(url, { accounts, token }, tookMs) {
+function announce(url, { accounts, token }, tookMs, mailUrl) {
 	writeFileSync(addressFile, `${JSON.stringify({ url, accounts, token }, null, '\t')}\n`);
 	const rows = accounts.map(({ role, email, password }) =>
 		['', role.padEnd(14), email.padEnd(34), password].join('  '),
 	);
 	process.stdout.write(
-		`\nHalfdigit runs on ${url} (ready after ${seconds(tookMs)}). Sign in as:\n${rows.join('\n')}\nCtrl-C stops it.\n`,
+		`\nHalfdigit runs on ${url} (ready after ${seconds(tookMs)}). Sign in as:\n${rows.join('\n')}\nMail to them is shown on ${mailUrl}.\nCtrl-C stops it.\n`,
 	);
 }
 

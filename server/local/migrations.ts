@@ -1,6 +1,7 @@
 import { drizzle } from 'drizzle-orm/node-postgres';
 import { migrate } from 'drizzle-orm/node-postgres/migrator';
 import pg from 'pg';
+import { makeQueues, queueSchema } from '../jobs/queues';
 
 /** Tables whose rows nobody changes or removes. The audit trail's links are added by the database itself. */
 const permanent = [
@@ -22,6 +23,7 @@ export async function applyMigrations(url: string, applicationRole?: string): Pr
 	await client.connect();
 	try {
 		await migrate(drizzle(client), { migrationsFolder: 'drizzle' });
+		await makeQueues(url);
 		if (applicationRole) await grant(client, applicationRole);
 	} finally {
 		await client.end();
@@ -33,8 +35,8 @@ async function grant(client: pg.Client, applicationRole: string): Promise<void> 
 	const role = pg.escapeIdentifier(applicationRole);
 	const kept = permanent.map((table) => pg.escapeIdentifier(table)).join(', ');
 	await client.query(`
-		GRANT USAGE ON SCHEMA public TO ${role};
-		GRANT SELECT, INSERT, UPDATE, DELETE ON ALL TABLES IN SCHEMA public TO ${role};
+		GRANT USAGE ON SCHEMA public, ${queueSchema} TO ${role};
+		GRANT SELECT, INSERT, UPDATE, DELETE ON ALL TABLES IN SCHEMA public, ${queueSchema} TO ${role};
 		GRANT USAGE ON ALL SEQUENCES IN SCHEMA public TO ${role};
 		REVOKE UPDATE, DELETE ON ${kept} FROM ${role};
 		REVOKE INSERT, UPDATE, DELETE ON audit_link FROM ${role};`);

@@ -42,15 +42,15 @@ export function checkpointFolder(database) {
 
 /**
  * Starts the production entry and waits until it answers.
- * @param {{ database: string, port: number, kind: string, log: string }} options `kind` names in the process list
- * what it was started for, `log` is the file of what it prints
+ * @param {{ database: string, port: number, kind: string, log: string, more?: Record<string, string> }} options `kind`
+ * names in the process list what it was started for, `log` is the file of what it prints, `more` are settings besides
  * @returns {Promise<Serving>}
  */
-export async function serve({ database, port, kind, log }) {
+export async function serve({ database, port, kind, log, more }) {
 	const output = openSync(log, 'w');
 	const child = spawn(process.execPath, ['build/main.js', kind, String(process.pid)], {
 		cwd: root,
-		env: settings(database, port),
+		env: { ...settings(database, port), ...more },
 		stdio: ['ignore', output, output],
 		// Ctrl-C reaches only the starter, which ends the server in good order.
 		detached: true,

@@ -8,7 +8,7 @@ const settings = z.object({
 	AUTH_SECRET: z.string().min(32, 'must have 32 characters or more'),
 	HOST: z.string().default('127.0.0.1'),
 	PORT: z.coerce.number().int().min(1).max(65535).default(4173),
-	ROLES: z.string().default('web,sync'),
+	ROLES: z.string().default('web,sync,jobs'),
 	/** Evaluator children per process. */
 	EVALUATORS: z.coerce.number().int().min(1).max(32).default(2),
 	/** File the evaluator children run. */
@@ -21,6 +21,13 @@ const settings = z.object({
 	CHECKPOINT_FOLDER: z.string().default(''),
 	/** Header with the client's address, set by a trusted proxy; empty where there is none. */
 	ADDRESS_HEADER: z.string().default(''),
+	/** Mail server; no mail goes out where it is empty. */
+	SMTP_URL: z
+		.string()
+		.regex(/^(smtps?:\/\/\S+)?$/, 'must be an smtp:// or smtps:// address')
+		.default(''),
+	/** Who mail comes from: an address, or a name with the address in angle brackets. */
+	MAIL_FROM: z.string().default('Halfdigit <halfdigit@localhost>'),
 	LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
 });
 

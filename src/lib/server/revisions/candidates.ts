@@ -24,6 +24,7 @@ import * as rules from './rules';
 import { sign } from './sign';
 import { digestOf } from './snapshot';
 import * as standings from './standing';
+import * as telling from './telling';
 import { waivedBy } from './waivers';
 
 /** What a person looked at when they signed. */
@@ -110,6 +111,7 @@ export async function propose(
 		await audit.record(tx, actor, 'candidate proposed', `note:${note.id}`, {
 			after: { ordinal: row.ordinal, seq, digest, purpose: details.purpose },
 		});
+		await telling.toCheckers(tx, actor, made);
 	});
 	await notify(note.id, 'review');
 }
@@ -122,6 +124,8 @@ export async function check(actor: Actor, number: string, seen: Seen): Promise<v
 		await audit.record(tx, actor, 'candidate checked', `note:${open.noteId}`, {
 			after: { ordinal: open.ordinal, digest: open.digest },
 		});
+		const after = await standings.read(tx, open.noteId);
+		if (after.candidateState === 'checked') await telling.toApprover(tx, actor, open);
 	});
 }
 
@@ -144,6 +148,7 @@ export async function approve(actor: Actor, number: string, given: Approval): Pr
 			...(waivers.length > 0 && { waivers }),
 			...(cautions.length > 0 && { cautions }),
 		});
+		await telling.ofRevision(tx, actor, open, standing.signOffs, { what: 'frozen' });
 		return { letter, checkpoint: await checkpoints.make(tx) };
 	});
 	await checkpoints.keepOutside(done.checkpoint);
@@ -163,6 +168,7 @@ export async function sendBack(
 			after: { ordinal: open.ordinal, digest: open.digest },
 			reason,
 		});
+		await telling.ofReturn(tx, actor, open, standing.signOffs, reason);
 	});
 }
 

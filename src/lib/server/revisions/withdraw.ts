@@ -4,7 +4,7 @@ import * as audit from '../audit/audit';
 import { demand, type Actor } from '../auth/access';
 import { db } from '../db/client';
 import { notify } from '../db/notify';
-import { revision, withdrawal } from '../db/schema/review';
+import { candidate, revision, withdrawal } from '../db/schema/review';
 import { lock } from '../notes/lock';
 import * as notes from '../notes/notes';
 import * as checkpoints from '../signed-record/checkpoints';
@@ -12,6 +12,7 @@ import * as entries from '../signed-record/entries';
 import { identify, type Credentials } from './identify';
 import * as policies from './policy';
 import * as standings from './standing';
+import * as telling from './telling';
 
 /** Takes a note's newest revision back, with a reason, signed. The revision stays as it is and says so from then on. */
 export async function withdraw(
@@ -67,6 +68,14 @@ export async function withdraw(
 			after: { letter, digest },
 			reason,
 		});
+		const [candidateRow] = await tx
+			.select()
+			.from(candidate)
+			.where(eq(candidate.id, found.candidateId));
+		if (candidateRow) {
+			const signOffs = await standings.signOffsOf(tx, candidateRow.id);
+			await telling.ofRevision(tx, actor, candidateRow, signOffs, { what: 'withdrawn', reason });
+		}
 		return await checkpoints.make(tx);
 	});
 	await checkpoints.keepOutside(made);

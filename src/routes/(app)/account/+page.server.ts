@@ -1,8 +1,10 @@
 import { redirect } from '@sveltejs/kit';
 import { newToken, passwordChange, tokenChoice } from '$lib/schemas/account';
 import * as apiTokens from '$lib/server/auth/api-tokens';
+import { mailChoice } from '$lib/schemas/mail';
 import * as sessions from '$lib/server/auth/sessions';
 import * as signIn from '$lib/server/auth/sign-in';
+import * as mailPreferences from '$lib/server/mail/preferences';
 import * as auth from '$lib/server/web/auth';
 import { action } from '$lib/server/web/form';
 import { forMember } from '$lib/server/web/guard';
@@ -11,6 +13,7 @@ import type { PageServerLoadEvent, RequestEvent } from './$types';
 export const load = forMember(async (actor, { cookies }: PageServerLoadEvent) => ({
 	sessions: await sessions.list(actor, auth.tokenOf(cookies)),
 	tokens: await apiTokens.list(actor),
+	mail: await mailPreferences.get(actor),
 }));
 
 export const actions = {
@@ -18,6 +21,10 @@ export const actions = {
 		const userAgent = event.request.headers.get('user-agent');
 		auth.remember(event.cookies, await signIn.changePassword(actor, change, userAgent));
 		return { action: 'password', done: 'Your password is changed. Other sessions have ended.' };
+	}),
+	mail: action('mail', mailChoice, async (actor, choice, _event: RequestEvent) => {
+		await mailPreferences.set(actor, choice);
+		return { action: 'mail', done: 'Saved.' };
 	}),
 	createToken: action('createToken', newToken, async (actor, input, event: RequestEvent) => {
 		event.setHeaders({ 'cache-control': 'no-store' });
