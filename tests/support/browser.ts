@@ -30,7 +30,7 @@ export async function newNote(page: Page, title: string): Promise<string> {
 /** Adds a cell at the end of the sheet, with its source. */
 export async function addCell(
 	page: Page,
-	kind: 'text' | 'calculation' | 'requirement',
+	kind: 'text' | 'calculation' | 'requirement' | 'curve',
 	source: string,
 ): Promise<void> {
 	await page.getByRole('button', { name: kind, exact: true }).click();

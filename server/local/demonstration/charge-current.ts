@@ -1,4 +1,4 @@
-import { calculation, prose, requirement, type Sheet } from './sheet';
+import { calculation, curve, prose, requirement, type Sheet } from './sheet';
 
 export const chargeCurrent: Sheet = {
 	title: 'Solar charge current over a shunt',
@@ -43,5 +43,6 @@ export const chargeCurrent: Sheet = {
 			'I_step <= 5 mA  # resolution',
 			'I_offset <= 5 mA  # zero error',
 		),
+		curve('P_sh over I_max from 0 A to 20 A  # how far the shunt stays cool'),
 	],
 };

@@ -20,3 +20,7 @@ export function calculation(...lines: string[]): Written {
 export function requirement(...lines: string[]): Written {
 	return { kind: 'requirement', source: lines.join('\n') };
 }
+
+export function curve(line: string): Written {
+	return { kind: 'curve', source: line };
+}

@@ -284,6 +284,8 @@ export interface Sweep {
 		/** What the note says it is, and how that is read. */
 		present: number;
 		presentText: string;
+		/** Its line states a doubt, which it keeps at every point. */
+		inDoubt?: true;
 	};
 	logarithmic: boolean;
 	/** Ascending. */

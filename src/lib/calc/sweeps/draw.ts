@@ -109,6 +109,7 @@ export function drawSweep(
 			shown: axisOf(said.logarithmic ? [Math.sqrt(x[0]! * x.at(-1)!)] : x, input.type),
 			present: fromSI(input.present, unit),
 			presentText: show(input.present, input.type).text,
+			...(note.computed.get(input.line)?.doubt && { inDoubt: true as const }),
 		},
 		logarithmic: said.logarithmic,
 		x: [...x],

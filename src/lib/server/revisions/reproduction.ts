@@ -60,7 +60,7 @@ export async function compare(
 	};
 }
 
-function figuresOf({ quantities, requirements, curves = {} }: Evaluation) {
+function figuresOf({ quantities, requirements, curves = {}, sweeps = [] }: Evaluation) {
 	const written = (value: unknown, text: string) => ({ canonical: seal(value).canonical, text });
 	return new Map([
 		...Object.entries(quantities).map(
@@ -69,6 +69,11 @@ function figuresOf({ quantities, requirements, curves = {} }: Evaluation) {
 		...Object.entries(curves).map(
 			([name, curve]) => [`curve ${name}`, written(curve, `degree ${curve.degree}`)] as const,
 		),
+		...sweeps.map((sweep) => {
+			const names = sweep.series.map(({ name }) => name).join(', ');
+			const text = sweep.series.map(({ presentText }) => presentText).join(', ');
+			return [`${names} over ${sweep.over.name}, ${sweep.cell}`, written(sweep, text)] as const;
+		}),
 		...requirements.map(
 			(one) => [`requirement ${one.cell}, line ${one.line}`, written(one, one.text)] as const,
 		),

@@ -1,4 +1,11 @@
-import { Graph, layout, type EdgeLabel, type GraphLabel, type NodeLabel } from '@dagrejs/dagre';
+import {
+	Graph,
+	layout,
+	type EdgeLabel,
+	type GraphLabel,
+	type NodeLabel,
+	type Point,
+} from '@dagrejs/dagre';
 import { typeset } from '$lib/calc/symbol';
 import type { Knot, Network } from './network';
 
@@ -68,7 +75,7 @@ export function layOut(network: Network, shown: ReadonlySet<string>): Layout {
 		links: pairs.map(([from, to]) => ({
 			from: from!,
 			to: to!,
-			path: curved(graph.edge(from!, to!).points ?? []),
+			path: curved(between(graph.node(from!), graph.node(to!), graph.edge(from!, to!).points)),
 		})),
 		width: Number.isFinite(width) ? width : 2 * edge,
 		height: Number.isFinite(tall) ? tall : 2 * edge,
@@ -85,8 +92,19 @@ function widthOf(knot: Knot): number {
 	return Math.max(72, Math.min(260, Math.max(name, figures) + 20));
 }
 
+/** The way out of the right side of a box and into the left side of another. */
+function between(from: NodeLabel, to: NodeLabel, points: Point[] = []): Point[] {
+	const [x = 0, y = 0] = [from.x, from.y];
+	const [endX = 0, endY = 0] = [to.x, to.y];
+	const start = { x: x + from.width / 2, y };
+	const end = { x: endX - to.width / 2, y: endY };
+	// What lies within the columns of the two boxes would make a loop at their sides.
+	const way = points.slice(1, -1).filter((point) => point.x > start.x + 8 && point.x < end.x - 8);
+	return [start, ...way, end];
+}
+
 /** A line through points that leaves and meets its boxes level. */
-function curved(points: readonly { x: number; y: number }[]): string {
+function curved(points: readonly Point[]): string {
 	const [first, ...others] = points;
 	if (!first) return '';
 	let path = `M${round(first.x)} ${round(first.y)}`;
