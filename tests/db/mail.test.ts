@@ -1,14 +1,19 @@
 import { eq, sql } from 'drizzle-orm';
 import { afterAll, afterEach, beforeAll, expect, test } from 'vitest';
 import { mailKinds, type MailChoice } from '$lib/schemas/mail';
+import { placedCells } from '$lib/note/document';
+import * as threads from '$lib/server/comments/threads';
 import { db } from '$lib/server/db/client';
 import { mail } from '$lib/server/db/schema/mail';
 import { env } from '$lib/server/env';
 import { closePool } from '$lib/server/evaluation/pool';
+import * as desk from '$lib/server/desk/desk';
 import * as daily from '$lib/server/mail/daily';
 import * as delivery from '$lib/server/mail/delivery';
 import * as preferences from '$lib/server/mail/preferences';
 import * as unsent from '$lib/server/mail/unsent';
+import * as notes from '$lib/server/notes/notes';
+import { loadDocument } from '$lib/server/notes/updates';
 import * as candidates from '$lib/server/revisions/candidates';
 import { remind } from '$lib/server/revisions/reminders';
 import { withdraw } from '$lib/server/revisions/withdraw';
@@ -237,3 +242,29 @@ test('a connection that breaks while a mail is handed over leaves it to people',
 	expect(await statesOf()).toEqual(['unknown']);
 	hangsUp.close();
 });
+
+test('who is named in a comment is told, but not who wrote it', async () => {
+	const { number } = await writeNote(cast.author, 'Named');
+	const [cell] = (await threadsCell(number)) ?? [];
+	await threads.open(cast.engineer, number, {
+		cellId: cell!,
+		kind: 'question',
+		blocking: false,
+		body: `@${cast.author.name}, @${cast.engineer.name}: which part is it?`,
+	});
+	for (const id of await delivery.takeWaiting()) await delivery.deliver(id);
+	expect(sink.mails.map(({ to, subject }) => `${nameIn(to)}: ${subject}`)).toEqual([
+		`Author Example: ${number}: Engineer Example mentions you`,
+	]);
+	expect(sink.mails[0]?.text).toContain('@Author Example, @Engineer Example: which part is it?');
+	expect(sink.mails[0]?.text).toContain(`/notes/${number}#cell-${cell}`);
+	const shelves = await desk.read(cast.author);
+	expect(shelves.find(({ name }) => name === 'mentions')?.items).toMatchObject([{ number }]);
+	const own = await desk.read(cast.engineer);
+	expect(own.find(({ name }) => name === 'mentions')?.items).toEqual([]);
+});
+
+async function threadsCell(number: string): Promise<string[]> {
+	const { id } = await notes.get(cast.author, number);
+	return placedCells((await loadDocument(id)).doc).map((cell) => cell.id);
+}

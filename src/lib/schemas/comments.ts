@@ -40,7 +40,7 @@ export const threadChange = z.union([
 ]);
 
 /** Where a thread stands. One that is answered waits for whoever opened it to close it. */
-export type Disposition = 'open' | 'answered' | 'closed';
+type Disposition = 'open' | 'answered' | 'closed';
 
 export interface Comment {
 	id: string;
@@ -71,6 +71,8 @@ export interface Mention {
 	cellId: string;
 	disposition: Disposition;
 	blocking: boolean;
+	/** Who wrote it. */
+	byId: string;
 	by: string;
 	body: string;
 	/** ISO 8601 */

@@ -1,5 +1,5 @@
 /** Why something waits for a person. */
-export type ShelfName = 'check' | 'approve' | 'returned' | 'blocking' | 'requirements';
+export type ShelfName = 'check' | 'approve' | 'returned' | 'mentions' | 'blocking' | 'requirements';
 
 /** One thing that waits for a person. */
 export interface Waiting {

@@ -6,6 +6,7 @@ import { demand, type Actor } from '../auth/access';
 import { db, type Connection } from '../db/client';
 import { comment, mention, note, thread } from '../db/schema/notes';
 import { membership, person, team } from '../db/schema/people';
+import { tell } from '../mail/outbox';
 import * as notes from '../notes/notes';
 import { formatNumber } from '../notes/number';
 
@@ -49,6 +50,7 @@ export async function mentionsOf(actor: Actor): Promise<Mention[]> {
 				...(answeredAt && { answered: { at: answeredAt.toISOString(), by: '' } }),
 			}),
 			blocking: row.thread.blocking,
+			byId: row.comment.personId,
 			by: row.author,
 			body: spoken(row.comment.body, members),
 			at: row.comment.at.toISOString(),
@@ -84,14 +86,39 @@ export async function named(
 	return { body: written, personIds: [...found] };
 }
 
-/** Keeps who is named in a comment. */
+/** Keeps who is named in a comment, and tells them by mail unless they wrote it. `body` is as it was written. */
 export async function keep(
 	tx: Connection,
-	commentId: string,
+	actor: Actor,
+	{ id, threadId }: { id: string; threadId: string },
 	personIds: readonly string[],
+	body: string,
 ): Promise<void> {
 	if (personIds.length === 0) return;
-	await tx.insert(mention).values(personIds.map((personId) => ({ commentId, personId })));
+	await tx.insert(mention).values(personIds.map((personId) => ({ commentId: id, personId })));
+	const [about] = await tx
+		.select({
+			cellId: thread.cellId,
+			number: note.number,
+			title: note.title,
+			prefix: team.notePrefix,
+		})
+		.from(thread)
+		.innerJoin(note, eq(note.id, thread.noteId))
+		.innerJoin(team, eq(team.id, note.teamId))
+		.where(eq(thread.id, threadId));
+	if (!about) return;
+	const number = formatNumber(about.prefix, about.number);
+	const others = personIds.filter((personId) => personId !== actor.personId);
+	await tell(tx, others, {
+		teamId: actor.teamId,
+		key: `mentioned ${id}`,
+		said: {
+			...{ what: 'mentioned', number, title: about.title, letter: '', by: actor.name, words: body },
+			due: null,
+			path: `/notes/${number}#cell-${about.cellId}`,
+		},
+	});
 }
 
 /** A body as it is read: with the names that these people have now. */

@@ -143,7 +143,7 @@ async function say(
 		.values({ threadId, personId: actor.personId, body: named.body, trial })
 		.returning({ id: comment.id });
 	if (!made) throw new Error('the comment was not stored');
-	await mentions.keep(tx, made.id, named.personIds);
+	await mentions.keep(tx, actor, { id: made.id, threadId }, named.personIds, body);
 }
 
 /** Changes where a thread stands, and records that in the thread. */

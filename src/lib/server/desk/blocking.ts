@@ -1,51 +1,33 @@
 import type { Waiting } from '$lib/schemas/desk';
-import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
+import { and, eq, inArray, isNull } from 'drizzle-orm';
+import * as threads from '../comments/threads';
 import { db } from '../db/client';
-import { comment, thread } from '../db/schema/notes';
-import { person } from '../db/schema/people';
+import { thread } from '../db/schema/notes';
 import type { DeskNote } from './desk-notes';
 import { shortened } from './shortened';
 
-/** Open comments that block the freezing of these notes, each with who opened it and its first words. */
+/** Comments that block the freezing of these notes and are not closed, each with who opened it and its first words. */
 export async function blockingOf(notes: readonly DeskNote[]): Promise<Waiting[]> {
 	if (notes.length === 0) return [];
-	const rows = await db()
-		.selectDistinctOn([thread.id], {
-			id: thread.id,
-			noteId: thread.noteId,
-			cellId: thread.cellId,
-			name: person.name,
-			body: comment.body,
-			at: comment.at,
-		})
+	const ids = notes.map(({ id }) => id);
+	const blocked = await db()
+		.selectDistinct({ noteId: thread.noteId })
 		.from(thread)
-		.innerJoin(comment, eq(comment.threadId, thread.id))
-		.innerJoin(person, eq(person.id, comment.personId))
-		.where(
-			and(
-				inArray(
-					thread.noteId,
-					notes.map(({ id }) => id),
-				),
-				eq(thread.blocking, true),
-				isNull(thread.closedAt),
-			),
-		)
-		.orderBy(thread.id, asc(comment.at));
-	return rows
-		.sort((a, b) => a.at.getTime() - b.at.getTime())
-		.flatMap(({ noteId, cellId, name, body }) => {
-			const note = notes.find(({ id }) => id === noteId);
-			if (!note) return [];
-			return [
-				{
-					number: note.number,
-					title: note.title,
-					href: `/notes/${note.number}#cell-${cellId}`,
-					what: `${name}: ${shortened(body)}`,
-					due: null,
-					isLate: false,
-				},
-			];
-		});
+		.where(and(inArray(thread.noteId, ids), eq(thread.blocking, true), isNull(thread.closedAt)));
+	const waiting: Waiting[] = [];
+	for (const { id, number, title } of notes) {
+		if (!blocked.some(({ noteId }) => noteId === id)) continue;
+		for (const { cellId, blocking, closed, comments } of await threads.read(db(), id)) {
+			const [first] = comments;
+			if (!blocking || closed || !first) continue;
+			waiting.push({
+				...{ number, title },
+				href: `/notes/${number}#cell-${cellId}`,
+				what: `${first.person.name}: ${shortened(first.body)}`,
+				due: null,
+				isLate: false,
+			});
+		}
+	}
+	return waiting;
 }

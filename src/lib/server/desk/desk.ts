@@ -1,9 +1,11 @@
 import type { Shelf, Waiting } from '$lib/schemas/desk';
 import { may } from '$lib/schemas/role';
 import { demand, type Actor } from '../auth/access';
+import { mentionsOf } from '../comments/mentions';
 import { db } from '../db/client';
 import { blockingOf } from './blocking';
 import { notesOf, type DeskNote } from './desk-notes';
+import { shortened } from './shortened';
 import * as rules from '../revisions/rules';
 import * as standings from '../revisions/standing';
 
@@ -27,6 +29,7 @@ export async function read(actor: Actor, now = new Date()): Promise<Shelf[]> {
 	if (may(actor.role, 'write')) {
 		shelves.push({ name: 'returned', items: returned(actor, standing) });
 	}
+	shelves.push({ name: 'mentions', items: await mentioned(actor) });
 	if (may(actor.role, 'write')) {
 		const mine = notes.filter(({ isMine }) => isMine);
 		shelves.push(
@@ -97,6 +100,20 @@ function returned(actor: Actor, stood: readonly Stood[]): Waiting[] {
 			},
 		];
 	});
+}
+
+/** Open comments that name the actor; those of their own wait for nobody. */
+async function mentioned(actor: Actor): Promise<Waiting[]> {
+	const found = await mentionsOf(actor);
+	return found
+		.filter(({ disposition, byId }) => disposition === 'open' && byId !== actor.personId)
+		.map(({ number, title, cellId, by, body }) => ({
+			...{ number, title },
+			href: `/notes/${number}#cell-${cellId}`,
+			what: `${by}: ${shortened(body)}`,
+			due: null,
+			isLate: false,
+		}));
 }
 
 function unmet(note: DeskNote): Waiting {
