@@ -2,7 +2,7 @@ import { StateEffect, StateField, type Extension } from '@codemirror/state';
 import { Decoration, EditorView, type DecorationSet } from '@codemirror/view';
 
 /** A stretch of a cell that a comment is about. */
-export interface CommentMark {
+interface CommentMark {
 	threadId: string;
 	from: number;
 	to: number;

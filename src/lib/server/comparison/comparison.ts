@@ -96,7 +96,8 @@ async function detailed(side: ReadSide, names: readonly string[]): Promise<ReadS
 	if (side.isFrozen || detail.length === 0) return side;
 	const options = { ...optionsOf(side.content), detail };
 	const results = await evaluateInChild(side.content.cells, options);
-	return { ...side, results };
+	// Budgets that take too long to compute must not make every figure look lost.
+	return results.errors.length > side.results.errors.length ? side : { ...side, results };
 }
 
 function said(side: KnownSide, { content, results, signOffs, pending }: ReadSide): ComparedSide {
