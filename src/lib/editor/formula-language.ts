@@ -1,5 +1,4 @@
-import { javascriptLanguage } from '@codemirror/lang-javascript';
-import { EditorState, Prec, type Extension, type Range, type Text } from '@codemirror/state';
+import { EditorState, type Extension, type Range, type Text } from '@codemirror/state';
 import { Decoration, ViewPlugin, type EditorView, type ViewUpdate } from '@codemirror/view';
 import { splitLine, tokenize, type Token } from '$lib/components/lines';
 
@@ -54,20 +53,17 @@ function decorate({ doc }: EditorState) {
 }
 
 /**
- * Formulas: their words for colours, brackets and comments. The grammar of JavaScript lies under them, as its brackets,
- * numbers and texts in quotes are those of formulas.
+ * Formulas: their words for colours, brackets and comments. No grammar lies under them: the engine alone decides what a
+ * line means, and a parser that mends what it does not know takes longer for a long cell than a key may.
  */
 export function formulaLanguage(): Extension {
 	return [
-		Prec.high(
-			EditorState.languageData.of(() => [
-				{
-					closeBrackets: { brackets: ['(', '[', '"'] },
-					commentTokens: { line: '#' },
-				},
-			]),
-		),
-		javascriptLanguage,
+		EditorState.languageData.of(() => [
+			{
+				closeBrackets: { brackets: ['(', '[', '"'] },
+				commentTokens: { line: '#' },
+			},
+		]),
 		ViewPlugin.fromClass(Colours, { decorations: (plugin) => plugin.decorations }),
 	];
 }
