@@ -31,6 +31,14 @@ md.core.ruler.push('headings', (state) => {
 	}
 });
 
+// A list's marks stand on the side where its script begins.
+md.core.ruler.push('directions', (state) => {
+	for (const token of state.tokens) {
+		const { type } = token;
+		if (type === 'bullet_list_open' || type === 'ordered_list_open') token.attrSet('dir', 'auto');
+	}
+});
+
 md.renderer.rules.link_open = (tokens, index, options, _env, self) => {
 	const token = tokens[index];
 	token?.attrSet('rel', 'noopener noreferrer nofollow');

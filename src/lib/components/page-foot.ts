@@ -22,7 +22,7 @@ function place(where: string, lines: readonly string[], width: string): string {
 }
 
 const look =
-	'font: 8pt/1.35 "Fira Sans", sans-serif; color: #222; white-space: pre-wrap; vertical-align: top; padding-top: 5pt; border-top: 0.75pt solid #000;';
+	'text-align: left; font: 8pt/1.35 "Fira Sans", sans-serif; color: #222; white-space: pre-wrap; vertical-align: top; padding-top: 5pt; border-top: 0.75pt solid #000;';
 
 /** What the foot of each printed page says: the title block in short. */
 export interface PageFoot {
@@ -46,9 +46,9 @@ export function pageFoot({ number, title, revision, signOffs, seal }: PageFoot):
 	const right = seal === undefined ? counter : `${counter} "\\a " ${quoted(seal)}`;
 	return [
 		'@page {',
-		place('left', [short(title), `${number}, revision ${revision}`], '42%'),
+		place('left', [short(title), `${number}, revision ${revision}`], '33%'),
 		place('center', signed, '34%'),
-		`@bottom-right { content: ${right}; width: 24%; text-align: right; ${look} }`,
+		`@bottom-right { content: ${right}; width: 33%; ${look} text-align: right; }`,
 		'}',
 	].join(' ');
 }

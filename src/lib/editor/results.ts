@@ -6,9 +6,10 @@ import {
 	type Text,
 } from '@codemirror/state';
 import { EditorView, type DecorationSet } from '@codemirror/view';
-import type { Evaluation, Fault } from '$lib/calc/results';
+import type { Evaluation, Fault, Requirement, WorkedLine } from '$lib/calc/results';
 import { splitLine } from '$lib/components/lines';
 import type { OpenLine } from '$lib/client/open-line.svelte';
+import { areSame, partsOf } from './cell-parts';
 import { noteContext } from './note-context';
 import { remarksOf } from '$lib/components/remarks';
 import type { Tried } from '$lib/components/tried';
@@ -40,11 +41,30 @@ export function showResults(
 	evaluation: Evaluation,
 	open: Open,
 ): void {
+	// Most keys change figures of few cells.
+	const parts = shownOf(cell, evaluation, open);
+	const last = shown.get(view);
+	if (last?.doc === view.state.doc && areSame(last.parts, parts)) return;
+	shown.set(view, { doc: view.state.doc, parts });
 	const list = placed(view.state.doc, cell, evaluation, open);
 	const before = view.state.field(field).list;
 	const next = list.map(keepingWidget(before));
 	// An update of an editor lays the page out; most edits change figures, not where they stand.
 	if (!standAlike(before, next)) view.dispatch({ effects: arrived.of(next) });
+}
+
+/** What editors show, and of which text; while all of it is the same nothing is placed anew. */
+const shown = new WeakMap<EditorView, { doc: Text; parts: readonly unknown[] }>();
+
+/** All that the results of a cell are shown by. */
+function shownOf(cell: string, evaluation: Evaluation, { line, Behind, tried }: Open): unknown[] {
+	const parts = partsOf(evaluation, cell).flatMap((part: Partial<WorkedLine & Requirement>) => [
+		part,
+		remarksOf(evaluation, part.name),
+		tried.ofQuantity(part.name),
+		tried.ofRequirement(cell, part.line ?? 0),
+	]);
+	return [line.opened, Behind, ...parts];
 }
 
 /** Gives a result the widget that shows its line already, with the new figure: one line has one widget for good. */
@@ -157,9 +177,10 @@ function placed(
 	{ line: opener, Behind, tried }: Open,
 ): Result[] {
 	const list: Result[] = [];
+	const startOf = startsIn(doc);
 	for (const line of evaluation.lines) {
 		if (line.cell !== cell) continue;
-		const at = startOf(doc, line.line, line.name);
+		const at = startOf(line.line, line.name);
 		if (at === undefined) continue;
 		// It stays open while its line has no value, as while somebody types further up.
 		if (Behind && line.name !== undefined && line.name === opener.opened)
@@ -175,7 +196,7 @@ function placed(
 	}
 	for (const requirement of evaluation.requirements) {
 		if (requirement.cell !== cell) continue;
-		const at = startOf(doc, requirement.line);
+		const at = startOf(requirement.line);
 		if (at !== undefined) {
 			list.push({
 				kind: 'verdict',
@@ -186,7 +207,7 @@ function placed(
 	}
 	for (const fault of evaluation.errors) {
 		if (fault.cell !== cell) continue;
-		const start = startOf(doc, fault.line);
+		const start = startOf(fault.line);
 		if (start === undefined) continue;
 		const end = doc.lineAt(start).to;
 		const within = ({ from, to }: { from: number; to: number }) => {
@@ -199,13 +220,23 @@ function placed(
 	return list;
 }
 
-/** Start of a line. Results may be a moment older than the text: a defined name is looked up where it went. */
-function startOf(doc: Text, number: number, name?: string): number | undefined {
-	const line = number <= doc.lines ? doc.line(number) : undefined;
-	if (name === undefined || (line && splitLine(line.text).name === name)) return line?.from;
-	for (let n = 1; n <= doc.lines; n++) {
-		const other = doc.line(n);
-		if (splitLine(other.text).name === name) return other.from;
+/** Finds where a line starts. Results may be a moment older than the text: a defined name is looked up where it went. */
+function startsIn(doc: Text): (number: number, name?: string) => number | undefined {
+	let byName: Map<string, number> | undefined;
+	return (number, name) => {
+		const line = number <= doc.lines ? doc.line(number) : undefined;
+		if (name === undefined || (line && splitLine(line.text).name === name)) return line?.from;
+		return (byName ??= namesIn(doc)).get(name);
+	};
+}
+
+/** Where each name is defined, the first place where there are several. */
+function namesIn(doc: Text): Map<string, number> {
+	const found = new Map<string, number>();
+	for (let number = 1; number <= doc.lines; number++) {
+		const { text, from } = doc.line(number);
+		const { name } = splitLine(text);
+		if (name !== undefined && !found.has(name)) found.set(name, from);
 	}
-	return undefined;
+	return found;
 }
