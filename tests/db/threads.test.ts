@@ -7,6 +7,7 @@ import { db } from '$lib/server/db/client';
 import { comment } from '$lib/server/db/schema/notes';
 import { closePool } from '$lib/server/evaluation/pool';
 import { current } from '$lib/server/evaluation/store';
+import { keptComments } from '$lib/server/revisions/kept-comments';
 import * as review from '$lib/server/revisions/review';
 import { download } from '$lib/server/revisions/sealed-file';
 import { createDatabase, type TestDatabase } from '../support/database';
@@ -165,4 +166,6 @@ test('what a comment is about is kept with it and goes into the review record of
 	expect(file.revision.review).toMatchObject([
 		{ anchor: { quote: 'The divider' }, comments: [{ body: '@Author Example: which?' }] },
 	]);
+	const [kept] = await keptComments(cast.reader, number, 'A');
+	expect(kept?.anchor?.quote).toBe('The divider');
 });

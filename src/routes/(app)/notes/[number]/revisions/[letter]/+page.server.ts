@@ -5,6 +5,7 @@ import { linkChoice, newLink } from '$lib/schemas/sharing';
 import { env } from '$lib/server/env';
 import * as notes from '$lib/server/notes/notes';
 import { codeOf } from '$lib/server/paper/code';
+import { keptComments } from '$lib/server/revisions/kept-comments';
 import * as revisions from '$lib/server/revisions/revisions';
 import { withdraw } from '$lib/server/revisions/withdraw';
 import * as links from '$lib/server/sharing/links';
@@ -21,6 +22,7 @@ export const load = forMember(async (actor, { params }: PageServerLoadEvent) => 
 		note: { id, number, title: frozen.content.title },
 		...frozen,
 		allowed,
+		comments: await keptComments(actor, number, letter),
 		code: codeOf(frozen.revision.digest),
 		links: may(actor.role, 'share') ? await links.list(actor, number, letter) : null,
 		origin: env().ORIGIN,
