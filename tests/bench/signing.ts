@@ -5,6 +5,8 @@ import { db } from '$lib/server/db/client';
 import { candidate } from '$lib/server/db/schema/review';
 import { env } from '$lib/server/env';
 import { closePool } from '$lib/server/evaluation/pool';
+import * as paper from '$lib/server/paper/paper';
+import { closePress } from '$lib/server/paper/printing';
 import * as candidates from '$lib/server/revisions/candidates';
 import { freeze } from '$lib/server/revisions/freeze';
 import { letterOf } from '$lib/server/revisions/letters';
@@ -17,8 +19,9 @@ import * as dropped from '$lib/server/signed-record/dropped';
 import { checkAudit } from '$lib/server/signed-record/check-audit';
 import { verifyAll } from '$lib/server/signed-record/verification';
 import { createDatabase } from '../support/database';
-import { check, propose, seen, writeNote } from '../support/note-life';
+import { check, freeze as freezeWhole, propose, seen, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
+import { lines200 } from './note-200';
 import { row, type Row } from './row';
 import { sixtyLines } from './sixty-lines';
 
@@ -58,6 +61,7 @@ export async function signingRows(): Promise<Row[]> {
 		const one = await timed(async () => {
 			if ((await dropped.file(file)).state !== 'valid') throw new Error('the file is not valid');
 		});
+		const printing = await papers(cast);
 		await fillAudit(owner, cast);
 		const auditing = await timed(async () => {
 			const { faults } = await checkAudit(db(), []);
@@ -86,6 +90,13 @@ export async function signingRows(): Promise<Row[]> {
 				target: 2,
 			}),
 			row({
+				id: 'signing.pdf',
+				what: 'PDF of a frozen note of 200 lines, set anew, the slowest of three',
+				value: printing,
+				unit: 'ms',
+				target: 1000,
+			}),
+			row({
 				id: 'signing.freeze',
 				what: 'approving and freezing a note of 60 lines, the slowest of 20',
 				value: freezing,
@@ -94,10 +105,33 @@ export async function signingRows(): Promise<Row[]> {
 			}),
 		];
 	} finally {
+		closePress();
 		await closePool();
 		await owner.end();
 		await database.drop();
 	}
+}
+
+/** Time of the slowest of three papers of different notes; the typesetter runs already, as on a server in use. */
+async function papers(cast: Cast): Promise<number> {
+	const source = (from: number) =>
+		lines200(true)
+			.slice(from, from + 20)
+			.join('\n');
+	let slowest = 0;
+	for (const name of ['Warm-up', 'First', 'Second', 'Third']) {
+		const cells = Array.from({ length: 10 }, (_, i) => ({
+			kind: 'calculation' as const,
+			source: `# ${name}\n${source(20 * i)}`,
+		}));
+		const { number } = await writeNote(cast.author, `${name} ladder`, cells);
+		await freezeWhole(cast, number);
+		const took = await timed(async () => {
+			await paper.ofRevision(cast.reader, number, 'A', 'a4');
+		});
+		if (name !== 'Warm-up') slowest = Math.max(slowest, took);
+	}
+	return slowest;
 }
 
 /** Freezes the newest candidate again and again, without its passwords. */

@@ -159,6 +159,23 @@ export const accessTable: Record<string, Row> = {
 		}),
 		expect: { stranger: signIn, approver: 303, outsider: 404, all: 403 },
 	},
+	'POST /notes/[number]/revisions/[letter]?/share': {
+		stage: 'frozen',
+		...page('/revisions/A?/share'),
+		form: () => ({ name: 'The buyers', days: '30', password: '' }),
+		expect: { stranger: signIn, reader: 403, outsider: 404, all: 200 },
+	},
+	'POST /notes/[number]/revisions/[letter]?/revoke': {
+		stage: 'frozen',
+		...page('/revisions/A?/revoke'),
+		form: ({ link }) => ({ id: link.id }),
+		expect: { stranger: signIn, reader: 403, outsider: 404, all: 200 },
+	},
+	'GET /notes/[number]/revisions/[letter]/pdf': {
+		stage: 'frozen',
+		...page('/revisions/A/pdf'),
+		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
 	'GET /notes/[number]/revisions/[letter]/file': {
 		stage: 'frozen',
 		...page('/revisions/A/file'),
@@ -168,6 +185,33 @@ export const accessTable: Record<string, Row> = {
 		stage: 'frozen',
 		...page('/revisions/A/again'),
 		expect: { stranger: signIn, outsider: 404, all: 200 },
+	},
+	// The link asks everybody for its password, whoever they are.
+	'GET /shared/[token]': {
+		stage: 'frozen',
+		at: ({ link }) => `/shared/${link.token}`,
+		expect: { all: 200 },
+	},
+	'POST /shared/[token]?/unlock': {
+		stage: 'frozen',
+		at: ({ link }) => `/shared/${link.token}?/unlock`,
+		form: () => ({ password: 'not this one' }),
+		expect: { all: 403 },
+	},
+	'GET /shared/[token]/pdf': {
+		stage: 'frozen',
+		at: ({ link }) => `/shared/${link.token}/pdf`,
+		expect: { all: 403 },
+	},
+	'GET /shared/[token]/file': {
+		stage: 'frozen',
+		at: ({ link }) => `/shared/${link.token}/file`,
+		expect: { all: 403 },
+	},
+	'GET /r/[digits]': {
+		stage: 'frozen',
+		at: ({ revisionDigest }) => `/r/${revisionDigest.slice(0, 32)}`,
+		expect: { all: 200 },
 	},
 	'GET /verify': { expect: { all: 200 } },
 	'POST /verify': {

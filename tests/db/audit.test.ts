@@ -39,6 +39,7 @@ const changeNothing = [
 	'POST /api/notes/[number]/trial',
 	'POST /api/notes/[number]/trials',
 	'POST /verify',
+	'POST /shared/[token]?/unlock',
 ];
 const changing = answeredRoutes().filter(
 	(route) =>
@@ -58,7 +59,16 @@ const tables = [
 		'withdrawal',
 		'membership',
 	],
-	...['person', 'session', 'api_token', 'sign_off_policy', 'signed_entry', 'checkpoint', 'team'],
+	...[
+		'person',
+		'session',
+		'api_token',
+		'sign_off_policy',
+		'shared_link',
+		'signed_entry',
+		'checkpoint',
+		'team',
+	],
 ];
 async function everything(): Promise<unknown> {
 	const parts = tables.map(

@@ -4,6 +4,7 @@ import * as apiTokens from '$lib/server/auth/api-tokens';
 import * as revisions from '$lib/server/revisions/revisions';
 import * as keptTrials from '$lib/server/trial/kept-trials';
 import { may } from '$lib/schemas/role';
+import * as links from '$lib/server/sharing/links';
 import { check, freeze, propose, seen, writeNote } from './note-life';
 import { testPassword as password, type Cast } from './people';
 
@@ -15,6 +16,8 @@ export interface Scene {
 	digest: string;
 	/** Of revision A, where it is frozen. */
 	revisionDigest: string;
+	/** A link to revision A that asks for a password. */
+	link: { id: string; token: string };
 	/** Somebody in the note's team whose role may be changed. */
 	personId: string;
 	email: string;
@@ -37,6 +40,7 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 		threadId: '',
 		digest: '0'.repeat(64),
 		revisionDigest: '0'.repeat(64),
+		link: { id: '', token: '' },
 		personId: cast.reader.personId,
 		email: visitor.email,
 		tokenId: (await apiTokens.create(visitor, { name: 'Bench', days: 1 })).id,
@@ -53,6 +57,8 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 	if (upTo === 'checked') await check(cast, number);
 	if (upTo === 'frozen') {
 		scene.revisionDigest = (await revisions.get(cast.author, number, 'A')).revision.digest;
+		const link = { name: 'The buyers', days: 30, password };
+		scene.link = await links.create(cast.author, number, 'A', link);
 	}
 	scene.digest = (await seen(cast.author, number)).digest;
 	return scene;

@@ -9,6 +9,7 @@ import * as candidates from '$lib/server/revisions/candidates';
 import type { Proposal } from '$lib/server/revisions/proposal';
 import * as revisions from '$lib/server/revisions/revisions';
 import { withdraw } from '$lib/server/revisions/withdraw';
+import * as links from '$lib/server/sharing/links';
 import * as teams from '$lib/server/teams/teams';
 import { eq } from 'drizzle-orm';
 import { batteryVoltage, widened } from './battery-voltage';
@@ -53,6 +54,11 @@ async function battery({ engineer, peer, approver }: Cast): Promise<void> {
 	await freeze(number, engineer, peer, approver, {
 		purpose: 'Stations with the new charge regulator',
 		changes: 'The range ends at 32 V: the new regulator equalises with up to 31.2 V.',
+	});
+	await links.create(engineer, number, 'B', {
+		name: 'Rig builders of the station',
+		days: 365,
+		password: '',
 	});
 }
 
