@@ -1,7 +1,10 @@
-/** A cell of formulas or prose. `text` cells are read for their `{{name}}` figures only. */
+/**
+ * A cell of formulas or prose. `text` cells are read for their `{{name}}` figures only; one of kind `curve` is a picture
+ * of quantities over the range of another, `Vadc over Vmax from 0 V to 40 V`.
+ */
 export interface SourceCell {
 	id: string;
-	kind: 'text' | 'calculation' | 'requirement';
+	kind: 'text' | 'calculation' | 'requirement' | 'curve';
 	source: string;
 }
 
@@ -35,15 +38,8 @@ export interface CurveCell {
 	weighted?: boolean;
 }
 
-/** A picture of quantities over the range of another: its source is one line, `Vadc over Vmax from 0 V to 40 V`. */
-export interface SweepCell {
-	id: string;
-	kind: 'curve';
-	source: string;
-}
-
 /** A cell as the engine reads it. */
-export type Cell = SourceCell | ReadingsCell | SweepCell | CurveCell;
+export type Cell = SourceCell | ReadingsCell | CurveCell;
 
 export interface Options {
 	/** Coverage probability of expanded uncertainties, 0 to 1. */

@@ -52,7 +52,8 @@ const cell = z.unknown().transform((sent, context): Cell => {
 		.safeParse(sent).success;
 	const parsed = (isSweep ? sweepCell : otherCell).safeParse(sent);
 	if (parsed.success) return parsed.data;
-	for (const issue of parsed.error.issues) context.issues.push({ ...issue, input: sent });
+	for (const issue of parsed.error.issues)
+		context.issues.push({ ...issue, input: sent } as z.core.$ZodRawIssue);
 	return z.NEVER;
 });
 
