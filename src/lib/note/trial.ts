@@ -3,7 +3,7 @@ import type * as Y from 'yjs';
 import { placedCells, type NoteCell } from './document';
 
 /** The formula of a name's line: where it stands in its cell's source, and what it is. */
-export interface FormulaPlace {
+interface FormulaPlace {
 	cellId: string;
 	/** 1-based. */
 	line: number;

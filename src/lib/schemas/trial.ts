@@ -15,7 +15,7 @@ export interface TrialChange {
 const formula = typed.min(1, 'A formula is missing.').max(2000, 'At most 2 000 characters.');
 
 /** Most quantities that one trial changes. */
-export const mostChanges = 50;
+const mostChanges = 50;
 
 export const trialChanges = z
 	.array(
