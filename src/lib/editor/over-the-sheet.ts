@@ -6,7 +6,8 @@ import { repositionTooltips, showTooltip, tooltips, ViewPlugin } from '@codemirr
  * a message above the sheet or another person's new line moves the line, and no event tells the editor so.
  */
 export const overTheSheet: Extension = [
-	tooltips({ parent: document.body, position: 'fixed' }),
+	// Within the page's main part, where those who go from part to part find them.
+	tooltips({ parent: document.querySelector('main') ?? document.body, position: 'fixed' }),
 	ViewPlugin.define((view) => {
 		let frame: number | undefined;
 		let place: string | undefined;
