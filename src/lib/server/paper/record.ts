@@ -1,4 +1,7 @@
+import { changeWords, entriesOf } from '$lib/components/thread-entries';
 import { moment } from '$lib/components/time';
+import { dispositionOf, type Thread } from '$lib/schemas/comments';
+import type { AttachedTrial } from '$lib/schemas/trial';
 import { visible } from './glyphs';
 import type { SealedContent } from './sealed-content';
 
@@ -28,8 +31,12 @@ export interface ReviewRecord {
 		terminal: number;
 		kind: string;
 		blocking: boolean;
-		closed: string;
-		comments: { name: string; time: string; body: string }[];
+		/** Whether it was open when the revision was frozen. */
+		open: boolean;
+		/** The words it is about, '' where it is about the whole cell. */
+		quote: string;
+		/** What was said and what became of it; a change has no body. */
+		entries: { head: string; body: string; trial: string[] }[];
 	}[];
 	timeSource: string;
 	keyId: string;
@@ -74,20 +81,54 @@ export function recordOf(revision: SealedContent['revision']): ReviewRecord {
 				reason: visible(reason),
 			})),
 		),
-		threads: revision.review.map(({ cellId, kind, blocking, closed, comments }) => ({
-			terminal: terminals.get(cellId) ?? 0,
-			kind,
-			blocking,
-			closed: closed ? `closed by ${visible(closed.by)}, ${moment(closed.at)}` : '',
-			comments: comments.map(({ person, at, body }) => ({
-				name: visible(person.name),
-				time: moment(at),
-				body: visible(body),
-			})),
+		threads: revision.review.map((thread) => ({
+			terminal: terminals.get(thread.cellId) ?? 0,
+			kind: thread.kind,
+			blocking: thread.blocking,
+			open: dispositionOf(thread) === 'open',
+			quote: visible(thread.anchor?.quote ?? ''),
+			entries: entriesIn(thread),
 		})),
 		timeSource: statements[0]?.timeSource ?? '',
 		keyId: revision.signatures[0]?.keyId ?? '',
 	};
+}
+
+function entriesIn(thread: Thread): ReviewRecord['threads'][number]['entries'] {
+	const entries = entriesOf(thread).map((entry) =>
+		'comment' in entry
+			? {
+					head: visible(`${entry.comment.person.name}, ${moment(entry.at)}`),
+					body: visible(entry.comment.body),
+					trial: entry.comment.trial ? trialLines(entry.comment.trial) : [],
+				}
+			: { head: visible(`${changeWords(entry.change)}, ${moment(entry.at)}`), body: '', trial: [] },
+	);
+	const { closed, changes = [] } = thread;
+	if (closed && !changes.some(({ what }) => what === 'closed'))
+		entries.push({
+			head: visible(`Closed by ${closed.by}, ${moment(closed.at)}`),
+			body: '',
+			trial: [],
+		});
+	return entries;
+}
+
+/** What a trial changes, then what that did to requirements and figures. */
+function trialLines({ changes, verdicts, figures }: AttachedTrial): string[] {
+	const changed = new Set(changes.map(({ name }) => name));
+	return [
+		...changes.map(({ name, from, to }) => `Tried: ${name} = ${to} instead of ${from}`),
+		...verdicts.map(
+			({ requirement, before, after }) =>
+				`${requirement}: ${before ? `${before.verdict}, then ` : ''}${after?.text ?? 'no verdict'}`,
+		),
+		...figures
+			.filter(({ name }) => !changed.has(name))
+			.map(
+				({ name, before, after }) => `${name}: ${before ?? 'no value'} → ${after ?? 'no value'}`,
+			),
+	].map(visible);
 }
 
 /** "14 Oct 2026, 09:12:03 UTC" */
