@@ -5,6 +5,7 @@ import type { RawData, WebSocket } from 'ws';
 import { Answer } from './answer';
 import { decode, PresenceTooBig, type Incoming } from './incoming';
 import { Allowance, maxUnread } from './limits';
+import type { SentResults } from './results-out';
 import type { Room } from './room';
 
 /** Time in which a page must take note of a closing. */
@@ -26,19 +27,24 @@ export class Connection {
 	readonly #socket: WebSocket;
 	readonly #room: Room;
 	readonly #allowance = new Allowance();
-	#heldResults: Uint8Array | undefined;
+	/** Whether the page is told what changed in results instead of all of them. */
+	readonly #takesChanges: boolean;
+	#heldResults: SentResults | undefined;
+	/** Whether the page was sent the newest results. */
+	#hasNewest = false;
 	#heard = true;
 
 	constructor(
 		socket: WebSocket,
 		room: Room,
-		who: { actor: Actor; session: string; mayWrite: boolean },
+		who: { actor: Actor; session: string; mayWrite: boolean; takesChanges: boolean },
 	) {
 		this.#socket = socket;
 		this.#room = room;
 		this.actor = who.actor;
 		this.session = who.session;
 		this.#mayWrite = who.mayWrite;
+		this.#takesChanges = who.takesChanges;
 		socket.on('message', (data, isBinary) => this.#onMessage(data, isBinary));
 		socket.on('pong', () => (this.#heard = true));
 		// A message over the limit or a broken frame: ws closes the socket with the right code by itself.
@@ -68,9 +74,16 @@ export class Connection {
 	}
 
 	/** Sends results, or keeps the newest until a slow page has read what it was sent. */
-	sendResults(message: Uint8Array): void {
-		if (this.#socket.bufferedAmount > maxUnread.results) this.#heldResults = message;
-		else this.send(message);
+	sendResults(results: SentResults): void {
+		if (this.#socket.bufferedAmount > maxUnread.results) {
+			this.#heldResults = results;
+			this.#hasNewest = false;
+			return;
+		}
+		const isNext = this.#takesChanges && this.#hasNewest;
+		this.#heldResults = undefined;
+		this.#hasNewest = true;
+		this.send(isNext && results.changes ? results.changes() : results.whole());
 	}
 
 	close(code: number): void {
@@ -95,7 +108,8 @@ export class Connection {
 		const held = this.#heldResults;
 		if (!held || this.#socket.bufferedAmount > maxUnread.results) return;
 		this.#heldResults = undefined;
-		this.send(held);
+		this.#hasNewest = true;
+		this.send(held.whole());
 	}
 
 	#onMessage(data: RawData, isBinary: boolean): void {

@@ -27,6 +27,7 @@ import * as outgoing from './outgoing';
 import { People, type Entry as PersonEntry } from './people';
 import { Proof, type Finding } from './proof';
 import { ResultStore } from './result-store';
+import { ResultsOut } from './results-out';
 import { Upkeep } from './upkeep';
 
 interface Events {
@@ -53,6 +54,7 @@ export class Room {
 	readonly #people = new People();
 	/** Whose each Yjs client id in the document is. */
 	readonly #owners: Map<number, string>;
+	readonly #resultsOut = new ResultsOut();
 	readonly #journal: Journal<Connection>;
 	readonly #scheduler: Scheduler;
 	readonly #store: ResultStore;
@@ -109,9 +111,9 @@ export class Room {
 		this.#scheduler = new Scheduler(
 			() => ({ version: this.#version, content: toContent(this.#doc) }),
 			({ results }) => {
-				const message = encodeJson('results', results);
+				const sent = this.#resultsOut.next(results);
 				this.#held.release();
-				for (const connection of this.connections) connection.sendResults(message);
+				for (const connection of this.connections) connection.sendResults(sent);
 				this.#storeResults();
 			},
 			noteId,
@@ -133,7 +135,7 @@ export class Room {
 		connection.send(outgoing.presence(this.#people.all()));
 		connection.send(this.#authors.of(cellsOf(this.#doc).keys()));
 		const results = this.#scheduler.last?.results;
-		if (results) connection.sendResults(encodeJson('results', results));
+		if (results) connection.sendResults(this.#resultsOut.again(results));
 	}
 
 	/** Tells a page what document this is and what it may do with it; again when that changes. */

@@ -20,6 +20,7 @@ interface Admission {
 	actor: Actor;
 	session: string;
 	mayWrite: boolean;
+	takesChanges: boolean;
 }
 
 const path = /^\/sync\/([0-9a-f]{8}(?:-[0-9a-f]{4}){3}-[0-9a-f]{12})$/;
@@ -79,7 +80,9 @@ export class Gate {
 			if (!actor) return closeCode.signedOut;
 			const { mayWrite } = await notes.access(actor, noteId);
 			const room = await this.#rooms.open(noteId);
-			return this.#shut ? closeCode.restarting : { room, actor, session: hashOf(token), mayWrite };
+			if (this.#shut) return closeCode.restarting;
+			const takesChanges = request.url?.endsWith('?results=changes') ?? false;
+			return { room, actor, session: hashOf(token), mayWrite, takesChanges };
 		} catch (error) {
 			if (error instanceof AppError && error.code === 'forbidden') return closeCode.forbidden;
 			if (error instanceof AppError && error.code === 'notFound') return closeCode.notFound;

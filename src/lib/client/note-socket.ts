@@ -1,4 +1,5 @@
 import type { Evaluation } from '$lib/calc/results';
+import { applyChanges, type Changes } from '$lib/protocol/changes';
 import { closeCode, closeSentence, maxMessageBytes } from '$lib/protocol/closing';
 import {
 	decodeJson,
@@ -68,6 +69,8 @@ export class NoteSocket {
 	readonly #unsaved: UnsavedEdits;
 	readonly #parts = new PartsInbox();
 	#greeted = false;
+	/** The newest that came over this socket. */
+	#results: Evaluation | undefined;
 	#flushing = false;
 
 	constructor(options: Options) {
@@ -78,6 +81,7 @@ export class NoteSocket {
 			awareness,
 			connect: false,
 			disableBc: true,
+			params: { results: 'changes' },
 			shouldReconnect: ({ code }) => !(code >= 4400 && code < 4500) && code !== closeCode.tooBig,
 			...(options.WebSocket && { WebSocketPolyfill: options.WebSocket }),
 		});
@@ -126,7 +130,11 @@ export class NoteSocket {
 		messageHandlers[messageType.sync] = (_, decoder) => this.#onSync(decoder);
 		messageHandlers[messageType.part] = (_, decoder) => this.#onPart(decodePart(decoder));
 		on<Hello>('hello', (hello) => this.#onHello(hello));
-		on<Evaluation>('results', events.onResults);
+		on<Evaluation>('results', (results) => events.onResults((this.#results = results)));
+		on<Changes>('changes', (changes) => {
+			// The server sends changes only behind results.
+			if (this.#results) events.onResults((this.#results = applyChanges(this.#results, changes)));
+		});
 		on<News>('news', events.onNews);
 		on<Saved>('saved', (saved) => {
 			this.#unsaved.outbox.settle(saved.ids);

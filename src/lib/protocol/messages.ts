@@ -7,7 +7,8 @@ import * as encoding from 'lib0/encoding';
  *
  * A client sends: sync step 1 (0,0), awareness (1), `edit`, `more`.
  * A server sends: sync step 2 and updates (0,1 and 0,2), awareness (1), `hello`, `saved`, `refused`, `results`, `news`,
- * `authors`, `part` (of a long step 2, see `parts.ts`).
+ * `authors`, `part` (of a long step 2, see `parts.ts`), and `changes` in place of later `results` where the address ends
+ * in `?results=changes` (see `changes.ts`).
  * An edit carries an id chosen by the client. It is acknowledged by that id after the commit, never before; a client
  * sends what was not acknowledged again, under the same id, after it has reconnected.
  */
@@ -22,6 +23,7 @@ export const messageType = {
 	results: 113,
 	news: 114,
 	part: 115,
+	changes: 116,
 	authors: 120,
 } as const;
 
@@ -79,6 +81,14 @@ export function encodeJson(type: JsonType, body: unknown): Uint8Array {
 	const encoder = encoding.createEncoder();
 	encoding.writeVarUint(encoder, messageType[type]);
 	encoding.writeVarString(encoder, JSON.stringify(body));
+	return encoding.toUint8Array(encoder);
+}
+
+/** The same of a body that is JSON already. */
+export function encodeText(type: 'results' | 'changes', body: string): Uint8Array {
+	const encoder = encoding.createEncoder();
+	encoding.writeVarUint(encoder, messageType[type]);
+	encoding.writeVarString(encoder, body);
 	return encoding.toUint8Array(encoder);
 }
 
