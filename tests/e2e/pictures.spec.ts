@@ -42,7 +42,7 @@ test('a curve is written with completion, drawn, read, tabled and mended', async
 	await reading(page).focus();
 	await expect(reading(page)).toHaveAttribute(
 		'aria-valuetext',
-		/^V_max = 32\sV: V_adc = 2\.41\d* ± \d+\.\d+\sV, /,
+		/^V_max = 32\sV: V_adc = 2\.41\d* ±\s\d+\.\d+\sV, /,
 	);
 	await page.keyboard.press('End');
 	await expect(picture(page).locator('.read').first()).toHaveText(/^V_max = 40\sV: .*, not met$/);

@@ -30,6 +30,6 @@ export const bounds = {
 	sweepPoints: 401,
 	sweepQuantities: 6,
 	/** Operations of all curves of a note, and what looking at one line at one point counts. */
-	sweepSteps: 1_000_000,
+	sweepSteps: 300_000,
 	sweepLineSteps: 4,
 } as const;

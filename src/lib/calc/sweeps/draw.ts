@@ -85,7 +85,12 @@ export function drawSweep(
 		if (left.steps < 0) throw tooMuch(place.text);
 		return sample;
 	};
-	const samples = x.map((value) => sampleAt(value, true));
+	const before = left.steps;
+	const samples = x.map((value, i) => {
+		// One point costs as much as the other: what cannot be finished is not begun.
+		if (i === 1 && (before - left.steps) * x.length > before) throw tooMuch(place.text);
+		return sampleAt(value, true);
+	});
 	const unit = unitOf(input.type);
 	const read = (value: number) => readout(toSI(value, unit), unit, !input.type.fixed, 5).text;
 	const remarks = missing(samples, x, read, said.over);

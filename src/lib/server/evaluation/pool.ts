@@ -25,6 +25,9 @@ const restShare = 3;
 const longestRestMs = 100;
 const manyWaiting = 8;
 
+/** Curves are bounded by their operations; a busy machine must not stop what another one finishes. */
+const curveShare = 4;
+
 /** What an evaluation is for. */
 export interface Circumstances {
 	/** The note, where it is likely to be evaluated again after an edit. */
@@ -93,7 +96,8 @@ export class Pool {
 	): Promise<Evaluation> {
 		const skip: SkippedLine[] = [];
 		const { limitsMs, longLimitsMs } = this.#settings;
-		const left = [...(isLong ? longLimitsMs : limitsMs)];
+		const share = cells.some(({ kind }) => kind === 'curve') ? curveShare : 1;
+		const left = isLong ? [...longLimitsMs] : limitsMs.map((limit) => share * limit);
 		let isForgiven = false;
 		for (let limitMs = left.shift(); limitMs !== undefined; limitMs = left.shift()) {
 			const child = await this.#acquire(note);
