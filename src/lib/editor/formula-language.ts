@@ -1,6 +1,7 @@
-import { EditorState, type Extension, type Range, type Text } from '@codemirror/state';
+import { EditorState, Prec, type Extension, type Range, type Text } from '@codemirror/state';
 import { Decoration, ViewPlugin, type EditorView, type ViewUpdate } from '@codemirror/view';
 import { splitLine, tokenize, type Token } from '$lib/components/lines';
+import { formulaGrammar } from './formula-grammar';
 
 type Coloured = Exclude<Token['kind'], 'plain' | 'name'>;
 
@@ -19,9 +20,9 @@ interface Piece {
 	to: number;
 }
 
-/** What has a colour in formulas; the words are cut as those of the sheet are. */
-export function* colouredIn(doc: Text): Generator<Piece> {
-	for (let number = 1; number <= doc.lines; number++) {
+/** What has a colour in formulas, line by line; the words are cut as those of the sheet are. */
+export function* colouredIn(doc: Text, first = 1, last = doc.lines): Generator<Piece> {
+	for (let number = first; number <= last; number++) {
 		const line = doc.line(number);
 		// What stands before a definition's equals sign is set as a name, in no colour.
 		const { formulaFrom } = splitLine(line.text);
@@ -37,33 +38,40 @@ export function* colouredIn(doc: Text): Generator<Piece> {
 class Colours {
 	decorations;
 
-	constructor({ state }: EditorView) {
-		this.decorations = decorate(state);
+	constructor(view: EditorView) {
+		this.decorations = decorate(view);
 	}
 
-	update({ docChanged, state }: ViewUpdate): void {
-		if (docChanged) this.decorations = decorate(state);
+	update({ docChanged, viewportChanged, view }: ViewUpdate): void {
+		if (docChanged || viewportChanged) this.decorations = decorate(view);
 	}
 }
 
-function decorate({ doc }: EditorState) {
+/** Marks of the lines that are drawn: a long cell is not cut anew at each key. */
+function decorate({ state: { doc }, viewport }: EditorView) {
 	const ranges: Range<Decoration>[] = [];
-	for (const { kind, from, to } of colouredIn(doc)) ranges.push(marks[kind].range(from, to));
+	const [first, last] = [doc.lineAt(viewport.from).number, doc.lineAt(viewport.to).number];
+	for (const { kind, from, to } of colouredIn(doc, first, last))
+		ranges.push(marks[kind].range(from, to));
 	return Decoration.set(ranges);
 }
 
 /**
- * Formulas: their words for colours, brackets and comments. No grammar lies under them: the engine alone decides what a
- * line means, and a parser that mends what it does not know takes longer for a long cell than a key may.
+ * Formulas: their words for colours, brackets and comments. The engine alone decides what a line means; what lies under
+ * them only knows brackets, numbers and texts in quotes.
  */
 export function formulaLanguage(): Extension {
 	return [
-		EditorState.languageData.of(() => [
-			{
-				closeBrackets: { brackets: ['(', '[', '"'] },
-				commentTokens: { line: '#' },
-			},
-		]),
+		// Before those of JavaScript, whose nodes the lines are made of.
+		Prec.high(
+			EditorState.languageData.of(() => [
+				{
+					closeBrackets: { brackets: ['(', '[', '"'] },
+					commentTokens: { line: '#' },
+				},
+			]),
+		),
+		formulaGrammar,
 		ViewPlugin.fromClass(Colours, { decorations: (plugin) => plugin.decorations }),
 	];
 }
