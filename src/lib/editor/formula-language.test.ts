@@ -1,4 +1,4 @@
-import { matchBrackets } from '@codemirror/language';
+import { matchBrackets, syntaxTree } from '@codemirror/language';
 import { EditorState, Text } from '@codemirror/state';
 import { expect, test } from 'vitest';
 import { colouredIn, formulaLanguage } from './formula-language';
@@ -37,4 +37,24 @@ test('brackets match, and close and comment as those of formulas do', () => {
 	const [first] = state.languageDataAt<{ brackets: string[] }>('closeBrackets', 5);
 	expect(first?.brackets).toEqual(['(', '[', '"']);
 	expect(state.languageDataAt<{ line: string }>('commentTokens', 5)[0]?.line).toBe('#');
+});
+
+test('a bracket in a text in quotes, a comment or another line is no partner', () => {
+	const doc = 'a = (1 + size(")")) # )\nb = 2)';
+	const state = EditorState.create({ doc, extensions: formulaLanguage() });
+	expect(matchBrackets(state, 4, 1)).toMatchObject({
+		matched: true,
+		end: { from: doc.indexOf(') #') },
+	});
+});
+
+test('a changed line is parsed anew, the others lie where they moved to', () => {
+	let state = EditorState.create({
+		doc: 'a = (1)\nb = [2]\nc = (3)',
+		extensions: formulaLanguage(),
+	});
+	state = state.update({ changes: { from: 8, insert: 'x = ((4))\n' } }).state;
+	const at = state.doc.toString().indexOf('(3');
+	expect(matchBrackets(state, at, 1)).toMatchObject({ matched: true, end: { from: at + 2 } });
+	expect(syntaxTree(state).length).toBe(state.doc.length);
 });
