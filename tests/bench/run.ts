@@ -11,6 +11,7 @@ import { inData } from '../../server/local/place.mjs';
 import { firstFree } from '../../server/local/ports.mjs';
 import { endEarlier, serve, settings } from '../../server/local/serving.mjs';
 import { keep } from '../support/table';
+import { arrivalRows } from './arrival';
 import { openBrowser, signIn } from './browser';
 import { engineRows } from './engine';
 import { loadRows } from './load';
@@ -21,6 +22,7 @@ import { signingRows } from './signing';
 import { sixtyLines } from './sixty-lines';
 import { syncRows } from './sync';
 import { trialRows } from './trials';
+import { longCell, longNote, typingRows } from './typing';
 
 /** Areas named on the command line; all of them when none is named. */
 const wanted = process.argv.slice(2);
@@ -60,9 +62,24 @@ async function servedRows(): Promise<Row[]> {
 		const watching = await signIn(browser, serving.url, watcher);
 		const path = `/notes/${number}`;
 		return [
-			...(wants('page') ? await pageRows(watching, path, await frozenPath(writer.email)) : []),
+			...(wants('page') ? await rowsOfPages() : []),
 			...(wants('sync') ? await syncRows(writing, watching, path) : []),
 		];
+
+		async function rowsOfPages(): Promise<Row[]> {
+			const actor = await actorOf(writer!.email);
+			const pathOf = async (title: string, cells: Parameters<typeof notes.create>[1]['cells']) =>
+				`/notes/${(await notes.create(actor, { title, cells })).number}`;
+			const long = {
+				longNote: await pathOf('Two thousand lines', longNote),
+				longCell: await pathOf('Three hundred lines in one cell', longCell),
+			};
+			return [
+				...(await pageRows(watching, path, await frozenPath(writer!.email))),
+				...(await arrivalRows(watching, path)),
+				...(await typingRows(browser, writing, long)),
+			];
+		}
 	} finally {
 		await browser.close();
 		await serving.stop();

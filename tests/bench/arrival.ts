@@ -1,0 +1,68 @@
+import type { BrowserContext } from '@playwright/test';
+import { quantile, row, type Row } from './row';
+
+const visits = 5;
+const slowDown = 4;
+
+interface Visit {
+	/** ms from the navigation to the frame that shows the first figure. */
+	figureMs: number;
+	/** Sum of the layout shifts until the page was quiet. */
+	shift: number;
+}
+
+/** How soon the first figure of a note is on the screen of a slow computer, and how much moves until the page is quiet. */
+export async function arrivalRows(context: BrowserContext, path: string): Promise<Row[]> {
+	const sample: Visit[] = [];
+	for (let visit = 0; visit < visits; visit++) sample.push(await visitOf(context, path));
+	return [
+		row({
+			id: 'page.first-figure',
+			what: `from navigation to the first figure of a note of 60 lines, ${slowDown} x slower CPU, median of ${visits}`,
+			value: quantile(
+				sample.map(({ figureMs }) => figureMs),
+				0.5,
+			),
+			unit: 'ms',
+			target: 1000,
+		}),
+		row({
+			id: 'page.layout-shift',
+			what: `layout shift until editors and figures are there, worst of ${visits}`,
+			value: Math.max(...sample.map(({ shift }) => shift)),
+			unit: '',
+			target: 0.05,
+		}),
+	];
+}
+
+async function visitOf(context: BrowserContext, path: string): Promise<Visit> {
+	const page = await context.newPage();
+	const devtools = await context.newCDPSession(page);
+	await devtools.send('Emulation.setCPUThrottlingRate', { rate: slowDown });
+	await page.addInitScript(() => {
+		const seen = { figureMs: 0, shift: 0 };
+		Object.assign(window, { seen });
+		new PerformanceObserver((list) => {
+			for (const entry of list.getEntries())
+				seen.shift += (entry as PerformanceEntry & { value: number }).value;
+		}).observe({ type: 'layout-shift', buffered: true });
+		// A frame that finds a figure laid out is shown at once; the callback of the next one knows it was.
+		const look = (found: boolean) => {
+			if (found) seen.figureMs = performance.now();
+			else requestAnimationFrame(() => look(document.querySelector('[data-quantity]') !== null));
+		};
+		look(false);
+	});
+	await page.goto(path, { waitUntil: 'networkidle' });
+	await page.locator('.cm-content').first().waitFor();
+	await page.locator('[data-saving]', { hasText: /^Saved/ }).waitFor();
+	// Two frames later everything that the figures moved has been counted.
+	await page.evaluate(
+		() => new Promise((resolve) => requestAnimationFrame(() => requestAnimationFrame(resolve))),
+	);
+	const visit = await page.evaluate(() => (window as unknown as { seen: Visit }).seen);
+	await page.close();
+	if (visit.figureMs === 0) throw new Error(`${path} showed no figure`);
+	return visit;
+}

@@ -1,0 +1,66 @@
+import type { Browser, Page } from '@playwright/test';
+
+/** What one key made the page's main thread do, in ms. */
+export interface KeyWork {
+	/** Until the first paint after it. */
+	toPaint: number;
+	/** Until the next key: with the server's answer and what follows from it. */
+	all: number;
+}
+
+/** An event of a trace; times in µs. */
+interface TraceEvent {
+	name: string;
+	pid: number;
+	tid: number;
+	ts: number;
+	dur?: number;
+	args?: { data?: { type?: string } };
+}
+
+const categories = ['devtools.timeline', 'disabled-by-default-devtools.timeline'];
+
+/** Types keys where the cursor stands, one after the other, and gives the work of each. */
+export async function keyWork(
+	browser: Browser,
+	page: Page,
+	keys: readonly string[],
+	pauseMs: number,
+): Promise<KeyWork[]> {
+	await browser.startTracing(page, { categories });
+	for (const key of keys) {
+		await page.keyboard.press(key);
+		await page.evaluate((ms) => new Promise((resolve) => setTimeout(resolve, ms)), pauseMs);
+	}
+	const { traceEvents } = JSON.parse((await browser.stopTracing()).toString()) as {
+		traceEvents: TraceEvent[];
+	};
+	return workIn(traceEvents);
+}
+
+/** The work of each key press in a trace. */
+export function workIn(events: readonly TraceEvent[]): KeyWork[] {
+	const presses = events.filter(
+		({ name, args }) => name === 'EventDispatch' && args?.data?.type === 'keydown',
+	);
+	const first = presses[0];
+	if (!first) throw new Error('the trace holds no key');
+	const main = events
+		.filter(({ pid, tid }) => pid === first.pid && tid === first.tid)
+		.sort((a, b) => a.ts - b.ts);
+	const tasks = main.filter(({ name }) => name === 'RunTask');
+	const paints = main.filter(({ name }) => name === 'Paint');
+	return presses.map((press, index) => {
+		const until = presses[index + 1]?.ts ?? Infinity;
+		const own = tasks.filter(({ ts, dur = 0 }) => ts + dur > press.ts && ts < until);
+		const painted = paints.find(({ ts }) => ts > press.ts)?.ts ?? Infinity;
+		return {
+			toPaint: sum(own.filter(({ ts }) => ts <= painted)),
+			all: sum(own),
+		};
+	});
+}
+
+function sum(tasks: readonly TraceEvent[]): number {
+	return tasks.reduce((total, { dur = 0 }) => total + dur, 0) / 1000;
+}

@@ -1,0 +1,66 @@
+import type { Browser, BrowserContext } from '@playwright/test';
+import { keyWork, type KeyWork } from './key-work';
+import { quantile, row, type Row } from './row';
+
+/** A note of 2,000 worked lines in 40 sections; every fifth line is an input of those behind it. */
+export const longNote = Array.from({ length: 40 }, (_, at) => [
+	{ kind: 'text' as const, source: `## Stage ${at}\n\nIts last tap reads {{x${at}_49}}.` },
+	{ kind: 'calculation' as const, source: lines(50, `x${at}`) },
+]).flat();
+
+/** A note with one cell of 300 lines. */
+export const longCell = [{ kind: 'calculation' as const, source: lines(300, 'y') }];
+
+function lines(count: number, name: string): string {
+	return Array.from({ length: count }, (_, at) =>
+		at % 5 === 0 ? `${name}_${at} = ${at + 1} mV` : `${name}_${at} = ${name}_${at - 1} * 2 + 1 mV`,
+	).join('\n');
+}
+
+/** Long enough for the server's figures to come back before the next key. */
+const pauseMs = 200;
+/** A figure of an input goes to and fro, so that each key gives other figures. */
+const keys = Array.from({ length: 40 }, (_, at) => (at % 2 === 0 ? '7' : 'Backspace'));
+const warmUp = 4;
+
+/** Work of the page for each key in a long note, and in a long cell. */
+export async function typingRows(
+	browser: Browser,
+	context: BrowserContext,
+	paths: { longNote: string; longCell: string },
+): Promise<Row[]> {
+	return [
+		...rowsOf('page.key-2000-lines', 'a note of 2,000 lines', await typed(paths.longNote, 'x0_5')),
+		...rowsOf('page.key-300-line-cell', 'a cell of 300 lines', await typed(paths.longCell, 'y_5')),
+	];
+
+	async function typed(path: string, name: string): Promise<KeyWork[]> {
+		const page = await context.newPage();
+		await page.goto(path, { waitUntil: 'networkidle' });
+		await page.locator('.cm-line', { hasText: `${name} =` }).click();
+		await page.keyboard.press('End');
+		for (let sign = 0; sign < ' mV'.length; sign++) await page.keyboard.press('ArrowLeft');
+		const work = await keyWork(browser, page, keys, pauseMs);
+		await page.close();
+		return work.slice(warmUp);
+	}
+}
+
+function rowsOf(id: string, where: string, work: readonly KeyWork[]): Row[] {
+	const of = (share: number, what: (one: KeyWork) => number) => quantile(work.map(what), share);
+	return [
+		row({
+			id,
+			what: `main thread from a key to the next paint, 95 of 100 keys, ${where}`,
+			value: of(0.95, ({ toPaint }) => toPaint),
+			unit: 'ms',
+			target: 16,
+		}),
+		row({
+			id: `${id}-all`,
+			what: `main thread for a key, the server's figures and all that follows, median, ${where}`,
+			value: of(0.5, ({ all }) => all),
+			unit: 'ms',
+		}),
+	];
+}
