@@ -143,18 +143,19 @@ test('readers of frozen revisions try nothing, and notes of another team are not
 		[others.engineer, 'notFound'],
 	] as const) {
 		for (const deed of [
-			trial.evaluate(actor, number, changes),
-			trial.ranges(actor, number),
-			keptTrials.list(actor, number),
-			keptTrials.keep(actor, number, { title: 'x', changes }),
-			keptTrials.remove(actor, number, number),
-			quantities.units(actor, number, 'V_out', null),
-			threads.open(actor, number, {
-				...{ cellId: 'a', kind: 'question', blocking: false, body: 'Hm.' },
-				trial: changes,
-			}),
+			() => trial.evaluate(actor, number, changes),
+			() => trial.ranges(actor, number),
+			() => keptTrials.list(actor, number),
+			() => keptTrials.keep(actor, number, { title: 'x', changes }),
+			() => keptTrials.remove(actor, number, number),
+			() => quantities.units(actor, number, 'V_out', null),
+			() =>
+				threads.open(actor, number, {
+					...{ cellId: 'a', kind: 'question', blocking: false, body: 'Hm.' },
+					trial: changes,
+				}),
 		]) {
-			await expect(deed).rejects.toMatchObject({ code });
+			await expect(deed()).rejects.toMatchObject({ code });
 		}
 	}
 });

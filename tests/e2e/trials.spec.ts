@@ -127,6 +127,7 @@ test('a trial is kept for its person, and attached to a comment for everybody', 
 
 	// The kept trial is there again after the page was closed, for this person only.
 	await peer.reload();
+	await expect(peer.locator('.cm-content').first()).toBeVisible();
 	await peer.keyboard.press('Alt+Shift+T');
 	await panel(peer).getByRole('button', { name: 'Lower input', exact: true }).click();
 	await expect(value(peer, 'Vin')).toHaveValue('9 V');
