@@ -145,8 +145,13 @@ class Editor {
 		return this.#unsaved.size;
 	}
 
+	/** As pages ask: for what changed in results once they have them. */
+	get #address(): string {
+		return this.#session.relay ? this.#seat.url : `${this.#seat.url}?results=changes`;
+	}
+
 	async open(): Promise<void> {
-		const socket = (this.#socket = new WebSocket(this.#seat.url, {
+		const socket = (this.#socket = new WebSocket(this.#address, {
 			headers: this.#seat.headers,
 			perMessageDeflate: false,
 		}));
@@ -219,7 +224,7 @@ class Editor {
 				this.#unsaved.delete(id);
 				edit?.heard?.saved.push(now - edit.at);
 			}
-		} else if (type === messageType.results && this.#session.figures) this.#onResults(data, now);
+		} else if (tellsFigures(type) && this.#session.figures) this.#onResults(data, now);
 		else if (type === messageType.refused)
 			throw new Error(`an edit was refused: ${data.toString()}`);
 	}
@@ -262,6 +267,11 @@ class Editor {
 		await once(socket, 'close');
 		this.#doc.destroy();
 	}
+}
+
+/** Results come whole at first, then what changed of them. */
+function tellsFigures(type: number): boolean {
+	return type === messageType.results || type === messageType.changes;
 }
 
 function relayed(update: Uint8Array): Uint8Array {
