@@ -4,7 +4,10 @@ import { Pace } from './pace';
 /** A pace with a clock that stands still until it is moved. */
 function paced(bounds: Partial<ConstructorParameters<typeof Pace>[0]> = {}) {
 	let now = 0;
-	const pace = new Pace({ who: 'Your scripts', atOnce: 2, burst: 3, perSecond: 2, ...bounds }, () => now);
+	const pace = new Pace(
+		{ who: 'Your scripts', atOnce: 2, burst: 3, perSecond: 2, ...bounds },
+		() => now,
+	);
 	return { pace, pass: (ms: number) => (now += ms) };
 }
 
