@@ -22,6 +22,7 @@ import { createDatabase } from '../support/database';
 import { check, freeze as freezeWhole, propose, seen, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
 import { lines200 } from './note-200';
+import { last200, lines200 } from './note-200';
 import { row, type Row } from './row';
 import { sixtyLines } from './sixty-lines';
 
@@ -62,6 +63,7 @@ export async function signingRows(): Promise<Row[]> {
 			if ((await dropped.file(file)).state !== 'valid') throw new Error('the file is not valid');
 		});
 		const printing = await papers(cast);
+		const freezingLong = await freezingOf(cast);
 		await fillAudit(owner, cast);
 		const auditing = await timed(async () => {
 			const { faults } = await checkAudit(db(), []);
@@ -97,6 +99,13 @@ export async function signingRows(): Promise<Row[]> {
 				target: 1000,
 			}),
 			row({
+				id: 'signing.freeze-200',
+				what: 'proposing (10⁶ trials), checking and freezing a note of 200 lines in doubt, with its passwords',
+				value: freezingLong / 1000,
+				unit: 's',
+				target: 5,
+			}),
+			row({
 				id: 'signing.freeze',
 				what: 'approving and freezing a note of 60 lines, the slowest of 20',
 				value: freezing,
@@ -110,6 +119,19 @@ export async function signingRows(): Promise<Row[]> {
 		await owner.end();
 		await database.drop();
 	}
+}
+
+/** Time that the three deeds take which bring a note of 200 lines from its working copy to a frozen revision. */
+async function freezingOf(cast: Cast): Promise<number> {
+	const { number } = await writeNote(cast.author, 'Two hundred lines', [
+		{ kind: 'calculation', source: lines200(true).join('\n') },
+		{ kind: 'requirement', source: `${last200} < 100 V` },
+	]);
+	return timed(async () => {
+		await propose(cast.author, number);
+		await check(cast, number);
+		await candidates.approve(cast.approver, number, await seen(cast.approver, number));
+	});
 }
 
 /** Time of the slowest of three papers of different notes; the typesetter runs already, as on a server in use. */
