@@ -8,6 +8,9 @@ export async function expectAccessible(page: Page, what: string): Promise<void> 
 	found.push(...(await violations(page, (axe) => axe)));
 	// Nothing but colours is different in the dark.
 	await page.emulateMedia({ colorScheme: 'dark', reducedMotion: 'reduce' });
+	await page.evaluate(
+		() => new Promise((resolve) => requestAnimationFrame(() => requestAnimationFrame(resolve))),
+	);
 	found.push(...(await violations(page, (axe) => axe.withRules(['color-contrast']))));
 	await page.emulateMedia({ colorScheme: 'light', reducedMotion: 'reduce' });
 	expect(found, what).toEqual([]);
