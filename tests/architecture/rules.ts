@@ -60,7 +60,7 @@ const rules: readonly Rule[] = [
 		who: /^src\//,
 		files: /^src\/(lib\/(?!server\/)|routes\/|app\.css$|[^/]+\.css$)/,
 		packages:
-			/^(@sveltejs\/kit|\$app\/|svelte|\.?\.?\/\$types|@codemirror\/|@fontsource\/|katex\/dist\/katex\.min\.css$)/,
+			/^(@sveltejs\/kit|\$app\/|svelte|\.?\.?\/\$types|@codemirror\/|@fontsource\/|@dagrejs\/dagre$|katex\/dist\/katex\.min\.css$)/,
 	},
 	{
 		who: /^server\/local\//,

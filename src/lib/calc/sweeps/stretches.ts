@@ -7,7 +7,7 @@ const narrow = 1e-9;
  * The place between two values where something changes that holds at the first and not at the second. `height` is a
  * number that is zero near there; it makes the search short and decides nothing.
  */
-export function boundary(
+function boundary(
 	low: number,
 	high: number,
 	holds: (x: number) => boolean,

@@ -10,7 +10,7 @@ import { typeset } from '$lib/calc/symbol';
 import type { Knot, Network } from './network';
 
 /** A knot at its place; `x` and `y` are its middle. */
-export interface Placed {
+interface Placed {
 	knot: Knot;
 	x: number;
 	y: number;
@@ -19,7 +19,7 @@ export interface Placed {
 }
 
 /** The way from an input to what is computed from it. */
-export interface Link {
+interface Link {
 	from: string;
 	to: string;
 	path: string;
