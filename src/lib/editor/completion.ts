@@ -78,7 +78,8 @@ function answerWith(
 	kind: NoteCell['kind'],
 ): CompletionResult | null {
 	const note = context.state.facet(noteContext);
-	if (!note) return null;
+	// Who has left the cell meanwhile wants no offers over the page.
+	if (!note || context.view?.hasFocus === false) return null;
 	const line = context.state.doc.lineAt(context.pos);
 	const found = suggestionsAt({
 		kind,
