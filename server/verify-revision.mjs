@@ -59,14 +59,18 @@ function attachedTo(pdf) {
 	const records = new Set();
 	let left = maxBytes;
 	for (let at = pdf.indexOf('/EmbeddedFile'), tries = 0; at >= 0 && tries < 1000; tries += 1) {
-		const from = Math.max(0, pdf.lastIndexOf('obj', at));
-		const text = at - from > 2000 ? '' : pdf.toString('latin1', from, at + 2000);
-		const head = /^obj((?:(?!endobj)[^])*?)\bstream\r?\n/.exec(text);
-		if (head && /\/EmbeddedFile(?![A-Za-z])/.test(head[1])) {
-			const start = from + head[0].length;
-			const length = /\/Length\s+(\d+)(?!\s+\d+\s+R)/.exec(head[1])?.[1];
+		const before = Math.max(0, at - 2000);
+		const from = before + pdf.subarray(before, at).lastIndexOf('obj');
+		const text = from < before ? '' : pdf.toString('latin1', from, at + 2000);
+		const found = /^obj((?:(?!endobj)[^])*?)\bstream\r?\n/.exec(text);
+		const [head = '', dictionary = ''] = found ?? [];
+		if (/\/EmbeddedFile(?![A-Za-z])/.test(dictionary)) {
+			const start = from + head.length;
+			const length = /\/Length\s+(\d+)(?!\s+\d+\s+R)/.exec(dictionary)?.[1];
 			const content = pdf.subarray(start, length ? start + Number(length) : undefined);
-			const bytes = /\/Filter/.test(head[1]) ? inflated(content, left) : content.subarray(0, left);
+			const bytes = /\/Filter/.test(dictionary)
+				? inflated(content, left)
+				: content.subarray(0, left);
 			left -= bytes.length;
 			const record = bytes.toString('utf8');
 			if (record.startsWith('{"format":"halfdigit-sealed-revision-1"')) records.add(record);

@@ -83,10 +83,11 @@ function script(bytes: Buffer): { genuine: boolean; said: string } {
 describe.skipIf(!hasPoppler())('the paper of a revision', () => {
 	test('shows all of it, and what people wrote as text', () => {
 		const { text } = lookInto(pdf);
-		const plain = text.replace(/\s+/g, ' ');
+		// Where a line breaks is not what is looked at.
+		const plain = (words: string) => words.replace(/\s+/g, '').toUpperCase();
 		for (const said of [
 			`MEASUREMENT NOTE ${number}, REVISION A`,
-			'2.500 V ± 0.029',
+			'2.500 ± 0.029 V',
 			'#panic("out") $#x$',
 			'[U+6F22][U+5B57]',
 			'[U+202E][U+0007]',
@@ -95,10 +96,10 @@ describe.skipIf(!hasPoppler())('the paper of a revision', () => {
 			'Uncertainty budgets',
 			'rectangular',
 			'Is it loaded?',
-			'Page 1 of',
+			'1 of 2',
 			`END OF ${number}, REVISION A`,
 		]) {
-			expect(plain.toUpperCase(), said).toContain(said.toUpperCase());
+			expect(plain(text), said).toContain(plain(said));
 		}
 	});
 

@@ -107,7 +107,7 @@ describe('a link', () => {
 			for (const token of tokens) {
 				const { status, body } = await stranger.get(`/shared/${token}${tail}`);
 				expect(status).toBe(404);
-				answers.push(body.replaceAll(token, ''));
+				answers.push(body.replaceAll(token, '').replace(/nonce="[^"]*"/g, ''));
 			}
 			expect(new Set(answers).size).toBe(1);
 		}

@@ -44,7 +44,9 @@ test.each([
 	['\\left.\\frac{a}{b}\\right|_0', 'ab|0'],
 	['\\operatorname{preferred}(x)', 'preferred(x)'],
 ])('%s loses nothing', (tex, characters) => {
-	expect(charactersOf(formulaOf(tex, true)).replaceAll('∣', '|').replaceAll('\u00a0', ' ')).toBe(characters);
+	expect(charactersOf(formulaOf(tex, true)).replaceAll('∣', '|').replaceAll('\u00a0', ' ')).toBe(
+		characters,
+	);
 });
 
 test('what KaTeX does not take, and what is too long or too deep, is no formula', () => {

@@ -112,7 +112,7 @@ function build(node: MathMl, depth: number, budget: Budget): Formula | undefined
 	switch (tag) {
 		case 'math':
 		case 'semantics':
-			return children[0] && build(children[0], depth, budget);
+			return children[0] === undefined ? undefined : build(children[0], depth, budget);
 		case 'mi':
 			return letter(text, attributes);
 		case 'mo':

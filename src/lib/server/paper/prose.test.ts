@@ -1,11 +1,10 @@
 import { expect, test } from 'vitest';
 import { defaultOptions, evaluate } from '$lib/calc/evaluate';
-import type { NoteCell } from '$lib/note/document';
 import { proseOf } from './prose';
 
 function set(source: string) {
-	const cell: NoteCell = { id: 'a', kind: 'text', source };
-	const cells: NoteCell[] = [cell, { id: 'b', kind: 'calculation', source: 'V_a = 3 V' }];
+	const cell = { id: 'a', kind: 'text', source } as const;
+	const cells = [cell, { id: 'b', kind: 'calculation', source: 'V_a = 3 V' } as const];
 	return proseOf(cell, evaluate(cells, defaultOptions));
 }
 

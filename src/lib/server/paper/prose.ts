@@ -120,7 +120,7 @@ class Reader {
 			if (token.type === 'tr_open') rows.push([]);
 			if (token.type !== 'th_open' && token.type !== 'td_open') continue;
 			if (token.type === 'th_open')
-				align.push(/text-align:(\w+)/.exec(token.attrGet('style') ?? '')?.[1] ?? 'left');
+				align.push(/text-align:(\w+)/.exec(String(token.attrGet('style') ?? ''))?.[1] ?? 'left');
 			rows.at(-1)?.push(this.#line(token.type.replace('open', 'close')));
 		}
 		return { k: 'table', align, head: rows[0] ?? [], rows: rows.slice(1) };
@@ -148,7 +148,7 @@ class Reader {
 					enter((c) => ({ k: 'strike', c }));
 					break;
 				case 'link_open': {
-					const to = token.attrGet('href') ?? '';
+					const to = String(token.attrGet('href') ?? '');
 					enter((c) => ({ k: 'link', to, c }));
 					break;
 				}

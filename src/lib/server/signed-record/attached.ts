@@ -45,8 +45,9 @@ interface Content {
 }
 
 function contentAfter(pdf: Buffer, at: number): Content | undefined {
-	const from = pdf.lastIndexOf('obj', at);
-	if (from < 0 || at - from > bounds.dictionary) return undefined;
+	const before = Math.max(0, at - bounds.dictionary);
+	const from = before + pdf.subarray(before, at).lastIndexOf('obj');
+	if (from < before) return undefined;
 	const text = pdf.toString('latin1', from + 3, at + bounds.dictionary);
 	const end = /\bstream(\r\n|\n)/.exec(text);
 	if (!end) return undefined;
