@@ -41,20 +41,27 @@ test('pages that need no account, and errors, are in order by the rules of axe',
 	await page.getByLabel(/type its digest/).fill('0'.repeat(64));
 	await page.getByRole('button', { name: 'Verify' }).click();
 	await expect(
-		page.getByRole('region', { name: /outcome/i }).or(page.getByRole('alert')),
+		page.getByRole('status', { name: 'Outcome' }).or(page.getByRole('alert')),
 	).toBeVisible();
 	await expectAccessible(page, 'verify, unknown digest');
 });
 
 test('pages of the administrator are in order by the rules of axe', async ({ page }) => {
 	await signIn(page, 'administrator');
-	await check(page, ['/team', '/team/policy', '/team/audit', '/account', '/notes/MN-999']);
+	await check(page, [
+		'/team',
+		'/team/policy',
+		'/team/audit',
+		'/team/mail',
+		'/account',
+		'/notes/MN-999',
+	]);
 });
 
 test('pages of a note are in order by the rules of axe', async ({ page }) => {
 	test.setTimeout(120_000);
 	await signIn(page, 'engineer');
-	await check(page, ['/notes', '/notes?q=there-is-no-such-note', '/team']);
+	await check(page, ['/desk', '/notes', '/notes?q=there-is-no-such-note', '/team']);
 	const note = await addressOf(page, battery);
 	await check(page, [
 		note,
@@ -63,6 +70,7 @@ test('pages of a note are in order by the rules of axe', async ({ page }) => {
 		`${note}/revisions/B`,
 		`${note}/revisions/A`,
 		`${note}/revisions/B/again`,
+		`${note}/compare`,
 		await addressOf(page, 'Solar charge current'),
 	]);
 });
