@@ -4,7 +4,7 @@ import { report } from './problem.mjs';
 import { runInstalled } from './running.mjs';
 import { setUp } from './set-up.mjs';
 
-/** `npm run bench [-- engine page sync load signing setup]`: sets up as the tests do, then measures. */
+/** `npm run bench [-- engine page sync load signing comparison setup]`: sets up as the tests do, then measures. */
 try {
 	await alone('demo', () => setUp(['postgresql', 'chromium']));
 	await runInstalled('tsx', ['tests/bench/run.ts', ...process.argv.slice(2)]);

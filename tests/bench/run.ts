@@ -13,6 +13,7 @@ import { endEarlier, serve, settings } from '../../server/local/serving.mjs';
 import { keep } from '../support/table';
 import { arrivalRows } from './arrival';
 import { openBrowser, signIn } from './browser';
+import { comparisonRows } from './comparison';
 import { engineRows } from './engine';
 import { loadRows } from './load';
 import { pageRows } from './pages';
@@ -32,6 +33,7 @@ if (wants('engine')) rows.push(...engineRows(), ...(await trialRows()));
 if (wants('page') || wants('sync')) rows.push(...(await servedRows()));
 if (wants('load')) rows.push(...(await loadRows()));
 if (wants('signing')) rows.push(...(await signingRows()));
+if (wants('comparison')) rows.push(...(await comparisonRows()));
 if (wants('setup')) rows.push(...(await setupRows()));
 
 keep('bench.json', rows);
