@@ -44,7 +44,7 @@ try {
 		EVALUATOR_ENTRY: 'build/evaluator.js',
 		SYNC_PORT: String(syncPort),
 	};
-	await step('Evaluator', () => watch(['evaluator']));
+	await step('Evaluator and typesetter', () => watch(['evaluator', 'typesetter']));
 	await step('Database and demonstration', async () => {
 		await collect('npx', ['svelte-kit', 'sync']);
 		if (!(await listDatabases(database)).includes(database)) await createDatabase(database);
