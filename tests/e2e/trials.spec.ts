@@ -17,7 +17,7 @@ async function divider(page: Page, title: string): Promise<string> {
 		'calculation',
 		'R1 = tolerance(30 kohm, 1 %) # upper arm\nR2 = 10 kohm\nVin = 10 V\nVout = Vin * R2 / (R1 + R2)',
 	);
-	await addCell(page, 'requirement', 'Vout <= 2.6 V');
+	await addCell(page, 'requirement', 'Vout <= 2.6 V # at the pin');
 	await expect(page.locator('[data-verdict="met"]')).toBeVisible();
 	return path;
 }
