@@ -73,7 +73,8 @@ export function readout(
 		text: JSON.stringify([shown, remarks, moved]),
 		className: 'line-readout',
 		ownEvents: true,
-		onchange: fadeOnce,
+		// What a trial moves is no change of the note.
+		...(moved === undefined && { onchange: fadeOnce }),
 	});
 }
 
