@@ -13,7 +13,7 @@ interface Rule {
 
 const foundation = 'src/lib/(errors\\.ts|calc/|note/|protocol/|schemas/)';
 const serverPackages =
-	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|diff$|@node-rs\/argon2$|@zxcvbn-ts\/|katex$|uqr$)/;
+	/^(node:|drizzle-orm|pg$|pino$|zod$|yjs$|lib0\/|y-protocols\/|canonicalize$|diff$|@node-rs\/argon2$|@zxcvbn-ts\/|katex$|uqr$|nodemailer\/lib\/)/;
 
 /** Who may import whom, as DEVELOPERS.md explains it. Tests are outside these rules. */
 const rules: readonly Rule[] = [
@@ -41,8 +41,8 @@ const rules: readonly Rule[] = [
 		packages: new RegExp(`${serverPackages.source}|^(@sveltejs/kit|@auth/|\\$app/|\\$env/)`),
 	},
 	{
-		// The paper shows what the page shows: how text, lines, gauges and seals are read comes from one place.
-		who: /^src\/lib\/server\/paper\//,
+		// Paper and mail say what the page says: how text, lines, days and seals are read comes from one place.
+		who: /^src\/lib\/server\/(paper|mail)\//,
 		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/)|src/lib/components/[a-z-]+\\.ts$)`),
 		packages: serverPackages,
 	},
@@ -64,14 +64,17 @@ const rules: readonly Rule[] = [
 	},
 	{
 		who: /^server\/local\//,
-		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/)|server/local/)`),
-		packages: /^(node:|drizzle-orm|pg$|esbuild$|yjs$|@playwright\/test$|mathjs$)/,
+		files: new RegExp(
+			`^(${foundation}|src/lib/server/(?!web/)|server/local/|server/jobs/queues\\.ts$)`,
+		),
+		packages:
+			/^(node:|drizzle-orm|pg$|esbuild$|yjs$|@playwright\/test$|mathjs$|mailparser$|smtp-server$)/,
 	},
 	{
 		who: /^server\//,
 		files: new RegExp(`^(${foundation}|src/lib/server/(?!web/)|server/(?!local/))`),
 		packages:
-			/^(node:|ws$|yjs$|lib0\/|y-protocols\/|pino$|zod$|pg$|@myriaddreamin\/typst-ts-node-compiler$|\.\/typesetting\/[a-z]+\.typ$)/,
+			/^(node:|ws$|yjs$|lib0\/|y-protocols\/|pino$|zod$|pg$|pg-boss$|@myriaddreamin\/typst-ts-node-compiler$|\.\/typesetting\/[a-z]+\.typ$)/,
 	},
 ];
 

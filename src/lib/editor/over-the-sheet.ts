@@ -5,7 +5,7 @@ import { repositionTooltips, showTooltip, tooltips, ViewPlugin } from '@codemirr
  * Offers and explanations lie over the whole page. While one is open it follows its line wherever that goes:
  * a message above the sheet or another person's new line moves the line, and no event tells the editor so.
  */
-export const overTheSheet: Extension = [
+export const overTheSheet = (): Extension => [
 	// Within the page's main part, where those who go from part to part find them.
 	tooltips({ parent: document.querySelector('main') ?? document.body, position: 'fixed' }),
 	ViewPlugin.define((view) => {
