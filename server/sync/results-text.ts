@@ -13,7 +13,7 @@ export class ResultsText {
 	/** All of it. */
 	whole(): string {
 		return joined(this.#parts, (part) =>
-			typeof part === 'string' ? part : part instanceof Map ? joined(part) : listed(part),
+			typeof part === 'string' ? part : isList(part) ? listed(part) : joined(part),
 		);
 	}
 

@@ -21,7 +21,6 @@ import { verifyAll } from '$lib/server/signed-record/verification';
 import { createDatabase } from '../support/database';
 import { check, freeze as freezeWhole, propose, seen, writeNote } from '../support/note-life';
 import { makeCast, type Cast } from '../support/people';
-import { lines200 } from './note-200';
 import { last200, lines200 } from './note-200';
 import { row, type Row } from './row';
 import { sixtyLines } from './sixty-lines';

@@ -53,6 +53,8 @@ const tables = [
 		'thread',
 		'comment',
 		'kept_trial',
+		'mail',
+		'mail_preference',
 		'candidate',
 		'sign_off',
 		'revision',

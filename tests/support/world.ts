@@ -1,8 +1,12 @@
 import * as threads from '$lib/server/comments/threads';
 import type { Actor } from '$lib/server/auth/access';
 import * as apiTokens from '$lib/server/auth/api-tokens';
+import { db } from '$lib/server/db/client';
+import { mail } from '$lib/server/db/schema/mail';
+import * as stopTokens from '$lib/server/mail/stop-token';
 import * as revisions from '$lib/server/revisions/revisions';
 import * as keptTrials from '$lib/server/trial/kept-trials';
+import type { Said } from '$lib/schemas/mail';
 import { may } from '$lib/schemas/role';
 import * as links from '$lib/server/sharing/links';
 import { check, freeze, propose, seen, writeNote } from './note-life';
@@ -25,6 +29,10 @@ export interface Scene {
 	tokenId: string;
 	/** A trial that the visitor keeps, or somebody else where they may keep none. */
 	keptTrialId: string;
+	/** A mail of the note's team that did not go out. */
+	unsentMailId: string;
+	/** What stops mail to the visitor. */
+	stopToken: string;
 }
 
 type Stage = 'draft' | 'proposed' | 'checked' | 'frozen';
@@ -47,6 +55,8 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 		keptTrialId: (
 			await keptTrials.keep(own ? visitor : cast.author, number, { title: 'More', changes })
 		).id,
+		unsentMailId: await unsentMail(cast.author),
+		stopToken: stopTokens.make({ ...visitor, kind: 'returns' }),
 	};
 	const body = 'Is this the loaded value?';
 	const about = { cellId: scene.cellId, kind: 'question', blocking: false, body } as const;
@@ -62,6 +72,15 @@ export async function stage(cast: Cast, upTo: Stage, visitor: Actor): Promise<Sc
 	}
 	scene.digest = (await seen(cast.author, number)).digest;
 	return scene;
+}
+
+async function unsentMail({ teamId, personId }: Actor): Promise<string> {
+	const row = { teamId, personId, kind: 'requests', state: 'failed', said: [] as Said[] } as const;
+	const [made] = await db()
+		.insert(mail)
+		.values({ ...row, key: crypto.randomUUID() })
+		.returning({ id: mail.id });
+	return made?.id ?? '';
 }
 
 /** What a stranger or another team must never see. */

@@ -96,7 +96,7 @@ test('recalculations, cursors and presence add nothing to the document or the lo
 		if (digit % 2) await eventually(() => peer.evaluation.quantities.a?.value === value);
 	}
 	await saved(page);
-	expect([...peer.doc.share.keys()].sort()).toEqual(['cells', 'title']);
+	expect([...peer.doc.share.keys()].sort()).toEqual(['cells', 'shown', 'title']);
 	// Edits make rows, one each or several in one; nothing else does.
 	expect((await store.current(noteId)).seq).toBeLessThanOrEqual(2 + digits);
 	expect(contentOf(peer)).toEqual(contentOf(page));

@@ -10,7 +10,7 @@ const find: FindReadout = (quoted) =>
 
 /** Tags and attributes that toHtml may give, everything else is a hole. */
 const allowed =
-	/^<\/?(?:p|h[234]|em|strong|s|code|pre|ul|ol|li|blockquote|hr|br|table|thead|tbody|tr|th|td|div|span|small|a)(?: (?:class|data-quantity|start|title|rel|target|href|style)="[^"<>]*")*\/?>$/;
+	/^<\/?(?:p|h[234]|em|strong|s|code|pre|ul|ol|li|blockquote|hr|br|table|thead|tbody|tr|th|td|div|span|small|a)(?: (?:class|data-quantity|dir|start|title|rel|target|href|style)="[^"<>]*")*\/?>$/;
 
 /** What a set formula is made of beside that. */
 const allowedInFormula =

@@ -12,7 +12,12 @@ import { definitionOf } from './uses';
 
 /** What a cell's editor needs when somebody comes to it: offers, explanations, brackets. Loaded then, not with the page. */
 export function writing(kind: NoteCell['kind']): Extension {
-	return [overTheSheet, completion(kind), explanation(kind), ...(kind === 'text' ? [] : brackets)];
+	return [
+		overTheSheet(),
+		completion(kind),
+		explanation(kind),
+		...(kind === 'text' ? [] : brackets),
+	];
 }
 
 /** An opening bracket brings its closing one, which goes when the opening one is taken back. */

@@ -16,7 +16,7 @@ export interface Changes {
 
 /** Results after changes. What did not change is the same object as before. */
 export function applyChanges<R extends object>(before: R, { parts, gone }: Changes): R {
-	const after: Record<string, unknown> = { ...before };
+	const after = { ...before } as Record<string, unknown>;
 	for (const name of gone) delete after[name];
 	for (const [name, change] of Object.entries(parts)) after[name] = changed(after[name], change);
 	return after as R;

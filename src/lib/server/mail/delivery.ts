@@ -51,7 +51,7 @@ export async function deliver(id: string, now = new Date()): Promise<void> {
 		!to || now.getTime() - taken.at.getTime() > staleMs
 			? { kind: 'refused', reason: 'It is older than a week and was not sent any more.' }
 			: await carry(env().SMTP_URL, {
-					...letterOf(taken.said, { personId: to.id, name: to.name, kind: taken.kind }),
+					...letterOf(taken.said, { ...taken, name: to.name }),
 					id,
 					from: env().MAIL_FROM,
 					to: { name: to.name, address: to.email },

@@ -21,13 +21,17 @@ const kindWords: Record<MailKind, string> = {
 };
 
 interface Addressee {
+	teamId: string;
 	personId: string;
 	name: string;
 	kind: MailKind | 'daily';
 }
 
 /** Makes the letter of one thing, or of what was gathered in a day. */
-export function letterOf(said: readonly Said[], { personId, name, kind }: Addressee): Letter {
+export function letterOf(
+	said: readonly Said[],
+	{ teamId, personId, name, kind }: Addressee,
+): Letter {
 	const { ORIGIN } = env();
 	const parts = said.map(wordingOf);
 	const [only] = parts;
@@ -35,7 +39,7 @@ export function letterOf(said: readonly Said[], { personId, name, kind }: Addres
 		kind === 'daily' || parts.length !== 1 || !only
 			? `Halfdigit: ${parts.length} ${parts.length === 1 ? 'thing' : 'things'} since yesterday`
 			: only.subject;
-	const stopUrl = `${ORIGIN}/mail/stop?${new URLSearchParams({ token: stopTokens.make({ personId, kind }) }).toString()}`;
+	const stopUrl = `${ORIGIN}/mail/stop?${new URLSearchParams({ token: stopTokens.make({ teamId, personId, kind }) }).toString()}`;
 	const why =
 		kind === 'daily'
 			? 'You get this once a day, because you chose so.'

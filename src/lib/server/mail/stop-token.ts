@@ -3,13 +3,14 @@ import { mailKinds, type MailKind } from '$lib/schemas/mail';
 import { env } from '../env';
 
 interface Named {
+	teamId: string;
 	personId: string;
 	kind: MailKind | 'daily';
 }
 
 /** A token by which whoever has the mail can stop the like of it. It does nothing else and does not expire. */
-export function make({ personId, kind }: Named): string {
-	const named = Buffer.from(`${kind} ${personId}`).toString('base64url');
+export function make({ teamId, personId, kind }: Named): string {
+	const named = Buffer.from(`${kind} ${teamId} ${personId}`).toString('base64url');
 	return `${named}.${mark(named)}`;
 }
 
@@ -18,9 +19,9 @@ export function read(token: string): Named | undefined {
 	const [named = '', given = ''] = token.split('.');
 	const [expected, shown] = [Buffer.from(mark(named)), Buffer.from(given)];
 	if (expected.length !== shown.length || !timingSafeEqual(expected, shown)) return undefined;
-	const [word, personId = ''] = Buffer.from(named, 'base64url').toString().split(' ');
+	const [word, teamId = '', personId = ''] = Buffer.from(named, 'base64url').toString().split(' ');
 	const kind = [...mailKinds, 'daily' as const].find((one) => one === word);
-	return kind && { personId, kind };
+	return kind && { teamId, personId, kind };
 }
 
 function mark(named: string): string {

@@ -43,7 +43,7 @@ export async function list(
 			id: row.id,
 			name: to.name,
 			email: to.email,
-			subject: letterOf(row.said, { personId: to.id, name: to.name, kind: row.kind }).subject,
+			subject: letterOf(row.said, { ...row, name: to.name }).subject,
 			state: row.state as UnsentMail['state'],
 			reason: row.reason,
 			tries: row.tries,
