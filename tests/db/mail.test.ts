@@ -245,7 +245,7 @@ test('a connection that breaks while a mail is handed over leaves it to people',
 
 test('who is named in a comment is told, but not who wrote it', async () => {
 	const { number } = await writeNote(cast.author, 'Named');
-	const [cell] = (await threadsCell(number)) ?? [];
+	const [cell] = await cellIds(number);
 	await threads.open(cast.engineer, number, {
 		cellId: cell!,
 		kind: 'question',
@@ -264,7 +264,7 @@ test('who is named in a comment is told, but not who wrote it', async () => {
 	expect(own.find(({ name }) => name === 'mentions')?.items).toEqual([]);
 });
 
-async function threadsCell(number: string): Promise<string[]> {
+async function cellIds(number: string): Promise<string[]> {
 	const { id } = await notes.get(cast.author, number);
 	return placedCells((await loadDocument(id)).doc).map((cell) => cell.id);
 }
