@@ -39,7 +39,7 @@ export async function keyWork(
 }
 
 /** The work of each key press in a trace. */
-export function workIn(events: readonly TraceEvent[]): KeyWork[] {
+function workIn(events: readonly TraceEvent[]): KeyWork[] {
 	const presses = events.filter(
 		({ name, args }) => name === 'EventDispatch' && args?.data?.type === 'keydown',
 	);
