@@ -87,7 +87,7 @@ describe.skipIf(!hasPoppler())('the paper of a revision', () => {
 		const plain = (words: string) => words.replace(/\s+/g, '').toUpperCase();
 		for (const said of [
 			`MEASUREMENT NOTE ${number}, REVISION A`,
-			'2.500 ± 0.029 V',
+			'2.500 ± 0.028 V',
 			'#panic("out") $#x$',
 			'[U+6F22][U+5B57]',
 			'[U+202E][U+0007]',

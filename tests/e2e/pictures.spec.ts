@@ -44,7 +44,7 @@ test('a curve is written with completion, drawn, read, tabled and mended', async
 		/^V_max = 32\sV: V_adc = 2\.41\d* ±\s\d+\.\d+\sV, /,
 	);
 	await page.keyboard.press('End');
-	await expect(picture(page).locator('.read').first()).toHaveText(/^V_max = 40\sV: .*, not met$/);
+	await expect(picture(page).locator('p.read')).toHaveText(/^V_max = 40\sV: .*, not met$/);
 	await page.keyboard.press('ArrowLeft');
 	await expect(reading(page)).toHaveAttribute('aria-valuetext', /^V_max = 39\.6\sV/);
 	const box = await picture(page).locator('svg:visible').boundingBox();
