@@ -122,7 +122,7 @@ test('unknown content is refused by name and reaches nobody, and neither does wh
 	expect(later).toMatchObject({ id: 'later', reason: strange!.reason });
 	type(page, page.cells[0]!.id, 'R = 1 ohm\n');
 	await saved(page);
-	expect([...page.doc.share.keys()].sort()).toEqual(['cells', 'title']);
+	expect([...page.doc.share.keys()].sort()).toEqual(['cells', 'shown', 'title']);
 	expect((await loadDocument(noteId)).seq).toBe(2);
 	expect(await storedContent(noteId)).toEqual(contentOf(page));
 	await socket.close();
