@@ -17,7 +17,8 @@ export async function list(actor: Actor, query: ListQuery): Promise<NoteRow[]> {
 		.select()
 		.from(from)
 		.where(and(eq(from.teamId, actor.teamId), stateIs(from, query.state), ...words(from, query.q)))
-		.orderBy(...sortKeys(from, query.sort).map(direction), asc(from.number))
+		// Notes that are alike stand by number, turned round with the rest.
+		.orderBy(...[...sortKeys(from, query.sort), from.number].map((key) => direction(key)))
 		.limit(1000);
 	return rows.map((row) => ({
 		number: row.written,
