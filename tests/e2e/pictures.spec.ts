@@ -47,7 +47,7 @@ test('a curve is written with completion, drawn, read, tabled and mended', async
 	await expect(picture(page).locator('p.read')).toHaveText(/^V_max = 40\sV: .*, not met$/);
 	await page.keyboard.press('ArrowLeft');
 	await expect(reading(page)).toHaveAttribute('aria-valuetext', /^V_max = 39\.6\sV/);
-	const box = await picture(page).locator('svg:visible').boundingBox();
+	const box = await picture(page).locator('svg:visible').first().boundingBox();
 	await page.mouse.move(box!.x + box!.width * 0.088, box!.y + box!.height / 2);
 	await expect(picture(page).locator('p.read')).toHaveText(/^V_max = 0\sV: V_adc = 0\sV, met$/);
 

@@ -102,7 +102,7 @@ test('text is shown set, opens with a click or Enter, and quotes live figures', 
 	await expect(text).toContainText('<img src=x');
 	await expect(page.getByRole('navigation', { name: 'Outline' })).toContainText('Shunt');
 
-	await text.locator('strong').click();
+	await text.getByRole('heading', { name: 'Shunt' }).click();
 	await expect(text.locator('.cm-content')).toBeFocused();
 	await page.keyboard.press('Escape');
 	await expect(text.getByRole('button', { name: 'Edit text' })).toBeFocused();
