@@ -21,6 +21,7 @@ const running = new Set();
  * @returns {Promise<Ended>}
  */
 export function collect(program, words, options = {}) {
+	const { limitMs = 15 * 60_000 } = options;
 	return new Promise((resolve, reject) => {
 		const child = spawn(program, words, {
 			cwd: root,
@@ -33,13 +34,10 @@ export function collect(program, words, options = {}) {
 		const take = (/** @type {Buffer} */ bytes) => (output += bytes.toString());
 		child.stdout.on('data', take);
 		child.stderr.on('data', take);
-		const limit = setTimeout(
-			() => {
-				output += `\nEnded after ${(options.limitMs ?? 0) / 1000} s, its limit.\n`;
-				endGroup(child);
-			},
-			options.limitMs ?? 15 * 60_000,
-		);
+		const limit = setTimeout(() => {
+			output += `\nEnded after ${limitMs / 1000} s, its limit.\n`;
+			endGroup(child);
+		}, limitMs);
 		child.once('error', (error) => {
 			clearTimeout(limit);
 			reject(error);
