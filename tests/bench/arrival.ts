@@ -42,6 +42,8 @@ async function visitOf(context: BrowserContext, path: string): Promise<Visit> {
 	const page = await context.newPage();
 	const devtools = await context.newCDPSession(page);
 	await devtools.send('Emulation.setCPUThrottlingRate', { rate: slowDown });
+	// What runs these programs wraps named functions in a function of its own, which a page does not have.
+	await page.addInitScript({ content: 'globalThis.__name = (made) => made;' });
 	await page.addInitScript(() => {
 		const seen = { figureMs: 0, shift: 0 };
 		Object.assign(window, { seen });
