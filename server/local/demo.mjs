@@ -2,7 +2,6 @@ import { readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { endCommands } from './commands.mjs';
 import { ensure } from './demonstration-database.mjs';
 import { alone } from './lock.mjs';
-import { openMailSink } from './mail-sink.mjs';
 import { inData } from './place.mjs';
 import { isFree } from './ports.mjs';
 import { release } from './postgres.mjs';
@@ -74,6 +73,8 @@ async function prepare() {
 		demonstration = await ensure(database, { fresh, earlierToken });
 	});
 	await step('Server', async () => {
+		// Its packages are there only now.
+		const { openMailSink } = await import('./mail-sink.mjs');
 		sink = await openMailSink({ firstPort: port + 400 });
 		const more = { SMTP_URL: sink.smtpUrl, MAIL_FROM: 'Halfdigit <notes@alderfen.example>' };
 		serving = await serve({ database, port, kind: 'demo', log: inData('server.log'), more });
