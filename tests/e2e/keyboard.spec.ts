@@ -78,7 +78,7 @@ test('a note is drafted, commented, proposed, checked, approved and frozen with 
 	await tabTo(peer, /^Your password/);
 	await peer.keyboard.type(demoPassword);
 	await peer.keyboard.press('Enter');
-	await expect(peer.getByText(/Checked by/).first()).toBeVisible();
+	await expect(peer.getByText('Checked. Waits to be approved.')).toBeVisible();
 
 	const approver = await signIn(browser, 'approver');
 	await openCandidate(approver, title);

@@ -66,7 +66,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	await expect(peer.getByText('The driver’s data sheet says 80 V.')).toBeVisible();
 	await peer.getByLabel('Your password').first().fill(demoPassword);
 	await peer.getByRole('button', { name: 'Sign as checked' }).click();
-	await expect(peer.getByText(/Checked by/).first()).toBeVisible();
+	await expect(peer.getByText('Checked. Waits to be approved.')).toBeVisible();
 
 	// The approver waives the requirement, acknowledges the caution and signs: frozen as A.
 	const approver = await arrive(browser, 'approver');
@@ -103,7 +103,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	const outcome = stranger.getByRole('status', { name: 'Outcome' });
 	const drop = async (content: string) => {
 		await stranger.goto('/verify');
-		await stranger.getByLabel(/Drop the JSON file/).setInputFiles({
+		await stranger.getByLabel(/Drop the PDF or JSON file/).setInputFiles({
 			name: `${number}-A.json`,
 			mimeType: 'application/json',
 			buffer: Buffer.from(content),

@@ -129,7 +129,7 @@ test('three people draft, comment, return, mend, check, approve and freeze a not
 	await peer.goto(`${note}/candidate`);
 	await peer.getByLabel('Your password').first().fill(demoPassword);
 	await peer.getByRole('button', { name: 'Sign as checked' }).click();
-	await expect(peer.getByText(/Checked by/).first()).toBeVisible();
+	await expect(peer.getByText('Checked. Waits to be approved.')).toBeVisible();
 	await approver.reload();
 	await approver.getByLabel('Your password').first().fill(demoPassword);
 	await shoot(approver, 'candidate-approver');
