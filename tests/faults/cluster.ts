@@ -11,7 +11,7 @@ import { unmount } from './small-disk';
 import { until } from './until';
 
 const settings = `
-max_connections = 45
+max_connections = 80
 superuser_reserved_connections = 5
 log_min_messages = fatal
 `;

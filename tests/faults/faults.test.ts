@@ -38,6 +38,8 @@ test.each(chosen.map((fault) => [fault.fault, fault] as const))(
 	async (_, fault) => {
 		const { wrong, ...result } = await runFault(site, fault, form);
 		told.push(result);
+		// The whole takes long; what was wrong is read at once.
+		for (const sentence of wrong) process.stdout.write(`${fault.id}: ${sentence}\n`);
 		expect(wrong, `replay: npm run faults -- --seed ${form.seed} --only ${fault.id}`).toEqual([]);
 		expect(result.row.ok).toBe(true);
 	},

@@ -3,8 +3,8 @@ import { evaluatorsOf } from '../processes';
 import type { Stage } from '../stage';
 import { pause } from '../until';
 
-/** Edits a second and writer; everybody writes as fast as acknowledgements come. */
-const fast = 150;
+/** Edits a second and writer: more than people type, and not so many that the writers themselves take the machine. */
+const fast = 60;
 /** Edits to be acknowledged between two kills. */
 const between = { short: 150, full: 1000 };
 const many = { notes: 4, writers: 12 };

@@ -29,7 +29,28 @@ export function db(): Database {
 	pool.on('error', (error) => log().warn({ err: error }, 'idle database connection lost'));
 	// A connection lost between two statements of a transaction: the next statement fails, the process does not.
 	pool.on('connect', (client) => client.on('error', () => undefined));
-	return (database = drizzle(pool, { schema }));
+	database = drizzle(pool, { schema });
+	database.transaction = onOneConnection(pool);
+	return database;
+}
+
+/**
+ * Transactions that give their connection back whatever happens. Drizzle's own keep it for good where already `begin` fails,
+ * as while the database is killed, until none is left.
+ */
+function onOneConnection(pool: pg.Pool): Database['transaction'] {
+	const sessions = new WeakMap<pg.PoolClient, Database>();
+	return async (work, config) => {
+		const client = await pool.connect();
+		try {
+			const session = sessions.get(client) ?? drizzle(client, { schema });
+			sessions.set(client, session);
+			return await session.transaction(work, config);
+		} finally {
+			// The pool drops one that was lost.
+			client.release();
+		}
+	};
 }
 
 /** Ends the pool; the next `db()` opens a new one. */
