@@ -1,3 +1,4 @@
+import { choiceOf, inChosenUnit } from './chosen-unit';
 import { curveResults } from './curve-results';
 import { budgetRows, short, trialsOf, worstCaseOf } from './details';
 import { engineVersion } from './engine';
@@ -10,6 +11,7 @@ import { judge } from './requirements';
 import type { Cell, CurveCell, Evaluation, Fault, Options, Quantity } from './results';
 import { Bounds } from './steps';
 import { Sweeps } from './sweeps/sweeps';
+import type { Type } from './types';
 import { finiteUncertainty, stepOf } from './uncertainty';
 import { Worked } from './worked';
 
@@ -79,15 +81,18 @@ function addDetails(
 	});
 	const steps = wanted.map(({ step }) => step);
 	const bounds = new Bounds(steps, note.inputs, options.normalInterval);
+	const set = (name: string, type: Type) => inChosenUnit(type, choiceOf(name, options));
 	for (const { name, computed, step, quantity } of wanted) {
+		const { type } = computed;
+		const setType = set(name, type);
 		watch.at?.(quantity.cell, quantity.line);
 		const found = finiteUncertainty(step, note.doubts, options.coverage);
 		quantities[name] = {
 			...quantity,
-			worstCase: worstCaseOf(step, computed.type, bounds),
-			budget: budgetRows(step, computed.type, note.inputs.all, note.doubts),
+			worstCase: worstCaseOf(step, type, bounds, setType),
+			budget: budgetRows(step, type, note.inputs.all, note.doubts, set, setType),
 			...(found && {
-				texts: { standardUncertainty: short(found.standardUncertainty, computed.type) },
+				texts: { standardUncertainty: short(found.standardUncertainty, setType) },
 			}),
 		};
 	}

@@ -2,12 +2,13 @@ import { budgetOf, type Doubts } from './doubt/budget';
 import { simulate, summarise, type TrialOptions, type TrialResult } from './doubt/monte-carlo';
 import { awaitOthers, sharedDraw, takePart, type SharedDraw } from './doubt/shared-trials';
 import { validate } from './doubt/validation';
+import { choiceOf, inChosenUnit } from './chosen-unit';
 import type { Input } from './inputs';
 import type { Computed } from './memory';
 import type { Note } from './note';
 import type { Watch } from './note-lines';
 import type { BudgetRow, MonteCarlo, MonteCarloOptions, Options, WorstCase } from './results';
-import { unitOf } from './show';
+import { show, unitOf } from './show';
 import { modelOf, type Bounds, type Step } from './steps';
 import type { Type } from './types';
 import { difference } from './functions/stated';
@@ -15,12 +16,17 @@ import { readout } from './units/display';
 import { differenceFromSI, divided, fromSI } from './units/unit';
 import { finiteUncertainty, stepOf } from './uncertainty';
 
-/** The uncertainty budget of a number: every input it depends on, the greatest contribution first. */
+/**
+ * The uncertainty budget of a number: every input it depends on, the greatest contribution first. Numbers are in the units
+ * of the types; texts of the number in that of `setType`, and of its inputs in those that `set` gives.
+ */
 export function budgetRows(
 	step: Step,
 	type: Type,
 	inputs: readonly Input[],
 	doubts: Doubts,
+	set: (name: string, type: Type) => Type,
+	setType: Type,
 ): BudgetRow[] {
 	const unit = unitOf(type);
 	const { support, gradient } = step.propagated;
@@ -30,6 +36,7 @@ export function budgetRows(
 		const contribution = budget.contributions[i]!;
 		const { label, value, type: inputType, distribution } = inputs[support[place]!]!;
 		const inputUnit = unitOf(inputType);
+		const setInput = set(label, inputType);
 		const perUnit = differenceFromSI(1, inputUnit);
 		const { uncertainty, dof, kind } = distribution;
 		return {
@@ -43,10 +50,15 @@ export function budgetRows(
 			contribution: differenceFromSI(contribution, unit),
 			share: budget.shares[i]!,
 			texts: {
-				value: readout(value, inputUnit, !inputType.fixed).text,
-				standardUncertainty: short(uncertainty, inputType),
-				contribution: short(contribution, type),
-				sensitivity: readout(sensitivity, divided(unit, inputUnit), !type.fixed, 4).text,
+				value: show(value, setInput).text,
+				standardUncertainty: short(uncertainty, setInput),
+				contribution: short(contribution, setType),
+				sensitivity: readout(
+					sensitivity,
+					divided(unitOf(setType), unitOf(setInput)),
+					!setType.fixed,
+					4,
+				).text,
 			},
 		};
 	});
@@ -58,10 +70,11 @@ export function short(si: number, type: Type): string {
 	return readout(si, unitOf(plain), !plain.fixed, 2).text;
 }
 
-export function worstCaseOf(step: Step, type: Type, bounds: Bounds): WorstCase {
+/** Lowest and highest value, as numbers in the unit of a type and as text in that of another. */
+export function worstCaseOf(step: Step, type: Type, bounds: Bounds, setType: Type): WorstCase {
 	const { lower, upper, exact } = bounds.of(step);
 	const unit = unitOf(type);
-	const spoken = (si: number) => readout(si, unit, !type.fixed).text;
+	const spoken = (si: number) => show(si, setType).text;
 	return {
 		lower: fromSI(lower, unit),
 		upper: fromSI(upper, unit),
@@ -134,7 +147,7 @@ function wantedOf(note: Note, names: readonly string[]): Wanted[] {
 /** Trials of some quantities of a note by name; those that are exact or unknown are left out. */
 export function trialsOf(
 	note: Note,
-	{ coverage }: Options,
+	options: Options,
 	{ quantities, trials, adaptive, seed }: MonteCarloOptions,
 	watch: Watch = {},
 ): Map<Computed, MonteCarlo> {
@@ -142,19 +155,21 @@ export function trialsOf(
 	const found = new Map<Computed, MonteCarlo>();
 	if (wanted.length === 0) return found;
 	const steps = wanted.map(({ step }) => step);
-	const options = {
+	const { coverage } = options;
+	const drawing = {
 		seed,
 		coverage,
 		...(trials !== undefined && { trials }),
 		...(adaptive !== undefined && { adaptive }),
 	};
 	const model = modelOf(steps, note.inputs, note.correlations);
-	const results = inGroups(wanted, model, options, watch);
-	wanted.forEach(({ computed, step }, i) => {
+	const results = inGroups(wanted, model, drawing, watch);
+	wanted.forEach(({ name, computed, step }, i) => {
 		const result = results[i]!;
 		const { type } = computed;
 		const unit = unitOf(type);
-		const spoken = (si: number) => readout(si, unit, !type.fixed).text;
+		const setType = inChosenUnit(type, choiceOf(name, options));
+		const spoken = (si: number) => show(si, setType).text;
 		const between = ([low, high]: readonly [number, number]) => `${spoken(low)} to ${spoken(high)}`;
 		const inUnit = ([low, high]: readonly [number, number]): [number, number] => [
 			fromSI(low, unit),
@@ -186,7 +201,7 @@ export function trialsOf(
 			...(result.stable !== undefined && { stable: result.stable }),
 			texts: {
 				mean: spoken(mean),
-				standardUncertainty: short(standardUncertainty, type),
+				standardUncertainty: short(standardUncertainty, setType),
 				symmetric: between(symmetric),
 				shortest: between(shortest),
 			},

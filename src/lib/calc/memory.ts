@@ -2,7 +2,7 @@ import type { Correlations } from './doubt/correlations';
 import type { Fitted } from './given-cells';
 import type { Input } from './inputs';
 import type { Node } from './language/nodes';
-import type { Quantity, Readout, Requirement, WorkedLine } from './results';
+import type { Display, Quantity, Readout, Requirement, WorkedLine } from './results';
 import type { Doubt } from './trace';
 import type { Type } from './types';
 import { isGrid, type Value } from './values';
@@ -41,6 +41,8 @@ export interface Shown {
 	quantity?: Quantity;
 	line?: WorkedLine;
 	requirement?: Requirement;
+	/** How its value was set. */
+	choice?: Display | undefined;
 }
 
 /** A fitted curve whose deviations are inputs of the note, and the number of the first. */

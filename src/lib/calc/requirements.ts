@@ -1,17 +1,18 @@
 import { hasNames, type Comparison, type Node } from './language/nodes';
 import type { Note } from './note';
 import type { NoteLine } from './note-lines';
-import type { Options, Requirement, Verdict } from './results';
+import type { Display, Options, Requirement, Verdict } from './results';
 import type { Step } from './steps';
 import { holds } from './arithmetic';
+import { choiceOf, inChosenUnit } from './chosen-unit';
 import type { Uncertainty } from './doubt/budget';
 import { decide, type Conformity } from './doubt/conformity';
 import { statesInput } from './doubtful-calls';
 import { finiteUncertainty } from './uncertainty';
-import { unitOf } from './show';
+import { show, unitOf } from './show';
 import { Trouble } from './trouble';
 import type { Type } from './types';
-import { compose, doubtfulReadout, readout } from './units/display';
+import { compose, readout } from './units/display';
 import { differenceFromSI, fromSI } from './units/unit';
 
 interface Limit {
@@ -39,17 +40,23 @@ export function judge(line: NoteLine, note: Note, options: Options): Requirement
 	if (!line.requirement || line.kind === 'blank' || line.kind === 'comment') return undefined;
 	const remembered = note.remembered.get(line);
 	const known = remembered?.shown;
-	if (known?.correlations === note.correlations && known.requirement) {
+	const choice = choiceOf(nameOfValue(line, note), options);
+	if (
+		known?.correlations === note.correlations &&
+		known.requirement &&
+		known.choice?.unit === choice?.unit &&
+		known.choice?.digits === choice?.digits
+	) {
 		const { requirement } = known;
 		if (requirement.cell === line.cell && requirement.line === line.line) return requirement;
 		return (known.requirement = { ...requirement, cell: line.cell, line: line.line });
 	}
 	try {
-		const requirement = assess(line, note, options);
+		const requirement = assess(line, note, options, choice);
 		// One that states inputs of its own is judged anew each time, so that they are numbered.
 		if (remembered && requirement && line.body && !statesInput(line.body)) {
 			const { correlations } = note;
-			remembered.shown = { correlations, readout: compose('', ''), fields: {}, requirement };
+			remembered.shown = { correlations, readout: compose('', ''), fields: {}, requirement, choice };
 		}
 		return requirement;
 	} catch (error) {
@@ -59,7 +66,19 @@ export function judge(line: NoteLine, note: Note, options: Options): Requirement
 	}
 }
 
-function assess(line: NoteLine, note: Note, options: Options): Requirement | undefined {
+/** Name of the quantity whose value a requirement limits, where it is one as it stands. */
+function nameOfValue({ body }: NoteLine, note: Note): string | undefined {
+	if (body?.kind !== 'compare') return undefined;
+	const value = limitedBy(body.operands);
+	return value?.kind === 'name' ? note.definition(value.name)?.defined?.typed : undefined;
+}
+
+function assess(
+	line: NoteLine,
+	note: Note,
+	options: Options,
+	choice: Display | undefined,
+): Requirement | undefined {
 	if (line.kind === 'definition' || line.kind === 'function')
 		throw new Trouble(
 			'notComparable',
@@ -96,7 +115,7 @@ function assess(line: NoteLine, note: Note, options: Options): Requirement | und
 	};
 	const bounds = sides.map((side, i) => ({ ...side, doubt: uncertain(steps[i], side.node) }));
 	const doubt = uncertain(own, value);
-	return verdictOf(line, measured, bounds, doubt, options.decisionRule);
+	return verdictOf(line, measured, bounds, doubt, options.decisionRule, choice);
 }
 
 const exact: Uncertainty = {
@@ -139,10 +158,15 @@ export function shapeOf(body: Node): Shape {
 			],
 		};
 	}
-	// `2 V < Vadc` speaks of Vadc: the side without names is the limit.
-	if (!hasNames(first) && hasNames(middle))
+	if (limitedBy(body.operands) === middle)
 		return { value: middle, limits: [{ node: first, op: turned[op] }] };
 	return { value: first, limits: [{ node: middle, op }] };
+}
+
+/** The operand that a comparison speaks of: `2 V < Vadc` is about Vadc, the side without names is the limit. */
+function limitedBy([first, second, third]: readonly Node[]): Node | undefined {
+	const turns = first && second && !hasNames(first) && hasNames(second);
+	return third || turns ? second : first;
 }
 
 interface Bound {
@@ -158,6 +182,7 @@ function verdictOf(
 	bounds: Bound[],
 	doubt: Uncertainty,
 	rule: Options['decisionRule'],
+	choice: Display | undefined,
 ): Requirement {
 	const { value, type } = measured;
 	const unit = unitOf(type);
@@ -172,9 +197,8 @@ function verdictOf(
 	const { verdict, probability } = bounds.every((bound) => bound.doubt === exact)
 		? plainVerdict(value, bounds)
 		: decided(bounds, distance, rule);
-	const spoken = (si: number, expanded?: number) =>
-		(expanded ? doubtfulReadout(si, expanded, unit, !type.fixed) : readout(si, unit, !type.fixed))
-			.text;
+	const set = inChosenUnit(type, choice);
+	const spoken = (si: number) => show(si, set).text;
 	const lower = bounds.find(({ op }) => op.startsWith('>') || op === '==');
 	const upper = bounds.find(({ op }) => op.startsWith('<') || op === '==');
 	const guard = (bound: Bound | undefined) =>
@@ -188,11 +212,11 @@ function verdictOf(
 		margin: differenceFromSI(margin, unit),
 		relativeMargin: relative,
 		unit: unit.text,
-		text: sentence(verdict, nearest, margin, relative, type),
+		text: sentence(verdict, nearest, margin, relative, set),
 		value: fromSI(value, unit),
 		lower: lower ? fromSI(lower.si, unit) : null,
 		upper: upper ? fromSI(upper.si, unit) : null,
-		valueText: spoken(value, doubt.expandedUncertainty),
+		valueText: show(value, set, doubt.expandedUncertainty || undefined, choice?.digits).text,
 		lowerText: lower ? spoken(lower.si) : null,
 		upperText: upper ? spoken(upper.si) : null,
 		...(doubt !== exact && {

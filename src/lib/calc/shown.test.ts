@@ -66,3 +66,38 @@ test('another choice changes the readouts of a note that was computed before', (
 	expect(texts(as({ Vin: { digits: 4 } }), 'Vin')).toEqual(['2.500 V']);
 	expect(as({})).toEqual(evaluate(cells, defaultOptions));
 });
+
+const judged = [
+	{
+		id: 'c',
+		kind: 'calculation' as const,
+		source: 'Vin = tolerance(2.5 V, 1 %)\nI = Vin / (10 kohm)',
+	},
+	{ id: 'r', kind: 'requirement' as const, source: 'Vin <= 3 V\n2 V <= Vin\nVin / 2 <= 2 V' },
+];
+
+test('what is said of a quantity stands in its chosen unit too: limits, budgets, intervals', () => {
+	const calculator = new Calculator();
+	const as = (choices: Record<string, Display>) =>
+		calculator.evaluate(judged, {
+			...defaultOptions,
+			detail: 'all',
+			monteCarlo: { quantities: ['I'], trials: 1000, seed: 1 },
+			shown: choices,
+		});
+	const plain = (text: string | null | undefined) => text?.replaceAll(/[\u00a0\u202f]/g, ' ');
+	const usual = as({});
+	const { requirements, quantities } = as({ Vin: { unit: 'mV', digits: 3 }, I: { unit: 'mA' } });
+	const [most, least, half] = requirements;
+	expect(plain(most?.valueText)).toMatch(/^25\d\d mV ± \d+ mV$|^2500 mV ± \d+ mV$/);
+	expect(plain(most?.upperText)).toBe('3000 mV');
+	expect(plain(least?.lowerText)).toBe('2000 mV');
+	// A formula is no quantity that somebody chose for, and the numbers stay in the unit that is named beside them.
+	expect(half).toEqual(usual.requirements[2]);
+	expect(most).toMatchObject({ value: 2.5, unit: 'V', upper: 3 });
+	expect(plain(quantities.I?.worstCase?.text)).toMatch(/ mA to .* mA$/);
+	expect(plain(quantities.I?.budget?.[0]?.texts.contribution)).toMatch(/ mA$/);
+	expect(plain(quantities.I?.budget?.[0]?.texts.value)).toBe('2500 mV');
+	expect(plain(quantities.I?.monteCarlo?.texts.symmetric)).toMatch(/ mA to .* mA$/);
+	expect(as({})).toEqual(usual);
+});

@@ -1,14 +1,11 @@
+import { choiceOf, inChosenUnit } from './chosen-unit';
 import { isStatement } from './correlated-lines';
-import { parseUnit } from './language/parse-line';
 import type { Computed, Remembered, Shown } from './memory';
 import type { Note } from './note';
 import type { NoteLine } from './note-lines';
 import type { Options, Quantity, Readout, WorkedLine } from './results';
 import { figures } from './show';
-import { Trouble } from './trouble';
-import type { Type } from './types';
 import { shown } from './uncertainty';
-import { same } from './units/dimension';
 
 /** The lines of a note as they are shown. */
 export class Worked {
@@ -28,12 +25,10 @@ export class Worked {
 
 	/** The readout of a quantity: as somebody chose that it is set, else as usual. */
 	readoutOf(name: string | undefined, remembered: Remembered): Readout {
-		const { shown: choices = {} } = this.options;
-		const choice = name !== undefined && Object.hasOwn(choices, name) ? choices[name] : undefined;
+		const choice = choiceOf(name, this.options);
 		if (!choice) return this.shown(remembered).readout;
 		const { computed } = remembered;
-		const type =
-			choice.unit === undefined ? computed.type : inChosenUnit(computed.type, choice.unit);
+		const type = inChosenUnit(computed.type, choice);
 		const { doubts } = this.note;
 		return shown({ ...computed, type }, doubts, this.options.coverage, choice.digits).readout;
 	}
@@ -110,17 +105,5 @@ export class Worked {
 		};
 		if (shown) shown.line = made;
 		return made;
-	}
-}
-
-/** A type whose readouts stand in a unit; the type as it is where that unit does not fit or cannot be read. */
-function inChosenUnit(type: Type, text: string): Type {
-	try {
-		const unit = parseUnit(text);
-		if (!type.dimension || !same(type.dimension, unit.dimension)) return type;
-		return { ...type, unit, fixed: true, point: unit.offset !== 0 };
-	} catch (error) {
-		if (error instanceof Trouble) return type;
-		throw error;
 	}
 }
