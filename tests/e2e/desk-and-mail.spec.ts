@@ -1,5 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { expect, test, type Browser, type Page } from '@playwright/test';
+import { expectAccessible } from '../support/accessible';
 import { addCell, demoPassword, newNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
@@ -43,6 +44,7 @@ test('what waits stands on the desk and comes by mail, and one click stops that 
 	const shelf = peer.getByRole('region', { name: 'To check' });
 	await expect(shelf.getByRole('link', { name: `${number} Weir level, desk` })).toBeVisible();
 	await expect(shelf).toContainText('Was due 20 Nov 2026. Board for the weir');
+	await expectAccessible(peer, 'a desk with something to check');
 	await shoot(peer, 'desk');
 	await openMail(peer, `${number}: candidate A waits for your check`);
 	await expect(peer.getByText('Pia Ekdahl asks you to check candidate A')).toBeVisible();
@@ -67,6 +69,7 @@ test('what waits stands on the desk and comes by mail, and one click stops that 
 	const address = (await stop.getAttribute('href'))!;
 	await stop.click();
 	await expect(engineer.getByText('Stop mail about returned candidates?')).toBeVisible();
+	await expectAccessible(engineer, 'stopping mail');
 	await shoot(engineer, 'stop-mail');
 	const posted = await fetch(address, {
 		method: 'POST',

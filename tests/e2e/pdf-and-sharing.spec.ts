@@ -1,6 +1,7 @@
 import { spawnSync } from 'node:child_process';
 import { readFileSync, writeFileSync } from 'node:fs';
 import { expect, test } from '@playwright/test';
+import { expectAccessible } from '../support/accessible';
 import { signIn } from '../support/browser';
 import { hasPoppler, lookInto } from '../support/pdf';
 import { shoot } from '../support/screens';
@@ -59,6 +60,7 @@ test('a link shows one revision to a stranger without a script, with its passwor
 	const made = page.getByLabel('New link');
 	await expect(made).toHaveValue(/\/shared\/[\w-]{43}$/);
 	const path = new URL(await made.inputValue()).pathname;
+	await expectAccessible(page, 'a link that was made');
 	await shoot(page, 'share');
 
 	const context = await browser.newContext({
@@ -84,12 +86,23 @@ test('a link shows one revision to a stranger without a script, with its passwor
 		'%PDF-',
 	);
 
+	await page.goto(path);
+	await expectAccessible(page, 'a shared revision that asks for its password');
+	await page.getByLabel('Password').fill('plaice-anvil-51');
+	await page.getByRole('button', { name: 'Show the revision' }).click();
+	await expect(page.getByText('Current.')).toBeVisible();
+	await expectAccessible(page, 'a shared revision');
+
 	// The code on paper says it without the link, and shows nothing of the note.
 	const code = await stranger.getByRole('link', { name: /QR code/ }).getAttribute('href');
 	await stranger.goto(new URL(code ?? '').pathname);
 	await expect(stranger.getByRole('status')).toContainText('Valid and current');
 	await expect(stranger.getByText('Station battery')).toHaveCount(0);
 	await shoot(stranger, 'code-on-paper');
+	await page.goto(stranger.url());
+	await expectAccessible(page, 'the code on paper');
+	await page.goto(revision);
+	await page.getByText('Share this revision').click();
 
 	await page.getByRole('form', { name: 'Link for The buyers' }).getByRole('button').click();
 	await expect(page.getByText('“The buyers” is revoked.')).toBeVisible();

@@ -1,4 +1,5 @@
 import { expect, test, type Page } from '@playwright/test';
+import { expectAccessible } from '../support/accessible';
 import { addCell, figure, newNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
@@ -32,6 +33,7 @@ test('a click on a readout changes its unit and digits for everybody, wherever i
 	await chooser(page).getByPlaceholder('Another unit').fill('µV');
 	await page.keyboard.press('Enter');
 	await expect(figure(peer, 'Vref')).toHaveText(/µV$/);
+	await expectAccessible(page, 'the chooser of a readout');
 	await shoot(page, 'readout-chooser', { whole: false });
 	await page.keyboard.press('Escape');
 	await expect(chooser(page)).toHaveCount(0);

@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { expect, test, type Browser, type Page } from '@playwright/test';
-import { addCell, demoPassword, newNote, signIn } from '../support/browser';
+import { addCell, demoPassword, figure, newNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 type Account = Parameters<typeof signIn>[1];
@@ -61,9 +61,20 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	await peer.getByRole('button', { name: 'Return with reason' }).click();
 	await expect(peer.getByText(/Returned by/).first()).toBeVisible();
 	await engineer.goto(note);
+	await engineer.locator('.cm-line', { hasText: 'V_adc = V_cap' }).click();
+	await engineer.keyboard.press('End');
+	await engineer.keyboard.press('Backspace');
+	await engineer.keyboard.type('1');
+	await expect(figure(engineer, 'V_adc')).toHaveText(/^2\.580/);
+	await expect(engineer.locator('[data-saving]').first()).toHaveText(/^Saved/);
 	await propose(engineer, 'Trial at two stations', 'The driver’s data sheet says 80 V.');
 	await peer.goto(`${note}/candidate`);
 	await expect(peer.getByText('The driver’s data sheet says 80 V.')).toBeVisible();
+	await peer.getByRole('link', { name: /What changed since candidate 1/ }).click();
+	const moved = peer.getByRole('region', { name: 'Results that moved' });
+	await expect(moved).toContainText(/2\.666.*now\s*2\.580/s);
+	await shoot(peer, 'compared-with-returned');
+	await peer.goto(`${note}/candidate`);
 	await peer.getByLabel('Your password').first().fill(demoPassword);
 	await peer.getByRole('button', { name: 'Sign as checked' }).click();
 	await expect(peer.getByText('Checked. Waits to be approved.')).toBeVisible();
@@ -101,11 +112,11 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	const stranger = await (await browser.newContext()).newPage();
 	await stranger.goto('/verify');
 	const outcome = stranger.getByRole('status', { name: 'Outcome' });
-	const drop = async (content: string) => {
+	const drop = async (content: string | Buffer, kind: 'json' | 'pdf' = 'json') => {
 		await stranger.goto('/verify');
 		await stranger.getByLabel(/Drop the PDF or JSON file/).setInputFiles({
-			name: `${number}-A.json`,
-			mimeType: 'application/json',
+			name: `${number}-A.${kind}`,
+			mimeType: `application/${kind}`,
 			buffer: Buffer.from(content),
 		});
 	};
@@ -117,6 +128,21 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	await expect(outcome).toContainText('Altered');
 	await expect(outcome).toContainText('Its content is not what was sealed.');
 	await shoot(stranger, 'verify-altered');
+
+	// The same on paper: its PDF, and a PDF with one byte altered.
+	const address = await approver
+		.getByRole('link', { name: 'PDF', exact: true })
+		.getAttribute('href');
+	const pdf = await (await approver.request.get(address ?? '')).body();
+	await drop(pdf, 'pdf');
+	await expect(outcome).toContainText('Valid and current');
+	await expect(outcome).toContainText('byte for byte, what this installation makes');
+	const at = pdf.indexOf('Siren capacitor');
+	expect(at).toBeGreaterThan(0);
+	const forged = Buffer.from(pdf);
+	forged.write('s', at);
+	await drop(forged, 'pdf');
+	await expect(outcome).toContainText('The pages are not proven');
 	await stranger.goto('/verify');
 	await stranger.getByLabel(/Or type its digest/).fill(digest);
 	await stranger.getByRole('button', { name: 'Verify' }).click();

@@ -1,4 +1,5 @@
 import { expect, test, type Page } from '@playwright/test';
+import { expectAccessible } from '../support/accessible';
 import { addCell, figure, newNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
@@ -68,6 +69,7 @@ test('an input is tried by typing and by slider; figures, verdict and gauge move
 		.getByRole('button', { name: /^Widen the slider of R1/ })
 		.click();
 	await expect(slider(page, 'R1')).toHaveAttribute('max', /^30\.[56]/);
+	await expectAccessible(page, 'a trial');
 	await shoot(page, 'trial', { whole: false });
 
 	// A formula that is wrong says so; the note and everybody else stay as they are.
@@ -123,6 +125,7 @@ test('a trial is kept for its person, and attached to a comment for everybody', 
 	const attached = page.getByRole('group', { name: /^Trial of / });
 	await expect(attached).toContainText('R2 10 kohm → 11 kohm');
 	await expect(attached).toContainText(/Vout 2\.500\s*V.* → 2\.41/);
+	await expectAccessible(page, 'a comment with a trial');
 	await shoot(page, 'trial-comment');
 
 	// The kept trial is there again after the page was closed, for this person only.

@@ -1,4 +1,4 @@
-import { expect, type Page } from '@playwright/test';
+import { expect, type BrowserContext, type Page } from '@playwright/test';
 
 /** Password of every account of the demonstration. */
 export const demoPassword = 'halfdigit-demo-2026';
@@ -9,8 +9,25 @@ export function emailOf(account: DemoAccount): string {
 	return `${account}@alderfen.example`;
 }
 
-/** Signs a demonstration account in through the page and waits for the list of notes. */
+type Cookies = Parameters<BrowserContext['addCookies']>[0];
+
+/** Sessions that earlier tests of this run began, by account. */
+const begun = new Map<DemoAccount, Cookies>();
+
+/**
+ * Opens the list of notes as a demonstration account: in the session that an earlier test began, where there is one that
+ * still holds, else by signing in through the page.
+ */
 export async function signIn(page: Page, account: DemoAccount): Promise<void> {
+	await page.context().addCookies(begun.get(account) ?? []);
+	await page.goto('/notes');
+	if (new URL(page.url()).pathname !== '/notes') await signInAnew(page, account);
+	await expect(page.getByRole('heading', { name: 'Notes', level: 1 })).toBeVisible();
+	begun.set(account, await page.context().cookies());
+}
+
+/** Signs a demonstration account in through the page, which begins a session of its own. */
+export async function signInAnew(page: Page, account: DemoAccount): Promise<void> {
 	await page.goto('/sign-in');
 	await page.getByLabel('E-mail').fill(emailOf(account));
 	await page.getByLabel('Password').fill(demoPassword);
