@@ -56,7 +56,13 @@ export function judge(line: NoteLine, note: Note, options: Options): Requirement
 		// One that states inputs of its own is judged anew each time, so that they are numbered.
 		if (remembered && requirement && line.body && !statesInput(line.body)) {
 			const { correlations } = note;
-			remembered.shown = { correlations, readout: compose('', ''), fields: {}, requirement, choice };
+			remembered.shown = {
+				correlations,
+				readout: compose('', ''),
+				fields: {},
+				requirement,
+				choice,
+			};
 		}
 		return requirement;
 	} catch (error) {
