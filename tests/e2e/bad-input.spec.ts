@@ -1,5 +1,5 @@
 import { expect, test } from '@playwright/test';
-import { addCell, figure, newNote, signIn } from '../support/browser';
+import { addCell, demoPassword, emailOf, figure, newNote, signIn } from '../support/browser';
 
 const bad: [line: string, codes: string[]][] = [
 	['unknown = nowhere + 1', ['unknownName']],
@@ -54,4 +54,22 @@ test('each wrong line says so by itself, and the rest of the note is computed', 
 	await expect(cell).toContainText('unknown');
 	// The end of the cell may lie below the window; the register has all names.
 	await expect(page.getByRole('link', { name: /^last, 42\sV$/ })).toBeVisible();
+});
+
+test('what is typed before the scripts of a page run stays in its fields', async ({ page }) => {
+	const held: (() => void)[] = [];
+	let holds = true;
+	await page.route('**/_app/**/*.js', async (route) => {
+		if (holds) await new Promise<void>((resolve) => held.push(resolve));
+		await route.continue();
+	});
+	await page.goto('/sign-in', { waitUntil: 'commit' });
+	await page.getByLabel('E-mail').fill(emailOf('reader'));
+	holds = false;
+	for (const release of held) release();
+	await page.waitForLoadState('networkidle');
+	await expect(page.getByLabel('E-mail')).toHaveValue(emailOf('reader'));
+	await page.getByLabel('Password').fill(demoPassword);
+	await page.getByRole('button', { name: 'Sign in' }).click();
+	await expect(page.getByRole('heading', { name: 'Notes', level: 1 })).toBeVisible();
 });

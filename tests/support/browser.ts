@@ -27,7 +27,7 @@ export async function signIn(page: Page, account: DemoAccount): Promise<void> {
 }
 
 /** Signs a demonstration account in through the page, which begins a session of its own. */
-export async function signInAnew(page: Page, account: DemoAccount): Promise<void> {
+async function signInAnew(page: Page, account: DemoAccount): Promise<void> {
 	await page.goto('/sign-in');
 	await page.getByLabel('E-mail').fill(emailOf(account));
 	await page.getByLabel('Password').fill(demoPassword);
