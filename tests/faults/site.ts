@@ -1,5 +1,6 @@
 import type { Actor } from '$lib/server/auth/access';
 import { closeDb } from '$lib/server/db/client';
+import { closePool } from '$lib/server/evaluation/pool';
 import { applyMigrations } from '../../server/local/migrations';
 import { firstFree } from '../../server/local/ports.mjs';
 import { isAlive } from '../../server/local/processes.mjs';
@@ -101,6 +102,7 @@ export class Site {
 	async close(): Promise<void> {
 		await Promise.all(this.posts.map((post) => this.kill(post)));
 		await Promise.all(this.posts.flatMap(({ front, back }) => [front.close(), back.close()]));
+		await closePool();
 		await closeDb();
 		await this.cluster.remove();
 	}

@@ -3,7 +3,7 @@ import * as evaluations from '$lib/server/evaluation/store';
 import { toContent } from '$lib/note/document';
 import * as notes from '$lib/server/notes/notes';
 import { loadDocument } from '$lib/server/notes/updates';
-import { compute, figuresOf } from './figures';
+import { figuresOf } from './figures';
 import type { View } from './judge';
 import { Ledger } from './ledger';
 import { firstLine } from './operations';
@@ -40,14 +40,13 @@ export async function makeTestNote(owner: Actor): Promise<TestNote> {
 /** What the database holds of a note. */
 export async function storedView({ id, moved }: TestNote): Promise<View> {
 	const [{ doc, pending }, stored] = await Promise.all([loadDocument(id), evaluations.find(id)]);
-	const content = toContent(doc);
 	// Results are not kept while an edit waits for others, as one that was garbled may for good; who asks has them computed.
-	const figures = pending ? compute(content) : stored && figuresOf(stored.results);
+	const results = pending ? (await evaluations.current(id)).results : stored?.results;
 	const view: View = {
 		name: 'the database',
-		content,
+		content: toContent(doc),
 		place: placeIn(doc, moved),
-		figures: figures ?? { quantities: {}, errors: [] },
+		figures: results ? figuresOf(results) : { quantities: {}, errors: [] },
 	};
 	doc.destroy();
 	return view;
