@@ -6,6 +6,8 @@ export default {
 	preprocess: vitePreprocess(),
 	kit: {
 		adapter: adapter({ out: 'build/web', precompress: true }),
+		// A style sheet of its own for a few rules costs a slow computer more than the rules.
+		inlineStyleThreshold: 4096,
 		// Svelte writes measured positions (gauges, cursors) as style attributes, so only scripts are strict.
 		csp: {
 			mode: 'auto',

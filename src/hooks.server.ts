@@ -3,13 +3,14 @@ import { sequence } from '@sveltejs/kit/hooks';
 import type { Handle } from '@sveltejs/kit';
 import * as auth from '$lib/server/web/auth';
 import * as bearer from '$lib/server/web/bearer';
+import { figuresFirst } from '$lib/server/web/figures-first';
 import * as errors from '$lib/server/web/errors';
 import * as guard from '$lib/server/web/guard';
 import * as shutdown from '$lib/server/web/shutdown';
 
 export const init = shutdown.listenForEnd;
 
-const pages = sequence(guard.sameOrigin, auth.handle, auth.identify, guard.signedIn);
+const pages = sequence(guard.sameOrigin, auth.handle, auth.identify, guard.signedIn, figuresFirst);
 
 // Pages that are made at build time have no visitor, and there is neither a database nor an environment then.
 export const handle: Handle = building

@@ -1,5 +1,5 @@
 import { expect, test, type Browser, type Page } from '@playwright/test';
-import { addCell, newNote, signIn } from '../support/browser';
+import { addCell, newNote, openNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 async function arrive(browser: Browser, account: Parameters<typeof signIn>[1]): Promise<Page> {
@@ -54,7 +54,7 @@ test('a comment on some words names a person, is answered by them and closed, an
 	await shoot(engineer, 'comment-on-words', { whole: false });
 
 	const peer = await arrive(browser, 'peer');
-	await peer.goto(note);
+	await openNote(peer, note);
 	await peer.getByText('Comments, 1').click();
 	await peer.getByLabel('Names me').check();
 	const answered = peer.locator('[data-thread]');

@@ -1,7 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { expect, test, type Browser, type Page } from '@playwright/test';
 import { expectAccessible } from '../support/accessible';
-import { addCell, demoPassword, newNote, signIn } from '../support/browser';
+import { addCell, demoPassword, newNote, openNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 /** Where the mail that the served program sends can be read. */
@@ -90,6 +90,6 @@ test('what waits stands on the desk and comes by mail, and one click stops that 
 	await administrator.goto('/team/mail');
 	await expect(administrator.getByText(/^\d+ sent in the last seven days$/)).toBeVisible();
 	await shoot(administrator, 'team-mail');
-	await engineer.goto(note);
+	await openNote(engineer, note);
 	await expect(engineer.locator('[data-saving]').first()).toHaveText(/^Saved/);
 });

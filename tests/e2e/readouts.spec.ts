@@ -1,6 +1,6 @@
 import { expect, test, type Page } from '@playwright/test';
 import { expectAccessible } from '../support/accessible';
-import { addCell, figure, newNote, signIn } from '../support/browser';
+import { addCell, figure, newNote, openNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 const chooser = (page: Page) => page.getByRole('dialog', { name: /is shown as/ });
@@ -15,7 +15,7 @@ test('a click on a readout changes its unit and digits for everybody, wherever i
 	await addCell(page, 'text', 'The reference gives {{Vref}}.');
 	const peer = await (await browser.newContext()).newPage();
 	await signIn(peer, 'peer');
-	await peer.goto(path);
+	await openNote(peer, path);
 
 	await figure(page, 'Vref').click();
 	await expect(chooser(page).getByLabel('Unit', { exact: true })).toBeFocused();

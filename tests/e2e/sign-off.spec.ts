@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { expect, test, type Browser, type Page } from '@playwright/test';
-import { addCell, demoPassword, figure, newNote, signIn } from '../support/browser';
+import { addCell, demoPassword, figure, newNote, openNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 type Account = Parameters<typeof signIn>[1];
@@ -60,7 +60,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	await peer.getByLabel('Your password').last().fill(demoPassword);
 	await peer.getByRole('button', { name: 'Return with reason' }).click();
 	await expect(peer.getByText(/Returned by/).first()).toBeVisible();
-	await engineer.goto(note);
+	await openNote(engineer, note);
 	await engineer.locator('.cm-line', { hasText: 'V_adc = V_cap' }).click();
 	await engineer.keyboard.press('End');
 	await engineer.keyboard.press('Backspace');
@@ -161,7 +161,7 @@ test('a note is returned, proposed again, waived, frozen, verified, and refused 
 	await expect(outcome).toContainText('Genuine, but withdrawn');
 	await approver.goto('/notes');
 	await expect(approver.getByRole('row', { name: new RegExp(number) })).toContainText('Withdrawn');
-	await engineer.goto(note);
+	await openNote(engineer, note);
 	await expect(engineer.getByRole('contentinfo')).toContainText('A withdrawn');
 
 	// Everything of it stands in the audit trail.

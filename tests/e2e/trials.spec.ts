@@ -1,6 +1,6 @@
 import { expect, test, type Page } from '@playwright/test';
 import { expectAccessible } from '../support/accessible';
-import { addCell, figure, newNote, signIn } from '../support/browser';
+import { addCell, figure, newNote, openNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 const panel = (page: Page) => page.getByRole('region', { name: /^Trial/ });
@@ -35,9 +35,11 @@ test('an input is tried by typing and by slider; figures, verdict and gauge move
 }) => {
 	await signIn(page, 'engineer');
 	const path = await divider(page, 'Tried');
+	await addCell(page, 'curve', 'Vout over Vin from 0 V to 20 V');
+	await expect(page.locator('[data-sweep="Vout"]')).toBeVisible();
 	const other = await (await browser.newContext()).newPage();
 	await signIn(other, 'administrator');
-	await other.goto(path);
+	await openNote(other, path);
 	await expect(figure(other, 'Vout')).toContainText('2.5');
 
 	await page.locator('.cm-line', { hasText: 'R1 =' }).click();
@@ -52,6 +54,8 @@ test('an input is tried by typing and by slider; figures, verdict and gauge move
 	await expect(page.locator('[data-tried-verdict="not met"]')).toBeVisible();
 	await expect(page.locator('[data-verdict="met"]')).toBeVisible();
 	await expect(page.locator('[data-tried-mark]')).toHaveCount(1);
+	await expect(page.locator('[data-tried-curve]:visible')).toHaveCount(1);
+	await expect(page.locator('[data-tried-sweep]')).toContainText(/Vin = 10\sV: Vout = 2\.68/);
 	await expect(panel(page).getByRole('status').first()).toHaveText(
 		'1 result moves, 1 verdict turns.',
 	);
@@ -92,6 +96,7 @@ test('an input is tried by typing and by slider; figures, verdict and gauge move
 	await expect(line(page, 'R2 =')).toContainText('R2 = 11 kohm');
 	await expect(panel(page)).toHaveCount(0);
 	await expect(tried(page, 'Vout')).toHaveCount(0);
+	await expect(page.locator('[data-tried-curve]')).toHaveCount(0);
 	await page.keyboard.press('ControlOrMeta+z');
 	await expect(line(page, 'R2 =')).toContainText('R2 = 10 kohm');
 	await other.context().close();
@@ -105,7 +110,7 @@ test('a trial is kept for its person, and attached to a comment for everybody', 
 	const path = await divider(page, 'Handed on');
 	const peer = await (await browser.newContext()).newPage();
 	await signIn(peer, 'peer');
-	await peer.goto(path);
+	await openNote(peer, path);
 	await peer.getByRole('button', { name: 'Actions' }).click();
 	await peer.getByRole('combobox', { name: 'What to do' }).fill('trial');
 	await peer.keyboard.press('Enter');

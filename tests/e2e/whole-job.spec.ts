@@ -1,5 +1,5 @@
 import { expect, test, type Browser, type Page } from '@playwright/test';
-import { addCell, demoPassword, figure, newNote, signIn } from '../support/browser';
+import { addCell, demoPassword, figure, newNote, openNote, signIn } from '../support/browser';
 import { shoot } from '../support/screens';
 
 const sheetSays = (page: Page, words: string | RegExp) =>
@@ -44,7 +44,7 @@ test('three people draft, comment, return, mend, check, approve and freeze a not
 	// The engineer drafts; the peer has the same note open and sees each figure as it comes.
 	const note = await newNote(engineer, 'Panel voltage channel, 0 to 15 V');
 	const number = note.split('/').at(-1)!;
-	await peer.goto(note);
+	await openNote(peer, note);
 	await engineer.getByRole('button', { name: 'Edit text' }).click();
 	await expect(engineer.locator('[data-kind="text"] .cm-focused')).toBeVisible();
 	await engineer.keyboard.press('Control+End');
@@ -106,7 +106,7 @@ test('three people draft, comment, return, mend, check, approve and freeze a not
 	await shoot(peer, 'candidate-returned');
 
 	// The engineer mends it; the verdict turns in the peer's page too, and the thread is closed.
-	await Promise.all([engineer.goto(note), peer.goto(note)]);
+	await Promise.all([openNote(engineer, note), openNote(peer, note)]);
 	const line = engineer.locator('.cm-line', { hasText: 'preferredAbove' });
 	await line.click();
 	await engineer.keyboard.press('End');
@@ -162,7 +162,7 @@ test('three people draft, comment, return, mend, check, approve and freeze a not
 		form: { password: demoPassword, reason: 'Too late.' },
 	});
 	expect(again.ok() && (await again.text()).includes('"type":"success"')).toBe(false);
-	await engineer.goto(note);
+	await openNote(engineer, note);
 	await engineer.locator('.cm-line', { hasText: 'V_max =' }).first().click();
 	await engineer.keyboard.press('End');
 	await engineer.keyboard.press('Enter');

@@ -3,7 +3,8 @@ import { chownSync, mkdirSync, rmSync, statfsSync, writeFileSync } from 'node:fs
 import { databaseUser } from '../../server/local/postgres-programs.mjs';
 import type { Cluster } from './cluster';
 
-const megabytes = 24;
+/** Room beside the edits that are there already. */
+const megabytesFree = 24;
 
 /** A file system in memory with a bound, on which PostgreSQL keeps the edits. */
 export class SmallDisk {
@@ -16,7 +17,11 @@ export class SmallDisk {
 	}
 
 	/** Mounts one; where this machine does not allow that, the reason. */
-	static mount(cluster: Cluster): SmallDisk | string {
+	static async mount(cluster: Cluster): Promise<SmallDisk | string> {
+		const [edits] = await cluster.ask<{ bytes: string }>(
+			`select pg_total_relation_size('note_update')::text as bytes`,
+		);
+		const megabytes = megabytesFree + Math.ceil(Number(edits?.bytes) / 2 ** 20);
 		const folder = `${cluster.folder}-disk`;
 		mkdirSync(folder, { recursive: true });
 		const words = ['-t', 'tmpfs', '-o', `size=${megabytes}m`, 'tmpfs', folder];

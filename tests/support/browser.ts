@@ -59,3 +59,9 @@ export async function addCell(
 /** The readout of a quantity on its line. */
 export const figure = (page: Page, name: string) =>
 	page.locator(`[data-cell] [data-quantity="${name}"]`).first();
+
+/** Opens a note's sheet and waits until it can be worked with: its scripts come behind its figures. */
+export async function openNote(page: Page, path: string): Promise<void> {
+	await page.goto(path);
+	await expect(page.locator('[data-connection=online]')).toBeVisible();
+}

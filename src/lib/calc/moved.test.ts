@@ -39,6 +39,7 @@ test('what an input moves is listed with its difference and share, and nothing e
 		requirements: [],
 		figures: [],
 		faults: [],
+		sweeps: [],
 	});
 });
 
@@ -56,4 +57,26 @@ test('a doubt that moves alone, another unit, another dimension and an error are
 	expect(broken.quantities).toMatchObject([{ name: 'Vout', after: null }]);
 	expect(broken.requirements).toMatchObject([{ after: null }]);
 	expect(broken.faults.map(({ code }) => code)).toContain('syntax');
+});
+
+test('a curve that is another one is given whole; one that stays is not', () => {
+	const curves = (r2: string) =>
+		evaluate(
+			[
+				{
+					id: 'c',
+					kind: 'calculation',
+					source: `R2 = ${r2}\nVin = 10 V\nVout = Vin * R2 / 40 kohm`,
+				},
+				{ id: 'd', kind: 'calculation', source: 'Vdouble = 2 * Vin' },
+				{ id: 'moves', kind: 'curve', source: 'Vout over Vin from 0 V to 20 V in 3 points' },
+				{ id: 'stays', kind: 'curve', source: 'Vdouble over Vin from 0 V to 20 V in 3 points' },
+			],
+			defaultOptions,
+		);
+	const { sweeps } = movedBetween(curves('10 kohm'), curves('20 kohm'));
+	expect(sweeps.map(({ cell, series }) => [cell, series[0]?.values])).toEqual([
+		['moves', [0, 5, 10]],
+	]);
+	expect(movedBetween(curves('10 kohm'), curves('20 kohm +')).sweeps).toEqual([]);
 });

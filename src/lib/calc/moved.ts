@@ -1,5 +1,5 @@
 import { parseUnit } from './language/parse-line';
-import type { Evaluation, Fault, Figure, Quantity, Readout, Requirement } from './results';
+import type { Evaluation, Fault, Figure, Quantity, Readout, Requirement, Sweep } from './results';
 import { same } from './units/dimension';
 import { minus } from './units/number-text';
 import { readout } from './units/display';
@@ -35,6 +35,8 @@ export interface Moved {
 	figures: Figure[];
 	/** Faults that the first does not have. */
 	faults: Fault[];
+	/** Curves as they are in the second; none of one that has a fault there. */
+	sweeps: Sweep[];
 }
 
 /** Smaller than this share of a value, a difference is what rounding leaves. */
@@ -47,6 +49,7 @@ export function movedBetween(first: Evaluation, second: Evaluation): Moved {
 		requirements: requirementsOf(first, second),
 		figures: figuresOf(first, second),
 		faults: faultsOf(first, second),
+		sweeps: sweepsOf(first, second),
 	};
 }
 
@@ -118,4 +121,12 @@ function figuresOf(first: Evaluation, second: Evaluation): Figure[] {
 function faultsOf(first: Evaluation, second: Evaluation): Fault[] {
 	const known = new Set(first.errors.map((fault) => JSON.stringify(fault)));
 	return second.errors.filter((fault) => !known.has(JSON.stringify(fault)));
+}
+
+function sweepsOf(
+	{ sweeps: first = [] }: Evaluation,
+	{ sweeps: second = [] }: Evaluation,
+): Sweep[] {
+	const known = new Set(first.map((sweep) => JSON.stringify(sweep)));
+	return second.filter((sweep) => !known.has(JSON.stringify(sweep)));
 }

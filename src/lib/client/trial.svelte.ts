@@ -1,4 +1,5 @@
 import type { MovedQuantity, MovedRequirement } from '$lib/calc/moved';
+import type { Sweep } from '$lib/calc/results';
 import type { KeptTrial, TrialAnswer, TrialChange, TrialRanges } from '$lib/schemas/trial';
 import { call } from './call';
 
@@ -10,6 +11,7 @@ const nothing: TrialAnswer = {
 	requirements: [],
 	figures: [],
 	faults: [],
+	sweeps: [],
 	gone: [],
 };
 
@@ -82,6 +84,11 @@ export class Trial {
 	/** The same of a requirement. */
 	ofRequirement(cell: string, line: number): MovedRequirement | undefined {
 		return this.#byPlace.get(`${cell} ${line}`);
+	}
+
+	/** The curve of a cell as the trial makes it. */
+	sweepOf(cell: string): Sweep | undefined {
+		return this.#answer.sweeps.find((sweep) => sweep.cell === cell);
 	}
 
 	changeOf(name: string): TrialChange | undefined {

@@ -8,6 +8,7 @@ const nothing: TrialAnswer = {
 	requirements: [],
 	figures: [],
 	faults: [],
+	sweeps: [],
 	gone: [],
 };
 

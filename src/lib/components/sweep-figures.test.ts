@@ -68,3 +68,25 @@ test('a limit that is far away is left out of the picture, and a gap parts the l
 	expect(line.match(/M/g)).toHaveLength(1);
 	expect(line.match(/L/g)).toHaveLength(2);
 });
+
+test('a trial lies in the picture of the present curve; where its unit is another, it does not', () => {
+	const present = drawn('Vadc over Vmax from 0 V to 40 V in 3 points');
+	const higher = {
+		...present,
+		series: present.series.map((one) => ({
+			...one,
+			values: one.values.map((value) => (value ?? 0) * 4),
+		})),
+	};
+	const [alone, both] = [plotOf(present, wide), plotOf(present, wide, higher)];
+	expect(alone.tried).toEqual([]);
+	expect(both.tried).toHaveLength(1);
+	const end = both.tried[0]!.split('L').at(-1)!.split(' ').map(Number);
+	expect(end[0]).toBe(both.xAt[2]);
+	expect(end[1]).toBeCloseTo(both.toY(higher.series[0]!.values[2]!), 1);
+	expect(end[1]).toBeGreaterThanOrEqual(wide.top);
+	// Points outside the range that is shown are left out.
+	const beyond = { ...higher, x: [0, 20, 60] };
+	expect(plotOf(present, wide, beyond).tried[0]!.match(/[ML]/g)).toEqual(['M', 'L']);
+	expect(plotOf(present, wide, { ...higher, unit: 'A' }).tried).toEqual([]);
+});

@@ -42,6 +42,8 @@ export interface Plot {
 	xTicks: (Tick & { at: number })[];
 	yTicks: (Tick & { at: number })[];
 	series: DrawnSeries[];
+	/** Lines of a trial's curves. */
+	tried: string[];
 	limits: DrawnLimit[];
 	/** Of the range's points. */
 	xAt: number[];
@@ -51,8 +53,13 @@ export interface Plot {
 	toY(value: number): number;
 }
 
-/** Places everything of a sweep in a frame. Numbers of the axes are those that are shown, times `factor`. */
-export function plotOf(sweep: Sweep, frame: Frame): Plot {
+/**
+ * Places everything of a sweep in a frame, and what a trial makes of it where that has the same units. Numbers of the
+ * axes are those that are shown, times `factor`.
+ */
+export function plotOf(sweep: Sweep, frame: Frame, trial?: Sweep): Plot {
+	const tried =
+		trial?.unit === sweep.unit && trial.over.unit === sweep.over.unit ? trial : undefined;
 	const { over, shown, logarithmic, x, series } = sweep;
 	const [first = 0, last = 1] = [x[0], x.at(-1)];
 	const [left, right] = [frame.left, frame.width - frame.right];
@@ -62,7 +69,7 @@ export function plotOf(sweep: Sweep, frame: Frame): Plot {
 			? Math.log(value / first) / Math.log(last / first)
 			: (value - first) / (last - first);
 	const toX = (value: number) => left + share(value) * (right - left);
-	const [lowest, highest] = heightsOf(sweep);
+	const [lowest, highest] = heightsOf(sweep, tried?.series ?? []);
 	const toY = (value: number) => bottom - ((value - lowest) / (highest - lowest)) * (bottom - top);
 	const inside = (y: number) => Math.min(bottom, Math.max(top, y));
 	const placed = (ticks: Tick[], factor: number, to: (value: number) => number) =>
@@ -83,6 +90,13 @@ export function plotOf(sweep: Sweep, frame: Frame): Plot {
 			toY,
 		),
 		series: series.map((one) => drawnSeries(one, xAt, (value) => inside(toY(value)))),
+		tried: (tried?.series ?? []).map(({ values }) =>
+			lineThrough(
+				tried!.x.map(toX),
+				values.map((value, i) => (within(tried!.x[i]!, first, last) ? value : null)),
+				(value) => inside(toY(value)),
+			),
+		),
 		limits: sweep.limits.flatMap((limit) =>
 			(['lower', 'upper'] as const).flatMap((side) => {
 				const edge = limit[side];
@@ -122,8 +136,8 @@ function within(value: number, lowest: number, highest: number): boolean {
 const reach = 1.5;
 
 /** Lowest and highest value of the picture: all of the curves, limits that are near, zero where it is near. */
-function heightsOf({ series, limits }: Sweep): [number, number] {
-	const numbers = series.flatMap(({ values, worstCase, expandedUncertainties }) => [
+function heightsOf({ series, limits }: Sweep, tried: readonly SweepSeries[]): [number, number] {
+	const numbers = [...series, ...tried].flatMap(({ values, worstCase, expandedUncertainties }) => [
 		...values.flatMap((value, i) => {
 			if (value === null) return [];
 			const doubt = expandedUncertainties?.[i] ?? 0;

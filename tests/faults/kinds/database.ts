@@ -125,7 +125,7 @@ export const diskFull: Fault = {
 	...ten,
 	run: async (stage) => {
 		const { cluster } = stage.site;
-		const disk = SmallDisk.mount(cluster);
+		const disk = await SmallDisk.mount(cluster);
 		if (typeof disk === 'string') return stage.complain(disk);
 		try {
 			await disk.holdEdits();

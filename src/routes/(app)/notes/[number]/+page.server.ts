@@ -17,14 +17,19 @@ export const load = forMember(async (actor, { params: { number } }: PageServerLo
 		redirect(303, `/notes/${number}/revisions/${await revisions.newest(actor, number)}`);
 	}
 	const { id, title, epoch, changedAt } = await notes.get(actor, number);
-	const { content, results } = await current(id);
+	const [stored, comments, status, people] = await Promise.all([
+		current(id),
+		threads.list(actor, number),
+		review.status(actor, number),
+		askable(actor),
+	]);
 	return {
 		note: { id, number, title, epoch, changedAt },
-		content,
-		evaluation: results,
-		threads: await threads.list(actor, number),
-		review: await review.status(actor, number),
-		askable: await askable(actor),
+		content: stored.content,
+		evaluation: stored.results,
+		threads: comments,
+		review: status,
+		askable: people,
 	};
 });
 
