@@ -15,6 +15,8 @@ import { quantile, row, type Row } from './row';
 
 const longLog = 100_000;
 const openings = 15;
+/** A process has begun its evaluators by then, which take both processors while they begin. */
+const settlesMs = 2500;
 
 /** Opening a note whose log is long, each time by a process that does not have it open. */
 export async function openingRow(seat: Seat, personId: string): Promise<Row> {
@@ -26,6 +28,7 @@ export async function openingRow(seat: Seat, personId: string): Promise<Row> {
 	const sample: number[] = [];
 	for (let opening = 0; opening < openings; opening++) {
 		const server = await startSyncServer();
+		await wait(settlesMs);
 		sample.push(await figureOf({ ...seat, url: `${server.url}/${noteId}` }));
 		await server.stop();
 	}
