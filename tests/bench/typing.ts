@@ -1,4 +1,5 @@
-import type { Browser, BrowserContext } from '@playwright/test';
+import type { Browser, BrowserContext, Page } from '@playwright/test';
+import { openBareEditor } from './bare-editor';
 import { keyWork, type KeyWork } from './key-work';
 import { quantile, row, type Row } from './row';
 
@@ -29,14 +30,29 @@ export async function typingRows(
 	context: BrowserContext,
 	paths: { longNote: string; longCell: string },
 ): Promise<Row[]> {
+	const bare = await typed(await openBareEditor(context, lines(300, 'y')), 'y_5');
 	return [
-		...rowsOf('page.key-2000-lines', 'a note of 2,000 lines', await typed(paths.longNote, 'x0_5')),
-		...rowsOf('page.key-300-line-cell', 'a cell of 300 lines', await typed(paths.longCell, 'y_5')),
+		...rowsOf(
+			'page.key-2000-lines',
+			'a note of 2,000 lines',
+			await typed(await openNote(paths.longNote), 'x0_5'),
+			bare,
+		),
+		...rowsOf(
+			'page.key-300-line-cell',
+			'a cell of 300 lines',
+			await typed(await openNote(paths.longCell), 'y_5'),
+			bare,
+		),
 	];
 
-	async function typed(path: string, name: string): Promise<KeyWork[]> {
+	async function openNote(path: string): Promise<Page> {
 		const page = await context.newPage();
 		await page.goto(path, { waitUntil: 'networkidle' });
+		return page;
+	}
+
+	async function typed(page: Page, name: string): Promise<KeyWork[]> {
 		await page.locator('.cm-line', { hasText: `${name} =` }).click();
 		await page.keyboard.press('End');
 		for (let sign = 0; sign < ' mV'.length; sign++) await page.keyboard.press('ArrowLeft');
@@ -46,16 +62,29 @@ export async function typingRows(
 	}
 }
 
-function rowsOf(id: string, where: string, work: readonly KeyWork[]): Row[] {
+function rowsOf(
+	id: string,
+	where: string,
+	work: readonly KeyWork[],
+	bare: readonly KeyWork[],
+): Row[] {
 	const of = (share: number, what: (one: KeyWork) => number) => quantile(work.map(what), share);
+	const toPaint = (share: number) => ({
+		value: of(share, (one) => one.toPaint),
+		peer: quantile(
+			bare.map((one) => one.toPaint),
+			share,
+		),
+		unit: 'ms',
+	});
 	return [
 		row({
 			id,
-			what: `main thread from a key to the next paint, 95 of 100 keys, ${where}`,
-			value: of(0.95, ({ toPaint }) => toPaint),
-			unit: 'ms',
+			what: `main thread from a key to the next paint, 95 of 100 keys, ${where}; peer: a bare editor with 300 lines`,
+			...toPaint(0.95),
 			target: 16,
 		}),
+		row({ id: `${id}-median`, what: `the same, median, ${where}`, ...toPaint(0.5) }),
 		row({
 			id: `${id}-all`,
 			what: `main thread for a key, the server's figures and all that follows, median, ${where}`,
