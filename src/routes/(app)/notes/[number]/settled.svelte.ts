@@ -2,7 +2,7 @@ import type { Evaluation } from '$lib/calc/results';
 import type { NoteContent } from '$lib/note/document';
 
 /** What goes on changing, as while somebody types, has settled when it stood still this long. */
-const settledMs = 300;
+const settledMs = 600;
 
 interface State extends NoteContent {
 	evaluation: Evaluation;
