@@ -18,8 +18,9 @@ const notification = 'A'.charCodeAt(0);
 
 export async function startHintProxy(target: number): Promise<HintProxy> {
 	const sockets = new Set<Socket>();
-	const server = createServer((near) => {
-		const far = connect(target, '127.0.0.1');
+	// As the database's own sockets: small messages held back until the last was confirmed would look like a slow database.
+	const server = createServer({ noDelay: true }, (near) => {
+		const far = connect({ port: target, host: '127.0.0.1', noDelay: true });
 		for (const [one, other] of [
 			[near, far],
 			[far, near],
