@@ -3,8 +3,8 @@ import { sequence } from '@sveltejs/kit/hooks';
 import type { Handle } from '@sveltejs/kit';
 import * as auth from '$lib/server/web/auth';
 import * as bearer from '$lib/server/web/bearer';
-import { figuresFirst } from '$lib/server/web/figures-first';
 import * as errors from '$lib/server/web/errors';
+import { figuresFirst } from '$lib/server/web/figures-first';
 import * as guard from '$lib/server/web/guard';
 import * as shutdown from '$lib/server/web/shutdown';
 

@@ -58,8 +58,7 @@ export interface Plot {
  * axes are those that are shown, times `factor`.
  */
 export function plotOf(sweep: Sweep, frame: Frame, trial?: Sweep): Plot {
-	const tried =
-		trial?.unit === sweep.unit && trial.over.unit === sweep.over.unit ? trial : undefined;
+	const tried = trial && fitsInto(sweep, trial) ? trial : undefined;
 	const { over, shown, logarithmic, x, series } = sweep;
 	const [first = 0, last = 1] = [x[0], x.at(-1)];
 	const [left, right] = [frame.left, frame.width - frame.right];
@@ -126,6 +125,11 @@ export function plotOf(sweep: Sweep, frame: Frame, trial?: Sweep): Plot {
 		toX,
 		toY,
 	};
+}
+
+/** Whether the curve of a trial can be drawn beside the present one. */
+export function fitsInto(sweep: Sweep, trial: Sweep): boolean {
+	return trial.unit === sweep.unit && trial.over.unit === sweep.over.unit;
 }
 
 function within(value: number, lowest: number, highest: number): boolean {
