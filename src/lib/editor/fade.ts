@@ -1,6 +1,6 @@
 const durationMs = 700;
 /** Figures that go on changing, as while somebody types, have settled when they stood still this long. */
-const settledMs = 200;
+const settledMs = 350;
 
 let changed = new Set<HTMLElement>();
 let settling: ReturnType<typeof setTimeout> | undefined;
