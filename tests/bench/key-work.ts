@@ -4,17 +4,20 @@ import type { Browser, Page } from '@playwright/test';
 export interface KeyWork {
 	/** Until the first paint after it. */
 	toPaint: number;
+	/** The same without what it waited for a processor, which it shares with the server, the database and this program. */
+	toPaintProcessor: number;
 	/** Until the next key: with the server's answer and what follows from it. */
 	all: number;
 }
 
-/** An event of a trace; times in µs. */
+/** An event of a trace; times in µs, `tdur` on the processor. */
 interface TraceEvent {
 	name: string;
 	pid: number;
 	tid: number;
 	ts: number;
 	dur?: number;
+	tdur?: number;
 	args?: { data?: { type?: string } };
 }
 
@@ -54,13 +57,15 @@ function workIn(events: readonly TraceEvent[]): KeyWork[] {
 		const until = presses[index + 1]?.ts ?? Infinity;
 		const own = tasks.filter(({ ts, dur = 0 }) => ts + dur > press.ts && ts < until);
 		const painted = paints.find(({ ts }) => ts > press.ts)?.ts ?? Infinity;
+		const before = own.filter(({ ts }) => ts <= painted);
 		return {
-			toPaint: sum(own.filter(({ ts }) => ts <= painted)),
-			all: sum(own),
+			toPaint: sum(before.map(({ dur = 0 }) => dur)),
+			toPaintProcessor: sum(before.map(({ tdur = Infinity }) => tdur)),
+			all: sum(own.map(({ dur = 0 }) => dur)),
 		};
 	});
 }
 
-function sum(tasks: readonly TraceEvent[]): number {
-	return tasks.reduce((total, { dur = 0 }) => total + dur, 0) / 1000;
+function sum(times: readonly number[]): number {
+	return times.reduce((total, one) => total + one, 0) / 1000;
 }
