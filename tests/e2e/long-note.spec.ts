@@ -15,7 +15,7 @@ test('in a note of 2,000 lines only cells near the window have editors, and any 
 	await page.reload();
 	await expect(page.locator('.cm-content').first()).toBeVisible();
 	const register = page.getByRole('navigation', { name: 'Register' });
-	await expect(register.getByRole('button', { name: 'Show 1750 more' })).toBeVisible();
+	await expect(register.getByRole('button', { name: 'Show 1940 more' })).toBeVisible();
 	await register.getByRole('searchbox').fill('x5_399');
 	await expect(page.getByRole('link', { name: /^x5_399, 404$/ })).toBeVisible();
 	await register.getByRole('searchbox').fill('');
