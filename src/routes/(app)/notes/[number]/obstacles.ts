@@ -3,7 +3,7 @@ import type { Saving } from '$lib/client/saving.svelte';
 import type { NoteCell } from '$lib/note/document';
 import type { Thread } from '$lib/schemas/comments';
 
-export interface Obstacle {
+interface Obstacle {
 	text: string;
 	cellId?: string;
 	/** It stops proposing; otherwise it stops freezing only. */
