@@ -49,3 +49,8 @@ test('who may not write is told so instead of being told that something is saved
 	);
 	expect(savingWords({ state: 'offline', count: 0, kept: 0 }, reading, clock)).toBe('Offline');
 });
+
+test('nothing is being saved before anything was changed', () => {
+	expect(savingWords({ state: 'saving', count: 0, kept: 0 }, open, clock)).toBe('Opening…');
+	expect(savingWords({ state: 'saving', count: 2, kept: 0 }, open, clock)).toBe('Saving');
+});

@@ -1,5 +1,6 @@
 import type { Saving } from '$lib/client/saving.svelte';
 
+const opening = 'Opening…';
 const changes = (count: number) => `${count} ${count === 1 ? 'change' : 'changes'}`;
 
 /** What the page says of its unsaved changes. `clock` turns an ISO time into the hour as people read it. */
@@ -8,7 +9,7 @@ export function savingWords(
 	{ ready, mayWrite }: { ready: boolean; mayWrite: boolean },
 	clock: (at: string) => string,
 ): string {
-	if (!ready && state !== 'offline' && state !== 'refused') return 'Opening…';
+	if (!ready && state !== 'offline' && state !== 'refused') return opening;
 	if (!mayWrite && count === 0 && state !== 'offline' && state !== 'refused') {
 		return 'To read and comment';
 	}
@@ -22,7 +23,8 @@ export function savingWords(
 				? `Offline: ${changes(count)} on this page only. ${failure}`
 				: `Offline: ${changes(count)} not saved`;
 		case 'saving':
-			return 'Saving';
+			// What an earlier page left is still being merged.
+			return count > 0 ? 'Saving' : opening;
 		case 'saved':
 			return at ? `Saved ${clock(at)}` : 'Saved';
 	}
