@@ -21,7 +21,8 @@ interface TraceEvent {
 	args?: { data?: { type?: string } };
 }
 
-const categories = ['devtools.timeline', 'disabled-by-default-devtools.timeline'];
+/** Without the timeline's own tasks: with them the browser counts every node of the page at each frame, 1.5 ms of a long note. */
+const categories = ['devtools.timeline', 'toplevel'];
 
 /** Types keys where the cursor stands, one after the other, and gives the work of each. */
 export async function keyWork(
@@ -51,7 +52,7 @@ function workIn(events: readonly TraceEvent[]): KeyWork[] {
 	const main = events
 		.filter(({ pid, tid }) => pid === first.pid && tid === first.tid)
 		.sort((a, b) => a.ts - b.ts);
-	const tasks = main.filter(({ name }) => name === 'RunTask');
+	const tasks = main.filter(({ name }) => name === 'ThreadControllerImpl::RunTask');
 	const paints = main.filter(({ name }) => name === 'Paint');
 	return presses.map((press, index) => {
 		const until = presses[index + 1]?.ts ?? Infinity;

@@ -331,3 +331,51 @@ test('comments appear by themselves on the sheet and on the page of the candidat
 	await expect(page.getByText(words)).toBeVisible();
 	await other.context.close();
 });
+
+test('a key is painted before it is sent, and what waits is sent at once when the page goes out of sight', async ({
+	page,
+}) => {
+	await page.addInitScript(() => {
+		const order: string[] = [];
+		Object.assign(window, { order });
+		WebSocket.prototype.send = new Proxy(Reflect.get(WebSocket.prototype, 'send'), {
+			apply(send, socket: WebSocket, message: [string]) {
+				if (socket.url.includes('/sync/')) order.push('sent');
+				Reflect.apply(send, socket, message);
+			},
+		});
+		addEventListener(
+			'keydown',
+			() => {
+				order.push('key');
+				requestAnimationFrame(() => order.push('frame'));
+			},
+			true,
+		);
+	});
+	await signIn(page, 'engineer');
+	await newNote(page, 'Painted first');
+	await addCell(page, 'calculation', 'a = 1');
+	await expect(saving(page)).toHaveText(/^Saved/);
+	await lineOf(page, 'a =').click();
+	await page.keyboard.press('End');
+
+	await page.evaluate(() => ((window as unknown as { order: string[] }).order.length = 0));
+	await page.keyboard.press('2');
+	await expect(figure(page, 'a')).toHaveText('12');
+	const order = await page.evaluate(() => (window as unknown as { order: string[] }).order);
+	expect(order.slice(0, 3)).toEqual(['key', 'frame', 'sent']);
+
+	const sentAtOnce = await page.evaluate(async () => {
+		const { order } = window as unknown as { order: string[] };
+		order.length = 0;
+		document.execCommand('insertText', false, '3');
+		// The editor reads what was written into it in a microtask.
+		await Promise.resolve();
+		const before = order.length;
+		dispatchEvent(new PageTransitionEvent('pagehide'));
+		return [before, order.length > 0];
+	});
+	expect(sentAtOnce).toEqual([0, true]);
+	await expect(figure(page, 'a')).toHaveText('123');
+});

@@ -18,6 +18,7 @@ import { encodeAwarenessUpdate, type Awareness } from 'y-protocols/awareness';
 import { messageYjsSyncStep1, messageYjsSyncStep2 } from 'y-protocols/sync';
 import { WebsocketProvider } from 'y-websocket';
 import * as Y from 'yjs';
+import { afterPaint } from './after-paint';
 import type { UnsavedEdit } from './outbox';
 import type { UnsavedEdits } from './unsaved-edits';
 
@@ -71,7 +72,8 @@ export class NoteSocket {
 	#greeted = false;
 	/** The newest that came over this socket. */
 	#results: Evaluation | undefined;
-	#flushing = false;
+	/** What waits for the next paint. */
+	readonly #owed = new Set<'edits' | 'presence'>();
 
 	constructor(options: Options) {
 		this.#options = options;
@@ -105,7 +107,7 @@ export class NoteSocket {
 			Y.applyUpdate(this.#options.doc, edit.update, this);
 			this.#unsaved.outbox.restore(edit);
 		}
-		this.#flush();
+		this.#sendEdits();
 	}
 
 	/** Gives a connection that may be dead up and makes a new one at once. */
@@ -116,6 +118,7 @@ export class NoteSocket {
 	}
 
 	destroy(): void {
+		this.flush();
 		this.#options.doc.off('update', this.#onUpdate);
 		this.#options.awareness.off('update', this.#onPresence);
 		this.#provider.destroy();
@@ -139,7 +142,7 @@ export class NoteSocket {
 		on<Saved>('saved', (saved) => {
 			this.#unsaved.outbox.settle(saved.ids);
 			events.onSaved(saved);
-			this.#flush();
+			this.#sendEdits();
 		});
 		on<Refused>('refused', ({ reason }) => {
 			// What was made after it needs it, and would wait for it in the note for ever.
@@ -160,7 +163,7 @@ export class NoteSocket {
 		this.connection = 'online';
 		this.notice = leftOut ? leftOutSentence : undefined;
 		this.mayWrite = mayWrite;
-		this.#flush();
+		this.#sendEdits();
 	}
 
 	#onSync(decoder: decoding.Decoder): void {
@@ -203,23 +206,32 @@ export class NoteSocket {
 		if ((known.get(doc.clientID) ?? 0) <= lacking) return;
 		known.set(doc.clientID, lacking);
 		this.#unsaved.add(Y.encodeStateAsUpdate(doc, Y.encodeStateVector(known)));
-		this.#flush();
+		this.#sendEdits();
 	}
 
 	readonly #onUpdate = (update: Uint8Array, origin: unknown) => {
 		if (origin === this) return;
 		this.#unsaved.add(update);
 		this.#options.events.onChange();
-		if (this.#flushing) return;
 		// Changes made in one go, as an undo over several cells, travel as one edit.
-		this.#flushing = true;
-		queueMicrotask(() => {
-			this.#flushing = false;
-			this.#flush();
-		});
+		this.#later('edits');
 	};
 
-	#flush(): void {
+	/** Notes down what is to be sent, and sends it with all else once this page shows what was done. */
+	#later(what: 'edits' | 'presence'): void {
+		if (this.#owed.size === 0) afterPaint(() => this.flush());
+		this.#owed.add(what);
+	}
+
+	/** Sends now what waits for the next paint, as before the page goes out of sight. */
+	flush(): void {
+		const owed = [...this.#owed];
+		this.#owed.clear();
+		if (owed.includes('edits')) this.#sendEdits();
+		if (owed.includes('presence')) this.#sendPresence();
+	}
+
+	#sendEdits(): void {
 		if (this.connection === 'online') {
 			for (const { id, update } of this.#unsaved.outbox.take()) {
 				const message = encodeEdit(id, update);
@@ -236,7 +248,7 @@ export class NoteSocket {
 
 	readonly #onPresence = (changes: Record<'added' | 'updated' | 'removed', number[]>) => {
 		const { clientID } = this.#options.doc;
-		if (Object.values(changes).some((ids) => ids.includes(clientID))) this.#sendPresence();
+		if (Object.values(changes).some((ids) => ids.includes(clientID))) this.#later('presence');
 	};
 
 	#sendPresence(): void {

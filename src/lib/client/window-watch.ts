@@ -10,7 +10,6 @@ interface Events {
 /** Listens to the page's window, where there is one; returns what ends that. */
 export function watchWindow({ onLeaving, onHidden, onNetwork }: Events): () => void {
 	if (typeof window === 'undefined') return () => undefined;
-	window.addEventListener('beforeunload', onLeaving);
 	const ending = new AbortController();
 	const { signal } = ending;
 	window.addEventListener('beforeunload', onLeaving, { signal });

@@ -226,7 +226,10 @@ export class WorkingCopy {
 		});
 		this.#stopWatching = watchWindow({
 			onLeaving: (event) => this.isUnsaved && event.preventDefault(),
-			onHidden: () => void this.#saving.edits.write(),
+			onHidden: () => {
+				socket.flush();
+				void this.#saving.edits.write();
+			},
 			// What is connected may be dead.
 			onNetwork: () => socket.reconnect(),
 		});
