@@ -1,4 +1,6 @@
-import type { BrowserContext } from '@playwright/test';
+import type { BrowserContext, Page } from '@playwright/test';
+import { createServer } from 'node:http';
+import type { AddressInfo } from 'node:net';
 import { quantile, row, type Row } from './row';
 
 const visits = 9;
@@ -17,19 +19,31 @@ interface Visit {
 /** How soon the first figure of a note is on the screen of a slow computer, and how much moves until the page is quiet. */
 export async function arrivalRows(context: BrowserContext, path: string): Promise<Row[]> {
 	const sample: Visit[] = [];
-	// Its results are stored from then on, as those of every note that somebody has worked in; and the server has run
-	// for a while.
-	await visitOf(context, path);
-	for (let count = 0; count < warmUps; count++) await (await context.request.get(path)).text();
-	for (let visit = 0; visit < visits; visit++) sample.push(await visitOf(context, path));
+	const bareSample: Visit[] = [];
+	const bare = await serveBarePage();
+	try {
+		// Its results are stored from then on, as those of every note that somebody has worked in; and the server has
+		// run for a while.
+		await visitOf(context, path, untilQuiet);
+		for (let count = 0; count < warmUps; count++) await (await context.request.get(path)).text();
+		for (let visit = 0; visit < visits; visit++) {
+			sample.push(await visitOf(context, path, untilQuiet));
+			bareSample.push(await visitOf(context, bare.url));
+		}
+	} finally {
+		bare.close();
+	}
+	const median = (of: readonly Visit[]) =>
+		quantile(
+			of.map(({ figureMs }) => figureMs),
+			0.5,
+		);
 	return [
 		row({
 			id: 'page.first-figure',
-			what: `from navigation to the first figure of a note of 60 lines, ${slowDown} x slower CPU, median of ${visits}`,
-			value: quantile(
-				sample.map(({ figureMs }) => figureMs),
-				0.5,
-			),
+			what: `from navigation to the first figure of a note of 60 lines, ${slowDown} x slower CPU, median of ${visits}; peer: a page of one figure and nothing else`,
+			value: median(sample),
+			peer: median(bareSample),
 			unit: 'ms',
 			target: 1000,
 		}),
@@ -43,7 +57,35 @@ export async function arrivalRows(context: BrowserContext, path: string): Promis
 	];
 }
 
-async function visitOf(context: BrowserContext, path: string): Promise<Visit> {
+/** A page that holds one figure, without styles, fonts and scripts. */
+async function serveBarePage(): Promise<{ url: string; close: () => void }> {
+	const server = createServer((_, response) => {
+		response.setHeader('content-type', 'text/html; charset=utf-8');
+		response.end('<!doctype html><title>Bare</title><p data-quantity="tap_60">4.966 79 V');
+	});
+	await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
+	const { port } = server.address() as AddressInfo;
+	return {
+		url: `http://localhost:${port}/`,
+		close: () => {
+			server.closeAllConnections();
+			server.close();
+		},
+	};
+}
+
+/** Until editors and figures are there and everything is saved. */
+async function untilQuiet(page: Page): Promise<void> {
+	await page.locator('.cm-content').first().waitFor();
+	await page.locator('[data-quantity]').first().waitFor();
+	await page.locator('[data-saving]', { hasText: /^Saved/ }).waitFor();
+}
+
+async function visitOf(
+	context: BrowserContext,
+	path: string,
+	quiet: (page: Page) => Promise<void> = () => Promise.resolve(),
+): Promise<Visit> {
 	const page = await context.newPage();
 	const devtools = await context.newCDPSession(page);
 	await devtools.send('Emulation.setCPUThrottlingRate', { rate: slowDown });
@@ -71,9 +113,7 @@ async function visitOf(context: BrowserContext, path: string): Promise<Visit> {
 	});
 	await page.evaluate((ms) => new Promise((resolve) => setTimeout(resolve, ms)), tabSettlesMs);
 	await page.goto(path, { waitUntil: 'networkidle' });
-	await page.locator('.cm-content').first().waitFor();
-	await page.locator('[data-quantity]').first().waitFor();
-	await page.locator('[data-saving]', { hasText: /^Saved/ }).waitFor();
+	await quiet(page);
 	// Two frames later everything that the figures moved has been counted.
 	await page.evaluate(
 		() => new Promise((resolve) => requestAnimationFrame(() => requestAnimationFrame(resolve))),
