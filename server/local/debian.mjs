@@ -57,6 +57,8 @@ const peers = {
 	'poppler-utils': '/usr/bin/pdftotext',
 	qpdf: '/usr/bin/qpdf',
 	'python3-uncertainties': '/usr/lib/python3/dist-packages/uncertainties',
+	// recommended by it, and without it there are no correlated values
+	'python3-numpy': '/usr/lib/python3/dist-packages/numpy',
 };
 
 /** Shows what processes ask of the kernel. Without it the order of writing and answering is seen less closely. */

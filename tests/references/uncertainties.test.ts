@@ -6,12 +6,11 @@ import { hasPythonModule, printed, python } from '../support/programs';
 import { estimates, smooth } from './doubt/formulas';
 import { inLanguage, inPython } from './doubt/formula-text';
 
-// python3-uncertainties 3.1.6 (Debian 12), linear propagation with derivatives of its own.
-const present = hasPythonModule(
-	'uncertainties',
-	'python3-uncertainties',
-	'The comparison with uncertainties',
-);
+// python3-uncertainties 3.1.6 (Debian 12), linear propagation with derivatives of its own; numpy for its correlated values.
+const whatFor = 'The comparison with uncertainties';
+const present =
+	hasPythonModule('uncertainties', 'python3-uncertainties', whatFor) &&
+	hasPythonModule('numpy', 'python3-numpy', whatFor);
 const script = fileURLToPath(new URL('./propagate.py', import.meta.url));
 
 interface Case {

@@ -9,10 +9,15 @@ export function hasProgram(program: string, debianPackage: string, whatFor: stri
 	return false;
 }
 
-/** What a program prints for an input. Throws where it cannot be run. */
+/** What a program prints for an input. Throws where it cannot be run, or prints nothing and says why. */
 export function printed(program: string, args: readonly string[], input: string): string {
-	const { error, stdout } = spawnSync(program, args, { input, encoding: 'utf8', timeout: 20_000 });
+	const { error, stdout, stderr } = spawnSync(program, args, {
+		input,
+		encoding: 'utf8',
+		timeout: 20_000,
+	});
 	if (error) throw error;
+	if (stdout === '' && stderr !== '') throw new Error(stderr);
 	return stdout;
 }
 
