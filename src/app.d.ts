@@ -18,4 +18,11 @@ declare global {
 	}
 }
 
+declare module 'svelte/elements' {
+	interface HTMLLinkAttributes {
+		/** HTML Standard, blocking attributes: nothing is drawn before what is linked is there. */
+		blocking?: 'render';
+	}
+}
+
 export {};

@@ -277,3 +277,14 @@ test('pictures are kept of the pages beside the notes', async ({ page }) => {
 		await shoot(page, path.slice(1));
 	}
 });
+
+test("a note's page runs without an error in the console", async ({ page }) => {
+	const errors: string[] = [];
+	page.on('console', (message) => message.type() === 'error' && errors.push(message.text()));
+	page.on('pageerror', ({ message }) => errors.push(message));
+	await signIn(page, 'engineer');
+	await page.goto('/notes/MN-001');
+	await expect(page.locator('[data-saving]')).toHaveText(/^Saved/);
+	expect(await page.locator('link[rel=expect]').getAttribute('blocking')).toBe('render');
+	expect(errors).toEqual([]);
+});
