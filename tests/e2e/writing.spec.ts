@@ -208,6 +208,8 @@ test('text shows formulas, tables and lists, and what is hostile in them does no
 		void dialog.dismiss();
 	});
 	await dividerNote(page, 'Formulas');
+	const styles = page.locator('head link[rel=stylesheet][href*=katex]');
+	await expect(styles).toHaveCount(0);
 	await addCell(
 		page,
 		'text',
@@ -233,9 +235,16 @@ test('text shows formulas, tables and lists, and what is hostile in them does no
 	await expect(text.getByRole('cell', { name: '0.47' })).toBeVisible();
 	await expect(text.locator('a')).toHaveCount(1);
 	await expect(text.locator('img, script')).toHaveCount(0);
+	await expect(styles).toHaveCount(1);
 	await shoot(page, 'editor-prose');
 	await page.reload();
 	await expect(text.locator('.katex-display')).toBeVisible();
+	// The MathML beside the drawn formula is for screen readers; their styles hide it, and stand in the HTML already.
+	await expect(text.locator('.katex-mathml').first()).toHaveCSS('position', 'absolute');
+	expect(await (await page.request.get(page.url())).text()).toMatch(
+		/<link rel="stylesheet" href="[^"]*katex/,
+	);
+	await expect(styles).toHaveCount(1);
 	expect(dialogs).toEqual([]);
 });
 
