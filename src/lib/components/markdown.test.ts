@@ -196,6 +196,10 @@ describe('what it shows', () => {
 		expect(toHtml('$V = {{Vadc}}$', find)).toContain('<mtext>2.41</mtext>');
 	});
 
+	test('what a formula may not hold stands in the colour of faults, which is readable on a dark sheet too', () => {
+		expect(toHtml('$\\href{https://a.example}{x}$', find)).toContain('style="color:var(--fail);"');
+	});
+
 	test.each(['5 $ and 6 $', 'US$5 or $6', 'a $ b$ c', '\\$x\\$', '`$x$`', '$', '$$', '$$\nx'])(
 		'%j holds no formula',
 		(source) => expect(toHtml(source, find)).not.toContain('katex'),

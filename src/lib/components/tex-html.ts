@@ -25,6 +25,8 @@ function set(tex: string, displayMode: boolean): string | undefined {
 			trust: false,
 			strict: 'ignore',
 			throwOnError: true,
+			// KaTeX's own red is hard to read on the dark sheet.
+			errorColor: 'var(--fail)',
 			maxExpand: 100,
 			maxSize: 10,
 		});
