@@ -5,7 +5,7 @@ import { formulas } from './markdown-formulas';
 import type { Typeset } from './tex.svelte';
 
 const md = MarkdownIt({ html: false, linkify: false, typographer: false, maxNesting: 24 });
-const { escapeHtml } = md.utils;
+export const { escapeHtml } = md.utils;
 
 // A picture from elsewhere would tell its host who reads the note.
 md.disable('image');
