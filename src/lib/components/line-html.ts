@@ -1,5 +1,5 @@
 import { typeset } from '$lib/calc/symbol';
-import { splitLine, tokenize, type Token } from './lines';
+import { tokenize, type LineParts, type Token } from './lines';
 import { escapeHtml } from './markdown';
 
 /*
@@ -18,8 +18,7 @@ function pieceHtml({ kind, text }: Token): string {
 }
 
 /** A worked line: the name it defines typeset, its formula behind. The same pieces as in an editor. */
-export function workedHtml(text: string): string {
-	const { name, nameTo, formulaFrom } = splitLine(text);
+export function workedHtml(text: string, { name, nameTo, formulaFrom }: LineParts): string {
 	if (name === undefined) return formulaHtml(text);
 	const { glyph, sub } = typeset(name);
 	const below = sub && `<span class="sym-sub">${escapeHtml(sub)}</span>`;
