@@ -3,7 +3,8 @@ import * as Y from 'yjs';
 import { messageType } from '$lib/protocol/messages';
 import * as store from '$lib/server/evaluation/store';
 import { loadDocument } from '$lib/server/notes/updates';
-import { contentOf, eventually, openPage, saved, storedContent } from '../support/page';
+import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
+import { makeMember, signIn } from '../support/people';
 import { RawSocket } from '../support/raw-socket';
 import { startSyncServer } from '../support/server';
 import { startSyncBench, type SyncBench } from '../support/sync';
@@ -87,4 +88,28 @@ test('a page that is asked for what an edit needs gives it, and both pages get e
 	await socket.close();
 	author.destroy();
 	peer.destroy();
+});
+
+test('what was written offline is taken although somebody else’s edit waits for what it needs', async () => {
+	const noteId = await bench.makeNote();
+	const { first, second, title } = await twoEdits(noteId);
+	const other = await makeMember(bench.engineer, 'engineer');
+	const doomed = await startSyncServer();
+	const page = await openPage(doomed, { noteId, cookie: await signIn(other) });
+	await doomed.stop('SIGKILL');
+	await eventually(() => page.connection === 'offline');
+	type(page, page.cells[0]!.id, 'offline = 1\n');
+	const socket = await new RawSocket(bench.server, noteId, { cookie: bench.cookie }).greeted();
+	await socket.save('second', second);
+
+	const back = await startSyncServer({ PORT: String(doomed.port) });
+	await saved(page);
+	expect(page.notice).toBeUndefined();
+	expect((await storedContent(noteId)).cells[0]!.source).toContain('offline = 1');
+	await socket.save('first', first);
+	await eventually(() => page.title === title);
+	expect(contentOf(page)).toEqual(await storedContent(noteId));
+	await socket.close();
+	page.destroy();
+	await back.stop();
 });

@@ -1,5 +1,6 @@
 import type { Evaluation } from '$lib/calc/results';
 import { applyChanges, type Changes } from '$lib/protocol/changes';
+import { ownChanges } from '$lib/note/own-changes';
 import { closeCode, closeSentence, maxMessageBytes } from '$lib/protocol/closing';
 import {
 	decodeJson,
@@ -202,10 +203,8 @@ export class NoteSocket {
 	#giveOwn(stateVector: Uint8Array): void {
 		const { doc } = this.#options;
 		const lacking = Y.decodeStateVector(stateVector).get(doc.clientID) ?? 0;
-		const known = Y.decodeStateVector(Y.encodeStateVector(doc));
-		if ((known.get(doc.clientID) ?? 0) <= lacking) return;
-		known.set(doc.clientID, lacking);
-		this.#unsaved.add(Y.encodeStateAsUpdate(doc, Y.encodeStateVector(known)));
+		if (Y.getState(doc.store, doc.clientID) <= lacking) return;
+		this.#unsaved.add(ownChanges(doc, lacking));
 		this.#sendEdits();
 	}
 

@@ -1,5 +1,6 @@
 import { AppError } from '$lib/errors';
 import { cellsOf, seedContent, type NoteCell } from '$lib/note/document';
+import { ownChanges } from '$lib/note/own-changes';
 import { clientsIn, touchedBy } from '$lib/note/touched';
 import { and, asc, eq, gt, inArray } from 'drizzle-orm';
 import * as Y from 'yjs';
@@ -98,9 +99,8 @@ export async function change(
 	make: (doc: Y.Doc) => void,
 ): Promise<void> {
 	const { doc } = await loadDocument(noteId);
-	const before = Y.encodeStateVector(doc);
 	const cells = touchedBy(doc, () => doc.transact(() => make(doc)));
-	const bytes = Y.encodeStateAsUpdate(doc, before);
+	const bytes = ownChanges(doc, 0);
 	doc.destroy();
 	const id = crypto.randomUUID();
 	await append(noteId, [{ id, personId, bytes, clients: clientsIn(bytes), cells }]);
