@@ -2,7 +2,7 @@ import { engineVersion } from '$lib/calc/engine';
 import type { Evaluation } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { toContent, type NoteContent } from '$lib/note/document';
-import { and, eq, lte, ne } from 'drizzle-orm';
+import { and, eq, getTableColumns, lte, ne, sql } from 'drizzle-orm';
 import { db } from '../db/client';
 import { evaluation, note } from '../db/schema/notes';
 import * as updates from '../notes/updates';
@@ -16,6 +16,14 @@ export interface Stored {
 	results: Evaluation;
 }
 
+/** What an insert offers for each column: named in its place, a note's results travel once. */
+const offered = Object.fromEntries(
+	Object.entries(getTableColumns(evaluation)).map(([key, { name }]) => [
+		key,
+		sql`excluded.${sql.identifier(name)}`,
+	]),
+);
+
 /** Keeps the results of a note at a sequence number, and its title for lists. Never replaces those of a newer one. */
 export async function save(noteId: string, { seq, content, results }: Stored): Promise<void> {
 	const row = { noteId, seq, engine: results.engine, content, results, ...tally(results) };
@@ -25,7 +33,7 @@ export async function save(noteId: string, { seq, content, results }: Stored): P
 			.values(row)
 			.onConflictDoUpdate({
 				target: evaluation.noteId,
-				set: { ...row, at: new Date() },
+				set: offered,
 				setWhere: lte(evaluation.seq, seq),
 			})
 			.returning({ seq: evaluation.seq });

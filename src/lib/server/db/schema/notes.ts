@@ -8,6 +8,7 @@ import {
 	customType,
 	index,
 	integer,
+	json,
 	jsonb,
 	pgTable,
 	primaryKey,
@@ -135,7 +136,8 @@ export const evaluation = pgTable('evaluation', {
 	seq: bigint('seq', { mode: 'number' }).notNull(),
 	engine: text('engine').notNull(),
 	content: jsonb('content').$type<NoteContent>().notNull(),
-	results: jsonb('results').$type<Evaluation>().notNull(),
+	/** Written up to once a second while somebody types and read only as a whole, so it stays the text it came as. */
+	results: json('results').$type<Evaluation>().notNull(),
 	met: integer('met').notNull(),
 	notMet: integer('not_met').notNull(),
 	undecided: integer('undecided').notNull(),
