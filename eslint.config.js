@@ -54,6 +54,21 @@ export default ts.config(
 		},
 	},
 	{
+		// Yjs alone can leave updates waiting for each other.
+		files: ['src/**/*.ts', 'src/**/*.svelte', 'server/**/*.ts'],
+		ignores: ['src/lib/note/take-updates.ts', '**/*.test.ts'],
+		rules: {
+			'no-restricted-properties': [
+				'error',
+				...['applyUpdate', 'applyUpdateV2'].map((property) => ({
+					object: 'Y',
+					property,
+					message: 'Use takeUpdates of $lib/note/take-updates.',
+				})),
+			],
+		},
+	},
+	{
 		// Scripts that run before anything is installed; their JSDoc casts are checked by the compiler, which the rules
 		// about `any` do not see.
 		files: ['**/*.mjs', '*.config.js'],

@@ -1,4 +1,5 @@
 import { strangenessOf } from '$lib/note/shape';
+import { takeUpdates } from '$lib/note/take-updates';
 import * as Y from 'yjs';
 import { maxDocumentBytes, maxPendingBytes } from './limits';
 import { bringsFrom, contradicts } from './restated';
@@ -80,7 +81,7 @@ export class Proof {
 	#apply(update: Uint8Array): boolean {
 		this.#strange = undefined;
 		try {
-			Y.applyUpdate(this.#use(), update);
+			takeUpdates(this.#use(), [update], 'proof');
 			return true;
 		} catch {
 			this.#drop();
@@ -94,7 +95,7 @@ export class Proof {
 		const state = Y.encodeStateAsUpdate(this.#doc);
 		this.#bytes = state.length;
 		const copy = new Y.Doc();
-		Y.applyUpdate(copy, state);
+		takeUpdates(copy, [state], 'proof');
 		copy.on('afterTransaction', (transaction) => (this.#strange ??= strangenessOf(transaction)));
 		this.#timer = setInterval(() => {
 			if (performance.now() - this.#usedAt > idleMs) this.#drop();

@@ -1,6 +1,7 @@
 import { AppError } from '$lib/errors';
 import { cellsOf, toContent } from '$lib/note/document';
 import { countStrange } from '$lib/note/shape';
+import { takeUpdates } from '$lib/note/take-updates';
 import { clientsIn, touchedBy } from '$lib/note/touched';
 import { closeCode } from '$lib/protocol/closing';
 import {
@@ -260,7 +261,7 @@ export class Room {
 		// What it completes may be another page's: then the sender lacks that, and gets everything too.
 		const before = updates.isPending(this.#doc) ? Y.encodeStateVector(this.#doc) : undefined;
 		const origin = before ? 'pending' : connection;
-		const cells = touchedBy(this.#doc, () => Y.applyUpdate(this.#doc, update, origin));
+		const cells = touchedBy(this.#doc, () => takeUpdates(this.#doc, [update], origin));
 		const { personId } = connection.actor;
 		const by = { personId, owners: this.#owners };
 		// The very bytes that came: an update that waits for another makes no Yjs event and is stored all the same.
@@ -365,7 +366,11 @@ export class Room {
 				if (!this.#owners.has(client)) this.#owners.set(client, personId);
 			}
 		}
-		updates.applyRows(this.#doc, rows, 'database');
+		takeUpdates(
+			this.#doc,
+			rows.map(({ bytes }) => bytes),
+			'database',
+		);
 		this.#authors.hear(rows.flatMap(({ cells }) => cells));
 	}
 

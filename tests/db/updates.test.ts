@@ -4,6 +4,7 @@ import pg from 'pg';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import * as Y from 'yjs';
 import { addCell, placedCells, removeCell, toContent } from '$lib/note/document';
+import { takeUpdates } from '$lib/note/take-updates';
 import type { Actor } from '$lib/server/auth/access';
 import { db } from '$lib/server/db/client';
 import { noteUpdate } from '$lib/server/db/schema/notes';
@@ -58,7 +59,11 @@ async function standing(noteId: string) {
 async function ofLog(noteId: string) {
 	const rows = await updates.rowsSince(noteId, 0);
 	const doc = new Y.Doc();
-	updates.applyRows(doc, rows, 'log');
+	takeUpdates(
+		doc,
+		rows.map(({ bytes }) => bytes),
+		'log',
+	);
 	return {
 		content: toContent(doc),
 		vector: Object.fromEntries(Y.decodeStateVector(Y.encodeStateVector(doc))),

@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import * as Y from 'yjs';
 import { placedCells, toContent } from '$lib/note/document';
+import { takeUpdates } from '$lib/note/take-updates';
 import { db } from '$lib/server/db/client';
 import * as updates from '$lib/server/notes/updates';
 import type { Actor } from '$lib/server/auth/access';
@@ -64,7 +65,12 @@ const vectorOf = (doc: Y.Doc) => Object.fromEntries(Y.decodeStateVector(Y.encode
 /** What the stored log says by itself, what is loaded (from snapshot and tail), and who wrote. */
 async function standing(noteId: string) {
 	const ofLog = new Y.Doc();
-	updates.applyRows(ofLog, await updates.rowsSince(noteId, 0), 'log');
+	const rows = await updates.rowsSince(noteId, 0);
+	takeUpdates(
+		ofLog,
+		rows.map(({ bytes }) => bytes),
+		'log',
+	);
 	const { doc, seq } = await updates.loadDocument(noteId);
 	expect(toContent(doc)).toEqual(toContent(ofLog));
 	expect(vectorOf(doc)).toEqual(vectorOf(ofLog));

@@ -4,6 +4,7 @@ import { messageType } from '$lib/protocol/messages';
 import * as store from '$lib/server/evaluation/store';
 import { loadDocument } from '$lib/server/notes/updates';
 import { contentOf, eventually, openPage, saved, storedContent, type } from '../support/page';
+import { outOfOrder } from '../support/out-of-order';
 import { makeMember, signIn } from '../support/people';
 import { RawSocket } from '../support/raw-socket';
 import { startSyncServer } from '../support/server';
@@ -112,4 +113,19 @@ test('what was written offline is taken although somebody else’s edit waits fo
 	await socket.close();
 	page.destroy();
 	await back.stop();
+});
+
+test('edits that come out of their authors’ order are whole for those who have the note open', async () => {
+	const noteId = await bench.makeNote();
+	const page = await openPage(bench.server, { noteId, cookie: bench.cookie });
+	const { doc } = await loadDocument(noteId);
+	const { updates, whole } = outOfOrder(Y.encodeStateAsUpdate(doc), 'title');
+	const socket = await new RawSocket(bench.server, noteId, { cookie: bench.cookie }).greeted();
+	for (const [at, update] of updates.entries()) await socket.save(`edit-${at}`, update);
+	await eventually(() => page.title === whole('Divider'));
+	expect(contentOf(page)).toEqual(await storedContent(noteId));
+	expect((await loadDocument(noteId)).pending).toBe(false);
+	await eventually(async () => (await store.find(noteId))?.content.title === whole('Divider'));
+	await socket.close();
+	page.destroy();
 });

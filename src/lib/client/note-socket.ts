@@ -1,6 +1,7 @@
 import type { Evaluation } from '$lib/calc/results';
 import { applyChanges, type Changes } from '$lib/protocol/changes';
 import { ownChanges } from '$lib/note/own-changes';
+import { takeUpdates } from '$lib/note/take-updates';
 import { closeCode, closeSentence, maxMessageBytes } from '$lib/protocol/closing';
 import {
 	decodeJson,
@@ -105,7 +106,7 @@ export class NoteSocket {
 	adopt(edits: readonly UnsavedEdit[]): void {
 		if (this.connection === 'closed') return;
 		for (const edit of edits) {
-			Y.applyUpdate(this.#options.doc, edit.update, this);
+			this.#take(edit.update);
 			this.#unsaved.outbox.restore(edit);
 		}
 		this.#sendEdits();
@@ -169,7 +170,6 @@ export class NoteSocket {
 
 	#onSync(decoder: decoding.Decoder): void {
 		if (!this.#greeted) return;
-		const { doc } = this.#options;
 		const step = decoding.readVarUint(decoder);
 		const bytes = decoding.readVarUint8Array(decoder);
 		if (step === messageYjsSyncStep1) {
@@ -177,7 +177,7 @@ export class NoteSocket {
 			return;
 		}
 		if (step === messageYjsSyncStep2) this.#onWhole(bytes);
-		else Y.applyUpdate(doc, bytes, this);
+		else this.#take(bytes);
 	}
 
 	/** A long answer comes in parts, and the next one when the server hears that this one has come. */
@@ -190,10 +190,14 @@ export class NoteSocket {
 
 	/** Everything that the page lacked. */
 	#onWhole(bytes: Uint8Array): void {
-		Y.applyUpdate(this.#options.doc, bytes, this);
+		this.#take(bytes);
 		this.#provider.synced = true;
 		this.synced = true;
 		this.#options.events.onChange();
+	}
+
+	#take(update: Uint8Array): void {
+		takeUpdates(this.#options.doc, [update], this);
 	}
 
 	/**

@@ -1,4 +1,5 @@
 import { AppError } from '$lib/errors';
+import { takeUpdates } from '$lib/note/take-updates';
 import { and, desc, eq, gt, lte, sql } from 'drizzle-orm';
 import * as Y from 'yjs';
 import type { Connection } from '../db/client';
@@ -54,10 +55,7 @@ export async function readState(
 /** Makes a document of a stored state, in one Yjs transaction. Throws where an update cannot be read. */
 export function documentOf({ snapshot, updates }: StoredState): Y.Doc {
 	const doc = new Y.Doc();
-	doc.transact(() => {
-		if (snapshot) Y.applyUpdate(doc, snapshot.state, 'database');
-		for (const update of updates) Y.applyUpdate(doc, update, 'database');
-	}, 'database');
+	takeUpdates(doc, snapshot ? [snapshot.state, ...updates] : updates, 'database');
 	return doc;
 }
 

@@ -35,17 +35,6 @@ export async function rowsSince(noteId: string, seq: number): Promise<Row[]> {
 		.orderBy(asc(noteUpdate.seq));
 }
 
-/** Applies rows in order in one Yjs transaction. Throws where a row cannot be read. */
-export function applyRows(
-	doc: Y.Doc,
-	rows: readonly { bytes: Uint8Array }[],
-	origin: unknown,
-): void {
-	doc.transact(() => {
-		for (const row of rows) Y.applyUpdate(doc, row.bytes, origin);
-	}, origin);
-}
-
 /** Whether a document holds updates that wait for others before they count. */
 export function isPending(doc: Y.Doc): boolean {
 	return doc.store.pendingStructs !== null || doc.store.pendingDs !== null;
