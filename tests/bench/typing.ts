@@ -75,9 +75,9 @@ function rowsOf(id: string, where: string, work: Typed, bare: Typed): Row[] {
 			list.map((one) => one[what]),
 			share,
 		);
-	const beside = (keys: keyof Typed, share: number, what: keyof KeyWork) => ({
-		value: of(work[keys], share, what),
-		peer: of(bare[keys], share, what),
+	const beside = (part: keyof Typed, share: number, what: keyof KeyWork) => ({
+		value: of(work[part], share, what),
+		peer: of(bare[part], share, what),
 		unit: 'ms',
 	});
 	const further = `keys ${firstKeys + 1} to ${keys.length}`;
