@@ -5,7 +5,8 @@ import { defaultOptions, evaluate } from '$lib/calc/evaluate';
 import { Memory } from '$lib/calc/memory';
 import { Note } from '$lib/calc/note';
 import { readLines } from '$lib/calc/note-lines';
-import type { Cell } from '$lib/calc/results';
+import type { Cell, Evaluation } from '$lib/calc/results';
+import { changesBetween } from '$lib/protocol/changes';
 import {
 	placeBytes,
 	placeDescriptor,
@@ -17,9 +18,18 @@ import { writeSync } from 'node:fs';
 import { availableParallelism } from 'node:os';
 import { isMainThread, parentPort, Worker } from 'node:worker_threads';
 
-/** What is kept of the notes computed last, so that an edit computes only what depends on it. */
-const calculators = new Map<string, Calculator>();
-const mostCalculators = 4;
+/** A note computed before: an edit computes only what depends on it, and tells only what changed. */
+interface Known {
+	calculator: Calculator;
+	/** The last answers, by their tasks; they share what they have in common. */
+	answers: Map<number, Evaluation>;
+}
+
+/** Those computed last. */
+const known = new Map<string, Known>();
+const mostKnown = 4;
+/** Between the evaluations of an edited note, others of it are asked for, as of its details. */
+const mostAnswers = 3;
 /** Bytes of this process above which nothing is kept. */
 const mostResident = 220e6;
 
@@ -41,7 +51,7 @@ function answer(message: Answer): void {
 	process.send?.(message);
 }
 
-function compute({ id, cells, options, skip, note }: Task): Answer {
+function compute({ id, cells, options, skip, note, since }: Task): Answer {
 	const index = new Map(cells.map((cell, i) => [cell.id, i]));
 	const buffer = Buffer.alloc(placeBytes);
 	const at = (cell: string, line: number) => {
@@ -55,20 +65,31 @@ function compute({ id, cells, options, skip, note }: Task): Answer {
 	const crew = (names: readonly string[], draw: SharedDraw) =>
 		helper().postMessage({ cells, names, draw });
 	const watch = { at, skip, trials, ...(availableParallelism() > 1 && { crew }) };
-	return { kind: 'done', id, results: calculatorOf(note).evaluate(cells, options, watch) };
+	const { calculator, answers } = knownOf(note);
+	const results = calculator.evaluate(cells, options, watch);
+	const before = since === undefined ? undefined : answers.get(since);
+	answers.set(id, results);
+	dropOldest(answers, mostAnswers);
+	if (before) return { kind: 'changed', id, changes: changesBetween(before, results) };
+	return { kind: 'done', id, results };
 }
 
-function calculatorOf(note: string | undefined): Calculator {
-	if (process.memoryUsage.rss() > mostResident) calculators.clear();
-	if (note === undefined) return new Calculator();
-	const calculator = calculators.get(note) ?? new Calculator();
-	calculators.delete(note);
-	calculators.set(note, calculator);
-	for (const oldest of calculators.keys()) {
-		if (calculators.size <= mostCalculators) break;
-		calculators.delete(oldest);
+function knownOf(note: string | undefined): Known {
+	if (process.memoryUsage.rss() > mostResident) known.clear();
+	const fresh = { calculator: new Calculator(), answers: new Map<number, Evaluation>() };
+	if (note === undefined) return fresh;
+	const found = known.get(note) ?? fresh;
+	known.delete(note);
+	known.set(note, found);
+	dropOldest(known, mostKnown);
+	return found;
+}
+
+function dropOldest(kept: Map<unknown, unknown>, most: number): void {
+	for (const oldest of kept.keys()) {
+		if (kept.size <= most) return;
+		kept.delete(oldest);
 	}
-	return calculator;
 }
 
 function tell(buffer: Buffer): void {

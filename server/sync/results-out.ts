@@ -1,5 +1,5 @@
+import { changesBetween } from '$lib/protocol/changes';
 import { encodeText } from '$lib/protocol/messages';
-import { ResultsText } from './results-text';
 
 /** Results ready to be sent, encoded once for all who get the same. */
 export interface SentResults {
@@ -10,22 +10,24 @@ export interface SentResults {
 
 /** The results of a room on their way out. */
 export class ResultsOut {
-	#text: ResultsText | undefined;
+	#last: (SentResults & { results: object }) | undefined;
 
 	/** Newer results, for everybody. */
 	next(results: object): SentResults {
-		const before = this.#text;
-		const now = (this.#text = new ResultsText(results));
-		return {
-			whole: once(() => encodeText('results', now.whole())),
-			...(before && { changes: once(() => encodeText('changes', now.since(before))) }),
+		const before = this.#last?.results;
+		const next = {
+			results,
+			whole: once(() => encodeText('results', JSON.stringify(results))),
+			...(before && {
+				changes: once(() => encodeText('changes', JSON.stringify(changesBetween(before, results)))),
+			}),
 		};
+		return (this.#last = next);
 	}
 
 	/** The newest results again, for who has just come in. */
 	again(results: object): SentResults {
-		const now = (this.#text ??= new ResultsText(results));
-		return { whole: () => encodeText('results', now.whole()) };
+		return this.#last ?? this.next(results);
 	}
 }
 

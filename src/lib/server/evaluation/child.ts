@@ -1,4 +1,5 @@
 import type { Evaluation } from '$lib/calc/results';
+import { applyChanges } from '$lib/protocol/changes';
 import { fork, type ChildProcess } from 'node:child_process';
 import { readFile } from 'node:fs/promises';
 import type { Readable } from 'node:stream';
@@ -20,6 +21,13 @@ export type Outcome =
 /** Told how many trials are drawn, and how many there will be. */
 export type OnProgress = (drawn: number, total: number) => void;
 
+/** What is around a task. */
+interface Around {
+	onProgress?: OnProgress | undefined;
+	/** Results the caller has of the same note: only what changed since comes from a process that made them. */
+	last?: Evaluation | undefined;
+}
+
 const memoryCheckMs = 20;
 const startMs = 15_000;
 
@@ -35,7 +43,9 @@ export class Child {
 	#settle: ((outcome: Outcome) => void) | undefined;
 	#task: number | undefined;
 	#note: string | undefined;
-	#onProgress: OnProgress | undefined;
+	#around: Around = {};
+	/** What it answered, with the task that asked for it. */
+	readonly #answered = new WeakMap<Evaluation, number>();
 
 	constructor(settings: ChildSettings) {
 		this.#settings = settings;
@@ -65,8 +75,14 @@ export class Child {
 		this.#process.on('message', (message) => {
 			const answer = message as Answer;
 			if (answer.kind === 'ready' || answer.id !== this.#task) return;
-			if (answer.kind === 'done') this.#finish({ kind: 'done', results: answer.results });
-			else this.#onProgress?.(answer.drawn, answer.total);
+			if (answer.kind === 'progress') return this.#around.onProgress?.(answer.drawn, answer.total);
+			const results =
+				answer.kind === 'done'
+					? answer.results
+					: this.#around.last && applyChanges(this.#around.last, answer.changes);
+			if (!results) return this.#stop('gone');
+			this.#answered.set(results, answer.id);
+			this.#finish({ kind: 'done', results });
 		});
 		// A program that forgot to close the pool may still end; the child follows when the channel closes.
 		this.#process.unref();
@@ -84,9 +100,11 @@ export class Child {
 	}
 
 	/** Gives the process a task and stops it where it overruns. Never rejects. */
-	run(task: Task, limitMs: number, onProgress?: OnProgress): Promise<Outcome> {
+	run(asked: Task, limitMs: number, around: Around = {}): Promise<Outcome> {
+		const since = around.last && this.#answered.get(around.last);
+		const task = { ...asked, ...(since !== undefined && { since }) };
 		this.#note = task.note ?? this.#note;
-		this.#onProgress = onProgress;
+		this.#around = around;
 		this.#place = Buffer.alloc(0);
 		this.#task = task.id;
 		const outcome = new Promise<Outcome>((resolve) => (this.#settle = resolve));
@@ -143,6 +161,7 @@ export class Child {
 		this.#settle?.(outcome);
 		this.#settle = undefined;
 		this.#task = undefined;
+		this.#around = {};
 	}
 
 	#lastPlace(): { cell: number; line: number } | undefined {

@@ -1,5 +1,5 @@
 import { defaultOptions, evaluate } from '$lib/calc/evaluate';
-import type { Cell } from '$lib/calc/results';
+import type { Cell, Evaluation } from '$lib/calc/results';
 import { AppError } from '$lib/errors';
 import { build } from 'esbuild';
 import { options } from '../../../../server/local/bundle.mjs';
@@ -168,13 +168,23 @@ describe('A pool of evaluators', () => {
 			expect(await pool.evaluate(cells, options)).toEqual(evaluate(cells, options));
 	}, 60_000);
 
-	it('answers edits of a note like a first evaluation of it', async () => {
+	it('answers edits of a note like a first evaluation of it, whatever became of the results before', async () => {
 		const pool = open({ size: 2 });
-		for (let edit = 0; edit < 10; edit++) {
-			const cells = calculation(`x = ${edit} V\ny = normal(x, 1 mV) / 2\nz = 3 A`);
-			const edited = await pool.evaluate(cells, defaultOptions, { note: 'n' });
-			expect(edited).toEqual(await pool.evaluate(cells, defaultOptions));
+		let last: Evaluation | undefined;
+		let [kept, anew] = [0, 0];
+		for (let edit = 0; edit < 20; edit++) {
+			const source = `x = ${edit} V\n${edit % 3 ? 'w = 2\n' : ''}y = normal(x, 1 mV) / 2\nz = 3 A`;
+			// Now and then the child is gone, or is asked something else of the note in between.
+			if (edit % 7 === 6) await killEvaluators();
+			if (edit % 4 === 3) await pool.evaluate(calculation('q = 1'), defaultOptions, { note: 'n' });
+			const edited = await pool.evaluate(calculation(source), defaultOptions, { note: 'n', last });
+			expect(edited).toEqual(await pool.evaluate(calculation(source), defaultOptions));
+			if (last && edited.quantities.z === last.quantities.z) kept += 1;
+			else anew += 1;
+			last = edited;
 		}
+		expect(kept).toBeGreaterThan(5);
+		expect(anew).toBeGreaterThan(1);
 	}, 60_000);
 
 	it('gives a formula none of its environment and no way to it', async () => {

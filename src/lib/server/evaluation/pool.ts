@@ -32,6 +32,8 @@ const curveShare = 4;
 export interface Circumstances {
 	/** The note, where it is likely to be evaluated again after an edit. */
 	note?: string | undefined;
+	/** Its results before the edit. What did not change stays the same object where the same child computes it. */
+	last?: Evaluation | undefined;
 	/** Told how many trials are drawn. */
 	onProgress?: OnProgress | undefined;
 	/** Stops it; the evaluation then throws AppError. */
@@ -64,8 +66,9 @@ export class Pool {
 	async evaluate(
 		cells: readonly Cell[],
 		options: Options,
-		{ note, onProgress, signal }: Circumstances = {},
+		circumstances: Circumstances = {},
 	): Promise<Evaluation> {
+		const { signal } = circumstances;
 		const isLong = options.monteCarlo !== undefined || options.detail === 'all';
 		const turns = isLong ? this.#longTurns : this.#turns;
 		if (this.#closed) throw closedError();
@@ -73,7 +76,7 @@ export class Pool {
 		const from = performance.now();
 		try {
 			if (signal?.aborted) throw stoppedError();
-			return await this.#attempt(cells, options, isLong, { note, onProgress, signal });
+			return await this.#attempt(cells, options, isLong, circumstances);
 		} finally {
 			const rest = turns.isCrowded ? restShare * (performance.now() - from) : 0;
 			if (rest > 0) setTimeout(() => turns.give(), Math.min(rest, longestRestMs));
@@ -92,7 +95,7 @@ export class Pool {
 		cells: readonly Cell[],
 		options: Options,
 		isLong: boolean,
-		{ note, onProgress, signal }: Circumstances,
+		{ note, last, onProgress, signal }: Circumstances,
 	): Promise<Evaluation> {
 		const skip: SkippedLine[] = [];
 		const { limitsMs, longLimitsMs } = this.#settings;
@@ -105,7 +108,7 @@ export class Pool {
 			const task = { id, cells, options, skip, ...(note !== undefined && { note }) };
 			const cancel = () => child.cancel();
 			signal?.addEventListener('abort', cancel);
-			const outcome = await child.run(task, limitMs, onProgress);
+			const outcome = await child.run(task, limitMs, { onProgress, last });
 			signal?.removeEventListener('abort', cancel);
 			this.#release(child);
 			if (outcome.kind === 'done') return outcome.results;

@@ -98,7 +98,8 @@ export class Scheduler {
 		if (last && JSON.stringify(computedOf(last.content)) === JSON.stringify(computedOf(content))) {
 			return last.results;
 		}
-		return this.#compute(content.cells, optionsOf(content), { note: this.#note });
+		const circumstances = { note: this.#note, last: last?.results };
+		return this.#compute(content.cells, optionsOf(content), circumstances);
 	}
 }
 
