@@ -1,6 +1,7 @@
 import type { Browser, BrowserContext, Page } from '@playwright/test';
 import { openBareEditor } from './bare-editor';
 import { keyWork, type KeyWork } from './key-work';
+import { hasProcessorToSpare, onOwnProcessor } from './own-processor';
 import { quantile, row, type Row } from './row';
 
 /** A note of 2,000 worked lines in 40 sections; every fifth line is an input of those behind it. */
@@ -21,10 +22,15 @@ function lines(count: number, name: string): string {
 /** Long enough for the server's figures to come back before the next key. */
 const pauseMs = 200;
 /** A figure of an input goes to and fro, so that each key gives other figures. */
-const keys = Array.from({ length: 300 }, (_, at) => (at % 2 === 0 ? '7' : 'Backspace'));
+const keys = Array.from({ length: 200 }, (_, at) => (at % 2 === 0 ? '7' : 'Backspace'));
 const warmUp = 4;
 /** While the first ones are typed, the browser compiles what each key runs, on the same processors. */
 const firstKeys = 100;
+
+const spans = {
+	first: `the first ${firstKeys} keys`,
+	further: `keys ${firstKeys + 1} to ${keys.length}`,
+};
 
 interface Typed {
 	first: KeyWork[];
@@ -37,21 +43,33 @@ export async function typingRows(
 	context: BrowserContext,
 	paths: { longNote: string; longCell: string },
 ): Promise<Row[]> {
-	const bare = await typed(await openBareEditor(context, lines(300, 'y')), 'y_5');
-	return [
-		...rowsOf(
-			'page.key-2000-lines',
-			'a note of 2,000 lines',
-			await typed(await openNote(paths.longNote), 'x0_5'),
-			bare,
-		),
-		...rowsOf(
-			'page.key-300-line-cell',
-			'a cell of 300 lines',
-			await typed(await openNote(paths.longCell), 'y_5'),
-			bare,
-		),
+	const openBare = () => openBareEditor(context, lines(300, 'y'));
+	const places = [
+		{
+			id: 'page.key-2000-lines',
+			where: 'a note of 2,000 lines',
+			name: 'x0_5',
+			open: () => openNote(paths.longNote),
+		},
+		{
+			id: 'page.key-300-line-cell',
+			where: 'a cell of 300 lines',
+			name: 'y_5',
+			open: () => openNote(paths.longCell),
+		},
 	];
+	const rows: Row[] = [];
+	const bare = await typed(await openBare(), 'y_5');
+	for (const { id, where, name, open } of places)
+		rows.push(...rowsOf(id, where, await typed(await open(), name), bare));
+	if (!hasProcessorToSpare) {
+		process.stdout.write('no processor to spare for the page alone: its rows are left out\n');
+		return rows;
+	}
+	const bareAlone = await typed(await openBare(), 'y_5', onOwnProcessor);
+	for (const { id, where, name, open } of places)
+		rows.push(...rowsAlone(id, where, await typed(await open(), name, onOwnProcessor), bareAlone));
+	return rows;
 
 	async function openNote(path: string): Promise<Page> {
 		const page = await context.newPage();
@@ -59,14 +77,39 @@ export async function typingRows(
 		return page;
 	}
 
-	async function typed(page: Page, name: string): Promise<Typed> {
+	async function typed(
+		page: Page,
+		name: string,
+		on: typeof onOwnProcessor = (work) => work(),
+	): Promise<Typed> {
 		await page.locator('.cm-line', { hasText: `${name} =` }).click();
 		await page.keyboard.press('End');
 		for (let sign = 0; sign < ' mV'.length; sign++) await page.keyboard.press('ArrowLeft');
-		const work = await keyWork(browser, page, keys, pauseMs);
+		const work = await on(() => keyWork(browser, page, keys, pauseMs));
 		await page.close();
 		return { first: work.slice(warmUp, firstKeys), further: work.slice(firstKeys) };
 	}
+}
+
+/** The same keys while nothing else runs on the processor of the page's main thread. */
+function rowsAlone(id: string, where: string, work: Typed, bare: Typed): Row[] {
+	return (['first', 'further'] as const).map((part) =>
+		row({
+			id: `${id}-alone-${part}`,
+			what: `main thread from a key to the next paint, 95 of 100 of ${spans[part]}, ${where}, the page's main thread on a processor of its own; peer: a bare editor with 300 lines, likewise`,
+			value: clock(work[part]),
+			peer: clock(bare[part]),
+			unit: 'ms',
+			target: 16,
+		}),
+	);
+}
+
+function clock(keys: readonly KeyWork[]): number {
+	return quantile(
+		keys.map(({ toPaint }) => toPaint),
+		0.95,
+	);
 }
 
 function rowsOf(id: string, where: string, work: Typed, bare: Typed): Row[] {
@@ -80,7 +123,6 @@ function rowsOf(id: string, where: string, work: Typed, bare: Typed): Row[] {
 		peer: of(bare[part], share, what),
 		unit: 'ms',
 	});
-	const further = `keys ${firstKeys + 1} to ${keys.length}`;
 	return [
 		row({
 			id,
@@ -90,7 +132,7 @@ function rowsOf(id: string, where: string, work: Typed, bare: Typed): Row[] {
 		}),
 		row({
 			id: `${id}-further`,
-			what: `the same, 95 of 100 of ${further}, ${where}`,
+			what: `the same, 95 of 100 of ${spans.further}, ${where}`,
 			...beside('further', 0.95, 'toPaint'),
 			target: 16,
 		}),
@@ -107,7 +149,7 @@ function rowsOf(id: string, where: string, work: Typed, bare: Typed): Row[] {
 		}),
 		row({
 			id: `${id}-further-processor`,
-			what: `the same on the processor, 95 of 100 of ${further}, ${where}`,
+			what: `the same on the processor, 95 of 100 of ${spans.further}, ${where}`,
 			...beside('further', 0.95, 'toPaintProcessor'),
 			target: 16,
 		}),
