@@ -91,33 +91,29 @@ export async function typingRows(
 	}
 }
 
-/** The same keys while nothing else runs on the processor of the page's main thread. */
+/** The same keys while the page's main thread has a processor of its own. */
 function rowsAlone(id: string, where: string, work: Typed, bare: Typed): Row[] {
 	return (['first', 'further'] as const).map((part) =>
 		row({
 			id: `${id}-alone-${part}`,
 			what: `main thread from a key to the next paint, 95 of 100 of ${spans[part]}, ${where}, the page's main thread on a processor of its own; peer: a bare editor with 300 lines, likewise`,
-			value: clock(work[part]),
-			peer: clock(bare[part]),
+			value: of(work[part], 0.95, 'toPaint'),
+			peer: of(bare[part], 0.95, 'toPaint'),
 			unit: 'ms',
 			target: 16,
 		}),
 	);
 }
 
-function clock(keys: readonly KeyWork[]): number {
+/** The time below which this share of the keys lies. */
+function of(keys: readonly KeyWork[], share: number, what: keyof KeyWork): number {
 	return quantile(
-		keys.map(({ toPaint }) => toPaint),
-		0.95,
+		keys.map((one) => one[what]),
+		share,
 	);
 }
 
 function rowsOf(id: string, where: string, work: Typed, bare: Typed): Row[] {
-	const of = (list: readonly KeyWork[], share: number, what: keyof KeyWork) =>
-		quantile(
-			list.map((one) => one[what]),
-			share,
-		);
 	const beside = (part: keyof Typed, share: number, what: keyof KeyWork) => ({
 		value: of(work[part], share, what),
 		peer: of(bare[part], share, what),

@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import { applyChanges, changesBetween } from '$lib/protocol/changes';
 import { Calculator } from './calculator';
 import { defaultOptions, evaluate } from './evaluate';
 import type { Cell, Evaluation } from './results';
@@ -108,14 +109,19 @@ describe('Computing a note again after an edit', () => {
 				(source, requirements, edits) => {
 					const calculator = new Calculator();
 					let now = source;
-					expect(calculator.evaluate(cellsOf(now, requirements), defaultOptions)).toEqual(
-						evaluate(cellsOf(now, requirements), defaultOptions),
-					);
+					let last = calculator.evaluate(cellsOf(now, requirements), defaultOptions);
+					expect(last).toEqual(evaluate(cellsOf(now, requirements), defaultOptions));
+					// What a peer knows that was told all of it once and then what changed.
+					let told = asJson(last);
 					for (const change of edits) {
 						now = edited(now, change);
 						const cells = cellsOf(now, requirements);
 						const fresh = evaluate(cells, defaultOptions);
-						expect(calculator.evaluate(cells, defaultOptions)).toEqual(fresh);
+						const results = calculator.evaluate(cells, defaultOptions);
+						expect(results).toEqual(fresh);
+						told = applyChanges(told, asJson(changesBetween(last, results)));
+						expect(told).toEqual(asJson(fresh));
+						last = results;
 					}
 				},
 			),
@@ -160,6 +166,10 @@ describe('Computing a note again after an edit', () => {
 		}
 	});
 });
+
+function asJson<T>(value: T): T {
+	return JSON.parse(JSON.stringify(value)) as T;
+}
 
 /** Quantities and requirements that are not the same objects. */
 function changed(before: Evaluation, after: Evaluation): string[] {
